@@ -1,0 +1,189 @@
+package pick
+
+import (
+	"context"
+	"fmt"
+
+	"batchwright/bom/offer"
+	"batchwright/bom/order"
+	"batchwright/bom/part"
+	"batchwright/tolerance/build"
+	"batchwright/tolerance/spread"
+)
+
+// Options say how a build's openings are chosen.
+type Options struct {
+	Seed     uint64 // of the simulation that confirms
+	Units    int    // that it simulates at least
+	Limits   Limits
+	Progress func(text string) // nil: not called
+}
+
+// Choose fills a build's openings with the cheapest parts by its price book
+// that meet its targets. The search works on a linear picture that errs on the
+// generous side; every choice that this picture lets pass is simulated, in
+// order of price, and the first that the simulation confirms is returned with
+// the build fitted with it.
+//
+// Where nothing meets the targets, Result.Choices is what comes nearest, and
+// Result.Why says that.
+func Choose(ctx context.Context, b *build.Build, o Options) (*Result, *build.Build, error) {
+	c, err := newChooser(b, o)
+	if err != nil {
+		return nil, nil, err
+	}
+	c.context = ctx
+	if len(b.Openings) == 0 {
+		return &Result{Choices: []Choice{}, ProvedCheapest: true, Candidates: 1, CostPerUnit: c.order(b.Parts()).PerUnit}, b, nil
+	}
+	if r := c.unsold(); r != nil {
+		fitted, err := b.Fit(c.base)
+		return r, fitted, err
+	}
+	problem, err := c.problem()
+	if err != nil {
+		return nil, nil, err
+	}
+	found, err := problem.Cheapest(ctx, o.Limits)
+	if err != nil {
+		return nil, nil, err
+	}
+	return c.result(problem, found)
+}
+
+// chooser turns a build's openings into a problem.
+type chooser struct {
+	Options
+	context  context.Context
+	build    *build.Build
+	fittings [][]build.Fitting // sold ones, of each opening
+	base     []build.Fitting   // the first of each
+	demands  []demandNode
+	refused  map[string]string // choices that the simulation refused, and why
+}
+
+// newChooser lists what may fill each opening and is offered.
+func newChooser(b *build.Build, o Options) (*chooser, error) {
+	c := &chooser{Options: o, build: b, refused: map[string]string{}}
+	for _, opening := range b.Openings {
+		var sold []build.Fitting
+		all := b.Fittings(opening)
+		for _, f := range all {
+			if c.offered(f.Part, len(opening.Positions)) {
+				sold = append(sold, f)
+			}
+		}
+		if len(all) == 0 {
+			return nil, fmt.Errorf("pick: nothing can fill %s", opening.Positions[0])
+		}
+		c.fittings = append(c.fittings, sold)
+		if len(sold) > 0 {
+			all = sold
+		}
+		c.base = append(c.base, all[0])
+	}
+	return c, nil
+}
+
+// offered says whether the price book sells enough of a part.
+func (c *chooser) offered(p part.Part, perUnit int) bool {
+	_, ok := c.buying(p, perUnit)
+	return ok
+}
+
+// buying is the money for a part in every unit, spares included.
+func (c *chooser) buying(p part.Part, perUnit int) (offer.Money, bool) {
+	parts := make([]part.Part, perUnit)
+	for i := range parts {
+		parts[i] = p
+		parts[i].Ref = fmt.Sprintf("X%d", i+1)
+	}
+	o := c.order(parts)
+	return o.Total, len(o.Unoffered) == 0
+}
+
+func (c *chooser) order(parts []part.Part) order.Order {
+	return order.New(parts, c.build.Units, c.build.Spares, c.build.Book, c.build.Families)
+}
+
+// unsold is the result where an opening has nothing that is offered.
+func (c *chooser) unsold() *Result {
+	for i, sold := range c.fittings {
+		if len(sold) == 0 {
+			return &Result{Choices: []Choice{}, Why: fmt.Sprintf(
+				"the price book offers nothing that may fill %s", c.build.Openings[i].Positions[0])}
+		}
+	}
+	return nil
+}
+
+// fit is the build fitted with a choice.
+func (c *chooser) fit(choice []int) (*build.Build, error) {
+	fittings := make([]build.Fitting, len(choice))
+	for i, j := range choice {
+		fittings[i] = c.fittings[i][j]
+	}
+	return c.build.Fit(fittings)
+}
+
+// cost is the exact money of a choice: the whole order.
+func (c *chooser) cost(choice []int) int64 {
+	b, err := c.fit(choice)
+	if err != nil {
+		panic("pick: " + err.Error()) // fittings came from the build itself
+	}
+	return int64(c.order(b.Parts()).Total)
+}
+
+// confirm simulates a choice: first a few batches, which refuse what is far
+// off, then as many units as the report will show.
+func (c *chooser) confirm(choice []int) (bool, error) {
+	b, err := c.fit(choice)
+	if err != nil {
+		return false, err
+	}
+	m, err := b.Compile()
+	if err != nil {
+		return false, err
+	}
+	quick := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, quickUnits)}
+	targets, _, err := spread.Judge(c.context, m, quick)
+	if err != nil {
+		return false, err
+	}
+	for i, t := range targets {
+		if asked := b.Targets[i]; !t.Met && (asked.WorstCase || float64(t.ShareInterval[1]) < asked.Share) {
+			return c.refuse(choice, t), nil
+		}
+	}
+	targets, _, err = spread.Judge(c.context, m, spread.Options{Seed: c.Seed, Units: c.Units})
+	if err != nil {
+		return false, err
+	}
+	for _, t := range targets {
+		if !t.Met {
+			return c.refuse(choice, t), nil
+		}
+	}
+	return true, nil
+}
+
+// The quick simulation's size, and what keeps its draws apart from those that
+// confirm.
+const (
+	quickUnits = 960
+	quickSeed  = 0x9e3779b97f4a7c15
+)
+
+// refuse notes why a choice was refused.
+func (c *chooser) refuse(choice []int, t spread.TargetReport) bool {
+	text := fmt.Sprintf("%s on %.4g %% of the simulated units", t.Name, 100*float64(t.Share))
+	if t.WorstCase != nil {
+		text = t.Name + " in the worst case"
+	}
+	c.refused[fmt.Sprint(choice)] = text
+	if c.Progress != nil {
+		c.Progress(fmt.Sprintf("refused %d choices", len(c.refused)))
+	}
+	return false
+}

@@ -1,0 +1,129 @@
+package pick
+
+import "math"
+
+// Rounding that the bounds forgive, so that a choice which Judge passes by the
+// last digit is never cut: relative to the sizes that were added up.
+const forgive = 1e-9
+
+// Holds says whether the demand is met by these totals (base included).
+func (d *Demand) Holds(mean, variance, half float64) bool {
+	if d.WorstCase {
+		return mean-half >= d.Low && mean+half <= d.High
+	}
+	return ShareOfNormal(mean, variance, d.Low, d.High) >= d.Share
+}
+
+// Miss is by how much both limits would have to move outward for the demand to
+// hold, in the demand's unit: 0 where it holds, +Inf where no widening helps
+// (a share of 1 with scatter).
+func (d *Demand) Miss(mean, variance, half float64) float64 {
+	if d.Holds(mean, variance, half) {
+		return 0
+	}
+	if d.WorstCase {
+		return max(d.Low-(mean-half), mean+half-d.High)
+	}
+	holds := func(by float64) bool {
+		return ShareOfNormal(mean, variance, d.Low-by, d.High+by) >= d.Share
+	}
+	// Forty deviations beyond the mean leave nothing outside.
+	far := 40*math.Sqrt(variance) + max(0, d.Low-mean, mean-d.High)
+	if far == 0 || !holds(far) {
+		return math.Inf(1)
+	}
+	near := 0.0
+	for range 60 {
+		middle := near + (far-near)/2
+		if holds(middle) {
+			far = middle
+		} else {
+			near = middle
+		}
+	}
+	return far
+}
+
+// Scale is what a miss is measured against to compare demands: half the width
+// of the window, or the size of the only limit, or 1.
+func (d *Demand) Scale() float64 {
+	width := (d.High - d.Low) / 2
+	switch {
+	case finite(width) && width > 0:
+		return width
+	case finite(d.Low) && d.Low != 0:
+		return math.Abs(d.Low)
+	case finite(d.High) && d.High != 0:
+		return math.Abs(d.High)
+	}
+	return 1
+}
+
+// totals adds a demand's base and the effects of a choice.
+func (p *Problem) totals(q int, choice []int) Effect {
+	d := &p.Demands[q]
+	t := Effect{d.BaseMean, d.BaseVariance, d.BaseHalf}
+	for i, j := range choice {
+		t.add(p.Lines[i].Options[j].Effects[q])
+	}
+	return t
+}
+
+func (t *Effect) add(e Effect) {
+	t.Mean += e.Mean
+	t.Variance += e.Variance
+	t.Half += e.Half
+}
+
+// judge is Judge, or the demands with all effects added up; the shortfall is
+// then the greatest Miss/Scale.
+func (p *Problem) judge(choice []int) Verdict {
+	if p.Judge != nil {
+		v := p.Judge(choice)
+		if math.IsNaN(v.Shortfall) {
+			v.Shortfall = math.Inf(1)
+		}
+		return v
+	}
+	v := Verdict{Meets: true}
+	for q := range p.Demands {
+		d := &p.Demands[q]
+		t := p.totals(q, choice)
+		if d.Holds(t.Mean, t.Variance, t.Half) {
+			continue
+		}
+		miss := d.Miss(t.Mean, t.Variance, t.Half) / d.Scale()
+		if v.Meets || miss > v.Shortfall {
+			v = Verdict{Shortfall: miss, Worst: q}
+		}
+	}
+	return v
+}
+
+// A reach is what the totals of a demand can still come to: a mean between Low
+// and High, a variance and a half width of at least these.
+type reach struct {
+	low, high, variance, half float64
+	size                      float64 // greatest absolute sum of means, for rounding
+}
+
+// beyond says that no totals within the reach can meet the demand.
+func (d *Demand) beyond(r reach) bool {
+	if d.WorstCase {
+		slack := forgive * (r.size + r.half)
+		return r.low+r.half > d.High+slack || r.high-r.half < d.Low-slack ||
+			2*r.half > d.High-d.Low+2*slack
+	}
+	// The mean's own rounding is forgiven by letting it reach a little wider.
+	slack := forgive * r.size
+	low, high := r.low-slack, r.high+slack
+	least := r.variance * (1 - forgive)
+	if d.Share <= 0.5 {
+		return bestShare(d.Low, d.High, low, high, least) < d.Share*(1-forgive)
+	}
+	m := nearestMean(d.Low, d.High, low, high)
+	return outsideNormal(m, least, d.Low, d.High) > d.rest()
+}
+
+// rest is the share of units that may lie outside, rounding forgiven.
+func (d *Demand) rest() float64 { return (1-d.Share)*(1+forgive) + 1e-15 }

@@ -1,0 +1,305 @@
+package pick
+
+import (
+	"cmp"
+	"context"
+	"encoding/binary"
+	"fmt"
+	"math"
+	"slices"
+)
+
+// none is the ceiling that cuts nothing.
+const none = math.MaxInt64
+
+// Cheapest finds the cheapest choice that Judge passes and Confirm confirms,
+// and of equally cheap ones the first in lexicographic order.
+//
+// It searches best first: partial choices wait in the order of a lower bound
+// of what any completion costs, and the first full choice to come out with its
+// exact cost, judged and confirmed, is the cheapest there is. The bound is the
+// best of a few Lagrangian ones (money plus the demands' linear conditions at
+// prices); a partial choice from which some demand is out of reach is cut.
+//
+// Before that a local search looks for a good choice. Its cost is a ceiling:
+// nothing above it needs looking at as long as that choice, or a cheaper one,
+// is confirmed. When Confirm refuses, what was left out on the strength of the
+// ceiling or of dominance is let in again.
+//
+// The error is that of the context, of Confirm, or a fault in the problem;
+// the outcome then holds what was known so far.
+func (p *Problem) Cheapest(ctx context.Context, limits Limits) (Outcome, error) {
+	if err := p.check(); err != nil {
+		return Outcome{}, fmt.Errorf("pick: %w", err)
+	}
+	if limits.Nodes <= 0 {
+		limits.Nodes = DefaultNodes
+	}
+	s := &search{p: p, limits: limits, answers: map[string]answer{}}
+	s.out.Candidates = p.candidates()
+	err := s.run(ctx)
+	if err == nil {
+		err = s.near(ctx)
+	}
+	return s.out, err
+}
+
+// An answer is what is known of a full choice.
+type answer struct{ judged, meets, refused bool }
+
+// A known choice that Judge passed, with its cost.
+type known struct {
+	choice []int
+	cost   int64
+}
+
+func (k known) compare(o known) int {
+	return cmp.Or(cmp.Compare(k.cost, o.cost), slices.Compare(k.choice, o.choice))
+}
+
+type search struct {
+	p       *Problem
+	limits  Limits
+	out     Outcome
+	answers map[string]answer
+	pool    []known // from the local search, cheapest first
+	refused int
+	nearest known // the nearest seen so far, with its verdict in out
+}
+
+// An ending is why a pass over the choices came to its end.
+type ending int
+
+const (
+	exhausted ending = iota // nothing left within the ceiling
+	confirmed
+	doubted // Confirm refused, and options had been dropped that may now matter
+	stopped // a limit was reached
+)
+
+// run makes passes, each with fewer things left out, until one is conclusive.
+func (s *search) run(ctx context.Context) error {
+	all := s.p.all()
+	kept, dominated := s.p.undominated()
+	s.out.Bound = s.p.leastFloor()
+	if err := s.start(ctx, kept); err != nil {
+		return err
+	}
+	ceiling := int64(none)
+	if len(s.pool) > 0 {
+		ceiling = s.pool[0].cost
+	}
+	for raised := 0; ; raised++ {
+		dropped := dominated
+		b, pegged := s.prepare(kept, ceiling)
+		s.out.Dropped = dropped + pegged
+		end, err := exhausted, error(nil)
+		if b != nil {
+			end, err = s.pass(ctx, b, ceiling, dominated > 0)
+		}
+		switch {
+		case err != nil:
+			return err
+		case end == confirmed:
+			s.out.Proved = true
+			return nil
+		case end == stopped:
+			return s.settle(ctx)
+		case end == exhausted && ceiling == none && (dominated == 0 || s.refused == 0):
+			s.out.Proved = true
+			return nil
+		case end == exhausted:
+			ceiling = s.raise(ceiling, raised)
+		}
+		kept, dominated = all, 0
+	}
+}
+
+// raise lets in dearer choices after all within the ceiling were refused.
+func (s *search) raise(ceiling int64, raised int) int64 {
+	if ceiling == none || raised > 1 {
+		return none
+	}
+	s.out.Bound = max(s.out.Bound, ceiling)
+	step := 4 * max(ceiling-s.p.leastFloor(), 1)
+	if ceiling > none/2-step {
+		return none
+	}
+	return ceiling + step
+}
+
+// pass searches the bank's options in the order of cost up to the ceiling.
+// wary asks it to end at the first refusal.
+func (s *search) pass(ctx context.Context, b *bank, ceiling int64, wary bool) (ending, error) {
+	f := newFrontier(b.order, b.kept)
+	at, choice := b.newStanding(), make([]int, len(b.order))
+	f.push(f.root(s.p.leastFloor()))
+	for len(f.heap) > 0 {
+		i := f.pop()
+		n := f.nodes[i]
+		s.out.Bound = max(s.out.Bound, n.key)
+		if err := ctx.Err(); err != nil {
+			return stopped, err
+		}
+		switch {
+		case int(n.depth) < f.lines:
+			if !f.room(len(b.kept[b.order[n.depth]]), s.limits.Nodes) {
+				return stopped, nil
+			}
+			f.settled(choice, i)
+			b.stand(at, choice, int(n.depth))
+			s.expand(f, b, at, i, ceiling)
+		case int(n.depth) == f.lines:
+			f.least(choice, i)
+			cost, err := s.price(choice)
+			if err != nil {
+				return stopped, err
+			}
+			if cost > ceiling {
+				s.out.CutByBound++
+			} else {
+				f.push(f.priced(i, max(cost, n.key)))
+			}
+		default:
+			f.least(choice, i)
+			end, err := s.ask(choice, n.key)
+			if err != nil || end == confirmed || end == stopped || end == doubted && wary {
+				return end, err
+			}
+		}
+	}
+	return exhausted, nil
+}
+
+// expand pushes the children of a node that are still within reach.
+func (s *search) expand(f *frontier, b *bank, at *standing, i int32, ceiling int64) {
+	n := f.nodes[i]
+	depth := int(n.depth)
+	for o := range b.kept[b.order[depth]] {
+		bound := b.bound(at, depth, o, min(float64(ceiling), b.dearest))
+		if math.IsInf(bound, 1) {
+			s.out.CutByBound++
+			continue
+		}
+		f.push(f.child(i, o, max(n.key, keyed(bound))))
+	}
+}
+
+// price is the exact cost of a full choice, checked against the floors it was
+// promised to be above.
+func (s *search) price(choice []int) (int64, error) {
+	cost := s.p.cost(choice)
+	if floor := s.p.floor(choice); cost < floor {
+		return 0, fmt.Errorf("pick: choice %v costs %d, expected at least the sum of its floors, %d", choice, cost, floor)
+	}
+	return cost, nil
+}
+
+// ask judges a choice, once, and has it confirmed where Judge passes it.
+func (s *search) ask(choice []int, cost int64) (ending, error) {
+	if !s.judge(choice, cost) || s.answers[name(choice)].refused {
+		return exhausted, nil
+	}
+	if s.limits.Simulations > 0 && s.out.Simulated >= s.limits.Simulations {
+		return stopped, nil
+	}
+	ok, err := s.confirm(choice)
+	switch {
+	case err != nil:
+		return stopped, err
+	case ok:
+		s.out.Choice, s.out.Cost = slices.Clone(choice), cost
+		return confirmed, nil
+	}
+	return doubted, nil
+}
+
+// judge says whether Judge passes a choice and remembers the answer.
+func (s *search) judge(choice []int, cost int64) bool {
+	key := name(choice)
+	if a := s.answers[key]; a.judged {
+		return a.meets
+	}
+	v := s.p.judge(choice)
+	s.out.Examined++
+	s.answers[key] = answer{judged: true, meets: v.Meets}
+	s.see(choice, cost, v)
+	return v.Meets
+}
+
+func (s *search) confirm(choice []int) (bool, error) {
+	if s.p.Confirm == nil {
+		return true, nil
+	}
+	s.out.Simulated++
+	ok, err := s.p.Confirm(slices.Clone(choice))
+	if err != nil {
+		return false, fmt.Errorf("pick: confirming: %w", err)
+	}
+	if !ok {
+		s.refused++
+		key := name(choice)
+		a := s.answers[key]
+		a.refused = true
+		s.answers[key] = a
+	}
+	return ok, nil
+}
+
+// settle makes the best of a search that was stopped: the cheapest of the
+// local search's choices that Confirm confirms.
+func (s *search) settle(ctx context.Context) error {
+	for _, k := range s.pool {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+		if s.answers[name(k.choice)].refused {
+			continue
+		}
+		if s.limits.Simulations > 0 && s.out.Simulated >= s.limits.Simulations {
+			return nil
+		}
+		ok, err := s.confirm(k.choice)
+		if err != nil {
+			return err
+		}
+		if ok {
+			s.out.Choice, s.out.Cost = k.choice, k.cost
+			return nil
+		}
+	}
+	return nil
+}
+
+// name is a choice as a map key.
+func name(choice []int) string {
+	b := make([]byte, 0, 2*len(choice))
+	for _, j := range choice {
+		b = binary.BigEndian.AppendUint16(b, uint16(j))
+	}
+	return string(b)
+}
+
+// all keeps every option of every line.
+func (p *Problem) all() [][]int {
+	kept := make([][]int, len(p.Lines))
+	for i, l := range p.Lines {
+		for j := range l.Options {
+			kept[i] = append(kept[i], j)
+		}
+	}
+	return kept
+}
+
+// leastFloor is what any choice costs at least.
+func (p *Problem) leastFloor() int64 {
+	sum := p.Base
+	for _, l := range p.Lines {
+		least := l.Options[0].Floor
+		for _, o := range l.Options {
+			least = min(least, o.Floor)
+		}
+		sum += least
+	}
+	return sum
+}

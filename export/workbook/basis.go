@@ -1,0 +1,77 @@
+package workbook
+
+import (
+	"fmt"
+
+	"github.com/xuri/excelize/v2"
+)
+
+// basis writes what the figures rest on.
+func (b *book) basis() {
+	s := setup{}
+	p := b.open(basisSheet, []float64{22, 58, 30}, s)
+	p.heading(basisSheet, "What the figures rest on, and how to make them again")
+	p.section("Made from")
+	for _, f := range [][2]string{
+		{"Build file", b.plan.File}, {"Plan", or(b.plan.Digest, "no digest")}, {"Program", "batchwright " + b.plan.Version}, {"Seed", fmt.Sprint(b.plan.Seed)},
+		{"Simulated", fmt.Sprintf("%s units in %s batches", whole(b.plan.Spread.Simulation.Units), whole(b.plan.Spread.Simulation.Batches))}, {"Prices", b.priceWords()},
+	} {
+		p.fact(f[0], f[1], "")
+	}
+	p.conditions()
+	p.section("How the limits on the test sheet are made")
+	for _, f := range windowWords {
+		p.fact(f[0], f[1], f[2])
+	}
+	if len(b.plan.Basis) > 0 {
+		p.section("Assumptions and sources")
+		for _, e := range b.plan.Basis {
+			p.fact(e.Heading, e.Text, e.Source)
+		}
+	}
+	if len(b.plan.Cautions) > 0 {
+		p.section("Cautions")
+		for _, c := range b.plan.Cautions {
+			p.paragraph("• "+c, 1, 3, look{})
+		}
+	}
+	p.close(s, 0)
+}
+
+// windowWords says how expected and accept limits come about; package bench
+// works them out, scale.go rounds them.
+var windowWords = [][3]string{
+	{"A good unit shows", "The middle 99.73 % of the simulated good units' readings, with the meter's own loading, widened by its expanded uncertainty U (k = 2). A reading outside means that something is built wrong. Rounded outward to the digits shown.", ""},
+	{"Proves the target", "The target's limits drawn in by U. A reading inside means that the target is met in spite of the meter. Rounded inward to the digits shown.", "Guard band w = U: JCGM 106:2012, 8.3.2"},
+	{"Digits", "The last digit shown is the largest power of ten below a fifth of U, or below a thousandth of the narrowest window where that is coarser.", ""},
+	{"Adjustments", "The limits of a row that says turn are its own: leave the trimmer inside them.", ""},
+}
+
+func (p *page) conditions() {
+	if len(p.plan.Conditions) == 0 {
+		return
+	}
+	p.section("Conditions")
+	for _, c := range p.plan.Conditions {
+		p.fact(c.Name, c.Text, "")
+	}
+}
+
+// fact writes a heading, what it says, and where that comes from.
+func (p *page) fact(heading, text, source string) {
+	n := p.tallest(10, heading, text, "")
+	n = max(n, lines(clean(source), p.widths[2], 9, false))
+	l := look{wrap: true, down: "top", bottom: hairline}
+	quiet := l
+	quiet.size, quiet.ink = 9, faded
+	if source == "" { // let a long text use the room
+		n = max(lines(clean(text), p.wide(2, 3), 10, false), lines(clean(heading), p.widths[0], 10, true))
+	}
+	p.put(lineHeight(10, n), p.text(heading, bolder(l)), p.text(text, l), p.text(source, quiet))
+	if source == "" {
+		p.merge(2, 3)
+	}
+}
+
+// row is n cells that are not there.
+func row(n int) []excelize.Cell { return make([]excelize.Cell, n) }

@@ -1,0 +1,228 @@
+package workbook
+
+import (
+	"fmt"
+	"strings"
+
+	"batchwright/bom/order"
+	"batchwright/tolerance/pick"
+	"batchwright/tolerance/spread"
+
+	"github.com/xuri/excelize/v2"
+)
+
+// summary writes the first page: what the plan is, whether it does what was
+// asked, what it costs, how its parts were chosen, and the state of the bench.
+func (b *book) summary(total string, verdicts tally) {
+	s := setup{}
+	p := b.open(summarySheet, []float64{24, 22, 17, 13, 17, 18}, s)
+	p.span(34, 1, 6, p.text(cut(clean(b.plan.Title), 120), look{size: 22, bold: true, down: "bottom"}), look{})
+	p.span(18, 1, 6, p.text(fmt.Sprintf("Batch of %s · plan %s · seed %d · %s", plural(b.plan.Units, "unit"), b.plan.short(), b.plan.Seed, or(clean(b.plan.File), "no file")), look{ink: faded, bottom: heavy}), look{bottom: heavy})
+	p.put(10)
+	p.keyFigures(total)
+	p.targets()
+	p.yield()
+	p.benchState(verdicts)
+	p.choices(b.plan.Pick)
+	p.findings()
+	p.contents()
+	p.close(s, 0)
+}
+
+// keyFigures are the four figures people ask for first.
+func (p *page) keyFigures(total string) {
+	o := p.plan.Order
+	met := 0
+	for _, t := range p.plan.Spread.Targets {
+		if t.Met {
+			met++
+		}
+	}
+	label := look{size: 9, ink: faded, fill: tint, top: rule}
+	figure := look{size: 16, bold: true, fill: tint, bottom: rule}
+	money := figure
+	money.format = "#,##0.00"
+	cost := p.number(o.Total.Float(), money.format, leftward(money))
+	if total != "" {
+		cost = p.live(fmt.Sprintf("'%s'!%s", buySheet, total), o.Total.Float(), leftward(money))
+	}
+	currency := ""
+	if c := clean(o.Currency); c != "" {
+		currency = ", " + c
+	}
+	p.put(18, p.text("Targets met", label), p.text("Good units expected", label), p.text("Parts to buy"+currency, label), p.text("", label), p.text("Parts of one unit"+currency, label), p.text("", label))
+	p.merge(3, 4)
+	p.merge(5, 6)
+	p.put(27, p.text(fmt.Sprintf("%d of %d", met, len(p.plan.Spread.Targets)), figure), p.text(share(p.plan.Spread.Yield.UnitShare), figure), cost, p.text("", figure), p.number(o.PerUnit.Float(), money.format, leftward(money)), p.text("", figure))
+	p.merge(3, 4)
+	p.merge(5, 6)
+	p.paragraph("Prices: "+p.priceWords(), 1, 6, look{size: 9, ink: faded})
+}
+
+// targets lists what was asked and whether it is met.
+func (p *page) targets() {
+	p.section("Targets")
+	if len(p.plan.Spread.Targets) == 0 {
+		p.nothing("The build names no target: nothing was judged.")
+		return
+	}
+	p.heads("llllll", "Target", "Asked", "", "Verdict", "Units that comply", "Worst corner")
+	for _, t := range p.plan.Spread.Targets {
+		p.target(t)
+	}
+}
+
+func (p *page) target(t spread.TargetReport) {
+	text := look{bottom: hairline, wrap: true}
+	verdict, word := look{bottom: hairline, bold: true, ink: moss}, "met"
+	if !t.Met {
+		verdict, word = look{bottom: hairline, bold: true, ink: brick, fill: rose}, "MISSED"
+	}
+	complies := share(t.Share)
+	if i := interval(t.ShareInterval[0], t.ShareInterval[1]); i != "" {
+		complies += "  (" + i + ")"
+	}
+	worst := p.plan.worst(t)
+	n := max(p.tallest(10, t.Name, "", "", "", complies, worst), lines(clean(t.Asked), p.wide(2, 3), 10, false))
+	p.put(lineHeight(10, n), p.text(t.Name, bolder(text)), p.text(t.Asked, text), p.text("", text), p.text(word, verdict), p.text(complies, text), p.text(worst, text))
+	p.merge(2, 3)
+	if t.Why != "" {
+		p.paragraph(t.Name+": "+t.Why, 1, 6, look{size: 9, ink: faded})
+	}
+}
+
+// worst writes a target's worst case in one unit, rounded outward.
+func (p Plan) worst(t spread.TargetReport) string {
+	if t.WorstCase == nil || !finite(float64(t.WorstCase.Low)) || !finite(float64(t.WorstCase.High)) {
+		return "–"
+	}
+	unit := ""
+	for _, o := range p.Spread.Outputs {
+		if o.Output == t.Output {
+			unit = o.Unit
+			break
+		}
+	}
+	largest := largestOf(t.WorstCase.Low, t.WorstCase.High)
+	sc := scaleOf(unit, largest, powerBelow(largest/100))
+	low, high := sc.below(float64(t.WorstCase.Low))*sc.by, sc.above(float64(t.WorstCase.High))*sc.by
+	return fmt.Sprintf("%s … %s %s", sc.text(low), sc.text(high), sc.symbol)
+}
+
+// yield says how many units, and how many of a batch, meet every target.
+func (p *page) yield() {
+	y := p.plan.Spread.Yield
+	p.section("What to expect of the batch")
+	if !finite(float64(y.UnitShare)) {
+		p.nothing("Nothing was simulated.")
+		return
+	}
+	line := fmt.Sprintf("%s of the units meet every target", share(y.UnitShare))
+	if i := interval(y.Interval[0], y.Interval[1]); i != "" {
+		line += " (" + i + " with batches taken as they come)"
+	}
+	p.fact2("One unit", line+".")
+	b := y.Batch
+	if finite(float64(b.MedianGood)) {
+		p.fact2("One batch", fmt.Sprintf("Half of all batches have %.0f or more good units of %d, 19 in 20 have %.0f or more; %s have no bad unit.", float64(b.MedianGood), b.Units, float64(b.P05Good), share(b.AllGoodShare)))
+	}
+	sim := p.plan.Spread.Simulation
+	p.fact2("Simulated", fmt.Sprintf("%s units in %s batches, each batch with lots of its own.", whole(sim.Units), whole(sim.Batches)))
+}
+
+// benchState counts the verdicts on the test sheet as it is filled in.
+func (p *page) benchState(v tally) {
+	p.section("On the bench")
+	label, figure := look{size: 9, ink: faded}, look{bold: true, across: "left", format: "0", bottom: hairline}
+	p.put(0, p.text("Good", label), p.text("Built right, misses a target", label), p.text("To check", label), p.text("Begun", label), p.text("Not begun", label))
+	cells := row(6)
+	for i, word := range []string{good, misses, check, begun} {
+		cells[i] = p.live(fmt.Sprintf(`COUNTIF(%s,"%s")`, v, word), 0, figure)
+	}
+	r := p.last + 1
+	cells[4] = p.live(fmt.Sprintf("COLUMNS(%s)-SUM(A%d:D%d)", v, r, r), p.plan.Units, figure)
+	p.put(0, cells...)
+}
+
+// choices says which parts were picked and why.
+func (p *page) choices(r pick.Result) {
+	if len(r.Choices) == 0 {
+		return
+	}
+	p.section("Parts that were chosen")
+	p.heads("lllrll", "For", "Part", "", "In one unit", "Why", "")
+	text := look{bottom: hairline, wrap: true, down: "top"}
+	for _, c := range r.Choices {
+		what := chosen(c)
+		n := max(lines(what, p.wide(2, 3), 10, false), lines(clean(c.Why), p.wide(5, 6), 9, false), p.tallest(10, order.Runs(c.Refs)))
+		small := text
+		small.size = 9
+		money := text
+		p.put(lineHeight(10, n), p.text(order.Runs(c.Refs), bolder(text)), p.text(what, text), p.text("", text), p.number(c.UnitCost.Float(), eachFormat, money), p.text(c.Why, small), p.text("", small))
+		p.merge(2, 3)
+		p.merge(5, 6)
+	}
+	p.paragraph(proof(r), 1, 6, look{size: 9, ink: faded})
+}
+
+// chosen is what was picked, as one would ask for it.
+func chosen(c pick.Choice) string {
+	words := strings.TrimSpace(c.Text + " " + c.Family)
+	if t := within(c.Tolerance); t != "" {
+		words += ", " + t
+	}
+	if c.Combine != "" && c.Combine != "single" {
+		words += ", in " + c.Combine
+	}
+	return clean(words)
+}
+
+// proof says how sure it is that nothing cheaper would do.
+func proof(r pick.Result) string {
+	words := fmt.Sprintf("%s combinations exist, %s were judged, %s simulated.", whole(r.Candidates), whole(r.Examined), whole(r.Simulated))
+	if r.ProvedCheapest {
+		return words + " Proved: nothing cheaper meets the targets."
+	}
+	return sentence(words+" Not proved to be the cheapest.", clean(r.Why))
+}
+
+func (p *page) findings() {
+	all := append(append([]string{}, p.plan.Findings...), p.plan.Spread.Notes...)
+	if len(all) > 0 {
+		p.section("Worth knowing")
+		for _, f := range all {
+			p.paragraph("• "+f, 1, 6, look{})
+		}
+	}
+	if len(p.plan.Cautions) > 0 {
+		p.section("Before you switch on")
+		for _, c := range p.plan.Cautions {
+			p.paragraph("• "+c, 1, 6, look{})
+		}
+	}
+}
+
+// contents leads to the other sheets.
+func (p *page) contents() {
+	p.section("In this workbook")
+	for _, c := range [][2]string{
+		{buySheet, "what to order, in packs, with prices"}, {stagesSheet, "what goes where, and what is written on it"}, {trimsSheet, "adjustments in bench order"},
+		{testSheet, "what every meter should show; type the readings here"}, {tolerancesSheet, "every output at every condition"}, {driftSheet, "movement with temperature"}, {basisSheet, "assumptions, sources, how to make it again"},
+	} {
+		r := p.put(0, p.text(c[0], look{bold: true, ink: copper}), p.text(c[1], look{}))
+		p.keep(p.file.SetCellHyperLink(p.name, at(1, r), "'"+c[0]+"'!A1", "Location"))
+	}
+}
+
+// fact2 writes a heading and a text over the other columns.
+func (p *page) fact2(heading, text string) {
+	l := look{wrap: true, down: "top"}
+	n := lines(clean(text), p.wide(2, 6), 10, false)
+	p.put(lineHeight(10, n), p.text(heading, bolder(l)), p.text(text, l), excelize.Cell{}, excelize.Cell{}, excelize.Cell{}, excelize.Cell{})
+	p.merge(2, 6)
+}
+
+func leftward(l look) look {
+	l.across = "left"
+	return l
+}

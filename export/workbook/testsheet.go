@@ -1,0 +1,282 @@
+package workbook
+
+import (
+	"fmt"
+	"strings"
+
+	"github.com/xuri/excelize/v2"
+)
+
+// The test sheet's rows above the readings, and its fixed columns A to L.
+const (
+	unitRow     = 8 // column headings and unit numbers
+	serialRow   = 9
+	verdictRow  = 10
+	fixedCols   = 12
+	unitsAPage  = 10
+	unitColumn  = 8.3
+	testPercent = 65 // the fixed columns and ten units fit the width of A4 and of Letter
+)
+
+// tally is where the summary finds the verdicts: "'Test sheet'!M10:AJ10".
+type tally string
+
+// test writes the sheet the readings are typed into.
+func (b *book) test() tally {
+	rows := b.plan.benchRows()
+	g := grid{firstRow: verdictRow + 1, firstCol: fixedCols + 1, lastCol: fixedCols + b.plan.Units}
+	g.lastRow = g.firstRow + max(1, len(rows)+bands(rows)) - 1
+	widths := []float64{5, 17, 29, 14, 10, 5.5, 9.5, 9.5, 9.5, 9.5, 9.5, 6}
+	for range b.plan.Units {
+		widths = append(widths, unitColumn)
+	}
+	s := setup{landscape: true, percent: testPercent, frozen: 2, headRow: verdictRow}
+	p := b.open(testSheet, widths, s)
+	p.testHead(g)
+	notes := p.testBody(rows, g)
+	p.testFoot(notes)
+	p.signals(g)
+	verdicts := fmt.Sprintf("%s:%s", at(g.firstCol, verdictRow), at(g.lastCol, verdictRow))
+	p.verdictSignals(verdicts, at(g.firstCol, verdictRow))
+	p.numbersOnly(g)
+	p.pageBreaks(g)
+	p.names(g)
+	p.scoped(printTitles, fmt.Sprintf("'%s'!$A:$%s,'%s'!$1:$%d", p.name, letters(fixedCols), p.name, verdictRow))
+	p.close(s, 0)
+	return tally(fmt.Sprintf("'%s'!%s", testSheet, strings.ReplaceAll("$"+letters(g.firstCol)+"$#:$"+letters(g.lastCol)+"$#", "#", fmt.Sprint(verdictRow))))
+}
+
+// testHead writes title, fields, legend and column headings. Titles stay
+// within the fixed columns: printed pages cut them off there.
+func (p *page) testHead(g grid) {
+	p.span(27, 1, fixedCols, p.text(cut(clean(p.plan.Title), 90), look{size: 17, bold: true, down: "bottom"}), look{})
+	p.span(16, 1, fixedCols, p.text(fmt.Sprintf("Test sheet · %s · plan %s · type what the meter shows, in the row's unit", plural(p.plan.Units, "unit"), p.plan.short()), look{size: 9, ink: faded, bottom: heavy}), look{bottom: heavy})
+	p.put(6)
+	p.field("Tested by", "Date")
+	p.field("Instruments", "Room, °C")
+	p.span(30, 1, fixedCols, p.text("▼ ▲ below or above what a good unit shows: look for a wrong part.   ▽ △ a good unit, but a target is not proved.   ? not a number.   Verdict: check, misses (a target), begun (readings missing), good.", look{size: 9, ink: faded, wrap: true}), look{})
+	p.groupHeads()
+	p.unitHeads(g)
+	p.serials(g)
+	p.verdicts(g)
+}
+
+// field writes two labelled places to type into.
+func (p *page) field(left, right string) {
+	label, place := look{size: 9, ink: faded}, look{fill: sky, open: true, bottom: hairline}
+	cells := make([]excelize.Cell, fixedCols)
+	cells[0], cells[1] = p.text(left, label), p.text("", label)
+	cells[2], cells[3] = p.text("", place), p.text("", place)
+	cells[5] = p.text(right, label)
+	for i := 7; i < 11; i++ {
+		cells[i] = p.text("", place)
+	}
+	p.put(19, cells...)
+	p.merge(1, 2)
+	p.merge(3, 4)
+	p.merge(6, 7)
+	p.merge(8, 11)
+}
+
+func (p *page) groupHeads() {
+	cells := make([]excelize.Cell, fixedCols)
+	over := look{size: 9, bold: true, ink: copper, across: "center", bottom: rule}
+	for i := range 4 {
+		cells[7+i] = p.text("", over)
+	}
+	cells[7], cells[9] = p.text("A good unit shows", over), p.text("Proves the target", over)
+	p.put(16, cells...)
+	p.merge(8, 9)
+	p.merge(10, 11)
+}
+
+func (p *page) unitHeads(g grid) {
+	head := look{size: 9, bold: true, fill: tint, wrap: true, top: rule, bottom: rule, down: "center"}
+	right := head
+	right.across = "right"
+	var cells []excelize.Cell
+	for _, t := range []string{"Step", "Test point", "Hold the probe at", "Read", "Condition", "Unit"} {
+		cells = append(cells, p.text(t, head))
+	}
+	for _, t := range []string{"Nominal", "at least", "at most", "at least", "at most"} {
+		cells = append(cells, p.text(t, right))
+	}
+	head.across = "center"
+	cells = append(cells, p.text("Out", head))
+	for u := 1; u <= p.plan.Units; u++ {
+		l := head
+		l.left = hairline
+		l.format = `"unit "0`
+		cells = append(cells, excelize.Cell{StyleID: p.style(l), Value: u})
+	}
+	p.put(21, cells...)
+}
+
+// serials is a row for what is written on the units.
+func (p *page) serials(g grid) {
+	cells := make([]excelize.Cell, g.lastCol)
+	for i := range fixedCols {
+		cells[i] = p.text("", look{})
+	}
+	cells[6] = p.text("Serial number, if it has one", look{size: 9, ink: faded, across: "right"})
+	for c := g.firstCol; c <= g.lastCol; c++ {
+		cells[c-1] = p.text("", look{fill: sky, open: true, left: hairline, bottom: hairline, across: "center", size: 9})
+	}
+	p.put(17, cells...)
+	p.merge(7, fixedCols)
+}
+
+func (p *page) verdicts(g grid) {
+	cells := make([]excelize.Cell, g.lastCol)
+	for i := range fixedCols {
+		cells[i] = p.text("", look{bottom: rule})
+	}
+	cells[6] = p.text("Verdict", look{bold: true, across: "right", bottom: rule})
+	for c := g.firstCol; c <= g.lastCol; c++ {
+		cells[c-1] = p.live(g.verdict(c), untouched, look{bold: true, across: "center", bottom: rule, left: hairline})
+	}
+	p.put(19, cells...)
+	p.merge(7, fixedCols)
+}
+
+// bands counts the rows that begin a stage or a condition.
+func bands(rows []benchRow) int {
+	n := 0
+	for i := range rows {
+		if begins(rows, i) {
+			n++
+		}
+	}
+	return n
+}
+
+func begins(rows []benchRow, i int) bool {
+	return i == 0 || stageOf(rows[i].name) != stageOf(rows[i-1].name) || rows[i].condition != rows[i-1].condition
+}
+
+// testBody writes the rows in bench order and returns the notes on them.
+func (p *page) testBody(rows []benchRow, g grid) (notes []string) {
+	if len(rows) == 0 {
+		p.span(20, 1, fixedCols, p.text("There is nothing to measure in this build.", look{italic: true, ink: faded}), look{})
+	}
+	for i, r := range rows {
+		if begins(rows, i) {
+			p.band(r)
+		}
+		if r.why != "" {
+			notes = append(notes, fmt.Sprintf("Step %d, %s: %s", r.step, r.name, r.why))
+		}
+		p.benchRow(r, g)
+	}
+	if p.last != g.lastRow {
+		p.keep(fmt.Errorf("the readings end in row %d, not %d", p.last, g.lastRow))
+	}
+	return notes
+}
+
+// band begins a stage or a condition, with what to set up.
+func (p *page) band(r benchRow) {
+	words := ""
+	for _, c := range p.plan.Conditions {
+		if c.Name == r.condition {
+			words = clean(c.Text)
+		}
+	}
+	kind := ""
+	for _, q := range p.plan.Positions {
+		if q.Stage == stageOf(r.name) {
+			kind = q.Kind
+		}
+	}
+	l := look{bold: true, ink: copper, bottom: hairline, down: "bottom"}
+	quiet := look{size: 9, ink: faded, bottom: hairline, down: "bottom"}
+	cells := make([]excelize.Cell, fixedCols)
+	for i := range cells {
+		cells[i] = p.text("", quiet)
+	}
+	cells[0] = p.text(stageOf(r.name), l)
+	cells[2] = p.text(kind, quiet)
+	cells[3] = p.text(cut(strings.TrimSuffix("at "+r.condition+": "+words, ": "), 110), quiet)
+	p.put(20, cells...)
+	p.merge(1, 2)
+	p.merge(4, fixedCols)
+}
+
+// benchRow writes one reading or adjustment.
+func (p *page) benchRow(r benchRow, g grid) {
+	text := look{bottom: hairline, wrap: true, size: 9}
+	strong, figure := bolder(text), look{bottom: hairline}
+	fill := ""
+	if r.turn {
+		fill = tint
+	}
+	text.fill, strong.fill, figure.fill = fill, fill, fill
+	strong.size = 10
+	nominal := bolder(figure)
+	name := r.name
+	if r.turn {
+		name = "turn " + name
+	}
+	row := p.last + 1
+	count := look{bottom: hairline, bold: true, across: "center", format: "0;;", fill: fill, ink: brick}
+	cells := []excelize.Cell{
+		p.number(float64(r.step), "0", look{bottom: hairline, across: "center", size: 9, ink: faded, fill: fill}), p.text(name, strong), p.text(r.at, text), p.text(r.read, text), p.text(r.condition, text), p.text(r.symbol, text),
+		p.limit(r.nominal, r.format(), nominal), p.limit(r.low, r.format(), figure), p.limit(r.high, r.format(), figure),
+		p.limit(r.acceptLow, r.format(), figure), p.limit(r.acceptHigh, r.format(), figure), p.live(g.outsideCount(row), "", count),
+	}
+	open := look{fill: sky, open: true, bottom: hairline, left: hairline, across: "right", format: r.format()}
+	for range p.plan.Units {
+		cells = append(cells, p.text("", open))
+	}
+	n := max(2, p.tallest(9, "", "", r.at, r.read, r.condition), lines(name, p.widths[1], 10, true))
+	p.put(lineHeight(9, n), cells...)
+}
+
+// testFoot writes the notes on rows and lines to write on.
+func (p *page) testFoot(notes []string) {
+	p.put(8)
+	for _, n := range notes {
+		p.paragraph(n, 1, fixedCols, look{size: 9, ink: faded})
+	}
+	p.span(16, 1, fixedCols, p.text("Notes", look{size: 9, ink: faded}), look{})
+	place := look{fill: sky, open: true, bottom: hairline}
+	for range 3 {
+		p.span(19, 1, fixedCols, p.text("", place), place)
+	}
+}
+
+// numbersOnly has the program ask before it takes something that is not a
+// number. It can be insisted on: "O.L" is a reading too.
+func (p *page) numbersOnly(g grid) {
+	v := excelize.NewDataValidation(true)
+	v.SetSqref(g.area())
+	p.keep(v.SetRange(-1e9, 1e9, excelize.DataValidationTypeDecimal, excelize.DataValidationOperatorBetween))
+	v.SetError(excelize.DataValidationErrorStyleWarning, "Not a number",
+		"Type the figure alone, in the unit of the row and with the decimal mark your computer uses. Keep this only if the meter shows no number.")
+	p.keep(p.file.AddDataValidation(p.name, v))
+}
+
+// pageBreaks puts the same number of units on every printed page.
+func (p *page) pageBreaks(g grid) {
+	for c := g.firstCol + unitsAPage; c <= g.lastCol && p.out != nil; c += unitsAPage {
+		p.keep(p.out.InsertPageBreak(at(c, 1)))
+	}
+}
+
+// names lets a reader find the grid again, wherever rows and columns were
+// moved to: by name first, then by test point and unit number.
+func (p *page) names(g grid) {
+	fixed := func(column int) string {
+		return fmt.Sprintf("'%s'!$%s$%d:$%s$%d", p.name, letters(column), g.firstRow, letters(column), g.lastRow)
+	}
+	across := func(row int) string {
+		return fmt.Sprintf("'%s'!$%s$%d:$%s$%d", p.name, letters(g.firstCol), row, letters(g.lastCol), row)
+	}
+	for _, n := range []struct{ name, refers string }{
+		{"plan_steps", fixed(1)}, {"plan_points", fixed(2)}, {"plan_conditions", fixed(5)}, {"plan_symbols", fixed(6)},
+		{"plan_units", across(unitRow)}, {"plan_serials", across(serialRow)}, {"plan_verdicts", across(verdictRow)},
+		{"plan_readings", fmt.Sprintf("'%s'!$%s$%d:$%s$%d", p.name, letters(g.firstCol), g.firstRow, letters(g.lastCol), g.lastRow)},
+	} {
+		p.keep(p.file.SetDefinedName(&excelize.DefinedName{Name: n.name, RefersTo: n.refers}))
+	}
+}

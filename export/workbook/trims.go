@@ -1,0 +1,108 @@
+package workbook
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"strings"
+
+	"batchwright/bom/order"
+	"batchwright/tolerance/bench"
+	"batchwright/tolerance/spread"
+)
+
+// trims writes the adjustments in the order of the bench.
+func (b *book) trims() {
+	s := setup{landscape: true, headRow: 4}
+	p := b.open(trimsSheet, []float64{6, 10, 17, 18, 27, 11, 10, 10, 6, 11, 12, 12, 44}, s)
+	p.heading(trimsSheet, "In bench order: each adjustment stands where the test sheet comes to it. Later ones may lean on earlier ones; do not change the order.")
+	head := p.heads("lllllllrrlllll", "Step", "Trimmer", "Turns", "Watch", "Hold the probe at", "Condition", "Set to", "Within ±", "Unit", "Turned up, it", "Usually ends at", "Runs short", "If it does not reach")
+	turns := slices.Clone(b.plan.Turns)
+	slices.SortStableFunc(turns, func(x, y bench.Turn) int { return x.Step - y.Step })
+	for _, t := range turns {
+		p.trim(t)
+	}
+	if len(turns) == 0 {
+		p.nothing("This build has nothing to adjust.")
+	} else {
+		p.put(10)
+		p.paragraph(fmt.Sprintf("Usually ends at: where 98 of 100 simulated units end, as a share of the trimmer's travel. Runs short: the share of %s simulated units whose trimmer ends before the reading is right.", whole(b.plan.Spread.Simulation.Units)), 1, 13, look{size: 9, ink: faded})
+	}
+	p.close(s, head)
+}
+
+func (p *page) trim(t bench.Turn) {
+	report := p.plan.trimReport(t.Turn)
+	sc := windowScale(t.Unit, t.Within/2, largestOf(spread.Figure(t.To), spread.Figure(t.Within)))
+	rises := "falls"
+	if t.Rises {
+		rises = "rises"
+	}
+	advice := or(clean(p.plan.Advice[t.Turn]), p.plan.advice(t))
+	text, figure := look{bottom: hairline, wrap: true}, look{bottom: hairline, bold: true}
+	n := p.tallest(10, "", t.Ref, t.Turn, t.Watch, t.At, t.Condition, "", "", "", "", ends(report), short(report), advice)
+	p.put(lineHeight(10, n), p.number(float64(t.Step), "0", look{bottom: hairline, bold: true, across: "left"}), p.text(t.Ref, bolder(text)), p.text(t.Turn, text), p.text(t.Watch, text), p.text(t.At, text),
+		p.text(t.Condition, text), p.number(sc.nearest(t.To), sc.format(), figure), p.number(sc.nearest(t.Within), sc.format(), look{bottom: hairline}), p.text(sc.symbol, text),
+		p.text(rises, text), p.text(ends(report), text), p.text(short(report), text), p.text(advice, text))
+}
+
+// trimReport is what the simulation says of a trim; its figures do not exist
+// where it says nothing.
+func (p Plan) trimReport(turn string) spread.TrimReport {
+	for _, r := range p.Spread.Trims {
+		if r.Turn == turn {
+			return r
+		}
+	}
+	none := spread.Figure(math.NaN())
+	return spread.TrimReport{Turn: turn, ReachedShare: none, ShortLow: none, ShortHigh: none,
+		Setting: spread.TrimSetting{Nominal: none, Mean: none, P01: none, P99: none}, Why: "not simulated"}
+}
+
+// ends is where the trimmer usually ends.
+func ends(r spread.TrimReport) string {
+	low, high := float64(r.Setting.P01), float64(r.Setting.P99)
+	if !finite(low) || !finite(high) {
+		return "–"
+	}
+	return fmt.Sprintf("%.0f–%.0f %%", low*100, high*100)
+}
+
+// short says how many trimmers run out, and at which end.
+func short(r spread.TrimReport) string {
+	low, high := float64(r.ShortLow), float64(r.ShortHigh)
+	if !finite(low) || !finite(high) {
+		return "–"
+	}
+	if low+high == 0 {
+		return "none seen"
+	}
+	side := "both ends"
+	if low > 9*high {
+		side = "at 0 %"
+	}
+	if high > 9*low {
+		side = "at 100 %"
+	}
+	return share(r.ShortLow+r.ShortHigh) + ", " + side
+}
+
+// advice is what to do where a trim does not reach, said from what is known
+// of any trimmer: which parts to look at.
+func (p Plan) advice(t bench.Turn) string {
+	var refs []string
+	stage := stageOf(t.Turn)
+	for _, q := range p.Positions {
+		if q.Stage == stage && q.Ref != t.Ref {
+			refs = append(refs, q.Ref)
+		}
+	}
+	var b strings.Builder
+	b.WriteString("Leave it at the end that comes nearest and write the reading down.")
+	if len(refs) > 0 {
+		fmt.Fprintf(&b, " Compare %s with the parts list, then try another piece of each, the ones with the widest tolerance first.", order.Runs(refs))
+	} else {
+		b.WriteString(" Compare the stage's parts with the parts list.")
+	}
+	return b.String()
+}

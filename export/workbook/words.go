@@ -1,0 +1,70 @@
+package workbook
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"strings"
+
+	"batchwright/tolerance/spread"
+)
+
+// percent writes a fraction: 0.025 is "2.5 %". Up to four significant digits,
+// fewer if they are zeros.
+func percent(fraction float64) string {
+	if !finite(fraction) {
+		return "–"
+	}
+	return strconv.FormatFloat(fraction*100, 'g', 4, 64) + " %"
+}
+
+// share writes how many of the simulated units something holds for. Nothing
+// simulated is certain, so next to none and next to all are said as bounds.
+func share(fraction spread.Figure) string {
+	f := float64(fraction)
+	switch {
+	case !finite(f):
+		return "–"
+	case f == 0:
+		return "none"
+	case f < 0.0005:
+		return "< 0.1 %"
+	case f == 1:
+		return "all"
+	case f > 0.9995:
+		return "> 99.9 %"
+	}
+	return strconv.FormatFloat(f*100, 'f', 1, 64) + " %"
+}
+
+// interval writes the bounds of a share.
+func interval(low, high spread.Figure) string {
+	if !finite(float64(low)) || !finite(float64(high)) {
+		return ""
+	}
+	one := func(f spread.Figure) string { return strconv.FormatFloat(math.Round(float64(f)*1000)/10, 'f', 1, 64) }
+	return one(low) + "–" + one(high) + " %"
+}
+
+// plural counts things: "1 unit", "24 units".
+func plural(n int, thing string) string {
+	if n == 1 {
+		return "1 " + thing
+	}
+	return fmt.Sprintf("%d %ss", n, thing)
+}
+
+// whole writes a count with thin groups of three: 24 000.
+func whole(n int) string {
+	s := strconv.Itoa(n)
+	for i := len(s) - 3; i > 0 && s[i-1] != '-'; i -= 3 {
+		s = s[:i] + "\u00a0" + s[i:]
+	}
+	return s
+}
+
+// stageOf is the stage that a dotted name begins with.
+func stageOf(name string) string {
+	stage, _, _ := strings.Cut(name, ".")
+	return stage
+}

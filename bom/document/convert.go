@@ -1,0 +1,191 @@
+package document
+
+import (
+	"strings"
+	"unicode/utf8"
+
+	"github.com/goccy/go-yaml/ast"
+	"github.com/goccy/go-yaml/token"
+)
+
+// nodeBudget is how many nodes a document may have once every alias is written
+// out; what a reader of the tree then visits is bounded.
+const nodeBudget = 200_000
+
+// measured is a node with its size and height once aliases are written out.
+type measured struct {
+	*Node
+	size, height int
+}
+
+// anchor is a named node; one whose value is still being read has none.
+type anchor struct {
+	value measured
+	done  bool
+}
+
+// converter turns the library's tree into nodes.
+type converter struct {
+	file    string
+	lines   []string
+	anchors map[string]*anchor
+	budget  int
+	spent   bool
+	faults  Faults
+}
+
+// at makes a node where the token is.
+func (c *converter) at(kind Kind, t *token.Token) measured {
+	n := &Node{Kind: kind, File: c.file, Line: 1, Column: 1}
+	if t != nil && t.Position != nil {
+		n.Line, n.Column = t.Position.Line, t.Position.Column
+	}
+	return measured{n, 1, 0}
+}
+
+// spend takes nodes from the budget and complains once when it is gone.
+func (c *converter) spend(nodes int, n *Node) bool {
+	c.budget -= nodes
+	if c.budget < 0 && !c.spent {
+		c.spent = true
+		c.faults.Add(n, "the document grows too large when its aliases are written out", "at most 200000 values")
+	}
+	return !c.spent
+}
+
+// node converts y, which stands under depth mappings and lists.
+func (c *converter) node(y ast.Node, depth int) measured {
+	if y == nil {
+		return c.at(Null, nil)
+	}
+	if depth > deepest {
+		n := c.at(Null, y.GetToken())
+		c.faults.Add(n.Node, "nested too deep", "at most 32 levels")
+		c.spent = true
+		return n
+	}
+	switch y := y.(type) {
+	case *ast.MappingNode:
+		return c.mapping(y, y.Start, y.Values, depth)
+	case *ast.MappingValueNode:
+		return c.mapping(y, nil, []*ast.MappingValueNode{y}, depth)
+	case *ast.SequenceNode:
+		return c.sequence(y, depth)
+	case *ast.AnchorNode:
+		return c.anchor(y, depth)
+	case *ast.AliasNode:
+		return c.alias(y, depth)
+	case *ast.TagNode:
+		n := c.at(Null, y.Start)
+		n.Value = y.Start.Value
+		c.faults.Add(n.Node, "a tag", "a plain value; tags have no use here")
+		return c.node(y.Value, depth)
+	case *ast.LiteralNode:
+		return c.literal(y)
+	}
+	return c.scalar(y)
+}
+
+// scalar converts what is left: every plain or quoted value, as text.
+func (c *converter) scalar(y ast.Node) measured {
+	t := y.GetToken()
+	n := c.at(Scalar, t)
+	if t == nil {
+		n.Kind = Null
+	} else {
+		n.Value = t.Value
+		switch t.Type {
+		case token.NullType, token.ImplicitNullType:
+			n.Kind = Null
+		case token.SingleQuoteType, token.DoubleQuoteType:
+			n.lead = 1
+		}
+	}
+	c.spend(1, n.Node)
+	return n
+}
+
+// literal converts a block of text, and notes where its lines begin.
+func (c *converter) literal(y *ast.LiteralNode) measured {
+	n := c.at(Scalar, y.Start)
+	n.block = true
+	if y.Value != nil {
+		n.Value = y.Value.Value
+	}
+	for row := range strings.Split(n.Value, "\n") {
+		start := 1
+		if i := n.Line + row; i < len(c.lines) {
+			text, _, _ := strings.Cut(n.Value, "\n")
+			start = blockColumn(c.lines, n.Line, text)
+		}
+		n.lines = append(n.lines, start)
+	}
+	c.spend(1, n.Node)
+	return n
+}
+
+// blockColumn is the column at which the text of a block begins, judged by its
+// first line, which may keep leading spaces of its own.
+func blockColumn(lines []string, first int, text string) int {
+	if first >= len(lines) {
+		return 1
+	}
+	return max(1, utf8.RuneCountInString(strings.TrimRight(lines[first], " "))-utf8.RuneCountInString(strings.TrimRight(text, " "))+1)
+}
+
+// sequence converts a list.
+func (c *converter) sequence(y *ast.SequenceNode, depth int) measured {
+	n := c.at(Sequence, y.Start)
+	if !c.spend(1, n.Node) {
+		return n
+	}
+	for _, value := range y.Values {
+		item := c.node(value, depth+1)
+		n.Items = append(n.Items, item.Node)
+		n.add(item)
+		if c.spent {
+			break
+		}
+	}
+	return n
+}
+
+func (m *measured) add(child measured) {
+	m.size += child.size
+	m.height = max(m.height, child.height+1)
+}
+
+// anchor converts a named value and remembers it.
+func (c *converter) anchor(y *ast.AnchorNode, depth int) measured {
+	a := &anchor{}
+	c.anchors[y.Name.GetToken().Value] = a
+	a.value = c.node(y.Value, depth)
+	a.done = true
+	return a.value
+}
+
+// alias is the very node of its anchor. Its size counts again, for whoever
+// walks the tree walks it again.
+func (c *converter) alias(y *ast.AliasNode, depth int) measured {
+	n := c.at(Null, y.Start)
+	n.Value = y.Value.GetToken().Value
+	a, ok := c.anchors[n.Value]
+	switch {
+	case !ok:
+		known := make([]string, 0, len(c.anchors))
+		for name := range c.anchors {
+			known = append(known, name)
+		}
+		c.faults.Add(n.Node, "an alias without its anchor", "*NAME after &NAME", sorted(known)...)
+		return n
+	case !a.done:
+		c.faults.Add(n.Node, "an alias inside its own anchor", "a value that does not contain itself")
+		return n
+	case depth+a.value.height > deepest:
+		c.faults.Add(n.Node, "nested too deep when its aliases are written out", "at most 32 levels")
+		c.spent = true
+		return n
+	}
+	c.spend(a.value.size, n.Node)
+	return a.value
+}

@@ -1,8 +1,9 @@
 package document
 
 import (
+	"maps"
+	"slices"
 	"strings"
-	"unicode/utf8"
 
 	"github.com/goccy/go-yaml/ast"
 	"github.com/goccy/go-yaml/token"
@@ -48,7 +49,7 @@ func (c *converter) spend(nodes int, n *Node) bool {
 	c.budget -= nodes
 	if c.budget < 0 && !c.spent {
 		c.spent = true
-		c.faults.Add(n, "the document grows too large when its aliases are written out", "at most 200000 values")
+		c.faults.Add(n, "too many values in one document, its aliases written out", "at most 200000")
 	}
 	return !c.spent
 }
@@ -95,8 +96,10 @@ func (c *converter) scalar(y ast.Node) measured {
 	} else {
 		n.Value = t.Value
 		switch t.Type {
-		case token.NullType, token.ImplicitNullType:
+		case token.NullType:
 			n.Kind = Null
+		case token.ImplicitNullType:
+			n.Kind, n.Value = Null, ""
 		case token.SingleQuoteType, token.DoubleQuoteType:
 			n.lead = 1
 		}
@@ -105,32 +108,32 @@ func (c *converter) scalar(y ast.Node) measured {
 	return n
 }
 
-// literal converts a block of text, and notes where its lines begin.
+// literal converts a block of text, and notes the column its lines begin at.
 func (c *converter) literal(y *ast.LiteralNode) measured {
 	n := c.at(Scalar, y.Start)
 	n.block = true
 	if y.Value != nil {
 		n.Value = y.Value.Value
 	}
-	for row := range strings.Split(n.Value, "\n") {
-		start := 1
-		if i := n.Line + row; i < len(c.lines) {
-			text, _, _ := strings.Cut(n.Value, "\n")
-			start = blockColumn(c.lines, n.Line, text)
-		}
-		n.lines = append(n.lines, start)
-	}
+	n.lead = c.blockLead(n.Node)
 	c.spend(1, n.Node)
 	return n
 }
 
-// blockColumn is the column at which the text of a block begins, judged by its
-// first line, which may keep leading spaces of its own.
-func blockColumn(lines []string, first int, text string) int {
-	if first >= len(lines) {
-		return 1
+// blockLead is how many spaces the lines of a block are indented by, judged by
+// the first that is not blank: what the source has and the value has not.
+func (c *converter) blockLead(n *Node) int {
+	for row, text := range strings.Split(n.Value, "\n") {
+		if n.Line+row >= len(c.lines) {
+			break
+		}
+		line := c.lines[n.Line+row]
+		if bare := strings.TrimLeft(line, " "); bare != "" {
+			own := len(text) - len(strings.TrimLeft(text, " "))
+			return max(0, len(line)-len(bare)-own)
+		}
 	}
-	return max(1, utf8.RuneCountInString(strings.TrimRight(lines[first], " "))-utf8.RuneCountInString(strings.TrimRight(text, " "))+1)
+	return 0
 }
 
 // sequence converts a list.
@@ -172,11 +175,8 @@ func (c *converter) alias(y *ast.AliasNode, depth int) measured {
 	a, ok := c.anchors[n.Value]
 	switch {
 	case !ok:
-		known := make([]string, 0, len(c.anchors))
-		for name := range c.anchors {
-			known = append(known, name)
-		}
-		c.faults.Add(n.Node, "an alias without its anchor", "*NAME after &NAME", sorted(known)...)
+		known := slices.Sorted(maps.Keys(c.anchors))
+		c.faults.Add(n.Node, "an alias without its anchor", "*NAME after &NAME", known...)
 		return n
 	case !a.done:
 		c.faults.Add(n.Node, "an alias inside its own anchor", "a value that does not contain itself")

@@ -58,7 +58,9 @@ func (f *Faults) Need(n *Node, key, what string) *Node {
 	if v := n.Get(key); v != nil && v.Kind != Null {
 		return v
 	}
-	f.AddAt(n, -n.lead, Complaint{Message: key + " is missing", Expected: what})
+	if n != nil {
+		f.found = append(f.found, Complaint{File: n.File, Line: n.Line, Column: n.Column, Message: key + " is missing", Expected: what})
+	}
 	return nil
 }
 

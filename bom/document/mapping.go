@@ -1,8 +1,6 @@
 package document
 
 import (
-	"slices"
-
 	"github.com/goccy/go-yaml/ast"
 	"github.com/goccy/go-yaml/token"
 )
@@ -116,9 +114,4 @@ func (c *converter) fold(n *measured, seen map[string]bool, merged []measured) {
 			}
 		}
 	}
-}
-
-func sorted(words []string) []string {
-	slices.Sort(words)
-	return words
 }

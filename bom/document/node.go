@@ -31,9 +31,8 @@ type Node struct {
 	File         string
 	Line, Column int // of the first character, quote and bar included
 
-	lead  int   // characters before the text on its line: 1 behind a quote
-	block bool  // the text is in the lines below, as of "|" and ">"
-	lines []int // of a block: the columns its lines begin at
+	block bool // the text is in the lines below, as of "|" and ">"
+	lead  int  // characters before the text on its lines: a quote, or a block's indentation
 }
 
 // Pair is an entry of a mapping. Neither node is nil.
@@ -62,11 +61,7 @@ func (n *Node) place(offset int) (line, column int) {
 	before := prefixRunes(n.Value, offset)
 	row := strings.Count(before, "\n")
 	rest := before[strings.LastIndexByte(before, '\n')+1:]
-	start := 1
-	if row < len(n.lines) {
-		start = n.lines[row]
-	}
-	return n.Line + 1 + row, start + utf8.RuneCountInString(rest)
+	return n.Line + 1 + row, 1 + n.lead + utf8.RuneCountInString(rest)
 }
 
 // prefixRunes is the first count characters of text.

@@ -71,9 +71,23 @@ func parseTree(source string) (tree *ast.File, bad *Complaint) {
 		if t := syntax.Token; t != nil && t.Position != nil {
 			bad.Line, bad.Column = t.Position.Line, t.Position.Column
 			bad.Found = firstLine(t)
+			bad.Expected = mend(t, bad.Message)
 		}
 	}
 	return nil, bad
+}
+
+// mend is advice on the mistakes that quantities and equations invite.
+func mend(t *token.Token, message string) string {
+	switch {
+	case strings.HasPrefix(t.Value, "%"), strings.HasPrefix(t.Value, "@"), strings.HasPrefix(t.Value, "`"):
+		return "quotes around a value that begins with " + t.Value[:1]
+	case strings.Contains(message, "mapping value is not allowed"):
+		return "quotes around a value with a colon and a space in it"
+	case strings.Contains(message, "not found"), strings.Contains(message, "end character"):
+		return "its closing mark"
+	}
+	return ""
 }
 
 func firstLine(t *token.Token) string {
@@ -90,7 +104,7 @@ func onlyBody(tree *ast.File) (ast.Node, *Complaint) {
 			continue
 		case body != nil:
 			c := &Complaint{Message: "a second document in one file", Expected: "one document a file"}
-			if t := doc.Body.GetToken(); t != nil && t.Position != nil {
+			if t := doc.Start; t != nil && t.Position != nil {
 				c.Line, c.Column = t.Position.Line, t.Position.Column
 			}
 			return nil, c

@@ -15,8 +15,8 @@ func (d *Demand) Holds(mean, variance, half float64) bool {
 }
 
 // Miss is by how much both limits would have to move outward for the demand to
-// hold, in the demand's unit: 0 where it holds, +Inf where no widening helps
-// (a share of 1 with scatter).
+// hold, in the demand's unit, 0 where it holds. A share of 1 with scatter is
+// measured as if 1e-16 of the units could lie outside.
 func (d *Demand) Miss(mean, variance, half float64) float64 {
 	if d.Holds(mean, variance, half) {
 		return 0
@@ -24,24 +24,42 @@ func (d *Demand) Miss(mean, variance, half float64) float64 {
 	if d.WorstCase {
 		return max(d.Low-(mean-half), mean+half-d.High)
 	}
-	holds := func(by float64) bool {
-		return ShareOfNormal(mean, variance, d.Low-by, d.High+by) >= d.Share
+	near := min(mean-d.Low, d.High-mean)
+	if variance == 0 {
+		return max(0, -near)
 	}
-	// Forty deviations beyond the mean leave nothing outside.
-	far := 40*math.Sqrt(variance) + max(0, d.Low-mean, mean-d.High)
-	if far == 0 || !holds(far) {
-		return math.Inf(1)
-	}
-	near := 0.0
+	return max(0, d.widening(mean, math.Sqrt(variance), near))
+}
+
+// widening solves for w by Newton steps kept within a bracket
+//
+//	P(Low-w <= N(mean, s^2) <= High+w) = Share.
+//
+// The nearer limit is a distance near away. It alone may lose 1-Share, so w is
+// at least s z(1-Share) - near; with half of that on each side it is enough.
+func (d *Demand) widening(mean, s, near float64) float64 {
+	rest := max(1-d.Share, 1e-16)
+	left := s*quantile(min(rest, 1-1e-16)) - near
+	right := s*quantile(rest/2) - near
+	w := left
 	for range 60 {
-		middle := near + (far-near)/2
-		if holds(middle) {
-			far = middle
+		a, b := (mean-d.Low+w)/s, (d.High-mean+w)/s
+		over := tail(a) + tail(b) - rest
+		if over > 0 {
+			left = w
 		} else {
-			near = middle
+			right = w
 		}
+		next := w + s*over/(density(a)+density(b))
+		if !(next > left && next < right) {
+			next = left + (right-left)/2
+		}
+		if math.Abs(next-w) <= 1e-13*s {
+			return next
+		}
+		w = next
 	}
-	return far
+	return w
 }
 
 // Scale is what a miss is measured against to compare demands: half the width

@@ -18,14 +18,14 @@ func randomShape(seed uint64) shape {
 	return shape{
 		lines: 2 + r.IntN(5), options: 1 + r.IntN(6), demands: 1 + r.IntN(3),
 		merge: []float64{0, 0.3, 0.8}[r.IntN(3)], rho: []float64{0, 0.6}[r.IntN(2)],
-		refuse: []float64{0, 0, 0.5, 0.95, 1}[r.IntN(5)], tight: r.Float64(),
+		refuse: []float64{0, 0, 0.5, 0.95, 1}[r.IntN(5)], tight: 1.8 * r.Float64(),
 		whole: []int64{1, 20}[r.IntN(2)], mixed: r.IntN(2) == 0,
 	}
 }
 
 func TestCheapestEqualsBruteForce(t *testing.T) {
 	found, refused, hopeless := 0, 0, 0
-	for seed := range uint64(1200) {
+	for seed := range uint64(800) {
 		m := newMarket(seed, randomShape(seed))
 		want := m.brute()
 		got, err := m.Cheapest(context.Background(), Limits{})
@@ -52,7 +52,7 @@ func TestCheapestEqualsBruteForce(t *testing.T) {
 		}
 	}
 	t.Logf("%d found, %d of them after a refusal, %d without a choice", found, refused, hopeless)
-	if found < 500 || refused < 50 || hopeless < 100 {
+	if found < 300 || refused < 50 || hopeless < 100 {
 		t.Errorf("%d found, %d after refusals, %d hopeless: the draw no longer covers all cases", found, refused, hopeless)
 	}
 }

@@ -7,6 +7,7 @@ package stage
 import (
 	"batchwright/bom/part"
 	"batchwright/bom/quantity"
+	"batchwright/tolerance/formula"
 )
 
 // Kind is one circuit topology.
@@ -21,12 +22,17 @@ type Kind struct {
 	// for one of several parameters; `role.fitted`, 1 or 0), the settings, the
 	// names of earlier and later lines, `input.field` (see Fields),
 	// `temperature` (the stage's own, K), the loads named by Points, and the
-	// physical constants of package formula.
+	// physical constants of package formula. A role or setting hides the
+	// equation of its own name: `level = level` hands the setting on.
 	Equations string
 	Outputs   []Output
 	Points    []Point
 	Limits    string // limits of validity
 	Source    string
+	// Free says that roles, settings and outputs are the build file's own.
+	Free bool
+
+	parsed func() []formula.Equation // Equations, parsed once; set by the table
 }
 
 // Role is a place a part goes.
@@ -38,7 +44,10 @@ type Role struct {
 }
 
 // Input is a signal taken from an earlier stage.
-type Input struct{ Name, Summary string }
+type Input struct {
+	Name, Summary string
+	Optional      bool // not wired, it carries zero in every field
+}
 
 // Setting is a figure that is not bought.
 type Setting struct {
@@ -58,7 +67,7 @@ type Output struct {
 
 // Point is a test point: where a bench instrument is held, and what it shows.
 type Point struct {
-	Name       string // of the equation whose value is read
+	Name       string // of the output whose value is read
 	Reading    string // "dc voltage", "peak voltage", "frequency"
 	Instrument string // "dmm", "scope", "counter"
 	At         string // where the probe goes, in words with roles: "collector of the transistor, to ground"
@@ -85,4 +94,5 @@ var Fields = []Field{
 	{"tone_level", quantity.Volt, "level of the audible difference"},
 	{"dc", quantity.Volt, "steady voltage"},
 	{"source_resistance", quantity.Ohm, "resistance the signal comes from"},
+	{"tank_q", quantity.One, "loaded Q of the tank the carrier comes from; 0 where there is no tank"},
 }

@@ -1,0 +1,64 @@
+package stage
+
+import (
+	"batchwright/bom/part"
+	"batchwright/bom/quantity"
+)
+
+// tankLimits holds for every oscillator about a coil and capacitors.
+const tankLimits = "The coil's losses and the transistor's own capacitances move the frequency by parts in a thousand; " +
+	"the transistor's belong in stray. The level is what limiting in the oscillator makes it, whatever the tank."
+
+// tankSettings are those of every coil-and-capacitor oscillator. Their figures
+// are common practice, no source: a drum choke of about 1 mH has a loaded Q
+// between 50 and 100 near 300 kHz.
+var tankSettings = []Setting{
+	{Name: "level", Unit: quantity.Volt, Default: "1 V", Scatter: part.Scatter{Tolerance: 0.1},
+		Summary: "peak level that the oscillator settles at"},
+	{Name: "stray", Unit: quantity.Farad, Default: "0 pF",
+		Summary: "capacitance of wiring, coil and transistor across the tank"},
+	{Name: "sensor", Unit: quantity.Farad, Default: "0 pF",
+		Summary: "further capacitance across the tank, such as a hand near a plate"},
+	{Name: "q", Unit: quantity.One, Default: "80",
+		Summary: "loaded Q of the tank; counts for the lock range only"},
+}
+
+// tankOutputs are those of every oscillator.
+var tankOutputs = []Output{
+	{"frequency", quantity.Hertz, "frequency of oscillation"},
+	{"level", quantity.Volt, "peak level"},
+}
+
+// tankPoints are held across the whole tank, whose capacitance the instrument
+// joins. Its conductance damps the tank without moving it, and limiting brings
+// the level back, so only `probe` appears in the equations.
+var tankPoints = []Point{
+	{Name: "frequency", Reading: "frequency", Instrument: "counter",
+		At: "live end of the coil, to ground", Capacitance: "probe"},
+	{Name: "level", Reading: "peak voltage", Instrument: "scope",
+		At: "live end of the coil, to ground", Capacitance: "probe"},
+}
+
+// tunedTank is the plain resonant circuit: one coil and all that is across it.
+var tunedTank = Kind{
+	Name:    "tuned-tank",
+	Summary: "oscillator on one coil with a capacitor across it, whatever keeps it going",
+	Roles: []Role{
+		{Name: "coil", Type: part.Coil, Summary: "the tank's coil"},
+		{Name: "tank", Type: part.Capacitor, Summary: "capacitor across the coil"},
+		{Name: "pad", Type: part.Capacitor, Optional: true, Summary: "fixed capacitor across the coil, to shift the range"},
+		{Name: "tuner", Type: part.TrimmerCapacitor, Optional: true, Summary: "trimmer across the coil"},
+	},
+	Settings: tankSettings,
+	Equations: `
+capacitance = tank + pad + tuner + stray + sensor + probe
+frequency = 1/(2*pi*sqrt(coil*capacitance))
+level = level
+tank_q = q
+`,
+	Outputs: tankOutputs,
+	Points:  tankPoints,
+	Limits:  tankLimits,
+	Source: "f = 1/(2π√(LC)): R. Blake, Electronic Communication Systems, Ex. 2.1, p. 50 " +
+		"(inputs and method read in an open archive of textbook examples)",
+}

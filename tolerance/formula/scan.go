@@ -12,7 +12,7 @@ import (
 // Limits on a text, checked before any recursive reader sees it.
 const (
 	maxLength = 8192 // runes
-	maxDepth  = 64   // brackets inside brackets
+	maxDepth  = 32   // brackets inside brackets
 )
 
 // wordOperators are the words of the grammar that are not names.
@@ -31,7 +31,7 @@ type scanner struct {
 	text     []rune
 	at       int
 	open     []int // where the brackets stand that are open
-	last     rune // kind of the token before: 'n' name or number, or the character itself
+	last     rune  // kind of the token before: 'n' name or number, or the character itself
 	mistakes Mistakes
 }
 

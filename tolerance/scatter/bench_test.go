@@ -1,10 +1,6 @@
 package scatter
 
-import (
-	"testing"
-
-	"batchwright/bom/part"
-)
+import "testing"
 
 // BenchmarkFill reports nanoseconds per draw.
 func BenchmarkFill(b *testing.B) {
@@ -27,5 +23,3 @@ func BenchmarkFill(b *testing.B) {
 		}
 	}
 }
-
-var shapes = []part.Shape{part.Normal, part.Uniform, part.Triangular, part.Bimodal}

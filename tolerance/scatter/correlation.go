@@ -11,7 +11,8 @@ import (
 
 // Correlation returns the product-moment correlation of two deviations of
 // shape s that a Gaussian copula of correlation rho joins, rho in [-1, 1].
-// It is rho for no shape, but odd in it, and 0 and 1 at 0 and 1:
+// It is a little smaller in size than rho, odd in it, and equal to it at 0 and
+// ±1:
 //
 //	uniform     (6/π)·asin(ρ/2)
 //	bimodal     (6/7π)·(asin ρ + 2·asin(ρ/√2) + asin(ρ/2))

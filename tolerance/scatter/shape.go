@@ -42,7 +42,10 @@ func Quantile(s part.Shape, p float64) float64 {
 		panic("scatter: probability outside [0, 1]")
 	}
 	below := lowerQuantile(s)
-	if p <= 0.5 {
+	switch {
+	case p == 0 || p == 1: // the table of the normal shape rounds here
+		return 2*p - 1
+	case p <= 0.5:
 		return below(p)
 	}
 	return -below(1 - p) // 1-p is exact for p in [1/2, 1]

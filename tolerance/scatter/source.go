@@ -55,11 +55,11 @@ func (s Source) Fill(dst []float64, c Column, first int) {
 	batch, unit := first/s.Units, first%s.Units
 	for len(dst) > 0 {
 		run := dst[:min(len(dst), s.Units-unit)]
-		start := key(pieceOrigin, s.Seed, c.Stream, uint64(batch)) + uint64(unit)*weyl
+		k := key(pieceOrigin, s.Seed, c.Stream, uint64(batch))
 		if c.Lot < 0 || c.Rho == 0 {
-			c.fillAlone(run, start)
+			c.fillAlone(run, k, uint64(unit))
 		} else {
-			c.fillLot(run, start, s.lot(c.Lot, batch))
+			c.fillLot(run, k, uint64(unit), s.lot(c.Lot, batch))
 		}
 		dst = dst[len(run):]
 		batch, unit = batch+1, 0
@@ -82,32 +82,28 @@ func (c *Column) value(lower float64, side uint64) float64 {
 	return c.Centre + float64(c.HalfWidth*flip(lower, side))
 }
 
-// fillAlone draws z = F⁻¹(U) for the units whose hashes start at start.
-func (c *Column) fillAlone(dst []float64, start uint64) {
+// fillAlone draws z = F⁻¹(U) for the units from unit on of a batch's key.
+func (c *Column) fillAlone(dst []float64, key, unit uint64) {
 	switch c.Shape {
 	case part.Normal, "":
 		for i := range dst {
-			h := mix(start)
+			h := hash(key, unit+uint64(i))
 			dst[i] = c.value(lowerNormal(tail(h)), side(h))
-			start += weyl
 		}
 	case part.Uniform:
 		for i := range dst {
-			h := mix(start)
+			h := hash(key, unit+uint64(i))
 			dst[i] = c.value(lowerUniform(tail(h)), side(h))
-			start += weyl
 		}
 	case part.Triangular:
 		for i := range dst {
-			h := mix(start)
+			h := hash(key, unit+uint64(i))
 			dst[i] = c.value(lowerTriangular(tail(h)), side(h))
-			start += weyl
 		}
 	case part.Bimodal:
 		for i := range dst {
-			h := mix(start)
+			h := hash(key, unit+uint64(i))
 			dst[i] = c.value(lowerBimodal(tail(h)), side(h))
-			start += weyl
 		}
 	default:
 		panic("scatter: no such shape: " + string(c.Shape))
@@ -116,14 +112,13 @@ func (c *Column) fillAlone(dst []float64, start uint64) {
 
 // fillLot is fillAlone with a lot in common. It makes two passes: first the
 // signed tail of Φ at g, negative on the upper side, then the shape.
-func (c *Column) fillLot(dst []float64, start uint64, lot float64) {
+func (c *Column) fillLot(dst []float64, key, unit uint64, lot float64) {
 	shared := float64(math.Sqrt(c.Rho) * lot)
 	own := math.Sqrt(1 - c.Rho)
 	for i := range dst {
-		h := mix(start)
+		h := hash(key, unit+uint64(i))
 		g := shared + float64(own*flip(normalTailQuantile(tail(h)), side(h)))
 		dst[i] = math.Copysign(normalTail(math.Abs(g)), -g)
-		start += weyl
 	}
 	switch c.Shape {
 	case part.Normal, "":

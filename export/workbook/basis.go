@@ -61,7 +61,7 @@ func (p *page) conditions() {
 func (p *page) fact(heading, text, source string) {
 	n := p.tallest(10, heading, text, "")
 	n = max(n, lines(clean(source), p.widths[2], 9, false))
-	l := look{wrap: true, down: "top", bottom: hairline}
+	l := look{wrap: true, bottom: hairline}
 	quiet := l
 	quiet.size, quiet.ink = 9, faded
 	if source == "" { // let a long text use the room

@@ -21,7 +21,7 @@ const (
 // protection) and everything but the prices of one piece follows.
 func (b *book) buy() string {
 	s := setup{landscape: true, headRow: 8}
-	p := b.open(buySheet, []float64{21, 28, 11, 8, 24, 7, 9, 8, 8, 9, 10, 12}, s)
+	p := b.open(buySheet, []float64{21, 27, 11, 10, 25, 8, 9, 8, 9, 9, 10, 12}, s)
 	o := b.plan.Order
 	p.heading(buySheet, "Everything "+plural(b.plan.Units, "unit")+" of "+or(clean(b.plan.Title), "this build")+" need, spares included")
 	label, figure := look{ink: faded}, look{across: "left", bold: true}
@@ -30,7 +30,7 @@ func (b *book) buy() string {
 	p.put(0, p.text("Prices", label), p.text(b.priceWords(), look{bold: true}))
 	p.put(8)
 	money := "(" + or(clean(o.Currency), "no currency") + ")"
-	head := p.heads("lllllrrrrrrr", "References", "Part", "Value", "Within", "Marked", "Per unit", "Needed", "Spares", "Packs of", "Buy", "One piece "+money, "Price "+money)
+	head := p.heads("lllllrrrrrrr", "References", "Part", "Value", "Tolerance", "Marked", "Per unit", "Needed", "Spares", "Packs of", "Buy", "One piece "+money, "Price "+money)
 	total, notes := "", []string(nil)
 	if len(o.Lines) == 0 {
 		p.nothing("There is nothing to buy.")
@@ -133,7 +133,7 @@ func (p *page) unoffered(missing []order.Line) {
 		n := max(p.tallest(10, order.Runs(l.Refs), or(l.Title, l.Family), l.Text, "", l.Marking), lines(clean(why), p.wide(9, 12), 9, false))
 		p.put(lineHeight(10, n), p.text(order.Runs(l.Refs), bolder(text)), p.text(or(l.Title, l.Family), text), p.text(l.Text, text), p.text(within(l.Tolerance), text), p.text(l.Marking, text),
 			p.number(float64(l.PerUnit), "0_)", count), p.number(float64(l.Needed), "0_)", count), p.number(float64(l.Spares), "0_)", count),
-			p.text(why, look{size: 9, ink: faded, bottom: hairline, wrap: true}), p.text("", text), p.text("", text), p.text("", text))
+			p.text(why, look{size: 9, ink: faded, bottom: hairline, wrap: true, indent: 1}), p.text("", text), p.text("", text), p.text("", text))
 		p.merge(9, 12)
 	}
 }

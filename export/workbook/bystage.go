@@ -5,9 +5,9 @@ import "batchwright/bom/order"
 // byStage writes what goes where, with what to look for on each part.
 func (b *book) byStage() {
 	s := setup{landscape: true, headRow: 4}
-	p := b.open(stagesSheet, []float64{9, 20, 14, 9, 30, 34, 34}, s)
+	p := b.open(stagesSheet, []float64{10, 20, 13, 10, 30, 33, 33}, s)
 	p.heading(stagesSheet, "One unit, in signal order. Read the marking on the part before it is soldered; a reel may be labelled wrong.")
-	head := p.heads("", "Reference", "Place", "Value", "Within", "Part", "Marked", "Note")
+	head := p.heads("", "Reference", "Place", "Value", "Tolerance", "Part", "Marked", "Note")
 	if len(b.plan.Positions) == 0 {
 		p.nothing("No part is placed in this build.")
 	}

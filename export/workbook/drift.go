@@ -10,12 +10,12 @@ import (
 )
 
 // chartRows is how many rows of the drift sheet a chart stands beside.
-const chartRows = 18
+const chartRows = 20
 
 // drift writes how outputs move with temperature, each as a table with a chart.
 func (b *book) drift() {
-	s := setup{landscape: true}
-	p := b.open(driftSheet, []float64{13, 12, 12, 12, 12, 12, 2, 11, 11, 11, 11, 11, 11, 11}, s)
+	s := setup{landscape: true, percent: 88}
+	p := b.open(driftSheet, []float64{14, 11, 12, 11, 12, 11, 2, 11, 11, 11, 11, 11, 11, 11}, s)
 	p.heading(driftSheet, "How the finished, adjusted instrument moves with temperature")
 	if len(b.plan.Drifts) == 0 {
 		p.nothing("No drift was worked out.")
@@ -28,17 +28,13 @@ func (b *book) drift() {
 
 // driftBlock writes one table and hangs its chart beside it.
 func (p *page) driftBlock(d Drift, index int) {
-	if index > 0 && p.out != nil {
-		p.put(6)
-		if index%2 == 0 { // two blocks fill a page
-			p.keep(p.out.InsertPageBreak(at(1, p.last+1)))
-		}
+	if index > 0 && p.out != nil { // a page for each
+		p.keep(p.out.InsertPageBreak(at(1, p.last+1)))
 	}
 	p.section(or(clean(d.Title), d.Output))
-	top := p.last + 1
 	p.paragraph(or(clean(d.Meaning), "Low and high are given without a meaning."), 1, 6, look{size: 9, ink: faded})
 	sc := d.scale()
-	heads := []string{"Temperature °C", "Low, " + sc.symbol, "Nominal, " + sc.symbol, "High, " + sc.symbol}
+	heads := []string{"Temperature, °C", "Low, " + sc.symbol, "Nominal, " + sc.symbol, "High, " + sc.symbol}
 	low, high := d.limits()
 	if finite(low) || finite(high) {
 		heads = append(heads, "Target from, "+sc.symbol, "Target to, "+sc.symbol)
@@ -50,9 +46,9 @@ func (p *page) driftBlock(d Drift, index int) {
 	if len(d.Rows) == 0 {
 		p.nothing("No temperature was worked out.")
 	} else {
-		p.keep(p.file.AddChart(p.name, at(8, top), d.chart(p.name, first, p.last, sc)))
+		p.keep(p.file.AddChart(p.name, at(8, first-1), d.chart(p.name, first, p.last, sc)))
 	}
-	for p.last < top+chartRows-1 {
+	for p.last < first+chartRows-1 {
 		p.put(0)
 	}
 }
@@ -65,15 +61,21 @@ func (d Drift) limits() (low, high float64) {
 	return float64(d.Limits.Low), float64(d.Limits.High)
 }
 
-// scale fits all the figures of the drift, limits included.
+// scale fits all the figures of the drift, limits included: the last digit is
+// the largest power of ten below a two-hundredth of all they span.
 func (d Drift) scale() scale {
 	low, high := d.limits()
 	all := []spread.Figure{spread.Figure(low), spread.Figure(high)}
 	for _, r := range d.Rows {
 		all = append(all, r.Low, r.Nominal, r.High)
 	}
-	largest := largestOf(all...)
-	return scaleOf(d.Unit, largest, powerBelow(largest/1000))
+	low, high = math.Inf(1), math.Inf(-1)
+	for _, f := range all {
+		if v := float64(f); finite(v) {
+			low, high = math.Min(low, v), math.Max(high, v)
+		}
+	}
+	return scaleOf(d.Unit, largestOf(all...), powerBelow((high-low)/200))
 }
 
 // driftRow writes one temperature. Target limits are rounded inward.
@@ -108,16 +110,19 @@ func (d Drift) chart(sheet string, first, last int, sc scale) *excelize.Chart {
 		series = append(series, line("F", "to", copper, 1.5, excelize.LineDashDash))
 	}
 	small := excelize.Font{Family: font, Size: 9, Color: ink}
-	axis := func(title string) excelize.ChartAxis {
-		return excelize.ChartAxis{MajorGridLines: true, TickLabelPosition: excelize.ChartTickLabelLow, Font: small,
-			Title: excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: title, Font: &small}}}}
+	axis := func() excelize.ChartAxis {
+		return excelize.ChartAxis{MajorGridLines: true, TickLabelPosition: excelize.ChartTickLabelLow, Font: small}
 	}
-	x, y := axis("Temperature, °C"), axis(clean(d.Output)+", "+sc.symbol)
+	words := func(s string) excelize.ChartTitle {
+		return excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: s, Font: &small}}}
+	}
+	x, y := axis(), axis()
+	x.Title = words("Temperature, °C")
 	lowest, highest := d.span()
 	x.Minimum, x.Maximum = &lowest, &highest
-	return &excelize.Chart{Type: excelize.Scatter, Series: series, Dimension: excelize.ChartDimension{Width: 580, Height: 400},
+	return &excelize.Chart{Type: excelize.Scatter, Series: series, Dimension: excelize.ChartDimension{Width: 570, Height: 430},
 		Legend: excelize.ChartLegend{Position: "bottom", Font: &small}, XAxis: x, YAxis: y,
-		Border: excelize.LineOptions{Type: excelize.LineNone}, ShowBlanksAs: "gap",
+		Title: words(clean(d.Output) + ", " + sc.symbol), Border: excelize.LineOptions{Type: excelize.LineNone}, ShowBlanksAs: "gap",
 		Format: excelize.GraphicOptions{AltText: clean(d.Title), Positioning: "oneCell"}}
 }
 

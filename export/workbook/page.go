@@ -20,7 +20,7 @@ type page struct {
 // setup is how a page prints and scrolls.
 type setup struct {
 	landscape bool
-	percent   uint // of full size; 0 fits the width to one page
+	percent   uint // of full size; 0 fits the width to one page, and takes no page breaks
 	frozen    int  // columns that stay when scrolling
 	headRow   int  // the row of column headings; rows down to it stay when scrolling
 }
@@ -47,8 +47,11 @@ func (b *book) open(name string, widths []float64, s setup) *page {
 		}
 		p.keep(out.SetPanes(&excelize.Panes{Freeze: true, XSplit: s.frozen, YSplit: s.headRow, TopLeftCell: at(s.frozen+1, s.headRow+1), ActivePane: pane}))
 	}
-	no := false
-	p.keep(b.file.SetSheetView(name, -1, &excelize.ViewOptions{ShowGridLines: &no}))
+	no, zoom := false, 100.0
+	if s.frozen > 0 {
+		zoom = 85 // leaves room beside the columns that stay
+	}
+	p.keep(b.file.SetSheetView(name, -1, &excelize.ViewOptions{ShowGridLines: &no, ZoomScale: &zoom}))
 	return p
 }
 
@@ -61,6 +64,7 @@ func (p *page) put(height float64, cells ...excelize.Cell) int {
 	if height == 0 {
 		height = 17
 	}
+	height = min(height, 409) // the highest a row can be
 	row := make([]any, len(cells))
 	for i, c := range cells {
 		if c.StyleID != 0 || c.Value != nil || c.Formula != "" {
@@ -117,7 +121,6 @@ func (p *page) section(title string) int {
 // paragraph writes text over columns, as many lines high as it needs.
 func (p *page) paragraph(s string, from, to int, l look) int {
 	l.wrap = true
-	l.down = or(l.down, "top")
 	n := lines(clean(s), p.wide(from, to), l.points(), l.bold)
 	return p.span(lineHeight(l.points(), n), from, to, p.text(s, l), look{})
 }
@@ -127,7 +130,8 @@ func lineHeight(points float64, n int) float64 {
 	return float64(n)*points*1.28 + 4.2
 }
 
-// heads writes a row of column headings, high enough for the tallest.
+// heads writes a row of column headings, high enough for the tallest. across
+// has a letter a column: l, r, c, or i for left with an indent.
 func (p *page) heads(across string, titles ...string) int {
 	cells := make([]excelize.Cell, len(titles))
 	n := 1
@@ -138,6 +142,9 @@ func (p *page) heads(across string, titles ...string) int {
 		}
 		if i < len(across) && across[i] == 'c' {
 			l.across = "center"
+		}
+		if i < len(across) && across[i] == 'i' { // beside figures
+			l.indent = 1
 		}
 		cells[i] = p.text(t, l)
 		n = max(n, lines(t, p.widths[i], 9, true))
@@ -223,7 +230,7 @@ func (p *page) print(s setup) {
 		layout.FitToWidth, layout.FitToHeight = &one, &any
 	}
 	p.keep(p.file.SetPageLayout(p.name, &layout))
-	side, top, bottom, edge := 0.3, 0.45, 0.6, 0.25
+	side, top, bottom, edge := 0.25, 0.45, 0.6, 0.25
 	p.keep(p.file.SetPageMargins(p.name, &excelize.PageLayoutMarginsOptions{Left: &side, Right: &side, Top: &top, Bottom: &bottom, Header: &edge, Footer: &edge}))
 	p.keep(p.file.SetHeaderFooter(p.name, &excelize.HeaderFooterOptions{
 		OddFooter: fmt.Sprintf("&L&8%s · plan %s&C&8%s&R&8Page &P of &N", printed(p.plan.Title), printed(p.plan.short()), p.name),

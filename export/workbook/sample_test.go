@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"batchwright/bom/offer"
 	"batchwright/bom/order"
@@ -17,8 +18,8 @@ func sample(units int) Plan {
 	return Plan{
 		Title: "Lantern tone box", Units: units, Seed: 1, File: "lantern.yaml", Digest: "7f3a19c2d4e5b60718293a4b5c6d7e8f", Version: "0.1.0",
 		Findings:   []string{"The film capacitor's slope cancels most of the coil's: the note moves less than with a part that has no slope."},
-		Conditions: sampleConditions, Order: sampleOrder(units), Pick: samplePick, Positions: samplePositions,
-		Turns: sampleTurns, Readings: sampleReadings(), Spread: sampleSpread(units), Drifts: []Drift{sampleDrift(), sampleLevel()},
+		Conditions: slices.Clone(sampleConditions), Order: sampleOrder(units), Pick: samplePick(), Positions: slices.Clone(samplePositions),
+		Turns: slices.Clone(sampleTurns), Readings: sampleReadings(), Spread: sampleSpread(units), Drifts: []Drift{sampleDrift(), sampleLevel()},
 		Basis: []Basis{
 			{"Part figures", "Tolerances, slopes and lot correlations are typical of each class of part, not anyone's guarantee.", "families file, a source on every row"},
 			{"Lots", "Pieces bought on one line share a lot across the batch.", ""},
@@ -67,10 +68,12 @@ func sampleOrder(units int) order.Order {
 	return o
 }
 
-var samplePick = pick.Result{ProvedCheapest: true, Candidates: 20736, Examined: 4112, Simulated: 7, CostPerUnit: euros(61234), Choices: []pick.Choice{
-	{Refs: []string{"C1", "C2", "C3", "C4"}, Family: "polystyrene", Tolerance: 0.025, Text: "220 pF", Combine: "single", UnitCost: euros(12560), Why: "Its −120 ppm/K takes back two thirds of the coil's +180 ppm/K; C0G of the same price drifts 61 Hz where 40 Hz is asked."},
-	{Refs: []string{"L1", "L2"}, Family: "drum-choke", Tolerance: 0.05, Text: "1.80 mH", Combine: "single", UnitCost: euros(9700), Why: "With 10 % the tuner runs short on 3.1 % of the units."},
-}}
+func samplePick() pick.Result {
+	return pick.Result{ProvedCheapest: true, Candidates: 20736, Examined: 4112, Simulated: 7, CostPerUnit: euros(61234), Choices: []pick.Choice{
+		{Refs: []string{"C1", "C2", "C3", "C4"}, Family: "polystyrene", Tolerance: 0.025, Text: "220 pF", Combine: "single", UnitCost: euros(12560), Why: "Its −120 ppm/K takes back two thirds of the coil's +180 ppm/K; C0G of the same price drifts 61 Hz where 40 Hz is asked."},
+		{Refs: []string{"L1", "L2"}, Family: "drum-choke", Tolerance: 0.05, Text: "1.80 mH", Combine: "single", UnitCost: euros(9700), Why: "With 10 % the tuner runs short on 3.1 % of the units."},
+	}}
+}
 
 var samplePositions = []Position{
 	{"rails", "fixed-regulator", "U2", "regulator", "12.0 V", "Fixed regulator", "±4 %", "type number", ""},

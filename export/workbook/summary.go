@@ -15,7 +15,7 @@ import (
 // asked, what it costs, how its parts were chosen, and the state of the bench.
 func (b *book) summary(total string, verdicts tally) {
 	s := setup{}
-	p := b.open(summarySheet, []float64{24, 22, 17, 13, 17, 18}, s)
+	p := b.open(summarySheet, []float64{21, 22, 21, 11, 25, 20}, s)
 	p.span(34, 1, 6, p.text(cut(clean(b.plan.Title), 120), look{size: 22, bold: true, down: "bottom"}), look{})
 	p.span(18, 1, 6, p.text(fmt.Sprintf("Batch of %s · plan %s · seed %d · %s", plural(b.plan.Units, "unit"), b.plan.short(), b.plan.Seed, or(clean(b.plan.File), "no file")), look{ink: faded, bottom: heavy}), look{bottom: heavy})
 	p.put(10)
@@ -53,7 +53,11 @@ func (p *page) keyFigures(total string) {
 	p.put(18, p.text("Targets met", label), p.text("Good units expected", label), p.text("Parts to buy"+currency, label), p.text("", label), p.text("Parts of one unit"+currency, label), p.text("", label))
 	p.merge(3, 4)
 	p.merge(5, 6)
-	p.put(27, p.text(fmt.Sprintf("%d of %d", met, len(p.plan.Spread.Targets)), figure), p.text(share(p.plan.Spread.Yield.UnitShare), figure), cost, p.text("", figure), p.number(o.PerUnit.Float(), money.format, leftward(money)), p.text("", figure))
+	state := figure
+	if met < len(p.plan.Spread.Targets) {
+		state.ink = brick
+	}
+	p.put(27, p.text(fmt.Sprintf("%d of %d", met, len(p.plan.Spread.Targets)), state), p.text(share(p.plan.Spread.Yield.UnitShare), figure), cost, p.text("", figure), p.number(o.PerUnit.Float(), money.format, leftward(money)), p.text("", figure))
 	p.merge(3, 4)
 	p.merge(5, 6)
 	p.paragraph("Prices: "+p.priceWords(), 1, 6, look{size: 9, ink: faded})
@@ -150,13 +154,13 @@ func (p *page) choices(r pick.Result) {
 		return
 	}
 	p.section("Parts that were chosen")
-	p.heads("lllrll", "For", "Part", "", "In one unit", "Why", "")
-	text := look{bottom: hairline, wrap: true, down: "top"}
+	p.heads("lllril", "For", "Part", "", "In one unit", "Why", "")
+	text := look{bottom: hairline, wrap: true}
 	for _, c := range r.Choices {
 		what := chosen(c)
 		n := max(lines(what, p.wide(2, 3), 10, false), lines(clean(c.Why), p.wide(5, 6), 9, false), p.tallest(10, order.Runs(c.Refs)))
 		small := text
-		small.size = 9
+		small.size, small.indent = 9, 1
 		money := text
 		p.put(lineHeight(10, n), p.text(order.Runs(c.Refs), bolder(text)), p.text(what, text), p.text("", text), p.number(c.UnitCost.Float(), eachFormat, money), p.text(c.Why, small), p.text("", small))
 		p.merge(2, 3)
@@ -216,7 +220,7 @@ func (p *page) contents() {
 
 // fact2 writes a heading and a text over the other columns.
 func (p *page) fact2(heading, text string) {
-	l := look{wrap: true, down: "top"}
+	l := look{wrap: true}
 	n := lines(clean(text), p.wide(2, 6), 10, false)
 	p.put(lineHeight(10, n), p.text(heading, bolder(l)), p.text(text, l), excelize.Cell{}, excelize.Cell{}, excelize.Cell{}, excelize.Cell{})
 	p.merge(2, 6)

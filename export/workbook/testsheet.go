@@ -7,15 +7,15 @@ import (
 	"github.com/xuri/excelize/v2"
 )
 
-// The test sheet's rows above the readings, and its fixed columns A to L.
+// The test sheet's rows above the readings, and its fixed columns A to K.
 const (
 	unitRow     = 8 // column headings and unit numbers
 	serialRow   = 9
 	verdictRow  = 10
-	fixedCols   = 12
+	fixedCols   = 11
 	unitsAPage  = 10
 	unitColumn  = 8.3
-	testPercent = 65 // the fixed columns and ten units fit the width of A4 and of Letter
+	testPercent = 66 // the fixed columns and ten units fit the width of A4 and of Letter
 )
 
 // tally is where the summary finds the verdicts: "'Test sheet'!M10:AJ10".
@@ -26,11 +26,11 @@ func (b *book) test() tally {
 	rows := b.plan.benchRows()
 	g := grid{firstRow: verdictRow + 1, firstCol: fixedCols + 1, lastCol: fixedCols + b.plan.Units}
 	g.lastRow = g.firstRow + max(1, len(rows)+bands(rows)) - 1
-	widths := []float64{5, 17, 29, 14, 10, 5.5, 9.5, 9.5, 9.5, 9.5, 9.5, 6}
+	widths := []float64{5, 17, 28.5, 16, 5.5, 9, 9, 9, 9, 9, 5}
 	for range b.plan.Units {
 		widths = append(widths, unitColumn)
 	}
-	s := setup{landscape: true, percent: testPercent, frozen: 2, headRow: verdictRow}
+	s := setup{landscape: true, percent: testPercent, frozen: fixedCols, headRow: verdictRow}
 	p := b.open(testSheet, widths, s)
 	p.testHead(g)
 	notes := p.testBody(rows, g)
@@ -68,26 +68,25 @@ func (p *page) field(left, right string) {
 	cells[0], cells[1] = p.text(left, label), p.text("", label)
 	cells[2], cells[3] = p.text("", place), p.text("", place)
 	cells[5] = p.text(right, label)
-	for i := 7; i < 11; i++ {
+	for i := 6; i < 10; i++ {
 		cells[i] = p.text("", place)
 	}
 	p.put(19, cells...)
 	p.merge(1, 2)
 	p.merge(3, 4)
-	p.merge(6, 7)
-	p.merge(8, 11)
+	p.merge(7, 10)
 }
 
 func (p *page) groupHeads() {
 	cells := make([]excelize.Cell, fixedCols)
 	over := look{size: 9, bold: true, ink: copper, across: "center", bottom: rule}
 	for i := range 4 {
-		cells[7+i] = p.text("", over)
+		cells[6+i] = p.text("", over)
 	}
-	cells[7], cells[9] = p.text("A good unit shows", over), p.text("Proves the target", over)
+	cells[6], cells[8] = p.text("A good unit shows", over), p.text("Proves the target", over)
 	p.put(16, cells...)
-	p.merge(8, 9)
-	p.merge(10, 11)
+	p.merge(7, 8)
+	p.merge(9, 10)
 }
 
 func (p *page) unitHeads(g grid) {
@@ -95,7 +94,7 @@ func (p *page) unitHeads(g grid) {
 	right := head
 	right.across = "right"
 	var cells []excelize.Cell
-	for _, t := range []string{"Step", "Test point", "Hold the probe at", "Read", "Condition", "Unit"} {
+	for _, t := range []string{"Step", "Test point", "Hold the probe at", "Read", "Unit"} {
 		cells = append(cells, p.text(t, head))
 	}
 	for _, t := range []string{"Nominal", "at least", "at most", "at least", "at most"} {
@@ -118,12 +117,12 @@ func (p *page) serials(g grid) {
 	for i := range fixedCols {
 		cells[i] = p.text("", look{})
 	}
-	cells[6] = p.text("Serial number, if it has one", look{size: 9, ink: faded, across: "right"})
+	cells[5] = p.text("Serial number, if it has one", look{size: 9, ink: faded, across: "right", indent: 1})
 	for c := g.firstCol; c <= g.lastCol; c++ {
 		cells[c-1] = p.text("", look{fill: sky, open: true, left: hairline, bottom: hairline, across: "center", size: 9})
 	}
 	p.put(17, cells...)
-	p.merge(7, fixedCols)
+	p.merge(6, fixedCols)
 }
 
 func (p *page) verdicts(g grid) {
@@ -131,15 +130,15 @@ func (p *page) verdicts(g grid) {
 	for i := range fixedCols {
 		cells[i] = p.text("", look{bottom: rule})
 	}
-	cells[6] = p.text("Verdict", look{bold: true, across: "right", bottom: rule})
+	cells[5] = p.text("Verdict", look{bold: true, across: "right", bottom: rule, indent: 1})
 	for c := g.firstCol; c <= g.lastCol; c++ {
 		cells[c-1] = p.live(g.verdict(c), untouched, look{bold: true, across: "center", bottom: rule, left: hairline})
 	}
 	p.put(19, cells...)
-	p.merge(7, fixedCols)
+	p.merge(6, fixedCols)
 }
 
-// bands counts the rows that begin a stage or a condition.
+// bands counts the rows that begin a condition.
 func bands(rows []benchRow) int {
 	n := 0
 	for i := range rows {
@@ -151,7 +150,7 @@ func bands(rows []benchRow) int {
 }
 
 func begins(rows []benchRow, i int) bool {
-	return i == 0 || stageOf(rows[i].name) != stageOf(rows[i-1].name) || rows[i].condition != rows[i-1].condition
+	return i == 0 || rows[i].condition != rows[i-1].condition
 }
 
 // testBody writes the rows in bench order and returns the notes on them.
@@ -174,44 +173,28 @@ func (p *page) testBody(rows []benchRow, g grid) (notes []string) {
 	return notes
 }
 
-// band begins a stage or a condition, with what to set up.
+// band begins a condition, with what to set up on the bench.
 func (p *page) band(r benchRow) {
-	words := ""
+	words := "Condition: " + or(clean(r.condition), "as it comes")
 	for _, c := range p.plan.Conditions {
-		if c.Name == r.condition {
-			words = clean(c.Text)
+		if c.Name == r.condition && clean(c.Text) != "" {
+			words += ". Set up: " + clean(c.Text)
 		}
 	}
-	kind := ""
-	for _, q := range p.plan.Positions {
-		if q.Stage == stageOf(r.name) {
-			kind = q.Kind
-		}
-	}
-	l := look{bold: true, ink: copper, bottom: hairline, down: "bottom"}
-	quiet := look{size: 9, ink: faded, bottom: hairline, down: "bottom"}
-	cells := make([]excelize.Cell, fixedCols)
-	for i := range cells {
-		cells[i] = p.text("", quiet)
-	}
-	cells[0] = p.text(stageOf(r.name), l)
-	cells[2] = p.text(kind, quiet)
-	cells[3] = p.text(cut(strings.TrimSuffix("at "+r.condition+": "+words, ": "), 110), quiet)
-	p.put(20, cells...)
-	p.merge(1, 2)
-	p.merge(4, fixedCols)
+	l := look{bold: true, ink: copper, bottom: rule, down: "bottom", wrap: true}
+	n := lines(words, p.wide(1, fixedCols), 10, true)
+	p.span(max(22, lineHeight(10, n)+3), 1, fixedCols, p.text(words, l), l)
 }
 
 // benchRow writes one reading or adjustment.
 func (p *page) benchRow(r benchRow, g grid) {
-	text := look{bottom: hairline, wrap: true, size: 9}
+	text := look{bottom: hairline, wrap: true}
 	strong, figure := bolder(text), look{bottom: hairline}
 	fill := ""
 	if r.turn {
 		fill = tint
 	}
 	text.fill, strong.fill, figure.fill = fill, fill, fill
-	strong.size = 10
 	nominal := bolder(figure)
 	name := r.name
 	if r.turn {
@@ -220,7 +203,7 @@ func (p *page) benchRow(r benchRow, g grid) {
 	row := p.last + 1
 	count := look{bottom: hairline, bold: true, across: "center", format: "0;;", fill: fill, ink: brick}
 	cells := []excelize.Cell{
-		p.number(float64(r.step), "0", look{bottom: hairline, across: "center", size: 9, ink: faded, fill: fill}), p.text(name, strong), p.text(r.at, text), p.text(r.read, text), p.text(r.condition, text), p.text(r.symbol, text),
+		p.number(float64(r.step), "0", look{bottom: hairline, across: "center", size: 9, ink: faded, fill: fill}), p.text(name, strong), p.text(r.at, text), p.text(r.read, text), p.text(r.symbol, text),
 		p.limit(r.nominal, r.format(), nominal), p.limit(r.low, r.format(), figure), p.limit(r.high, r.format(), figure),
 		p.limit(r.acceptLow, r.format(), figure), p.limit(r.acceptHigh, r.format(), figure), p.live(g.outsideCount(row), "", count),
 	}
@@ -228,8 +211,8 @@ func (p *page) benchRow(r benchRow, g grid) {
 	for range p.plan.Units {
 		cells = append(cells, p.text("", open))
 	}
-	n := max(2, p.tallest(9, "", "", r.at, r.read, r.condition), lines(name, p.widths[1], 10, true))
-	p.put(lineHeight(9, n), cells...)
+	n := max(p.tallest(10, "", "", r.at, r.read), lines(clean(name), p.widths[1], 10, true))
+	p.put(max(21, lineHeight(10, n)), cells...)
 }
 
 // testFoot writes the notes on rows and lines to write on.
@@ -273,7 +256,7 @@ func (p *page) names(g grid) {
 		return fmt.Sprintf("'%s'!$%s$%d:$%s$%d", p.name, letters(g.firstCol), row, letters(g.lastCol), row)
 	}
 	for _, n := range []struct{ name, refers string }{
-		{"plan_steps", fixed(1)}, {"plan_points", fixed(2)}, {"plan_conditions", fixed(5)}, {"plan_symbols", fixed(6)},
+		{"plan_steps", fixed(1)}, {"plan_points", fixed(2)}, {"plan_symbols", fixed(5)},
 		{"plan_units", across(unitRow)}, {"plan_serials", across(serialRow)}, {"plan_verdicts", across(verdictRow)},
 		{"plan_readings", fmt.Sprintf("'%s'!$%s$%d:$%s$%d", p.name, letters(g.firstCol), g.firstRow, letters(g.lastCol), g.lastRow)},
 	} {

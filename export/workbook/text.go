@@ -58,29 +58,38 @@ func printed(s string) string {
 	return strings.ReplaceAll(cut(clean(s), 60), "&", "&&")
 }
 
-// width estimates how wide s is, in widths of a digit at 11 points: the unit
-// column widths are given in. Rounded up from looking at Carlito, the metric
-// twin of Calibri; no measuring is needed for what only decides row heights.
+// advances are the widths of the characters from space to tilde in thousandths
+// of the type size: the horizontal metrics of Carlito, which are Calibri's.
+var advances = [...]int{
+	226, 326, 401, 498, 507, 715, 682, 221, 303, 303, 498, 498, 250, 306, 252, 386,
+	507, 507, 507, 507, 507, 507, 507, 507, 507, 507, 268, 268, 498, 498, 498, 463,
+	894, 579, 544, 533, 615, 488, 459, 631, 623, 252, 319, 520, 420, 855, 646, 662,
+	517, 673, 543, 459, 487, 642, 567, 890, 519, 487, 468, 307, 386, 307, 498, 498,
+	291, 479, 525, 423, 525, 498, 305, 471, 525, 229, 239, 455, 229, 799, 525, 527,
+	525, 525, 349, 391, 335, 525, 452, 715, 433, 453, 395, 314, 460, 314, 498,
+}
+
+// width is how wide s is about, in widths of a digit at 11 points: the unit
+// that column widths are given in. Other scripts than Latin are guessed wide.
 func width(s string, size float64, bold bool) float64 {
-	w := 0.0
+	total := 0
 	for _, r := range s {
 		switch {
-		case strings.ContainsRune("iljtfrI.,:;'|!()[]/ ", r):
-			w += 0.62
-		case strings.ContainsRune("mwMW@%—…→Ω", r):
-			w += 1.6
-		case unicode.IsUpper(r):
-			w += 1.2
-		case r > 0x2e80: // ideographs and the like are two columns wide
-			w += 2.1
+		case r == '\u00a0':
+			total += advances[0]
+		case r >= ' ' && int(r-' ') < len(advances):
+			total += advances[r-' ']
+		case r > 0x2e80: // ideographs and the like fill the square
+			total += 1000
 		default:
-			w += 1.02
+			total += 620
 		}
 	}
+	digits := float64(total) / 507 * size / 11
 	if bold {
-		w *= 1.06
+		digits *= 1.03 // Carlito Bold over Carlito, on English text
 	}
-	return w * size / 11
+	return digits
 }
 
 // lines estimates how many lines s takes, wrapped at words into a column.

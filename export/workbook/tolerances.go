@@ -14,7 +14,7 @@ func (b *book) tolerances() {
 	p := b.open(tolerancesSheet, []float64{24, 17, 6, 10, 10, 10, 10, 10, 10, 10, 9, 46}, s)
 	p.heading(tolerancesSheet, fmt.Sprintf("After every adjustment. Simulated: %s units in %s batches, seed %d.", whole(b.plan.Spread.Simulation.Units), whole(b.plan.Spread.Simulation.Batches), b.plan.Seed))
 	p.overHeads()
-	head := p.heads("lllrrrrrrrrl", "Output", "Condition", "Unit", "Nominal", "least", "most", "Standard uncertainty", "0.5 %", "half", "99.5 %", "Reached", "Most of the scatter comes from")
+	head := p.heads("lllrrrrrrrri", "Output", "Condition", "Unit", "Nominal", "least", "most", "Standard uncertainty", "0.5 %", "half", "99.5 %", "Reached", "Most of the scatter comes from")
 	if len(b.plan.Spread.Outputs) == 0 {
 		p.nothing("No output was analysed.")
 	}
@@ -75,13 +75,15 @@ func (p *page) outputRow(o spread.OutputReport, first bool) string {
 	}
 	text, bold := edge, bolder(edge)
 	text.wrap = true
+	padded := text
+	padded.indent = 1
 	sources := contributions(o.Contributions)
 	n := p.tallest(10, name, condition, "", "", "", "", "", "", "", "", "", sources)
 	f := sc.format()
 	p.put(lineHeight(10, n), p.text(name, bold), p.text(condition, text), p.text(sc.symbol, text), p.number(sc.nearest(float64(o.Nominal)), f, bold),
 		p.number(sc.below(float64(worst.Low)), f, edge), p.number(sc.above(float64(worst.High)), f, edge), p.number(sc.nearest(float64(o.RootSumSquare.StandardUncertainty)), f, edge),
 		p.number(sc.nearest(float64(low)), f, edge), p.number(sc.nearest(float64(half)), f, edge), p.number(sc.nearest(float64(high)), f, edge),
-		p.text(share(o.Simulated.ReachedShare), rightward(text)), p.text(sources, text))
+		p.text(share(o.Simulated.ReachedShare), rightward(text)), p.text(sources, padded))
 	return because(o.Output+", "+condition, why)
 }
 
@@ -113,7 +115,7 @@ func contributions(from []spread.Contribution) string {
 		if c.Parameter != "" && c.Parameter != "value" {
 			name += " " + strings.ReplaceAll(c.Parameter, "_", " ")
 		}
-		parts = append(parts, fmt.Sprintf("%s %.0f %%", name, float64(c.Share)*100))
+		parts = append(parts, fmt.Sprintf("%s %.0f\u00a0%%", name, float64(c.Share)*100))
 	}
 	return strings.Join(parts, ", ")
 }

@@ -24,8 +24,8 @@ type grid struct {
 
 // The columns that hold a row's limits.
 const (
-	lowCol, highCol             = "H", "I"
-	acceptLowCol, acceptHighCol = "J", "K"
+	lowCol, highCol             = "G", "H"
+	acceptLowCol, acceptHighCol = "I", "J"
 )
 
 // verdict is the formula of a unit's verdict, its readings being in column c.

@@ -15,7 +15,7 @@ func percent(fraction float64) string {
 	if !finite(fraction) {
 		return "–"
 	}
-	return strconv.FormatFloat(fraction*100, 'g', 4, 64) + " %"
+	return strconv.FormatFloat(fraction*100, 'g', 4, 64) + "\u00a0%"
 }
 
 // share writes how many of the simulated units something holds for. Nothing
@@ -28,22 +28,25 @@ func share(fraction spread.Figure) string {
 	case f == 0:
 		return "none"
 	case f < 0.0005:
-		return "< 0.1 %"
+		return "<\u00a00.1\u00a0%"
 	case f == 1:
 		return "all"
 	case f > 0.9995:
-		return "> 99.9 %"
+		return ">\u00a099.9\u00a0%"
 	}
-	return strconv.FormatFloat(f*100, 'f', 1, 64) + " %"
+	return strconv.FormatFloat(f*100, 'f', 1, 64) + "\u00a0%"
 }
 
-// interval writes the bounds of a share.
+// interval writes the bounds of a share, rounded outward to a hundredth of a
+// percent.
 func interval(low, high spread.Figure) string {
 	if !finite(float64(low)) || !finite(float64(high)) {
 		return ""
 	}
-	one := func(f spread.Figure) string { return strconv.FormatFloat(math.Round(float64(f)*1000)/10, 'f', 1, 64) }
-	return one(low) + "–" + one(high) + " %"
+	one := func(f spread.Figure, to func(float64) float64) string {
+		return strconv.FormatFloat(to(float64(f)*1e4)/100, 'g', -1, 64)
+	}
+	return one(low+1e-9, math.Floor) + "\u2009–\u2009" + one(high-1e-9, math.Ceil) + "\u00a0%"
 }
 
 // plural counts things: "1 unit", "24 units".

@@ -1,0 +1,39 @@
+package workbook
+
+import (
+	"fmt"
+	"testing"
+)
+
+// Every sheet is as wide as one page, drifts have a page each, and the test
+// sheet has ten units to a page: for the sample that is summary, buying,
+// stages, trims, tolerances, two drifts and basis, and ⌈units/10⌉.
+func TestPages(t *testing.T) {
+	for _, units := range []int{1, 24, 60, 200} {
+		for _, paper := range []Paper{A4, Letter} {
+			if testing.Short() && (units > 24 || paper != A4) {
+				continue
+			}
+			t.Run(fmt.Sprint(units, paper), func(t *testing.T) {
+				p := sample(units)
+				p.Paper = paper
+				want := 8 + (units+9)/10
+				if got := pages(t, saved(t, p)); got != want {
+					t.Errorf("%d pages, want %d", got, want)
+				}
+			})
+		}
+	}
+}
+
+// A bench list of 60 rows runs over several pages, each with its headings.
+func TestPagesLongBench(t *testing.T) {
+	if testing.Short() {
+		t.Skip("takes a few seconds")
+	}
+	p := long(sample(20), 60)
+	got := pages(t, saved(t, p))
+	if !(got >= 8+2*2 && got <= 8+2*4) {
+		t.Errorf("%d pages, want 2 to 4 down and 2 across for the test sheet, and 8", got)
+	}
+}

@@ -167,6 +167,10 @@ func TestEmbeddedIsNotShared(t *testing.T) {
 	if _, ok := b.Family("unobtainium"); ok || len(b.Names()) != n {
 		t.Error("a family added to one catalogue appears in another")
 	}
+	b.add(&Family{Name: "eternium", Type: Coil})
+	if names := a.Names(); names[len(names)-1] != "unobtainium" {
+		t.Errorf("the last family of one catalogue is %s, added to another", names[len(names)-1])
+	}
 	if f, _ := b.Family("c0g"); f.Type != Capacitor {
 		t.Error("a family replaced in one catalogue is replaced in another")
 	}

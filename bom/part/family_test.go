@@ -1,6 +1,7 @@
 package part
 
 import (
+	"math"
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
@@ -160,6 +161,7 @@ func TestFitRefuses(t *testing.T) {
 	}{
 		{"value beyond the range", fit("c0g", 1e-6, 0), "c0g is sold from 1 pF to 100 nF, not 1 µF"},
 		{"grade not sold", fit("c0g", 220e-12, 0.025), "c0g is not sold in 2.5 %: expected one of 1 %, 2 %, 5 %, 10 %"},
+		{"grade nearly sold", fit("c0g", 220e-12, 0.0501), "c0g is not sold in 5.01 %: expected one of 1 %, 2 %, 5 %, 10 %"},
 		{"value of a transistor", fit("small-signal-npn", 100, 0), "small-signal-npn has no value to choose"},
 		{"grade of a transistor", fit("small-signal-npn", 0, 0.1), "small-signal-npn is not sold by tolerance"},
 		{"one value for a trimmer", fit("film-trimmer", 10e-12, 0), "a trimmer-capacitor needs a range, not one value"},
@@ -176,7 +178,7 @@ func TestFitRefuses(t *testing.T) {
 
 // A family sells its end values, whatever prefix they were written with.
 func TestFitEnds(t *testing.T) {
-	for _, v := range []float64{1e-12, 100e-9, 0.1e-6, 100000e-12} {
+	for _, v := range []float64{1e-12, math.Nextafter(1e-12, 0), 100e-9, math.Nextafter(100e-9, 1)} {
 		if _, err := family(t, "c0g").Fit("C1", v, 0); err != nil {
 			t.Error(err)
 		}
@@ -195,5 +197,38 @@ func TestText(t *testing.T) {
 		if got := Text(c.v, c.u); got != c.want {
 			t.Errorf("Text(%g, %s) = %q, want %q", c.v, c.u.Symbol, got, c.want)
 		}
+	}
+}
+
+// 4.7 pF ± 0.25 pF is bought as 5.32 %.
+func TestGradeOfAbsoluteTolerance(t *testing.T) {
+	for _, value := range []float64{4.7e-12, -4.7e-12} {
+		p := Part{Type: Capacitor, Parameters: []Parameter{{
+			Name: "value", Unit: quantity.Farad, Value: value, Scatter: Scatter{Tolerance: 0.25e-12, Absolute: true},
+		}}}
+		near(t, "grade", p.Grade(), 0.25/4.7, 1e-12)
+	}
+}
+
+// Every type names its figures, and only once.
+func TestTypes(t *testing.T) {
+	types := Types()
+	if len(types) != 11 || types[0] != Resistor || types[10] != Crystal {
+		t.Errorf("types: %v", types)
+	}
+	for _, typ := range types {
+		seen := map[string]bool{}
+		for _, p := range typ.Parameters() {
+			if seen[p.Name] || p.Name == "" || p.Value != 0 {
+				t.Errorf("%s: %+v", typ, p)
+			}
+			seen[p.Name] = true
+		}
+		if len(seen) == 0 || typ.Unit() != typ.Parameters()[0].Unit {
+			t.Errorf("%s has %d figures, unit %s", typ, len(seen), typ.Unit().Symbol)
+		}
+	}
+	if n := len(Type("valve").Parameters()); n != 0 || Type("valve").Unit() != quantity.One {
+		t.Errorf("a type that is none has %d figures", n)
 	}
 }

@@ -103,6 +103,16 @@ func TestLawBetweenPoints(t *testing.T) {
 	}
 }
 
+// Beyond its ends a law keeps what it has there.
+func TestLawBeyondEnds(t *testing.T) {
+	s := Scatter{Law: []LawPoint{{0, -0.3, -0.1}, {25, 0, 0}, {50, 0.2, 0.4}}}
+	for _, c := range []struct{ celsius, low, high float64 }{{-100, -0.3, -0.1}, {0, -0.3, -0.1}, {50, 0.2, 0.4}, {200, 0.2, 0.4}} {
+		low, high := s.Limits(c.celsius)
+		near(t, "low", low, c.low, 0)
+		near(t, "high", high, c.high, 0)
+	}
+}
+
 // Greatest ageing per decade of hours, a component FAQ on class 2 ageing; C0G
 // has none.
 func TestClass2Ageing(t *testing.T) {

@@ -109,6 +109,7 @@ func TestReadComplains(t *testing.T) {
 		{"new family without part", "families: {cog: {values: 1 pF..2 pF}}", "own.yaml:1:12 c0g"},
 		{"wrong unit", "families: {c0g: {values: 1 Ω..2 Ω}}", "own.yaml:1:26"},
 		{"range from zero", "families: {c0g: {values: 0 pF..2 pF}}", "own.yaml:1:26"},
+		{"range below zero", "families: {c0g: {values: -2 pF..-1 pF}}", "own.yaml:1:26"},
 		{"range that falls", "families: {c0g: {values: 3 pF..2 pF}}", "own.yaml:1:26"},
 		{"tolerance beyond 100 %", "families: {c0g: {tolerances: [101 %]}}", "own.yaml:1:31"},
 		{"tolerance twice", "families: {c0g: {tolerances: [1 %, 1 %]}}", "own.yaml:1:36"},
@@ -120,6 +121,7 @@ func TestReadComplains(t *testing.T) {
 		{"correlation above one", "families: {c0g: {correlation: {value: 1.5}}}", "own.yaml:1:39"},
 		{"law of one point", "families: {x7r: {temperature_law: [[25, 0 %]]}}", "own.yaml:1:35"},
 		{"law out of order", "families: {x7r: {temperature_law: [[25, 0 %], [-55, 15 %]]}}", "own.yaml:1:48"},
+		{"law beyond all limits", "families: {x7r: {temperature_law: [[-55, 120 %], [25, 0 %]]}}", "own.yaml:1:42"},
 		{"law upside down", "families: {x7r: {temperature_law: [[-55, 15 %, -15 %], [25, 0 %]]}}", "own.yaml:1:42"},
 		{"law and slope", "families: {x7r: {temperature_law: [[-55, 15 %], [25, 0 %]], temperature_coefficient: 1 ppm/K}}", "own.yaml:1:35"},
 		{"unknown parameter", "families: {jfet-opamp: {parameters: {slow: {value: 1 V/s}}}}", "own.yaml:1:38 slew"},
@@ -130,6 +132,7 @@ func TestReadComplains(t *testing.T) {
 		{"parameter without value", "families: {a: {part: transistor, parameters: {beta: {}, vbe: {value: 0.6 V}, vbe_slope: {value: -2 mV/K}}}}", "own.yaml:1:53"},
 		{"regulator with neither", "families: {a: {part: regulator}}", "own.yaml:1:15"},
 		{"regulator with both", "families: {fixed-regulator: {parameters: {reference: {value: 1 V}}}}", "own.yaml:1:29"},
+		{"tolerances of a reference", "families: {adjustable-regulator: {tolerances: [4 %]}}", "own.yaml:1:34"},
 		{"rated voltage", "families: {c0g: {voltage: -5 V}}", "own.yaml:1:27"},
 		{"a list for a title", "families: {c0g: {title: [a]}}", "own.yaml:1:25"},
 		{"a space in a name", "families: {\"c 0 g\": {part: capacitor}}", "own.yaml:1:12"},
@@ -221,13 +224,59 @@ func TestReadScatter(t *testing.T) {
 }
 
 // A tolerance says what it may be written in.
-func TestToleranceComplaint(t *testing.T) {
-	n, _ := document.Parse("part.yaml", []byte("{tolerance: 3 mA}"))
-	var f document.Faults
-	ReadScatter(&f, n, quantity.Volt, &Scatter{})
-	list := f.List()
-	if len(list) != 1 || !strings.Contains(list[0].Expected, "5 %") || !strings.Contains(list[0].Expected, "V") {
-		t.Errorf("%v", list)
+func TestToleranceComplaints(t *testing.T) {
+	for _, text := range []string{"3 mA", "101 %", "-5 %", "-3 mV", "[5 %]", "5", "five"} {
+		n, _ := document.Parse("part.yaml", []byte("{tolerance: "+text+"}"))
+		var f document.Faults
+		var s Scatter
+		ReadScatter(&f, n, quantity.Volt, &s)
+		list := f.List()
+		if len(list) != 1 || list[0].Column != 13 || !strings.Contains(list[0].Expected, "%") {
+			t.Errorf("%s: %v", text, list)
+		}
+		if d := cmp.Diff(Scatter{}, s); d != "" {
+			t.Errorf("%s is read all the same: %s", text, d)
+		}
+	}
+}
+
+// Grades come tightest first, however a file lists them, each with its series.
+func TestReadSortsGrades(t *testing.T) {
+	c := mustParse(t, "families: {glass: {part: capacitor, tolerances: [10 %, 1 %, 5 %], series: [E12, E96, E24], values: 1 pF..1 nF}}")
+	f, _ := c.Family("glass")
+	if d := cmp.Diff([]Grade{{0.01, "E96"}, {0.05, "E24"}, {0.10, "E12"}}, f.Grades, floats); d != "" {
+		t.Error(d)
+	}
+}
+
+// A series alone amends every grade, and the embedded family keeps its own.
+func TestReadAmendsSeries(t *testing.T) {
+	f, _ := mustParse(t, "families: {c0g: {series: E6}}").Family("c0g")
+	for _, g := range f.Grades {
+		if g.Series != "E6" {
+			t.Errorf("%+v", g)
+		}
+	}
+	if again, _ := Embedded().Family("c0g"); again.Grades[0].Series != "E24" {
+		t.Error("an amendment reached the embedded family")
+	}
+}
+
+// A trimmer's end that says nothing of its tolerance has the grade's.
+func TestReadTrimmerEndWithoutTolerance(t *testing.T) {
+	c := mustParse(t, `families: {piston: {part: trimmer-capacitor, tolerances: [5 %, 10 %], values: 1 pF..30 pF,
+  temperature_coefficient: 50 ppm/K, parameters: {low: {temperature_coefficient: 90 ppm/K}}}}`)
+	f, _ := c.Family("piston")
+	p, err := f.FitRange("CT1", 1e-12, 10e-12, 0.05)
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := []Parameter{
+		{"low", quantity.Farad, 1e-12, Scatter{Tolerance: 0.05, Temperature: Spread{Value: 90e-6}}},
+		{"high", quantity.Farad, 10e-12, Scatter{Tolerance: 0.05, Temperature: Spread{Value: 50e-6}}},
+	}
+	if d := cmp.Diff(want, p.Parameters, floats); d != "" {
+		t.Error(d)
 	}
 }
 

@@ -1,0 +1,142 @@
+package cli
+
+import (
+	"github.com/urfave/cli/v2"
+
+	"batchwright/tolerance/stage"
+)
+
+func (p *program) kindsCommand() *cli.Command {
+	return &cli.Command{
+		Name:      "kinds",
+		Usage:     "the kinds of stage a build file can name; with NAME, all about one",
+		ArgsUsage: "[NAME]",
+		Description: `Lists the kinds, or prints one kind's roles, inputs, settings, outputs, test
+points and equations. The equations printed are the ones that run.
+
+  batchwright kinds
+  batchwright kinds colpitts`,
+		Flags:  []cli.Flag{jsonFlag()},
+		Action: p.kinds,
+	}
+}
+
+func (p *program) kinds(c *cli.Context) error {
+	name, err := argument(c, "kind", true)
+	if err != nil {
+		return err
+	}
+	if name == "" {
+		return p.kindList(c.Bool("json"))
+	}
+	k, ok := stage.Find(name)
+	if !ok {
+		return unknownWord("kind", name, stage.Names())
+	}
+	if c.Bool("json") {
+		return p.json(describeKind(k))
+	}
+	p.showKind(k)
+	return nil
+}
+
+// named is an entry of a list.
+type named struct {
+	Name    string `json:"name"`
+	Summary string `json:"summary"`
+}
+
+func (p *program) kindList(asJSON bool) error {
+	list := []named{}
+	for _, name := range stage.Names() {
+		k, _ := stage.Find(name)
+		list = append(list, named{k.Name, k.Summary})
+	}
+	if asJSON {
+		return p.json(map[string][]named{"kinds": list})
+	}
+	p.showList(list)
+	return nil
+}
+
+// kindText is a kind as `kinds NAME --json` prints it.
+type kindText struct {
+	named
+	Roles     []roleText    `json:"roles"`
+	Inputs    []inputText   `json:"inputs"`
+	Settings  []settingText `json:"settings"`
+	Outputs   []outputText  `json:"outputs"`
+	Points    []pointText   `json:"points"`
+	Equations []string      `json:"equations"`
+	Limits    string        `json:"limits"`
+	Source    string        `json:"source"`
+}
+
+type roleText struct {
+	Role     string `json:"role"`
+	Type     string `json:"type"`
+	Optional bool   `json:"optional"`
+	Summary  string `json:"summary"`
+}
+
+type inputText struct {
+	Input    string `json:"input"`
+	Optional bool   `json:"optional"`
+	Summary  string `json:"summary"`
+}
+
+type settingText struct {
+	Setting string `json:"setting"`
+	Unit    string `json:"unit"`
+	Default string `json:"default"`
+	Summary string `json:"summary"`
+}
+
+type outputText struct {
+	Output  string `json:"output"`
+	Unit    string `json:"unit"`
+	Summary string `json:"summary"`
+}
+
+type pointText struct {
+	Point      string `json:"point"`
+	Reading    string `json:"reading"`
+	Instrument string `json:"instrument"`
+	At         string `json:"at"`
+}
+
+// describeKind says of a kind what it says of itself.
+func describeKind(k *stage.Kind) kindText {
+	t := kindText{
+		named: named{k.Name, k.Summary}, Limits: k.Limits, Source: k.Source,
+		Roles: []roleText{}, Inputs: []inputText{}, Settings: []settingText{},
+		Outputs: []outputText{}, Points: []pointText{}, Equations: []string{},
+	}
+	for _, r := range k.Roles {
+		t.Roles = append(t.Roles, roleText{r.Name, string(r.Type), r.Optional, r.Summary})
+	}
+	for _, i := range k.Inputs {
+		t.Inputs = append(t.Inputs, inputText{i.Name, i.Optional, i.Summary})
+	}
+	for _, s := range k.AllSettings() {
+		t.Settings = append(t.Settings, settingText{s.Name, s.Unit.Symbol, settingDefault(s), s.Summary})
+	}
+	for _, o := range k.Outputs {
+		t.Outputs = append(t.Outputs, outputText{o.Name, o.Unit.Symbol, o.Summary})
+	}
+	for _, q := range k.Points {
+		t.Points = append(t.Points, pointText{q.Name, q.Reading, q.Instrument, q.At})
+	}
+	for _, e := range k.EquationList() {
+		t.Equations = append(t.Equations, e.Name+" = "+e.Expression.Text)
+	}
+	return t
+}
+
+// settingDefault is a setting's default with the tolerance it scatters by.
+func settingDefault(s stage.Setting) string {
+	if s.Default != "" && s.Scatter.Tolerance != 0 {
+		return s.Default + " " + tolerance(s.Scatter, s.Unit)
+	}
+	return s.Default
+}

@@ -1,0 +1,192 @@
+package cli
+
+import (
+	"context"
+	"fmt"
+	"os"
+	"path/filepath"
+	"strings"
+	"unicode"
+
+	"github.com/urfave/cli/v2"
+
+	"batchwright/bom/order"
+	"batchwright/export/plan"
+	"batchwright/export/workbook"
+	"batchwright/tolerance/bench"
+	"batchwright/tolerance/pick"
+	"batchwright/tolerance/spread"
+)
+
+func (p *program) planCommand() *cli.Command {
+	return &cli.Command{
+		Name:      "plan",
+		Usage:     "the whole job: pick the parts, prove them, order them, write the workbook",
+		ArgsUsage: "[BUILD]",
+		Description: `Fills every open position with the cheapest parts that meet the targets,
+simulates whole batches of the result, orders the parts and writes a workbook
+named after the build's title. Without BUILD it plans the embedded example; "-"
+reads the build from standard input.
+
+  batchwright plan
+  batchwright plan tone-box.yaml --units 12 --out plans`,
+		Flags: []cli.Flag{
+			&cli.StringFlag{Name: "out", Usage: "write the workbook into folder `DIR`", Value: "."},
+			unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
+		},
+		Action: p.plan,
+	}
+}
+
+func (p *program) plan(c *cli.Context) error {
+	file, err := argument(c, "build file", true)
+	if err != nil {
+		return err
+	}
+	s, err := readSizes(c)
+	if err != nil {
+		return err
+	}
+	if err := usableFolder(c.String("out")); err != nil {
+		return err
+	}
+	src, err := p.read(file, s.units)
+	if err != nil {
+		return err
+	}
+	if file == "" {
+		fmt.Fprintf(p.stderr, "batchwright: no build file named; planning the embedded example, %s\n", src.Title)
+	}
+	work, err := p.work(c.Context, src, s)
+	if err != nil {
+		return err
+	}
+	path, err := save(c.String("out"), file, src.Title, plan.Compose(*work))
+	if err != nil {
+		return err
+	}
+	if c.Bool("json") {
+		err = p.json(plan.NewResult(*work, path))
+	} else {
+		p.showPlan(*work, path)
+	}
+	if err != nil {
+		return err
+	}
+	return verdict(work)
+}
+
+// work does the whole job but for the writing.
+func (p *program) work(ctx context.Context, src *source, s sizes) (*plan.Work, error) {
+	g := p.newProgress()
+	defer g.stop()
+	w := &plan.Work{File: src.File, Text: src.text, Seed: s.seed, Simulate: s.simulate, Version: Version}
+	g.start("picking parts")
+	var err error
+	w.Pick, w.Build, err = pick.Choose(ctx, src.Build, pick.Options{Seed: s.seed, Units: s.simulate, Progress: g.say})
+	if err != nil {
+		return nil, err
+	}
+	if w.Model, err = w.Build.Compile(); err != nil {
+		return nil, err
+	}
+	g.start("simulating")
+	o := spread.Options{Seed: s.seed, Units: s.simulate, Progress: g.at}
+	if w.Report, err = spread.Analyse(ctx, w.Model, o); err != nil {
+		return nil, err
+	}
+	g.start("drifting")
+	if w.Drifts, err = plan.Drifts(ctx, w.Build, o); err != nil {
+		return nil, err
+	}
+	w.Sheet = bench.NewSheet(w.Model, w.Report)
+	w.Order = order.New(w.Build.Parts(), w.Build.Units, w.Build.Spares, w.Build.Book, w.Build.Families)
+	return w, ctx.Err()
+}
+
+// verdict is nil where every target is met; otherwise it says how many are not.
+func verdict(w *plan.Work) error {
+	if w.Pick.Why != "" && !w.Pick.ProvedCheapest {
+		return missedTargets(w.Report, w.Pick.Why)
+	}
+	return missedTargets(w.Report, "")
+}
+
+// missedTargets is nil where every target is met and there is no other reason.
+func missedTargets(r *spread.Report, why string) error {
+	var names []string
+	for _, t := range r.Targets {
+		if !t.Met {
+			names = append(names, t.Name)
+		}
+	}
+	switch {
+	case len(names) == 0 && why == "":
+		return nil
+	case len(names) == 0:
+		return missed("%s", why)
+	case why != "":
+		why = "\n" + why
+	}
+	return missed("%d of %s missed: %s%s", len(names), count(len(r.Targets), "target"), strings.Join(names, ", "), why)
+}
+
+// usableFolder refuses an output folder that cannot become one, before any
+// work is done.
+func usableFolder(folder string) error {
+	if folder == "" {
+		return usage("--out needs a folder")
+	}
+	info, err := os.Stat(folder)
+	if err == nil && !info.IsDir() {
+		return &fault{exitFile, fmt.Errorf("cannot write into %s: it is a file, expected a folder", folder)}
+	}
+	return nil // one that is not there is made when there is something to put in it
+}
+
+// save writes the workbook, whole or not at all, and returns its path.
+func save(folder, buildFile, title string, w workbook.Plan) (string, error) {
+	if err := os.MkdirAll(folder, 0o755); err != nil {
+		return "", unwritable(folder, err)
+	}
+	path := filepath.Join(folder, slug(title)+".xlsx")
+	if sameFile(path, buildFile) {
+		return "", usage("the workbook %s would replace the build file: give --out another folder", path)
+	}
+	if err := workbook.Save(path, w); err != nil {
+		return "", &fault{exitFile, err}
+	}
+	return path, nil
+}
+
+func sameFile(a, b string) bool {
+	one, err := os.Stat(a)
+	if err != nil {
+		return false
+	}
+	other, err := os.Stat(b)
+	return err == nil && os.SameFile(one, other)
+}
+
+// slug is a title as a file name: letters and digits in lower case, anything
+// else a hyphen.
+func slug(title string) string {
+	const longest = 60 // letters; some file systems allow 255 bytes
+	var out []rune
+	for _, r := range strings.ToLower(title) {
+		if len(out) == longest {
+			break
+		}
+		switch {
+		case unicode.IsLetter(r) || unicode.IsDigit(r):
+			out = append(out, r)
+		case len(out) > 0 && out[len(out)-1] != '-':
+			out = append(out, '-')
+		}
+	}
+	name := strings.Trim(string(out), "-")
+	if name == "" {
+		return "plan"
+	}
+	return name
+}

@@ -1,0 +1,95 @@
+package plan
+
+import (
+	"fmt"
+	"strings"
+
+	"batchwright/bom/marking"
+	"batchwright/bom/order"
+	"batchwright/bom/part"
+	"batchwright/bom/quantity"
+	"batchwright/export/workbook"
+	"batchwright/tolerance/build"
+)
+
+// positions lists every fitted part in its place, stage by stage.
+func positions(w Work) []workbook.Position {
+	lots := lots(w.Build)
+	var list []workbook.Position
+	for _, s := range w.Build.Stages {
+		for _, place := range s.Places {
+			if !place.Fitted {
+				continue
+			}
+			list = append(list, workbook.Position{
+				Stage: s.Name, Kind: s.Kind.Name, Ref: place.Part.Ref,
+				Role:  strings.ReplaceAll(place.Role, "_", " "),
+				Value: place.Part.ValueText(), Family: title(w.Build, place.Part.Family),
+				Tolerance: grade(place.Part), Marking: marking.Text(place.Part),
+				Note: note(w, s, place, lots),
+			})
+		}
+	}
+	return list
+}
+
+// title is how shops call a family; a part of none is only what its value says.
+func title(b *build.Build, family string) string {
+	if f, ok := b.Families.Family(family); ok {
+		return f.Title
+	}
+	return "no family given"
+}
+
+func grade(p part.Part) string {
+	if g := p.Grade(); g > 0 {
+		return "±" + quantity.Format(g, quantity.Percent, 0)
+	}
+	return ""
+}
+
+// lots gathers the references bought on one line, which come from one lot.
+func lots(b *build.Build) map[string][]string {
+	lots := map[string][]string{}
+	for _, p := range b.Parts() {
+		if p.Family != "" && !p.LotsMixed {
+			lots[order.Key(p)] = append(lots[order.Key(p)], p.Ref)
+		}
+	}
+	return lots
+}
+
+// note says how a part is handled: when a trimmer is turned, and what must
+// come from one bag with it.
+func note(w Work, s *build.Stage, place build.Place, lots map[string][]string) string {
+	var notes []string
+	if place.Type.Trimmer() {
+		notes = append(notes, trimmerNote(w, s.Name+"."+place.Role, place))
+	}
+	if refs := lots[order.Key(place.Part)]; len(refs) > 1 && !place.Part.LotsMixed && scattersByLot(place.Part) {
+		notes = append(notes, "one lot for "+order.Runs(refs))
+	}
+	if place.Part.LotsMixed {
+		notes = append(notes, "from mixed lots")
+	}
+	return strings.Join(notes, "; ")
+}
+
+func trimmerNote(w Work, position string, place build.Place) string {
+	for _, t := range w.Sheet.Turns {
+		if t.Turn == position {
+			return fmt.Sprintf("trimmer, set in step %d", t.Step)
+		}
+	}
+	return fmt.Sprintf("trimmer, left at %.0f %% of its travel", 100*place.Position)
+}
+
+// scattersByLot says whether pieces of a lot resemble each other.
+func scattersByLot(p part.Part) bool {
+	for _, q := range p.Parameters {
+		if q.Correlation.Value != 0 || q.Correlation.Temperature != 0 {
+			return true
+		}
+	}
+	return false
+}

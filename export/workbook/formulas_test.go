@@ -5,6 +5,8 @@ import (
 	"strings"
 	"testing"
 
+	"batchwright/bom/order"
+
 	"github.com/google/go-cmp/cmp"
 )
 
@@ -18,7 +20,7 @@ func TestStoredResults(t *testing.T) {
 		t.Errorf("stored and recalculated differ (-stored +recalculated):\n%s", d)
 	}
 	for _, l := range p.Order.Lines {
-		row := find(t, worked[buySheet], strings.Join(l.Refs, ", "), l.Text)
+		row := find(t, worked[buySheet], order.Runs(l.Refs), l.Text)
 		got := numbers(t, row[5:12])
 		want := []float64{float64(l.PerUnit), float64(l.Needed), float64(l.Spares), float64(l.Multiple), float64(l.Buy), l.Each.Float(), l.Price.Float()}
 		if d := cmp.Diff(want, got); d != "" {

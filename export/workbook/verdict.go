@@ -82,7 +82,7 @@ func (p *page) signals(g grid) {
 		p.mark("ISNUMBER("+cell+")", sage, moss, false, ""))
 }
 
-// verdictSignals colours the row of verdicts and the counts of readings outside.
+// verdictSignals colours the row of verdicts.
 func (p *page) verdictSignals(verdicts, first string) {
 	is := func(word string) string { return fmt.Sprintf(`%s="%s"`, first, word) }
 	p.signal(verdicts,
@@ -90,8 +90,7 @@ func (p *page) verdictSignals(verdicts, first string) {
 		p.mark(is(good), sage, moss, true, ""), p.mark(is(begun), "EFEBE6", ink, false, ""))
 }
 
-// mark is one rule: a formula, and how the cell looks where it holds. excelize
-// makes a new style on every call, so each is made once a sheet.
+// mark is one rule: a formula, and how the cell looks where it holds.
 func (p *page) mark(formula, fill, color string, bold bool, format string) excelize.ConditionalFormatOptions {
 	s := &excelize.Style{Font: &excelize.Font{Color: color, Bold: bold}, Fill: excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{fill}}}
 	if format != "" {
@@ -99,6 +98,11 @@ func (p *page) mark(formula, fill, color string, bold bool, format string) excel
 	}
 	id, err := p.file.NewConditionalStyle(s)
 	p.keep(err)
+	if dxf := p.file.Styles.Dxfs.Dxfs; err == nil && dxf[id].NumFmt != nil {
+		// excelize numbers these formats from 164 on, like those of cells; apart
+		// they cannot be taken for each other.
+		dxf[id].NumFmt.NumFmtID = 1000 + id
+	}
 	return excelize.ConditionalFormatOptions{Type: "formula", Criteria: formula, Format: &id, StopIfTrue: true}
 }
 

@@ -219,25 +219,7 @@ func (c *converter) root(n ast.Node, arguments []ast.Node) Node {
 // mentions reports whether name occurs in n other than as the unknown of an
 // inner root.
 func mentions(n Node, name string) bool {
-	switch n := n.(type) {
-	case *Name:
-		return n.Name == name
-	case *Unary:
-		return mentions(n.X, name)
-	case *Binary:
-		return mentions(n.X, name) || mentions(n.Y, name)
-	case *Compare:
-		return mentions(n.X, name) || mentions(n.Y, name)
-	case *Conditional:
-		return mentions(n.If, name) || mentions(n.Then, name) || mentions(n.Else, name)
-	case *Call:
-		for _, a := range n.Arguments {
-			if mentions(a, name) {
-				return true
-			}
-		}
-	case *Root:
-		return mentions(n.Low, name) || mentions(n.High, name) || n.Unknown != name && mentions(n.Residual, name)
-	}
-	return false
+	found := false
+	appear(n, nil, func(other string) { found = found || other == name })
+	return found
 }

@@ -69,26 +69,29 @@ func contract(f func(Interval) Interval, x Interval) Interval {
 	return Interval{x.Low - slack, x.High + slack}
 }
 
+// cut moves one end inwards over pieces where f has no zero. A piece that
+// cannot be excluded is tried again at half the size, down to 2^−16 of x.
 func cut(f func(Interval) Interval, x Interval, left bool) Interval {
-	share := 0.5
-	for range 100 {
-		width := share * (x.High - x.Low)
-		piece := Interval{x.Low, x.Low + width}
+	size := (x.High - x.Low) / 2
+	smallest := math.Ldexp(size, -15)
+	for range 200 {
+		if size < smallest || !(size > 0) {
+			return x
+		}
+		size = math.Min(size, x.High-x.Low)
+		piece := Interval{x.Low, x.Low + size}
 		if !left {
-			piece = Interval{x.High - width, x.High}
+			piece = Interval{x.High - size, x.High}
 		}
 		r := f(piece)
-		switch {
-		case !r.Empty() && (r.Low > 0 || r.High < 0) && width > 0:
-			if left {
-				x.Low = piece.High
-			} else {
-				x.High = piece.Low
-			}
-		case share < 1.0/256:
-			return x
-		default:
-			share /= 2
+		if r.Empty() || r.Contains(0) {
+			size /= 2
+			continue
+		}
+		if left {
+			x.Low = piece.High
+		} else {
+			x.High = piece.Low
 		}
 	}
 	return x

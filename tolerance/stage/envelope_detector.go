@@ -13,7 +13,8 @@ import (
 //	dc = carrier − V_D,  V_D = drop(1 mA, T) + n·V_T·ln(I/1 mA),  I = dc/load
 //
 // V_D at the current of the full carrier level is more than the true V_D, so
-// level less that is below the root and the level itself above it. The diode
+// `least`, the level less that, is below the root, and `highest`, by the drop
+// at `least`, above it: a bracket of some hundredths of a volt. The diode
 // conducts where the carrier exceeds its drop at that current; otherwise (also
 // where the load asks for less than the diode's own leakage, drop below 0)
 // there is no output.
@@ -52,7 +53,8 @@ junction = diode.drop + diode.drop_slope*warmth
 full_drop = junction + thermal*ln(max(stronger, tiny)*per_volt)
 conducts = full_drop > 0 and stronger > full_drop
 least = max(stronger - max(full_drop, 0), tiny)
-held = root(v, least, max(stronger, tiny), stronger - v - junction - thermal*ln(v*per_volt))
+highest = min(max(stronger - junction - thermal*ln(least*per_volt), least), max(stronger, tiny))
+held = root(v, least, highest, stronger - v - junction - thermal*ln(v*per_volt))
 dc = conducts > 0 ? held : 0
 tone_level = conducts > 0 ? weaker*(1 - depth^2/8) : 0
 ripple = in.frequency > 0 ? dc/(in.frequency*resistance*capacitance) : 0

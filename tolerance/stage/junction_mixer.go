@@ -15,7 +15,8 @@ import (
 //	V_th − V₋ = I_C·(R_th/β + (1 + 1/β)·R_E) + V_BE(1 mA, T) + V_T·ln(I_C/1 mA)
 //
 // The root is bracketed by physics: with no junction drop the current would be
-// `most`; the drop at `most` is more than the true drop, so `least` is below.
+// `most`; the drop at `most` is more than the true drop, so `least`, by that drop, is
+// below the root, and `more`, by the drop at `least`, above it again.
 // A base that is not driven on gives 1 pA. A collector that would fall below
 // the emitter + 0.2 V stays there and `saturated` is 1; `current` is then still
 // what the bias asks for.
@@ -85,7 +86,8 @@ junction = transistor.vbe + transistor.vbe_slope*warmth
 slope = base_resistance/transistor.beta + (1 + 1/transistor.beta)*emitter
 most = max(drive/slope, 1e-9*ampere)
 least = max((drive - junction - thermal*ln(most/(0.001*ampere)))/slope, 1e-12*ampere)
-current = root(i, least, most, drive - i*slope - junction - thermal*ln(i/(0.001*ampere)))
+more = min(max((drive - junction - thermal*ln(least/(0.001*ampere)))/slope, least), most)
+current = root(i, least, more, drive - i*slope - junction - thermal*ln(i/(0.001*ampere)))
 base_voltage = base_open - current/transistor.beta*base_resistance
 emitter_voltage = negative + current*(1 + 1/transistor.beta)*emitter
 resting = (positive - current*load)/(1 + load*meter)

@@ -95,7 +95,7 @@ func number(v, scale float64, digits int) string {
 		v, power = v/scale, 0
 	}
 	text, exponent := decimal(v, digits)
-	if digits > 0 && exponent-power >= digits {
+	if digits > 0 && exponent-power >= digits && exponent-power <= 15 {
 		text, exponent = decimal(v, exponent-power+1)
 	}
 	exponent -= power

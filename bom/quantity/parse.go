@@ -74,8 +74,11 @@ func (m measure) value(number string) float64 {
 	e := 0
 	if exponent != "" {
 		var err error
-		if e, err = strconv.Atoi(exponent); err != nil {
-			e = math.MaxInt32 // the bounds refuse what this makes of it
+		if e, err = strconv.Atoi(exponent); err != nil || max(e, -e) > 1e6 {
+			e = 1e6 // the bounds refuse what this makes of it
+			if exponent[0] == '-' {
+				e = -1e6
+			}
 		}
 	}
 	v, _ := strconv.ParseFloat(mantissa+"e"+strconv.Itoa(e+m.power), 64)
@@ -92,12 +95,14 @@ func (k kind) within(v float64, text string) (Quantity, error) {
 		return Quantity{v, k.unit, text}, nil
 	}
 	switch {
-	case size == 0 && strings.ContainsAny(text, "123456789") && !(onlyZeros(text)):
+	case size == 0 && !onlyZeros(text):
 		return Quantity{}, k.refuse(text, "absurdly small")
 	case size != 0 && size < k.low:
 		return Quantity{}, k.refuse(text, "absurdly small")
 	case !(size <= k.high):
 		return Quantity{}, k.refuse(text, "absurdly large")
+	case size == 0:
+		v = 0 // not minus zero
 	}
 	return Quantity{v, k.unit, text}, nil
 }

@@ -108,20 +108,24 @@ type measure struct {
 
 // readSymbol reads a unit: factors joined by "·" or "*", then any number of
 // "/factor", each with a prefix and a whole exponent: "mV/K", "ppm/K²", "1/K^3".
+// A unit that is no plain factor stands alone, but for "/°C" and "/% RH".
 func readSymbol(text string) (measure, bool) {
 	m := measure{factor: 1}
 	if text == "" || len(text) > 40 {
 		return m, false
+	}
+	if s, power, exponent, ok := readFactor(text); ok && s.sort != plain {
+		return measure{s.dimension, power, s.factor, s.sort}, exponent == 1 && s.sort != humidity
+	}
+	if text[0] == '/' {
+		text = "1" + text // "/K"
 	}
 	for i, part := range strings.Split(text, "/") {
 		sign := 1
 		if i > 0 {
 			sign = -1
 		}
-		if i == 0 && strings.TrimSpace(part) == "" && len(text) > 1 {
-			part = "1" // "/K"
-		}
-		for _, word := range strings.FieldsFunc(part, func(r rune) bool { return r == '·' || r == '*' }) {
+		for _, word := range strings.Split(strings.ReplaceAll(part, "*", "·"), "·") {
 			if !m.times(strings.TrimSpace(word), sign) {
 				return m, false
 			}
@@ -147,22 +151,14 @@ func (m *measure) times(word string, sign int) bool {
 	if s.factor != 1 {
 		m.factor *= math.Pow(s.factor, float64(exponent))
 	}
-	if s.text == "%" && sign < 0 {
+	switch {
+	case s.sort == humidity, s.text == "%" && sign < 0:
 		m.sort = humidity // "ppm/%": there is nothing else a share is taken of
+		return sign < 0 && exponent == -1
+	case s.sort == absolute:
+		return sign < 0 // "ppm/°C": a difference, the same as per kelvin
 	}
-	if s.sort == plain {
-		return true
-	}
-	if s.sort == absolute && sign < 0 {
-		return true // "ppm/°C": a difference, the same as per kelvin
-	}
-	if s.sort == humidity && sign < 0 && m.sort == plain {
-		m.sort = humidity
-		return true
-	}
-	alone := *m == measure{s.dimension, s.power + power, s.factor, plain}
-	m.sort = s.sort
-	return alone && s.sort != humidity
+	return s.sort == plain
 }
 
 // readFactor reads one symbol with its prefix and exponent.

@@ -44,9 +44,9 @@ func (p *program) explain(err error) {
 	switch {
 	case err == nil:
 	case errors.As(err, &complaints):
-		fmt.Fprintf(p.stderr, "%s\nbatchwright: %s; nothing was written\n", complaints, count(len(complaints), "fault"))
+		fmt.Fprintf(p.stderr, "%s\nbatchwright: %s; nothing was written\n", harmless(complaints.Error()), count(len(complaints), "fault"))
 	default:
-		for line := range strings.Lines(err.Error()) {
+		for line := range strings.Lines(harmless(err.Error())) {
 			fmt.Fprintf(p.stderr, "batchwright: %s\n", strings.TrimRight(line, "\n"))
 		}
 	}

@@ -1,13 +1,13 @@
 package cli
 
 import (
-	"encoding/json"
 	"fmt"
 	"math"
 	"strconv"
 
 	"github.com/urfave/cli/v2"
 
+	"batchwright/export/table"
 	"batchwright/tolerance/build"
 )
 
@@ -34,7 +34,7 @@ func unitsFlag() cli.Flag {
 }
 
 func jsonFlag() cli.Flag {
-	return &cli.BoolFlag{Name: "json", Usage: "print the result as JSON"}
+	return &cli.BoolFlag{Name: "json", Usage: "print the result as JSON", DisableDefaultText: true}
 }
 
 // sizes are the numbers a simulation is run with.
@@ -96,10 +96,8 @@ func argument(c *cli.Context, what string, optional bool) (string, error) {
 // json prints a result as JSON. Figures that do not exist are null; a NaN that
 // gets this far is a mistake of ours.
 func (p *program) json(result any) error {
-	text, err := json.MarshalIndent(result, "", "  ")
-	if err != nil {
+	if err := table.JSON(&p.out, result); err != nil {
 		return fmt.Errorf("the result cannot be written as JSON: %w", err)
 	}
-	p.out.Write(append(text, '\n'))
 	return nil
 }

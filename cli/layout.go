@@ -1,28 +1,36 @@
 package cli
 
 import (
+	"bytes"
 	"fmt"
 	"strings"
+	"unicode"
 
-	"github.com/jedib0t/go-pretty/v6/table"
 	"github.com/jedib0t/go-pretty/v6/text"
+
+	"batchwright/export/table"
 )
 
 // width is how many columns of a terminal the text takes.
-const width = 110
+const width = 112
 
-// line prints a line of text.
+// narrowest is how far the last column of a table is squeezed.
+const narrowest = 24
+
+// line prints a line of text, or several.
 func (p *program) line(format string, args ...any) {
-	fmt.Fprintf(&p.out, format+"\n", args...)
+	fmt.Fprintln(&p.out, harmless(fmt.Sprintf(format, args...)))
 }
 
-// section prints a table under its title, or nothing where it has no rows.
-func (p *program) section(title string, header []string, rows [][]string) {
-	if len(rows) == 0 {
-		return
-	}
-	p.line("\n%s", title)
-	p.table("  ", header, rows)
+// harmless takes out what could move a terminal's cursor: titles and names
+// come from files.
+func harmless(s string) string {
+	return strings.Map(func(r rune) rune {
+		if r != '\n' && (unicode.IsControl(r) || unicode.Is(unicode.Bidi_Control, r)) {
+			return -1
+		}
+		return r
+	}, s)
 }
 
 // paragraph prints a text under its title, or nothing where there is none.
@@ -31,62 +39,61 @@ func (p *program) paragraph(title, body string) {
 		return
 	}
 	p.line("\n%s", title)
-	for line := range strings.Lines(text.WrapSoft(body, width-2)) {
-		p.line("  %s", strings.TrimRight(line, " \n"))
+	for _, line := range wrapped(body, width-2) {
+		p.line("  %s", line)
 	}
 }
 
-// table prints rows under a header, columns two spaces apart. Columns of
-// figures stand to the right; the last column takes what width is left.
-func (p *program) table(indent string, header []string, rows [][]string) {
-	t := table.NewWriter()
-	style := table.Style{Name: "plain", Box: table.BoxStyle{PaddingRight: "  ", MiddleHorizontal: "-"}}
-	style.Format = table.FormatOptions{Header: text.FormatDefault, Row: text.FormatDefault}
-	style.Options = table.Options{SeparateHeader: true}
-	t.SetStyle(style)
-	used := len(indent)
-	var columns []table.ColumnConfig
-	for i := range header {
-		c := table.ColumnConfig{Number: i + 1}
-		if figures(rows, i) {
-			c.Align, c.AlignHeader = text.AlignRight, text.AlignRight
-		}
-		if i == len(header)-1 {
-			c.WidthMax, c.WidthMaxEnforcer = max(width-used, 24), text.WrapSoft
-		}
-		used += widest(header[i], rows, i) + 2
-		columns = append(columns, c)
+// section prints a table under its title, or nothing where it has no rows.
+func (p *program) section(title string, head []string, rows [][]string) {
+	if len(rows) == 0 {
+		return
 	}
-	t.SetColumnConfigs(columns)
-	t.AppendHeader(cells(header))
+	p.line("\n%s", title)
+	p.table("  ", head, rows)
+}
+
+// table prints rows under a heading. The last column takes what width is left
+// and goes on over further lines.
+func (p *program) table(indent string, head []string, rows [][]string) {
+	last := len(head) - 1
+	left := width - len(indent)
+	for i := range last {
+		left -= widest(head[i], rows, i) + 2
+	}
+	t := table.Table{Head: head}
 	for _, r := range rows {
-		t.AppendRow(cells(r))
-	}
-	for line := range strings.Lines(t.Render()) {
-		p.line("%s%s", indent, strings.TrimRight(line, " \n"))
-	}
-}
-
-func cells(words []string) table.Row {
-	row := make(table.Row, len(words))
-	for i, w := range words {
-		row[i] = w
-	}
-	return row
-}
-
-// figures says whether a column holds nothing but figures.
-func figures(rows [][]string, column int) bool {
-	for _, r := range rows {
-		if strings.Trim(r[column], "-+.0123456789 %–∞") != "" {
-			return false
+		for i, line := range wrapped(r[last], max(left, narrowest)) {
+			row := make([]string, len(head))
+			if i == 0 {
+				copy(row, r)
+			}
+			row[last] = line
+			t.Rows = append(t.Rows, row)
 		}
 	}
-	return true
+	var b bytes.Buffer
+	if err := t.Text(&b); err != nil {
+		panic("cli: " + err.Error()) // a buffer takes everything
+	}
+	for line := range strings.Lines(b.String()) {
+		p.out.WriteString(indent + line)
+	}
 }
 
-func widest(header string, rows [][]string, column int) int {
-	w := text.RuneWidthWithoutEscSequences(header)
+// wrapped breaks a text into lines no wider than width, one at least.
+func wrapped(body string, width int) []string {
+	var lines []string
+	for _, whole := range strings.Split(strings.TrimRight(body, "\n"), "\n") {
+		for _, line := range strings.Split(text.WrapSoft(whole, width), "\n") {
+			lines = append(lines, strings.TrimRight(line, " "))
+		}
+	}
+	return lines
+}
+
+func widest(head string, rows [][]string, column int) int {
+	w := text.RuneWidthWithoutEscSequences(head)
 	for _, r := range rows {
 		w = max(w, text.RuneWidthWithoutEscSequences(r[column]))
 	}

@@ -104,31 +104,30 @@ func (p *program) work(ctx context.Context, src *source, s sizes) (*plan.Work, e
 	return w, ctx.Err()
 }
 
-// verdict is nil where every target is met; otherwise it says how many are not.
+// verdict is nil where everything was picked and every target is met.
 func verdict(w *plan.Work) error {
-	if w.Pick.Why != "" && !w.Pick.ProvedCheapest {
-		return missedTargets(w.Report, w.Pick.Why)
+	if err := missedTargets(w.Report); err != nil {
+		return err
 	}
-	return missedTargets(w.Report, "")
+	if len(w.Pick.Choices) == 0 && w.Pick.Why != "" {
+		return missed("%s", w.Pick.Why)
+	}
+	return nil
 }
 
-// missedTargets is nil where every target is met and there is no other reason.
-func missedTargets(r *spread.Report, why string) error {
+// missedTargets is nil where every target is met; otherwise it names those
+// that are not.
+func missedTargets(r *spread.Report) error {
 	var names []string
 	for _, t := range r.Targets {
 		if !t.Met {
 			names = append(names, t.Name)
 		}
 	}
-	switch {
-	case len(names) == 0 && why == "":
+	if len(names) == 0 {
 		return nil
-	case len(names) == 0:
-		return missed("%s", why)
-	case why != "":
-		why = "\n" + why
 	}
-	return missed("%d of %s missed: %s%s", len(names), count(len(r.Targets), "target"), strings.Join(names, ", "), why)
+	return missed("%d of %s missed: %s", len(names), count(len(r.Targets), "target"), strings.Join(names, ", "))
 }
 
 // usableFolder refuses an output folder that cannot become one, before any

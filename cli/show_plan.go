@@ -31,8 +31,8 @@ func (p *program) showPicks(r *pick.Result) {
 		rows = append(rows, []string{order.Runs(c.Refs), choiceText(c), c.UnitCost.String(), c.Why})
 	}
 	p.section("picked", []string{"for", "part", "a unit", "because"}, rows)
-	if len(rows) > 0 {
-		p.line("  %s", proofText(r))
+	if len(rows) > 0 || r.Why != "" {
+		p.paragraph("proof", proofText(r))
 	}
 }
 
@@ -50,18 +50,18 @@ func choiceText(c pick.Choice) string {
 
 // proofText says how the picks were found.
 func proofText(r *pick.Result) string {
-	how := "not proved to be the cheapest"
+	how := "Not proved to be the cheapest"
 	if r.ProvedCheapest {
-		how = "proved to be the cheapest that meets the targets"
+		how = "Proved: nothing cheaper meets the targets"
 	}
 	if r.Why != "" {
-		how = r.Why
+		how = strings.ToUpper(r.Why[:1]) + r.Why[1:]
 	}
 	candidates := fmt.Sprint(r.Candidates)
 	if r.Candidates == math.MaxInt {
 		candidates = "countless"
 	}
-	return fmt.Sprintf("%s: %s combinations, %d judged, %d simulated", how, candidates, r.Examined, r.Simulated)
+	return fmt.Sprintf("%s. %s combinations, %d judged, %d simulated.", how, candidates, r.Examined, r.Simulated)
 }
 
 // showOrder prints what is to be bought and what it costs.

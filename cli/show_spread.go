@@ -26,57 +26,52 @@ func (p *program) showSpread(b *build.Build, r *spread.Report) {
 
 var outputHeader = [...]string{"output", "at", "unit", "nominal", "worst low", "worst high", "std unc", "95 % from", "to", "mostly from"}
 
-// outputRows are the outputs of a stage, one row a condition. Conditions that
-// make no difference share a row.
+// outputRows are the outputs of a stage. Conditions at which an output's
+// printed figures are the same share a row.
 func outputRows(all []spread.OutputReport, stage string) [][]string {
 	var rows [][]string
-	for i := 0; i < len(all); i++ {
-		o := all[i]
-		name, found := strings.CutPrefix(o.Output, stage+".")
-		if !found {
+	for i, first := range all {
+		name, found := strings.CutPrefix(first.Output, stage+".")
+		if !found || slices.ContainsFunc(all[:i], func(o spread.OutputReport) bool { return sameOutput(o, first) }) {
 			continue
 		}
-		at := []string{o.Condition}
-		for i+1 < len(all) && sameFigures(o, all[i+1]) {
-			i++
-			at = append(at, all[i].Condition)
+		own := len(rows)
+		conditions := 0
+		for _, o := range all[i:] {
+			if sameOutput(o, first) {
+				conditions++
+				rows = addRow(rows, own, outputRow(o, name))
+			}
 		}
-		rows = append(rows, outputRow(o, name, at, sameOutput(all, o)))
+		if len(rows) == own+1 && conditions > 1 {
+			rows[own][1] = "all conditions"
+		}
 	}
 	return rows
 }
 
-// sameOutput counts the conditions that a report has for an output.
-func sameOutput(all []spread.OutputReport, o spread.OutputReport) int {
-	n := 0
-	for _, other := range all {
-		if other.Output == o.Output && other.ChangeFrom == o.ChangeFrom {
-			n++
+// sameOutput says whether two reports are of one output, or of its change from
+// one condition.
+func sameOutput(a, b spread.OutputReport) bool {
+	return a.Output == b.Output && a.ChangeFrom == b.ChangeFrom
+}
+
+// addRow adds a row, or its condition to the row from own on whose figures are
+// the same.
+func addRow(rows [][]string, own int, row []string) [][]string {
+	for _, r := range rows[own:] {
+		if slices.Equal(r[2:len(r)-1], row[2:len(row)-1]) {
+			r[1] += ", " + row[1]
+			return rows
 		}
 	}
-	return n
+	return append(rows, row)
 }
 
-// sameFigures says whether two reports are of one output and tell the same.
-func sameFigures(a, b spread.OutputReport) bool {
-	same := func(x, y spread.Figure) bool {
-		return x == y || math.IsNaN(float64(x)) && math.IsNaN(float64(y)) ||
-			math.Abs(float64(x-y)) <= 1e-12*math.Abs(float64(x))
-	}
-	return a.Output == b.Output && a.ChangeFrom == b.ChangeFrom && same(a.Nominal, b.Nominal) &&
-		same(a.RootSumSquare.StandardUncertainty, b.RootSumSquare.StandardUncertainty) &&
-		same(a.Simulated.Mean, b.Simulated.Mean) && same(a.Simulated.StandardDeviation, b.Simulated.StandardDeviation)
-}
-
-// outputRow is one output at some conditions, its figures in one unit.
-func outputRow(o spread.OutputReport, name string, at []string, conditions int) []string {
-	where := strings.Join(at, ", ")
-	if len(at) == conditions && len(at) > 1 {
-		where = "all conditions"
-	}
+// outputRow is one output at one condition, its figures in one unit.
+func outputRow(o spread.OutputReport, name string) []string {
 	if o.ChangeFrom != "" {
-		name = "change of " + name
-		where += " from " + o.ChangeFrom
+		name = "change of " + name + " from " + o.ChangeFrom
 	}
 	low, high := spread.Figure(math.NaN()), spread.Figure(math.NaN())
 	if o.WorstCase != nil {
@@ -87,14 +82,13 @@ func outputRow(o spread.OutputReport, name string, at []string, conditions int) 
 	r := newRow(o.Unit, max(float64(u), float64(o.Simulated.StandardDeviation)),
 		float64(o.Nominal), float64(low), float64(high), float64(from), float64(to))
 	return []string{
-		name, where, r.symbol, r.text(o.Nominal), r.text(low), r.text(high),
+		name, o.Condition, r.symbol, r.text(o.Nominal), r.text(low), r.text(high),
 		r.text(u), r.text(from), r.text(to), plan.Contributors(o, 2),
 	}
 }
 
 // showTrims prints where the trimmers end.
 func (p *program) showTrims(trims []spread.TrimReport) {
-	travel := func(f spread.Figure) string { return fmt.Sprintf("%.0f %%", 100*float64(f)) }
 	var rows [][]string
 	for _, t := range trims {
 		rows = append(rows, []string{
@@ -103,6 +97,14 @@ func (p *program) showTrims(trims []spread.TrimReport) {
 		})
 	}
 	p.section("trims", []string{"turn", "reached", "short at 0", "short at 1", "nominal", "98 % of units end at"}, rows)
+}
+
+// travel is a trimmer's setting as a share of its travel.
+func travel(f spread.Figure) string {
+	if math.IsNaN(float64(f)) {
+		return "–"
+	}
+	return fmt.Sprintf("%.0f %%", 100*float64(f))
 }
 
 // showTargets prints the verdicts.

@@ -10,20 +10,6 @@ import (
 	"batchwright/tolerance/spread"
 )
 
-// percent writes a share so that one that is not whole never reads as 100 %.
-func percent(f spread.Figure) string {
-	x := 100 * float64(f)
-	switch {
-	case math.IsNaN(x):
-		return "–"
-	case x > 99.95 && x < 100:
-		return fmt.Sprintf("%.4f %%", math.Min(x, 99.9999))
-	case x > 0 && x < 0.05:
-		return fmt.Sprintf("%.4f %%", math.Max(x, 0.0001))
-	}
-	return fmt.Sprintf("%.1f %%", x)
-}
-
 // row holds figures of one output that are to be read side by side.
 type row struct {
 	symbol   string

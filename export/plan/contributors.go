@@ -13,15 +13,23 @@ import (
 const leastShare = 0.05
 
 // Contributors says what an output's scatter comes from, the largest share
-// first: "L1 value 71 %, C6 value 14 %".
+// first: "L1 71 %, C6 temperature 14 %".
 func Contributors(o spread.OutputReport, most int) string {
 	list := slices.Clone(o.Contributions)
 	slices.SortStableFunc(list, func(a, b spread.Contribution) int { return cmp.Compare(b.Share, a.Share) })
 	var words []string
 	for _, c := range list {
 		if len(words) < most && c.Share >= leastShare {
-			words = append(words, fmt.Sprintf("%s %s %.0f %%", c.Ref, c.Parameter, 100*float64(c.Share)))
+			words = append(words, fmt.Sprintf("%s %.0f %%", source(c), 100*float64(c.Share)))
 		}
 	}
 	return strings.Join(words, ", ")
+}
+
+// source names a parameter; of a part's value the reference says enough.
+func source(c spread.Contribution) string {
+	if c.Parameter == "value" {
+		return c.Ref
+	}
+	return c.Ref + " " + c.Parameter
 }

@@ -58,6 +58,7 @@ func Read(file string, text []byte, families *part.Catalogue) (*Book, document.C
 		book:     &Book{Name: filepath.Base(file), rows: make(map[string][]Row)},
 		families: families,
 		seen:     make(map[condition]int),
+		values:   make(map[span][]float64),
 	}
 	for _, line := range lines {
 		r.readLine(line)
@@ -77,6 +78,13 @@ type reader struct {
 	families *part.Catalogue
 	faults   document.Faults
 	seen     map[condition]int // the line that set a price first
+	values   map[span][]float64
+}
+
+// span is what a row with a series sells. Its breaks share the values.
+type span struct {
+	series    string
+	low, high float64
 }
 
 // condition is what may have one price only.
@@ -159,8 +167,9 @@ func (r *reader) readValues(cell map[string]*document.Node, family *part.Family,
 		row.AnyValue = true
 		if family.HasValue() {
 			r.faults.Add(cell["family"], family.Name+" comes in values", "from and to filled in")
+			return false
 		}
-		return !family.HasValue()
+		return true
 	case empty(from) || empty(to):
 		r.faults.Add(cell["family"], "only one of from and to, or a series without them", "both filled in, or neither")
 		return false
@@ -199,15 +208,24 @@ func (r *reader) readSeries(n *document.Node, family *part.Family, row *Row) boo
 		return false
 	}
 	row.Series = name
-	low, high := row.Low, row.High
-	if high < 0 {
-		low, high = -high, -low
-	}
-	if low <= 0 || len(series.Between(name, low, high)) == 0 {
+	if row.values = r.sold(name, row.Low, row.High); len(row.values) == 0 {
 		r.faults.Add(n, fmt.Sprintf("no value of %s in the range", name), "a range that holds one")
 		return false
 	}
 	return true
+}
+
+// sold lists the magnitudes of a series in a range, which is all above zero or
+// all below it; empty if it is not.
+func (r *reader) sold(name string, low, high float64) []float64 {
+	if high < 0 {
+		low, high = -high, -low
+	}
+	k := span{name, low, high}
+	if _, known := r.values[k]; !known && low > 0 {
+		r.values[k] = series.Between(name, low, high)
+	}
+	return r.values[k]
 }
 
 // readTerms reads quantity, price, multiple and stock.

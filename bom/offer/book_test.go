@@ -2,9 +2,11 @@ package offer
 
 import (
 	"fmt"
+	"math"
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
+	"github.com/google/go-cmp/cmp/cmpopts"
 
 	"batchwright/bom/part"
 )
@@ -25,7 +27,7 @@ func TestReadBook(t *testing.T) {
 	if b.Name != "my-prices.csv" || b.Demonstration || b.Currency != "" {
 		t.Errorf("%q, %q, %t", b.Name, b.Currency, b.Demonstration)
 	}
-	close := cmp.Comparer(same)
+	nearly := cmp.Comparer(same)
 	for _, c := range []struct {
 		name string
 		p    part.Part
@@ -53,12 +55,24 @@ func TestReadBook(t *testing.T) {
 			t.Errorf("%s: no offer", c.name)
 			continue
 		}
-		if d := cmp.Diff(c.want, o.Rows, close); d != "" {
+		if d := cmp.Diff(c.want, o.Rows, nearly, cmpopts.IgnoreUnexported(Row{})); d != "" {
 			t.Errorf("%s: %s", c.name, d)
 		}
 	}
-	if _, ok := b.Offer(fit(t, "c0g", 120e-12, 0.01)); ok {
-		t.Error("a row of one value sells another")
+	for _, c := range []struct {
+		name string
+		p    part.Part
+		want bool
+	}{
+		{"a value that a row of another does not sell", fit(t, "c0g", 120e-12, 0.01), false},
+		{"below the range", fit(t, "c0g", 82e-12, 0.05), false},
+		{"lowest of the range", fit(t, "c0g", math.Nextafter(100e-12, 0), 0.05), true},
+		{"highest of the range", fit(t, "c0g", math.Nextafter(1e-9, 1), 0.05), true},
+		{"above the range", fit(t, "c0g", 1.2e-9, 0.05), false},
+	} {
+		if _, ok := b.Offer(c.p); ok != c.want {
+			t.Errorf("%s: offered %t, want %t", c.name, ok, c.want)
+		}
 	}
 }
 
@@ -80,6 +94,8 @@ func TestReadBookComplains(t *testing.T) {
 	for _, c := range []struct{ name, row, want string }{
 		{"unknown family", "cog,5 %,1 nF,1 nF,,1,0.1,,", "2:1 c0g"},
 		{"tolerance without unit", "c0g,5,1 nF,1 nF,,1,0.1,,", "2:5"},
+		{"tolerance beyond all", "c0g,101 %,1 nF,1 nF,,1,0.1,,", "2:5"},
+		{"series across zero", "fixed-regulator-negative,4 %,-5 V,5 V,E24,1,0.1,,", "2:39"},
 		{"tolerance of a transistor", "small-signal-npn,5 %,,,,1,0.1,,", "2:18"},
 		{"value of a transistor", "small-signal-npn,,1 V,1 V,,1,0.1,,", "2:19"},
 		{"no value of a capacitor", "c0g,5 %,,,,1,0.1,,", "2:1"},

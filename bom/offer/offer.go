@@ -4,9 +4,9 @@ package offer
 
 import (
 	"math"
+	"sort"
 
 	"batchwright/bom/part"
-	"batchwright/bom/series"
 )
 
 // Row is one line of a price book: what it sells, and for how much.
@@ -21,6 +21,9 @@ type Row struct {
 	Multiple  int // pieces come in multiples of it
 	Stock     int // NoLimit where the book names none
 	Line      int // in the book
+	// values are the magnitudes that Series has from Low to High, rising; kept
+	// because a search for the cheapest parts asks thousands of times.
+	values []float64
 }
 
 // NoLimit is the Stock of a row that names none.
@@ -35,36 +38,41 @@ type Offer struct {
 // Offer finds what the book asks for a part: by family, grade and value. A
 // row may name no tolerance or no value; it then sells every one.
 func (b *Book) Offer(p part.Part) (*Offer, bool) {
-	if p.Family == "" {
-		return nil, false
-	}
 	o := &Offer{Family: p.Family}
-	for _, r := range b.rows[p.Family] {
-		if r.sells(&p) {
-			o.Rows = append(o.Rows, r)
+	value := p.Main().Value
+	w := wish{grade: p.Grade(), low: value, high: value}
+	if low := p.Parameter("low"); low != nil {
+		w.low = low.Value
+	}
+	rows := b.rows[p.Family]
+	for i := range rows {
+		if rows[i].sells(w) {
+			o.Rows = append(o.Rows, rows[i])
 		}
 	}
 	return o, len(o.Rows) > 0
 }
 
-// sells reports whether the row's grade and value are the part's.
-func (r *Row) sells(p *part.Part) bool {
-	if !r.AnyGrade && !same(r.Tolerance, p.Grade()) {
-		return false
-	}
-	if r.AnyValue {
-		return true
-	}
-	value := p.Main().Value
+// wish is what a row is searched for: a grade, and a value or a trimmer's ends.
+type wish struct{ grade, low, high float64 }
+
+// sells reports whether the row's grade and value are those wished for.
+func (r *Row) sells(w wish) bool {
 	switch {
-	case p.Type.Trimmer():
-		low := p.Parameter("low")
-		return low != nil && same(r.Low, low.Value) && same(r.High, value)
+	case !r.AnyGrade && !same(r.Tolerance, w.grade):
+		return false
+	case r.AnyValue:
+		return true
 	case r.Series == "":
-		return same(r.Low, value)
+		return same(r.Low, w.low) && same(r.High, w.high)
 	}
-	inside := value >= r.Low-tight*math.Abs(r.Low) && value <= r.High+tight*math.Abs(r.High)
-	return inside && series.Contains(r.Series, math.Abs(value))
+	return (w.high < 0) == (r.High < 0) && contains(r.values, math.Abs(w.high))
+}
+
+// contains reports whether x is one of the rising values.
+func contains(values []float64, x float64) bool {
+	i := sort.SearchFloat64s(values, x*(1-tight))
+	return i < len(values) && same(values[i], x)
 }
 
 // tight is the relative distance within which two figures are the same one,

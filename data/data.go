@@ -3,7 +3,7 @@
 // files as they are and knows nothing of what is in them.
 package data
 
-import _ "embed"
+import "embed"
 
 // Families is families.yaml: part families typical of their class, with a
 // source for every figure.
@@ -20,3 +20,9 @@ var Instruments []byte
 //
 //go:embed prices.csv
 var Prices []byte
+
+// Examples holds the example builds, one file each. Everything in them is
+// invented.
+//
+//go:embed examples
+var Examples embed.FS

@@ -43,6 +43,17 @@ type Report struct {
 	Yield      YieldReport    `json:"yield"`
 	Simulation Simulation     `json:"simulation"`
 	Notes      []string       `json:"notes,omitempty"` // findings that are not failures
+
+	// Readings are what the bench will see, as the model's points; package
+	// bench makes windows of them.
+	Readings []ReadingReport `json:"-"`
+}
+
+// ReadingReport is the distribution of one test point's reading, with the
+// instrument connected: the central 99.73 % of the good units.
+type ReadingReport struct {
+	Nominal, Unloaded, Low, High Figure
+	Units                        int // good units seen
 }
 
 // OutputReport is one output at one condition, or its change from another.

@@ -1,0 +1,108 @@
+package build
+
+import (
+	"strings"
+
+	"batchwright/tolerance/formula"
+)
+
+// checkFormulas checks the names and dimensions of every formula stage.
+func (r *reader) checkFormulas() {
+	for _, s := range r.stages {
+		scope := formulaScope{r.build, s.Stage}
+		for _, f := range s.Formulas {
+			r.checkFormula(s, f, scope)
+		}
+		r.checkOutputCycles(s)
+	}
+}
+
+// checkOutputCycles complains of outputs of one stage that need each other in
+// a circle.
+func (r *reader) checkOutputCycles(s stageNode) {
+	state := map[string]int{}
+	var walk func(name string, path []string)
+	walk = func(name string, path []string) {
+		x := s.Stage.find(name)
+		if x == nil || !s.Kind.Free || s.place(name) != nil || s.setting(name) != nil || state[name] == 2 {
+			return
+		}
+		path = append(path, name)
+		if state[name] == 1 {
+			r.Add(s.node.Get("outputs").Get(name).Get("expression"), "outputs in a circle",
+				"outputs that do not need each other: "+strings.Join(path, " -> "))
+			return
+		}
+		state[name] = 1
+		for _, next := range x.Names() {
+			walk(next, path)
+		}
+		state[name] = 2
+	}
+	for _, f := range s.Formulas {
+		walk(f.Name, nil)
+	}
+}
+
+func (r *reader) checkFormula(s stageNode, f formula.Equation, scope formulaScope) {
+	n := s.node.Get("outputs").Get(f.Name)
+	dimension, mistakes := f.Expression.Check(scope)
+	r.mistakes(n.Get("expression"), mistakes)
+	out, _ := s.output(f.Name)
+	if len(mistakes) > 0 || dimension == out.Unit.Dimension {
+		return
+	}
+	at := n.Get("unit")
+	if at == nil {
+		at = n.Get("expression")
+	}
+	r.Add(at, "unit of "+f.Name, "the unit of its expression, "+dimension.String())
+}
+
+// checkCycles complains of stages that need each other's outputs in a circle.
+func (r *reader) checkCycles() {
+	state := map[string]int{} // 1: on the way, 2: done
+	var walk func(s stageNode, path []string)
+	walk = func(s stageNode, path []string) {
+		path = append(path, s.Name)
+		switch state[s.Name] {
+		case 1:
+			r.Add(s.node.Get("kind"), "cycle between stages", "stages that do not need each other: "+strings.Join(path, " -> "))
+			return
+		case 2:
+			return
+		}
+		state[s.Name] = 1
+		for _, next := range r.needs(s) {
+			walk(next, path)
+		}
+		state[s.Name] = 2
+	}
+	for _, s := range r.stages {
+		walk(s, nil)
+	}
+}
+
+// needs lists the other stages a stage takes something from.
+func (r *reader) needs(s stageNode) []stageNode {
+	var names []string
+	for _, w := range s.Wires {
+		names = append(names, w.From)
+	}
+	for _, set := range s.Settings {
+		names = append(names, set.Reference)
+	}
+	for _, f := range s.Formulas {
+		names = append(names, f.Expression.Names()...)
+	}
+	var out []stageNode
+	for _, name := range names {
+		head, _, _ := strings.Cut(name, ".")
+		for _, other := range r.stages {
+			if other.Name == head && s.place(head) == nil && s.setting(head) == nil && (other.Name != s.Name || s.Name == name) {
+				out = append(out, other)
+			}
+		}
+	}
+	return out
+}

@@ -1,0 +1,195 @@
+package build
+
+import (
+	"hash/fnv"
+	"math"
+
+	"batchwright/bom/order"
+	"batchwright/bom/part"
+	"batchwright/tolerance/scatter"
+	"batchwright/tolerance/tape"
+)
+
+// reference25 is the temperature that every coefficient is counted from, °C.
+const reference25 = 25
+
+// source is where a figure belongs: a part in a stage, or a setting.
+type source struct {
+	ref    string
+	prefix string // of the parameter's name, for parts with several: "beta "
+	line   string // buying line; "" shares no lot
+	mixed  bool
+	stage  *Stage
+}
+
+// placed is the value of a part in a role, or of one of its parameters.
+func (c *compiler) placed(e *environment, s *Stage, p *Place, parameter string) tape.Ref {
+	if parameter == "fitted" {
+		return c.Graph.Constant(boolean(p.Fitted))
+	}
+	if !p.Fitted {
+		return c.Graph.Constant(0)
+	}
+	x := source{ref: p.Part.Ref, line: order.Key(p.Part), mixed: p.Part.LotsMixed, stage: s}
+	if p.Type.Trimmer() {
+		return c.trimmer(e, x, s, p)
+	}
+	if len(p.Part.Parameters) == 1 {
+		return c.element(e, x, p.Part.Parameters[0], "value")
+	}
+	for _, q := range p.Part.Parameters {
+		if q.Name == parameter {
+			x.prefix = q.Name + " "
+			return c.element(e, x, q, q.Name)
+		}
+	}
+	return c.Graph.Constant(math.NaN())
+}
+
+func boolean(b bool) float64 {
+	if b {
+		return 1
+	}
+	return 0
+}
+
+// trimmer is the value at the trimmer's setting: between its two ends, each
+// with its own tolerance, moved together by temperature and age.
+func (c *compiler) trimmer(e *environment, x source, s *Stage, p *Place) tape.Ref {
+	g := c.Graph
+	low, high := p.Part.Parameters[0], p.Part.Parameters[1]
+	from, to := c.base(x, low, "low"), c.base(x, high, "high")
+	setting := g.Constant(p.Position)
+	if i := c.Build.TrimOf(s.Name, p.Role); i >= 0 {
+		setting = e.settings[i]
+	}
+	v := g.Add(from, g.Mul(setting, g.Sub(to, from)))
+	return g.Mul(v, c.surround(e, x, high.Scatter))
+}
+
+// element is a parameter at the stage's own temperature and age:
+//
+//	nominal·(1 + tolerance·z1)·(1 + α·Δ)·(1 + η·ΔH)·(1 + a·g(age))
+func (c *compiler) element(e *environment, x source, p part.Parameter, name string) tape.Ref {
+	return c.Graph.Mul(c.base(x, p, name), c.surround(e, x, p.Scatter))
+}
+
+// base is a parameter as it is delivered, at 25 °C, 50 % humidity and new.
+func (c *compiler) base(x source, p part.Parameter, name string) tape.Ref {
+	g := c.Graph
+	column := c.column(x, name, p.Shape, p.Correlation.Value)
+	column.HalfWidth = p.Tolerance
+	nominal := g.Constant(p.Value)
+	if p.Absolute || p.Value == 0 {
+		return g.Add(nominal, c.input(x.ref, name, column, 1))
+	}
+	return g.Mul(nominal, g.Add(g.Constant(1), c.input(x.ref, name, column, 1/p.Value)))
+}
+
+// surround is the factor by which temperature, humidity and age change a part.
+func (c *compiler) surround(e *environment, x source, s part.Scatter) tape.Ref {
+	g := c.Graph
+	factor := c.thermal(e, x, s)
+	if s.Humidity != (part.Spread{}) {
+		eta := c.coefficient(x, "humidity", s, s.Humidity)
+		factor = g.Mul(factor, c.onePlus(eta, g.Constant(c.variableNamed(e, Humidity)-0.5)))
+	}
+	if s.Ageing.Spread != (part.Spread{}) {
+		a := c.coefficient(x, "ageing", s, s.Ageing.Spread)
+		factor = g.Mul(factor, c.onePlus(a, g.Constant(elapsed(s.Ageing.Per, c.variableNamed(e, Age)))))
+	}
+	return factor
+}
+
+// thermal is 1 + α·Δ, or 1 + the law's change where the family has a law.
+func (c *compiler) thermal(e *environment, x source, s part.Scatter) tape.Ref {
+	g := c.Graph
+	single := x.line != "" && x.prefix == "" // its derivative by α is always wanted
+	if !single && len(s.Law) == 0 && s.Temperature == (part.Spread{}) {
+		return g.Constant(1)
+	}
+	delta := g.Add(g.Constant(c.variableNamed(e, Temperature)-reference25), c.rise(e, x.stage))
+	if len(s.Law) == 0 {
+		return c.onePlus(c.coefficient(x, "temperature", s, s.Temperature), delta)
+	}
+	z := c.coefficient(x, "temperature", s, part.Spread{Spread: 1})
+	celsius := g.Add(delta, g.Constant(reference25))
+	middle := c.interpolate(s.Law, celsius, func(p part.LawPoint) float64 { return (p.Low + p.High) / 2 })
+	half := c.interpolate(s.Law, celsius, func(p part.LawPoint) float64 { return (p.High - p.Low) / 2 })
+	return g.Add(g.Constant(1), g.Add(middle, g.Mul(z, half)))
+}
+
+// onePlus is 1 + a·b.
+func (c *compiler) onePlus(a, b tape.Ref) tape.Ref {
+	return c.Graph.Add(c.Graph.Constant(1), c.Graph.Mul(a, b))
+}
+
+// coefficient is an input such as α: its mean and its spread.
+func (c *compiler) coefficient(x source, name string, s part.Scatter, spread part.Spread) tape.Ref {
+	column := c.column(x, name, s.Shape, s.Correlation.Temperature)
+	column.Centre, column.HalfWidth = spread.Value, spread.Spread
+	return c.input(x.ref, x.prefix+name, column, 1)
+}
+
+// interpolate is the piecewise linear law through the points, level beyond
+// the first and the last:
+//
+//	y = y0 + Σ slope_i·(clamp(t, t_i, t_i+1) − t_i)
+func (c *compiler) interpolate(law []part.LawPoint, t tape.Ref, y func(part.LawPoint) float64) tape.Ref {
+	g := c.Graph
+	sum := g.Constant(y(law[0]))
+	for i := 1; i < len(law); i++ {
+		a, b := law[i-1], law[i]
+		slope := (y(b) - y(a)) / (b.Celsius - a.Celsius)
+		within := g.Max(g.Constant(a.Celsius), g.Min(g.Constant(b.Celsius), t))
+		sum = g.Add(sum, g.Mul(g.Constant(slope), g.Sub(within, g.Constant(a.Celsius))))
+	}
+	return sum
+}
+
+// elapsed is g(age): decades of hours since one hour, or thousands of hours.
+func elapsed(per part.Clock, seconds float64) float64 {
+	hours := seconds / 3600
+	if per == part.PerThousandHours {
+		return hours / 1000
+	}
+	if hours <= 1 {
+		return 0
+	}
+	return math.Log10(hours)
+}
+
+// column is the scatter of one parameter of a piece. Pieces on one buying line
+// share a lot, one draw a batch for each parameter.
+func (c *compiler) column(x source, name string, shape part.Shape, rho float64) scatter.Column {
+	out := scatter.Column{Shape: shape, Lot: -1, Stream: stream(x.ref, x.prefix+name)}
+	if x.line != "" && !x.mixed && rho > 0 {
+		out.Lot, out.Rho = lot(c.lots[x.line], x.prefix+name), rho
+	}
+	return out
+}
+
+// input is the graph's input for a parameter of a piece, made on first use.
+func (c *compiler) input(ref, parameter string, column scatter.Column, perUnit float64) tape.Ref {
+	k := ref + "|" + parameter
+	if v, ok := c.inputs[k]; ok {
+		return v
+	}
+	v := c.Graph.Input()
+	c.inputs[k] = v
+	c.Inputs = append(c.Inputs, Input{Ref: ref, Parameter: parameter, Column: column, PerUnit: perUnit})
+	return v
+}
+
+// stream numbers the draws of a parameter of a piece. It follows from the
+// names alone, so that one part more or another family changes no other draw.
+func stream(ref, parameter string) uint64 {
+	h := fnv.New64a()
+	h.Write([]byte(ref + "|" + parameter))
+	return h.Sum64()
+}
+
+// lot numbers the draws that a buying line's pieces share.
+func lot(first, parameter string) int {
+	return int(stream("lot of "+first, parameter) >> 2)
+}

@@ -1,0 +1,236 @@
+package build
+
+import (
+	"fmt"
+
+	"batchwright/bom/order"
+	"batchwright/bom/quantity"
+	"batchwright/tolerance/scatter"
+	"batchwright/tolerance/tape"
+)
+
+// Model is a build compiled: every output at every condition, every trim and
+// every bench reading as nodes of one graph, which share what they have in
+// common. Parts come first, trims are solved on them, conditions follow.
+type Model struct {
+	Build   *Build
+	Graph   *tape.Graph
+	Inputs  []Input // in the order of the graph's input columns
+	Outputs []Output
+	Trims   []TrimNodes
+	Targets []TargetNodes // as Build.Targets
+	Points  []Point
+}
+
+// Input is one thing that scatters: a column of the program.
+type Input struct {
+	Ref       string // the part's reference, "stage.setting", or the trimmer's reference
+	Parameter string // "value", "temperature", "ageing", "beta", "setting error", …
+	scatter.Column
+	PerUnit float64 // change of the column for one SI unit of the parameter
+}
+
+// Output is an output at a condition, or its change from another.
+type Output struct {
+	Name       OutputName
+	Unit       quantity.Unit
+	Condition  int
+	ChangeFrom int // -1: the output itself
+	Node       tape.Ref
+	Trims      []int // the trims it depends on
+}
+
+// TrimNodes are what is known about a trim in the graph.
+type TrimNodes struct {
+	Setting    tape.Ref // 0..1, clamped to the end that comes nearest where it does not reach
+	AtLow      tape.Ref // the output less the value wanted, at setting 0
+	AtHigh     tape.Ref // and at setting 1
+	Trims      []int    // the earlier trims it depends on
+	ErrorInput int      // input column of its setting error
+}
+
+// TargetNodes are the outputs a target judges, as indices of Model.Outputs; a
+// target on a trim's reach has none.
+type TargetNodes struct{ Outputs []int }
+
+// Point is one bench reading.
+type Point struct {
+	Stage      *Stage
+	Index      int // of the kind's points
+	Instrument Instrument
+	Loaded     tape.Ref
+	Unloaded   tape.Ref
+	Unit       quantity.Unit
+	Trims      []int
+}
+
+// compiler turns a build into a graph.
+type compiler struct {
+	*Model
+	inputs map[string]tape.Ref // by reference and parameter
+	lots   map[string]string   // buying line -> the first reference on it
+	err    error
+}
+
+// Compile builds the model. Errors are faults of this program, not of the
+// build, which Read has checked.
+func (b *Build) Compile() (*Model, error) {
+	c := &compiler{
+		Model:  &Model{Build: b, Graph: tape.NewGraph()},
+		inputs: map[string]tape.Ref{},
+		lots:   map[string]string{},
+	}
+	for _, p := range b.Parts() {
+		if key := order.Key(p); c.lots[key] == "" {
+			c.lots[key] = p.Ref
+		}
+	}
+	settings := c.compileTrims()
+	c.compileOutputs(settings)
+	c.compilePoints(settings)
+	c.findTrims()
+	return c.Model, c.err
+}
+
+// compileTrims solves the trims in order. While one is done, the later
+// trimmers stand in the middle of their travel.
+func (c *compiler) compileTrims() []tape.Ref {
+	g := c.Graph
+	settings := make([]tape.Ref, len(c.Build.Trims))
+	for i := range settings {
+		settings[i] = g.Constant(0.5)
+	}
+	for i, t := range c.Build.Trims {
+		place := c.Build.Stage(t.Stage).place(t.Role)
+		with := func(setting tape.Ref) tape.Ref {
+			at := append([]tape.Ref(nil), settings...)
+			at[i] = setting
+			e := c.newEnvironment(t.Condition, at)
+			return g.Sub(c.output(e, t.Output), g.Constant(t.To))
+		}
+		column := len(c.Inputs)
+		wrong := c.input(place.Part.Ref, "setting error", scatter.Column{
+			Shape: "uniform", Lot: -1, HalfWidth: t.Within, Stream: stream(place.Part.Ref, "setting error"),
+		}, 1)
+		u := g.Unknown()
+		n := TrimNodes{AtLow: with(g.Constant(0)), AtHigh: with(g.Constant(1)), ErrorInput: column}
+		n.Setting = g.Root(u, g.Constant(0), g.Constant(1), g.Sub(with(u), wrong))
+		c.Trims = append(c.Trims, n)
+		settings[i] = n.Setting
+	}
+	return settings
+}
+
+// compileOutputs makes a node for every output at every condition, and for
+// every change that a target asks about.
+func (c *compiler) compileOutputs(settings []tape.Ref) {
+	b := c.Build
+	at := map[string]int{}
+	var environments []*environment
+	for i := range b.Conditions {
+		environments = append(environments, c.newEnvironment(i, settings))
+	}
+	for _, s := range b.Stages {
+		for _, o := range s.Outputs {
+			for i, e := range environments {
+				name := OutputName{s.Name, o.Name}
+				at[key(name, i, -1)] = len(c.Outputs)
+				c.Outputs = append(c.Outputs, Output{Name: name, Unit: o.Unit, Condition: i, ChangeFrom: -1, Node: c.output(e, name)})
+			}
+		}
+	}
+	for _, t := range b.Targets {
+		c.Targets = append(c.Targets, c.compileTarget(t, at))
+	}
+}
+
+// key identifies an output at a condition or its change.
+func key(name OutputName, condition, from int) string {
+	return fmt.Sprintf("%s|%d|%d", name, condition, from)
+}
+
+// compileTarget finds the outputs a target judges, adding changes.
+func (c *compiler) compileTarget(t Target, at map[string]int) TargetNodes {
+	var n TargetNodes
+	if t.Trim >= 0 {
+		return n
+	}
+	for _, condition := range t.At {
+		k := key(t.Output, condition, t.ChangeFrom)
+		i, ok := at[k]
+		if !ok {
+			to := c.Outputs[at[key(t.Output, condition, -1)]]
+			from := c.Outputs[at[key(t.Output, t.ChangeFrom, -1)]]
+			to.ChangeFrom, to.Node = t.ChangeFrom, c.Graph.Sub(to.Node, from.Node)
+			if to.Unit.Offset != 0 { // a difference of temperatures is in kelvin
+				to.Unit = quantity.Kelvin
+			}
+			i = len(c.Outputs)
+			at[k] = i
+			c.Outputs = append(c.Outputs, to)
+		}
+		n.Outputs = append(n.Outputs, i)
+	}
+	return n
+}
+
+// compilePoints makes the readings of every test point at the reference
+// condition: with the instrument connected, and without.
+func (c *compiler) compilePoints(settings []tape.Ref) {
+	bare := c.newEnvironment(0, settings)
+	for _, s := range c.Build.Stages {
+		for i, p := range s.Kind.Points {
+			instrument, ok := c.Build.Instrument(p.Instrument)
+			if !ok {
+				c.fail(fmt.Errorf("build: %s.%s is read with %q, which is no instrument", s.Kind.Name, p.Name, p.Instrument))
+				continue
+			}
+			loaded := c.newEnvironment(0, settings)
+			loaded.load(c, s, i, instrument)
+			out, ok := s.output(p.Name)
+			if !ok {
+				c.fail(fmt.Errorf("build: %s reads %q, which is no output", s.Kind.Name, p.Name))
+				continue
+			}
+			c.Points = append(c.Points, Point{
+				Stage: s, Index: i, Instrument: instrument, Unit: out.Unit,
+				Loaded: c.equation(loaded, s, p.Name), Unloaded: c.equation(bare, s, p.Name),
+			})
+		}
+	}
+}
+
+// findTrims notes which trims everything depends on: those whose setting
+// error it reads.
+func (c *compiler) findTrims() {
+	for i := range c.Outputs {
+		c.Outputs[i].Trims = c.trimsOf(c.Outputs[i].Node)
+	}
+	for i := range c.Points {
+		c.Points[i].Trims = c.trimsOf(c.Points[i].Loaded)
+	}
+	for i := range c.Trims {
+		c.Trims[i].Trims = c.trimsOf(c.Trims[i].AtLow, c.Trims[i].AtHigh)
+	}
+}
+
+func (c *compiler) trimsOf(nodes ...tape.Ref) []int {
+	read := map[int]bool{}
+	for _, i := range c.Graph.Program(nodes...).Inputs() {
+		read[i] = true
+	}
+	var trims []int
+	for i, t := range c.Trims {
+		if read[t.ErrorInput] {
+			trims = append(trims, i)
+		}
+	}
+	return trims
+}
+
+// fail keeps the first error.
+func (c *compiler) fail(err error) {
+	if c.err == nil {
+		c.err = err
+	}
+}

@@ -1,0 +1,198 @@
+package build
+
+import (
+	"cmp"
+	"fmt"
+	"math"
+	"slices"
+
+	"batchwright/bom/document"
+	"batchwright/bom/part"
+	"batchwright/bom/quantity"
+	"batchwright/bom/series"
+)
+
+// chooseKeys are the keys of an open position.
+var chooseKeys = []string{"families", "tolerances", "values", "around", "within", "series", "combine"}
+
+// readOpening reads what may be chosen for a part; nil where nothing is open.
+func (r *reader) readOpening(s stageNode, p *Place, n *document.Node, family *part.Family) *Opening {
+	at := n.Get("choose")
+	if at == nil {
+		return nil
+	}
+	if !r.Keys(at, chooseKeys...) && at.Kind != document.Mapping {
+		return nil
+	}
+	o := Opening{Positions: []string{s.Name + "." + p.Role}, Type: p.Type, node: n}
+	o.Families = r.readOpenFamilies(at, p.Type, family)
+	o.Tolerances = r.readOpenTolerances(at, o.Families)
+	o.Values = r.readOpenValues(at, p)
+	r.readCombine(at.Get("combine"))
+	if len(o.Families) == 0 {
+		return nil // complained of
+	}
+	r.build.Openings = append(r.build.Openings, o)
+	return &r.build.Openings[len(r.build.Openings)-1]
+}
+
+// readOpenFamilies reads the families to choose from; the part's own where
+// none are listed.
+func (r *reader) readOpenFamilies(at *document.Node, t part.Type, family *part.Family) []string {
+	list := at.Get("families")
+	if list == nil {
+		if family == nil {
+			r.Add(at, "missing key families", "the families to choose from, or a family on the part")
+			return nil
+		}
+		return []string{family.Name}
+	}
+	var names []string
+	for _, n := range r.items(list, "families") {
+		if f := r.familyOf(n, t); f != nil {
+			names = append(names, f.Name)
+		}
+	}
+	return names
+}
+
+// items are the entries of a list that must not be empty.
+func (r *reader) items(n *document.Node, what string) []*document.Node {
+	items, ok := r.Items(n)
+	if ok && len(items) == 0 {
+		r.Add(n, "empty list of "+what, "at least one")
+	}
+	return items
+}
+
+// readOpenTolerances reads the grades to choose from, each of which at least
+// one family must be sold in.
+func (r *reader) readOpenTolerances(at *document.Node, families []string) []float64 {
+	list := at.Get("tolerances")
+	if list == nil {
+		return nil
+	}
+	var grades []float64
+	for _, n := range r.items(list, "tolerances") {
+		q, ok := r.Quantity(n, quantity.Percent)
+		if !ok {
+			continue
+		}
+		if !r.soldInAny(families, q.Value) {
+			r.Add(n, "tolerance", fmt.Sprintf("a grade that one of %v is sold in", families))
+			continue
+		}
+		grades = append(grades, q.Value)
+	}
+	return grades
+}
+
+func sold(f *part.Family, tolerance float64) bool {
+	_, ok := f.Grade(tolerance)
+	return ok
+}
+
+func (r *reader) soldInAny(families []string, tolerance float64) bool {
+	for _, name := range families {
+		if f, ok := r.build.Families.Family(name); ok && sold(f, tolerance) {
+			return true
+		}
+	}
+	return len(families) == 0
+}
+
+// readOpenValues reads the values to choose from, listed or around one; of a
+// trimmer, the ranges.
+func (r *reader) readOpenValues(at *document.Node, p *Place) []Worth {
+	list, around := at.Get("values"), at.Get("around")
+	switch {
+	case list == nil && around == nil:
+		return nil
+	case !p.Single():
+		r.Add(at, "values of a "+string(p.Type), "families and tolerances only")
+		return nil
+	case list != nil && around != nil:
+		r.Add(around, "around beside values", "one of the two")
+		return nil
+	case list == nil && p.Type.Trimmer():
+		r.Add(around, "around a trimmer's range", "values: a list of ranges")
+		return nil
+	case list == nil:
+		return r.readAround(at, around, p)
+	}
+	var values []Worth
+	for _, n := range r.items(list, "values") {
+		if w, ok := r.readWorth(n, p.Type); ok {
+			values = append(values, w)
+		}
+	}
+	return values
+}
+
+// readWorth reads a value more than zero, or a trimmer's range.
+func (r *reader) readWorth(n *document.Node, t part.Type) (Worth, bool) {
+	w := Worth{Text: n.Value}
+	if t.Trimmer() {
+		low, high, err := quantity.ParseRange(n.Value, t.Unit())
+		if n.Kind != document.Scalar || err != nil || !(low.Value >= 0 && low.Value < high.Value) {
+			r.Add(n, "trimmer's range", "two values with a unit, low..high, such as 4..34 pF or 0..10 kΩ")
+			return w, false
+		}
+		w.Low, w.High = low.Value, high.Value
+		return w, true
+	}
+	if !r.read(n, t.Unit(), &w.High) {
+		return w, false
+	}
+	if !(w.High > 0) {
+		r.Add(n, "value", "more than zero")
+		return w, false
+	}
+	w.Low = w.High
+	return w, true
+}
+
+// readAround reads `around: 220 pF, within: 10 %, series: E24`.
+func (r *reader) readAround(at, around *document.Node, p *Place) []Worth {
+	var centre, within float64
+	name := "E24"
+	ok := r.read(around, p.Type.Unit(), &centre)
+	if n := r.Need(at, "within", "how far from it, such as 10 %"); n == nil || !r.read(n, quantity.Percent, &within) {
+		ok = false
+	}
+	if n := at.Get("series"); n != nil {
+		name, _ = r.Word(n, "a series", series.Names()...)
+	}
+	if !ok || name == "" {
+		return nil
+	}
+	values := series.Between(name, centre*(1-within), centre*(1+within))
+	if len(values) == 0 {
+		r.Add(around, "around", "a value with "+name+" values within "+quantity.Format(within, quantity.Percent, 3)+" of it")
+		return nil
+	}
+	sortByDistance(values, centre)
+	list := make([]Worth, len(values))
+	for i, v := range values {
+		list[i] = Worth{v, v, part.Text(v, p.Type.Unit())}
+	}
+	return list
+}
+
+// sortByDistance puts the value nearest to the centre by ratio first, since
+// the first is what an unchosen position is taken to hold.
+func sortByDistance(values []float64, centre float64) {
+	slices.SortFunc(values, func(a, b float64) int {
+		return cmp.Compare(math.Abs(math.Log(a/centre)), math.Abs(math.Log(b/centre)))
+	})
+}
+
+// readCombine reads how many pieces may make up the part.
+func (r *reader) readCombine(n *document.Node) {
+	if n == nil {
+		return
+	}
+	for _, item := range r.items(n, "combine") {
+		r.Word(item, "a combination", "single")
+	}
+}

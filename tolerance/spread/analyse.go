@@ -1,0 +1,260 @@
+package spread
+
+import (
+	"context"
+	"fmt"
+	"math"
+
+	"batchwright/tolerance/build"
+	"batchwright/tolerance/tape"
+)
+
+// Confidence is that of every interval in a report.
+const Confidence = 0.95
+
+// QuantileNames are the quantiles a report gives, as its keys write them.
+var QuantileNames = []string{"0.005", "0.025", "0.5", "0.975", "0.995"}
+
+var quantiles = []float64{0.005, 0.025, 0.5, 0.975, 0.995}
+
+// The central 99.73 % that a test sheet's window spans: ±3 standard deviations
+// of a normal distribution.
+const (
+	readingLow  = 0.00135
+	readingHigh = 0.99865
+)
+
+// Analyse does everything: nominal values, worst cases, root sum squares,
+// contributions and a simulation with its yield.
+func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
+	s, err := simulate(ctx, newNodes(m, allOutputs(m), true), o)
+	if err != nil {
+		return nil, err
+	}
+	worst, err := worstCases(ctx, m, o.Workers)
+	if err != nil {
+		return nil, err
+	}
+	r := &Report{Build: m.Build.Title, Seed: o.Seed, Simulation: Simulation{s.batches, s.units}}
+	l := linearOutputs(m)
+	for i := range m.Outputs {
+		r.Outputs = append(r.Outputs, s.output(l, i, worst[i]))
+	}
+	for t := range m.Trims {
+		r.Trims = append(r.Trims, s.trim(t))
+	}
+	for t := range m.Build.Targets {
+		r.Targets = append(r.Targets, s.target(t, worst))
+	}
+	r.Yield = s.yield()
+	r.Readings = s.readings()
+	r.Notes = s.notes()
+	return r, nil
+}
+
+// Judge simulates only what the targets ask about, and gives their verdicts
+// and the yield.
+func Judge(ctx context.Context, m *build.Model, o Options) ([]TargetReport, YieldReport, error) {
+	s, err := simulate(ctx, newNodes(m, targetOutputs(m), false), o)
+	if err != nil {
+		return nil, YieldReport{}, err
+	}
+	worst := make([]*WorstCase, len(m.Outputs))
+	var list []TargetReport
+	for t, target := range m.Build.Targets {
+		if target.WorstCase {
+			for _, i := range m.Targets[t].Outputs {
+				worst[i] = worstCase(m, m.Outputs[i].Node, m.Outputs[i].Trims)
+			}
+		}
+		list = append(list, s.target(t, worst))
+	}
+	return list, s.yield(), nil
+}
+
+func linearOutputs(m *build.Model) *Linear {
+	var refs []tape.Ref
+	for _, o := range m.Outputs {
+		refs = append(refs, o.Node)
+	}
+	return Linearise(m, refs...)
+}
+
+// output reports one output.
+func (s *sample) output(l *Linear, i int, worst *WorstCase) OutputReport {
+	m := s.nodes.model
+	o := m.Outputs[i]
+	column := s.nodes.columnOf[i]
+	r := OutputReport{
+		Output: o.Name.String(), Condition: m.Build.Conditions[o.Condition].Name,
+		Unit: o.Unit.Symbol, Nominal: Figure(s.nominal[column]), WorstCase: worst,
+	}
+	if o.ChangeFrom >= 0 {
+		r.ChangeFrom = m.Build.Conditions[o.ChangeFrom].Name
+	}
+	l.rootSumSquare(i, &r)
+	r.Simulated = s.outputs[column].report(s.units)
+	return r
+}
+
+// report summarises a column over the units that were kept.
+func (s summary) report(units int) Simulated {
+	r := Simulated{
+		Mean:              Figure(s.moments.Mean()),
+		StandardDeviation: Figure(s.moments.StandardDeviation()),
+		Quantiles:         map[string]Figure{},
+		ReachedShare:      Figure(float64(s.moments.Count()) / float64(units)),
+	}
+	for i, name := range QuantileNames {
+		r.Quantiles[name] = Figure(s.histogram.Quantile(quantiles[i]))
+	}
+	if s.moments.Count() == 0 {
+		r.Why = "in no simulated unit did every trim that it depends on reach"
+	}
+	return r
+}
+
+// trim reports where a trimmer ends.
+func (s *sample) trim(t int) TrimReport {
+	m := s.nodes.model
+	trim := m.Build.Trims[t]
+	x := s.settings[t]
+	units := float64(s.units)
+	return TrimReport{
+		Turn:         trim.Stage + "." + trim.Role,
+		ReachedShare: Figure(1 - float64(s.short[t][0]+s.short[t][1])/units),
+		ShortLow:     Figure(float64(s.short[t][0]) / units),
+		ShortHigh:    Figure(float64(s.short[t][1]) / units),
+		Setting: TrimSetting{
+			Nominal: Figure(s.nominal[s.nodes.trims+3*t]), Mean: Figure(x.moments.Mean()),
+			P01: Figure(x.histogram.Quantile(0.01)), P99: Figure(x.histogram.Quantile(0.99)),
+		},
+	}
+}
+
+// target gives the verdict on a target: by share, or by its worst case.
+func (s *sample) target(t int, worst []*WorstCase) TargetReport {
+	m := s.nodes.model
+	target := m.Build.Targets[t]
+	share, low, high := ShareInterval(s.perBatch(s.comply[t]), m.Build.Units, Confidence)
+	r := TargetReport{
+		Name: target.Name, Output: target.Output.String(), Asked: target.Asked,
+		Share: Figure(share), ShareInterval: [2]Figure{Figure(low), Figure(high)},
+	}
+	if !target.WorstCase {
+		r.Met = share >= target.Share
+		if low < target.Share && high > target.Share {
+			r.Why = fmt.Sprintf("close: %.4g %% of the units comply, between %.4g %% and %.4g %% at 95 %% confidence", 100*share, 100*low, 100*high)
+		}
+		return r
+	}
+	if target.Trim >= 0 {
+		var corner []Corner
+		r.Met, corner = reachWorstCase(m, target.Trim)
+		if !r.Met {
+			r.Why = "out of reach at " + cornerText(corner)
+		}
+		return r
+	}
+	s.judgeWorst(&r, m.Targets[t].Outputs, target, worst)
+	return r
+}
+
+// judgeWorst compares the worst case over a target's conditions with its limits.
+func (s *sample) judgeWorst(r *TargetReport, outputs []int, target build.Target, worst []*WorstCase) {
+	limits := Limits{Figure(math.Inf(1)), Figure(math.Inf(-1))}
+	for _, i := range outputs {
+		w := worst[i]
+		if w.Why != "" {
+			r.Why = w.Why
+			return
+		}
+		limits.Low, limits.High = min(limits.Low, w.Low), max(limits.High, w.High)
+		switch {
+		case float64(w.Low) < target.Low:
+			r.Why = "too low at " + cornerText(w.AtLow)
+		case float64(w.High) > target.High:
+			r.Why = "too high at " + cornerText(w.AtHigh)
+		}
+	}
+	r.WorstCase = &limits
+	r.Met = r.Why == ""
+}
+
+// cornerText names the parameters that matter most in a corner.
+func cornerText(corner []Corner) string {
+	const most = 4
+	text := ""
+	for i, c := range corner {
+		if i == most {
+			return text + ", …"
+		}
+		if i > 0 {
+			text += ", "
+		}
+		text += fmt.Sprintf("%s %s %+.2g", c.Ref, c.Parameter, float64(c.Z))
+	}
+	return text
+}
+
+// perBatch counts, in each batch, the units marked.
+func (s *sample) perBatch(marked []bool) []int {
+	units := s.nodes.model.Build.Units
+	counts := make([]int, s.batches)
+	for i, m := range marked {
+		if m {
+			counts[i/units]++
+		}
+	}
+	return counts
+}
+
+// yield is the share of units that meet every target.
+func (s *sample) yield() YieldReport {
+	units := s.nodes.model.Build.Units
+	good := s.perBatch(s.good)
+	share, low, high := ShareInterval(good, units, Confidence)
+	median, p05, all := BatchSummary(good, units)
+	return YieldReport{
+		UnitShare: Figure(share), Interval: [2]Figure{Figure(low), Figure(high)},
+		Batch: BatchReport{units, Figure(median), Figure(p05), Figure(all)},
+	}
+}
+
+// readings are the distributions of what the bench will read on good units.
+func (s *sample) readings() []ReadingReport {
+	m := s.nodes.model
+	var list []ReadingReport
+	if len(m.Points) == 0 {
+		return list
+	}
+	var refs []tape.Ref
+	for _, p := range m.Points {
+		refs = append(refs, p.Unloaded)
+	}
+	bare := Linearise(m, refs...)
+	for i, x := range s.points {
+		list = append(list, ReadingReport{
+			Nominal: Figure(s.nominal[s.nodes.points+i]), Unloaded: Figure(bare.Values[i]),
+			Low: Figure(x.histogram.Quantile(readingLow)), High: Figure(x.histogram.Quantile(readingHigh)),
+			Units: x.moments.Count(),
+		})
+	}
+	return list
+}
+
+// notes are findings that are no failures.
+func (s *sample) notes() []string {
+	var notes []string
+	m := s.nodes.model
+	for i, o := range m.Outputs {
+		if v := s.nominal[s.nodes.columnOf[i]]; math.IsNaN(v) || math.IsInf(v, 0) {
+			notes = append(notes, fmt.Sprintf("%s at %s has no value on a nominal unit", o.Name, m.Build.Conditions[o.Condition].Name))
+		}
+	}
+	for _, o := range m.Build.Openings {
+		p := m.Build.Place(o.Positions[0])
+		notes = append(notes, fmt.Sprintf("%s is still open; taken as %s here", o.Positions[0], p.Part.Family))
+	}
+	return notes
+}

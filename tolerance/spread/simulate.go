@@ -1,0 +1,147 @@
+package spread
+
+import (
+	"context"
+	"runtime"
+	"sync"
+	"sync/atomic"
+
+	"batchwright/tolerance/scatter"
+)
+
+// run is how many units one job simulates: sums are kept per run and merged in
+// the order of the runs, so that the number of workers changes no bit.
+const run = 16 * lanes
+
+// Options say how much is simulated.
+type Options struct {
+	Seed     uint64
+	Units    int                   // at least; rounded up to whole batches
+	Workers  int                   // 0: one for each processor
+	Progress func(done, total int) // called from several goroutines; nil: not called
+}
+
+// batches is how many whole batches hold the units asked for.
+func (o Options) batches(units int) int { return (o.Units + units - 1) / units }
+
+// sample is what a simulation leaves behind: no unit's values, but sums,
+// histograms and, for each target, which units comply.
+type sample struct {
+	nodes    *nodes
+	batches  int
+	units    int // in all
+	nominal  []float64
+	outputs  []summary // as nodes.outputs
+	settings []summary // as Model.Trims
+	points   []summary // over good units; as Model.Points
+	short    [][2]int  // of each trim: units that ran out at setting 0, at 1
+	comply   [][]bool  // [target][unit]
+	good     []bool    // units that meet every target
+}
+
+// summary is the distribution of one column.
+type summary struct {
+	centre    float64 // of the histogram
+	moments   Moments
+	histogram *Histogram
+}
+
+// job is one run's own results.
+type job struct {
+	outputs, settings, points []Moments
+	short                     [][2]int
+}
+
+// simulate runs whole batches through the program. It stops early, with the
+// context's error, when the context ends.
+func simulate(ctx context.Context, n *nodes, o Options) (*sample, error) {
+	units := n.model.Build.Units
+	s := newSample(n, o.batches(units), units)
+	jobs := make([]job, (s.units+run-1)/run)
+	workers := o.Workers
+	if workers == 0 {
+		workers = runtime.GOMAXPROCS(0)
+	}
+	var next, done atomic.Int64
+	var wait sync.WaitGroup
+	var merge sync.Mutex
+	for range min(workers, len(jobs)) {
+		wait.Add(1)
+		go func() {
+			defer wait.Done()
+			w := s.newWorker(scatter.Source{Seed: o.Seed, Units: units})
+			for ctx.Err() == nil {
+				i := int(next.Add(1)) - 1
+				if i >= len(jobs) {
+					break
+				}
+				jobs[i] = w.job(i * run)
+				if o.Progress != nil {
+					o.Progress(int(done.Add(1)), len(jobs))
+				}
+			}
+			merge.Lock()
+			defer merge.Unlock()
+			w.mergeHistograms(s)
+		}()
+	}
+	wait.Wait()
+	if err := ctx.Err(); err != nil {
+		return nil, err
+	}
+	s.mergeJobs(jobs)
+	return s, nil
+}
+
+func newSample(n *nodes, batches, units int) *sample {
+	s := &sample{nodes: n, batches: batches, units: batches * units, nominal: n.nominal()}
+	s.outputs = s.summaries(0, len(n.outputs))
+	s.settings = s.summaries(n.trims, len(n.model.Trims))
+	if n.count > n.points {
+		s.points = s.summaries(n.points, n.count-n.points)
+	}
+	s.short = make([][2]int, len(n.model.Trims))
+	s.comply = make([][]bool, len(n.model.Targets))
+	for i := range s.comply {
+		s.comply[i] = make([]bool, s.units)
+	}
+	s.good = make([]bool, s.units)
+	return s
+}
+
+// summaries makes empty summaries about the nominal values of some columns;
+// trims take three columns each.
+func (s *sample) summaries(first, count int) []summary {
+	stride := 1
+	if first == s.nodes.trims && count == len(s.nodes.model.Trims) {
+		stride = 3
+	}
+	list := make([]summary, count)
+	for i := range list {
+		centre := s.nominal[first+i*stride]
+		if !finite(centre) {
+			centre = 0
+		}
+		list[i].centre, list[i].histogram = centre, NewHistogram(centre)
+	}
+	return list
+}
+
+// mergeJobs joins the runs' sums in their order.
+func (s *sample) mergeJobs(jobs []job) {
+	for _, j := range jobs {
+		mergeMoments(s.outputs, j.outputs)
+		mergeMoments(s.settings, j.settings)
+		mergeMoments(s.points, j.points)
+		for i := range j.short {
+			s.short[i][0] += j.short[i][0]
+			s.short[i][1] += j.short[i][1]
+		}
+	}
+}
+
+func mergeMoments(into []summary, from []Moments) {
+	for i := range from {
+		into[i].moments.Merge(&from[i])
+	}
+}

@@ -1,0 +1,164 @@
+package spread
+
+import (
+	"math"
+
+	"batchwright/tolerance/scatter"
+)
+
+// worker simulates blocks of units with memory of its own.
+type worker struct {
+	*sample
+	source   scatter.Source
+	columns  *columns
+	reached  [][]bool // [trim][lane]
+	keep     []bool
+	good     []bool
+	outputs  []*Histogram
+	settings []*Histogram
+	points   []*Histogram
+}
+
+func (s *sample) newWorker(source scatter.Source) *worker {
+	w := &worker{
+		sample: s, source: source, columns: s.nodes.newColumns(lanes),
+		keep: make([]bool, lanes), good: make([]bool, lanes),
+		outputs: emptied(s.outputs), settings: emptied(s.settings), points: emptied(s.points),
+	}
+	w.reached = make([][]bool, len(s.nodes.model.Trims))
+	for i := range w.reached {
+		w.reached[i] = make([]bool, lanes)
+	}
+	return w
+}
+
+// emptied makes a histogram about the same centre for each summary.
+func emptied(list []summary) []*Histogram {
+	out := make([]*Histogram, len(list))
+	for i, s := range list {
+		out[i] = NewHistogram(s.centre)
+	}
+	return out
+}
+
+func (w *worker) mergeHistograms(s *sample) {
+	for i, h := range w.outputs {
+		s.outputs[i].histogram.Merge(h)
+	}
+	for i, h := range w.settings {
+		s.settings[i].histogram.Merge(h)
+	}
+	for i, h := range w.points {
+		s.points[i].histogram.Merge(h)
+	}
+}
+
+// job simulates one run of units from the first.
+func (w *worker) job(first int) job {
+	j := job{
+		outputs:  make([]Moments, len(w.outputs)),
+		settings: make([]Moments, len(w.settings)),
+		points:   make([]Moments, len(w.points)),
+		short:    make([][2]int, len(w.settings)),
+	}
+	for block := first; block < min(first+run, w.sample.units); block += lanes {
+		w.block(&j, block, min(lanes, w.sample.units-block))
+	}
+	return j
+}
+
+// block simulates width units from the first and adds them up.
+func (w *worker) block(j *job, first, width int) {
+	in, out := w.columns.cut(width)
+	for _, i := range w.nodes.program.Inputs() {
+		w.source.Fill(in[i], w.nodes.model.Inputs[i].Column, first)
+	}
+	w.nodes.program.Values(out, in, w.columns.frame)
+	w.addTrims(j, out, width)
+	w.judge(out, first, width)
+	for i := range w.outputs {
+		trims := w.nodes.model.Outputs[w.nodes.outputs[i]].Trims
+		w.add(&j.outputs[i], w.outputs[i], out[i], w.keepReached(trims, width))
+	}
+	for i := range w.points {
+		copy(w.keep, w.good[:width])
+		w.add(&j.points[i], w.points[i], out[w.nodes.points+i], w.keep[:width])
+	}
+}
+
+// add adds the lanes kept to a column's sums. What is no number is left out.
+func (w *worker) add(m *Moments, h *Histogram, x []float64, keep []bool) {
+	for i, v := range x {
+		keep[i] = keep[i] && !math.IsNaN(v)
+	}
+	m.AddColumn(x, keep)
+	h.AddColumn(x, keep)
+}
+
+// keepReached marks the lanes whose trims all reached.
+func (w *worker) keepReached(trims []int, width int) []bool {
+	keep := w.keep[:width]
+	for i := range keep {
+		keep[i] = true
+	}
+	for _, t := range trims {
+		for i := range keep {
+			keep[i] = keep[i] && w.reached[t][i]
+		}
+	}
+	return keep
+}
+
+// addTrims notes which trims reached and where their settings ended.
+func (w *worker) addTrims(j *job, out [][]float64, width int) {
+	for t := range w.settings {
+		column := w.nodes.trims + 3*t
+		low, high := out[column+1], out[column+2]
+		for i := range width {
+			w.reached[t][i] = reached(low[i], high[i])
+			if !w.reached[t][i] {
+				j.short[t][(shortSide(low[i], high[i])+1)/2]++
+			}
+		}
+		earlier := append([]int{t}, w.nodes.model.Trims[t].Trims...)
+		w.add(&j.settings[t], w.settings[t], out[column], w.keepReached(earlier, width))
+	}
+}
+
+// judge marks which units meet each target, and which meet all.
+func (w *worker) judge(out [][]float64, first, width int) {
+	good := w.good[:width]
+	for i := range good {
+		good[i] = true
+	}
+	for t := range w.comply {
+		comply := w.comply[t][first : first+width]
+		w.judgeTarget(t, out, comply)
+		for i := range good {
+			good[i] = good[i] && comply[i]
+		}
+	}
+	copy(w.sample.good[first:first+width], good)
+}
+
+// judgeTarget marks the units that meet one target: the trims it depends on
+// reached and, at each condition, the output within limits.
+func (w *worker) judgeTarget(t int, out [][]float64, comply []bool) {
+	m := w.nodes.model
+	target := m.Build.Targets[t]
+	if target.Trim >= 0 {
+		earlier := append([]int{target.Trim}, m.Trims[target.Trim].Trims...)
+		copy(comply, w.keepReached(earlier, len(comply)))
+		return
+	}
+	for i := range comply {
+		comply[i] = true
+	}
+	for _, index := range m.Targets[t].Outputs {
+		x := out[w.nodes.columnOf[index]]
+		keep := w.keepReached(m.Outputs[index].Trims, len(comply))
+		for i := range comply {
+			comply[i] = comply[i] && keep[i] && x[i] >= target.Low && x[i] <= target.High
+		}
+	}
+}

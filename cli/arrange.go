@@ -27,7 +27,11 @@ func arrange(app *cli.App, args []string) ([]string, error) {
 	if err != nil {
 		return nil, err
 	}
-	arranged := append(slices.Clone(args[:at+1]), flags...)
+	arranged := slices.Clone(args[:at+1])
+	if slices.ContainsFunc(flags, asksForHelp) {
+		return append(arranged, "--help"), nil // the library would look up a topic named like the file
+	}
+	arranged = append(arranged, flags...)
 	return append(append(arranged, "--"), rest...), nil
 }
 
@@ -68,6 +72,10 @@ func checkFlags(args []string, known []cli.Flag) error {
 		}
 	}
 	return nil
+}
+
+func asksForHelp(flag string) bool {
+	return flag == "--help" || flag == "-help" || flag == "-h" || flag == "--h"
 }
 
 // always are the flags that the library adds.

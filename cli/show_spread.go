@@ -5,6 +5,7 @@ import (
 	"math"
 	"slices"
 	"strings"
+	"unicode/utf8"
 
 	"batchwright/export/plan"
 	"batchwright/tolerance/build"
@@ -70,8 +71,10 @@ func addRow(rows [][]string, own int, row []string) [][]string {
 
 // outputRow is one output at one condition, its figures in one unit.
 func outputRow(o spread.OutputReport, name string) []string {
+	at := o.Condition
 	if o.ChangeFrom != "" {
-		name = "change of " + name + " from " + o.ChangeFrom
+		at += " from " + o.ChangeFrom
+		name = "change of " + name
 	}
 	low, high := spread.Figure(math.NaN()), spread.Figure(math.NaN())
 	if o.WorstCase != nil {
@@ -82,9 +85,18 @@ func outputRow(o spread.OutputReport, name string) []string {
 	r := newRow(o.Unit, max(float64(u), float64(o.Simulated.StandardDeviation)),
 		float64(o.Nominal), float64(low), float64(high), float64(from), float64(to))
 	return []string{
-		name, o.Condition, r.symbol, r.text(o.Nominal), r.text(low), r.text(high),
-		r.text(u), r.text(from), r.text(to), plan.Contributors(o, 2),
+		name, at, r.symbol, r.text(o.Nominal), r.text(low), r.text(high),
+		r.text(u), r.text(from), r.text(to), sources(o),
 	}
+}
+
+// sources names the two largest contributors where they fit a line of the
+// narrowest column, or the largest.
+func sources(o spread.OutputReport) string {
+	if text := plan.Contributors(o, 2); utf8.RuneCountInString(text) <= narrowest {
+		return text
+	}
+	return plan.Contributors(o, 1)
 }
 
 // showTrims prints where the trimmers end.

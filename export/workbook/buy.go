@@ -2,7 +2,6 @@ package workbook
 
 import (
 	"fmt"
-	"strings"
 
 	"batchwright/bom/offer"
 	"batchwright/bom/order"
@@ -50,13 +49,14 @@ func (b *book) buy() string {
 
 // priceWords says whose prices these are.
 func (b *book) priceWords() string {
-	words := []string{or(clean(b.plan.Order.Book), "no price book")}
-	if n := clean(b.plan.PriceNote); n != "" {
-		words = append(words, n)
-	} else if b.plan.Order.Demonstration {
-		words = append(words, "demonstration prices, invented: ask your suppliers before you buy")
+	book, note := clean(b.plan.Order.Book), clean(b.plan.PriceNote)
+	switch {
+	case b.plan.Order.Demonstration:
+		return or(note, "demonstration prices, invented: ask your suppliers before you buy")
+	case book == "" || note == "":
+		return or(book+note, "no price book")
 	}
-	return strings.Join(words, "; ")
+	return book + "; " + note
 }
 
 // buyLines writes the lines and their sum.

@@ -143,7 +143,7 @@ func TestNoFigures(t *testing.T) {
 		}
 	}
 	got := cell(t, f, testSheet, "F12")
-	notes, _ := f.SearchSheet(testSheet, "Step 1, rails.voltage: No nominal reading exists here. No limits could be worked out: write the reading down for the record.")
+	notes, _ := f.SearchSheet(testSheet, "Steps 1–3, 5, 6, 8, 10–14: No nominal reading exists here. No limits could be worked out: write the reading down for the record.")
 	if d := cmp.Diff([]any{"", 1}, []any{got, len(notes)}); d != "" {
 		t.Errorf("nominal of step 1, notes that explain it (-want +got):\n%s", d)
 	}

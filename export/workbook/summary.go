@@ -70,7 +70,7 @@ func (p *page) targets() {
 		p.nothing("The build names no target: nothing was judged.")
 		return
 	}
-	p.heads("llllll", "Target", "Asked", "", "Verdict", "Units that comply", "Worst corner")
+	p.heads("llllil", "Target", "Asked", "", "Verdict", "Units that comply", "Worst corner")
 	for _, t := range p.plan.Spread.Targets {
 		p.target(t)
 	}
@@ -82,16 +82,18 @@ func (p *page) target(t spread.TargetReport) {
 	if !t.Met {
 		verdict, word = look{bottom: hairline, bold: true, ink: brick, fill: rose}, "MISSED"
 	}
+	padded := text
+	padded.indent = 1
 	complies := share(t.Share)
 	if i := interval(t.ShareInterval[0], t.ShareInterval[1]); i != "" {
 		complies += "  (" + i + ")"
 	}
 	worst := p.plan.worst(t)
 	n := max(p.tallest(10, t.Name, "", "", "", complies, worst), lines(clean(t.Asked), p.wide(2, 3), 10, false))
-	p.put(lineHeight(10, n), p.text(t.Name, bolder(text)), p.text(t.Asked, text), p.text("", text), p.text(word, verdict), p.text(complies, text), p.text(worst, text))
+	p.put(lineHeight(10, n), p.text(t.Name, bolder(text)), p.text(t.Asked, text), p.text("", text), p.text(word, verdict), p.text(complies, padded), p.text(worst, text))
 	p.merge(2, 3)
 	if t.Why != "" {
-		p.paragraph(t.Name+": "+t.Why, 1, 6, look{size: 9, ink: faded})
+		p.paragraph(clean(t.Name)+": "+clean(t.Why), 1, 6, look{size: 9, ink: faded})
 	}
 }
 
@@ -121,17 +123,25 @@ func (p *page) yield() {
 		p.nothing("Nothing was simulated.")
 		return
 	}
-	line := fmt.Sprintf("%s of the units meet every target", share(y.UnitShare))
+	line := "Units that meet every target: " + share(y.UnitShare)
 	if i := interval(y.Interval[0], y.Interval[1]); i != "" {
-		line += " (" + i + " with batches taken as they come)"
+		line += " (" + i + ", batches taken as they come)"
 	}
 	p.fact2("One unit", line+".")
 	b := y.Batch
 	if finite(float64(b.MedianGood)) {
-		p.fact2("One batch", fmt.Sprintf("Half of all batches have %.0f or more good units of %d, 19 in 20 have %.0f or more; %s have no bad unit.", float64(b.MedianGood), b.Units, float64(b.P05Good), share(b.AllGoodShare)))
+		p.fact2("One batch", batchWords(b))
 	}
 	sim := p.plan.Spread.Simulation
 	p.fact2("Simulated", fmt.Sprintf("%s units in %s batches, each batch with lots of its own.", whole(sim.Units), whole(sim.Batches)))
+}
+
+// batchWords says how many good units a batch has.
+func batchWords(b spread.BatchReport) string {
+	if b.MedianGood < 1 {
+		return fmt.Sprintf("At least half of all batches have no good unit among %d.", b.Units)
+	}
+	return fmt.Sprintf("Half of all batches have %.0f or more good units of %d, 19 in 20 have %.0f or more. Batches without a bad unit: %s.", float64(b.MedianGood), b.Units, float64(b.P05Good), share(b.AllGoodShare))
 }
 
 // benchState counts the verdicts on the test sheet as it is filled in.
@@ -187,7 +197,7 @@ func proof(r pick.Result) string {
 	if r.ProvedCheapest {
 		return words + " Proved: nothing cheaper meets the targets."
 	}
-	return sentence(words+" Not proved to be the cheapest.", clean(r.Why))
+	return sentence(words+" Not proved to be the cheapest.", capital(clean(r.Why)))
 }
 
 func (p *page) findings() {
@@ -195,7 +205,9 @@ func (p *page) findings() {
 	if len(all) > 0 {
 		p.section("Worth knowing")
 		for _, f := range all {
-			p.paragraph("• "+f, 1, 6, look{})
+			if f = clean(f); f != clean(p.plan.Pick.Why) { // said above
+				p.paragraph("• "+capital(f), 1, 6, look{})
+			}
 		}
 	}
 	if len(p.plan.Cautions) > 0 {
@@ -206,15 +218,23 @@ func (p *page) findings() {
 	}
 }
 
-// contents leads to the other sheets.
+// contents leads to the other sheets, two to a row.
 func (p *page) contents() {
 	p.section("In this workbook")
-	for _, c := range [][2]string{
-		{buySheet, "what to order, in packs, with prices"}, {stagesSheet, "what goes where, and what is written on it"}, {trimsSheet, "adjustments in bench order"},
-		{testSheet, "what every meter should show; type the readings here"}, {tolerancesSheet, "every output at every condition"}, {driftSheet, "movement with temperature"}, {basisSheet, "assumptions, sources, how to make it again"},
-	} {
-		r := p.put(0, p.text(c[0], look{bold: true, ink: copper}), p.text(c[1], look{}))
-		p.keep(p.file.SetCellHyperLink(p.name, at(1, r), "'"+c[0]+"'!A1", "Location"))
+	left := [][2]string{{buySheet, "what to order, in packs, with prices"}, {stagesSheet, "what goes where, and its marking"}, {trimsSheet, "adjustments in bench order"}, {testSheet, "what every meter should show"}}
+	right := [][2]string{{tolerancesSheet, "every output at every condition"}, {driftSheet, "movement with temperature"}, {basisSheet, "assumptions, sources, limits"}, {}}
+	link, text := look{bold: true, ink: copper}, look{}
+	for i := range left {
+		r := p.put(0, p.text(left[i][0], link), p.text(left[i][1], text), excelize.Cell{}, p.text(right[i][0], link), p.text(right[i][1], text))
+		p.link(at(1, r), left[i][0])
+		p.link(at(4, r), right[i][0])
+	}
+}
+
+// link makes a cell lead to a sheet.
+func (p *page) link(cell, sheet string) {
+	if sheet != "" {
+		p.keep(p.file.SetCellHyperLink(p.name, cell, "'"+sheet+"'!A1", "Location"))
 	}
 }
 

@@ -15,7 +15,7 @@ const (
 	fixedCols   = 11
 	unitsAPage  = 10
 	unitColumn  = 8.3
-	testPercent = 66 // the fixed columns and ten units fit the width of A4 and of Letter
+	testPercent = 65 // the fixed columns and ten units fit the width of A4 and of Letter
 )
 
 // tally is where the summary finds the verdicts: "'Test sheet'!M10:AJ10".
@@ -26,7 +26,7 @@ func (b *book) test() tally {
 	rows := b.plan.benchRows()
 	g := grid{firstRow: verdictRow + 1, firstCol: fixedCols + 1, lastCol: fixedCols + b.plan.Units}
 	g.lastRow = g.firstRow + max(1, len(rows)+bands(rows)) - 1
-	widths := []float64{5, 17, 28.5, 16, 5.5, 9, 9, 9, 9, 9, 5}
+	widths := []float64{5, 20.3, 26.5, 16, 5.5, 9, 9, 9, 9, 9, 5}
 	for range b.plan.Units {
 		widths = append(widths, unitColumn)
 	}
@@ -154,7 +154,7 @@ func begins(rows []benchRow, i int) bool {
 }
 
 // testBody writes the rows in bench order and returns the notes on them.
-func (p *page) testBody(rows []benchRow, g grid) (notes []string) {
+func (p *page) testBody(rows []benchRow, g grid) []string {
 	if len(rows) == 0 {
 		p.span(20, 1, fixedCols, p.text("There is nothing to measure in this build.", look{italic: true, ink: faded}), look{})
 	}
@@ -162,13 +162,34 @@ func (p *page) testBody(rows []benchRow, g grid) (notes []string) {
 		if begins(rows, i) {
 			p.band(r)
 		}
-		if r.why != "" {
-			notes = append(notes, fmt.Sprintf("Step %d, %s: %s", r.step, r.name, r.why))
-		}
 		p.benchRow(r, g)
 	}
 	if p.last != g.lastRow {
 		p.keep(fmt.Errorf("the readings end in row %d, not %d", p.last, g.lastRow))
+	}
+	return whys(rows)
+}
+
+// whys are the reasons for what is missing, each once with the steps it is for.
+func whys(rows []benchRow) []string {
+	steps := map[string][]int{}
+	var order []string
+	for _, r := range rows {
+		if r.why == "" {
+			continue
+		}
+		if steps[r.why] == nil {
+			order = append(order, r.why)
+		}
+		steps[r.why] = append(steps[r.why], r.step)
+	}
+	var notes []string
+	for _, why := range order {
+		word := "Step "
+		if len(steps[why]) > 1 {
+			word = "Steps "
+		}
+		notes = append(notes, word+runs(steps[why])+": "+why)
 	}
 	return notes
 }

@@ -78,7 +78,7 @@ func TestTestSheetRows(t *testing.T) {
 	if d := cmp.Diff(want, got); d != "" {
 		t.Errorf("test sheet (-want +got):\n%s", d)
 	}
-	if why := cell(t, f, testSheet, at(1, verdictRow+len(want)+2)); why != "Step 12, detector.corner: the detector has no output when the beat is at zero" {
+	if why := cell(t, f, testSheet, at(1, verdictRow+len(want)+2)); why != "Step 12: the detector has no output when the beat is at zero" {
 		t.Errorf("the blank row is explained by %q", why)
 	}
 }

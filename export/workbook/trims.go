@@ -14,9 +14,9 @@ import (
 // trims writes the adjustments in the order of the bench.
 func (b *book) trims() {
 	s := setup{landscape: true, headRow: 4}
-	p := b.open(trimsSheet, []float64{6, 9, 17, 18, 26, 11, 7, 9, 9, 12, 12, 12, 46}, s)
+	p := b.open(trimsSheet, []float64{6, 9, 17, 18, 26, 11, 7, 9, 9, 12, 12, 14, 48}, s)
 	p.heading(trimsSheet, "In bench order: each adjustment stands where the test sheet comes to it. Later ones may lean on earlier ones; do not change the order.")
-	head := p.heads("llllllrrrcccl", "Step", "Trimmer", "Turns", "Watch", "Hold the probe at", "Condition", "Unit", "Set to", "Within ±", "Turned up, the reading", "Usually ends at", "Runs short", "If it does not reach")
+	head := p.heads("llllllrrrccci", "Step", "Trimmer", "Turns", "Watch", "Hold the probe at", "Condition", "Unit", "Set to", "Within ±", "Turned up, the reading", "Usually ends at", "Runs short", "If it does not reach")
 	turns := slices.Clone(b.plan.Turns)
 	slices.SortStableFunc(turns, func(x, y bench.Turn) int { return x.Step - y.Step })
 	for _, t := range turns {
@@ -42,10 +42,12 @@ func (p *page) trim(t bench.Turn) {
 	text, figure := look{bottom: hairline, wrap: true}, look{bottom: hairline, bold: true}
 	middle := text
 	middle.across = "center"
+	padded := text
+	padded.indent = 1
 	n := p.tallest(10, "", t.Ref, t.Turn, t.Watch, t.At, t.Condition, "", "", "", "", ends(report), short(report), advice)
 	p.put(lineHeight(10, n), p.number(float64(t.Step), "0", look{bottom: hairline, bold: true, across: "left"}), p.text(t.Ref, bolder(text)), p.text(t.Turn, text), p.text(t.Watch, text), p.text(t.At, text),
 		p.text(t.Condition, text), p.text(sc.symbol, rightward(text)), p.number(sc.nearest(t.To), sc.format(), figure), p.number(sc.nearest(t.Within), sc.format(), look{bottom: hairline}),
-		p.text(rises, middle), p.text(ends(report), middle), p.text(short(report), middle), p.text(advice, text))
+		p.text(rises, middle), p.text(ends(report), middle), p.text(short(report), middle), p.text(advice, padded))
 }
 
 // trimReport is what the simulation says of a trim; its figures do not exist

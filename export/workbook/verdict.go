@@ -74,11 +74,11 @@ func (p *page) signals(g grid) {
 		return fmt.Sprintf("AND(ISNUMBER(%s),ISNUMBER(%s),%s%s%s)", cell, limit, cell, sign, limit)
 	}
 	p.signal(g.area(),
-		p.mark("ISTEXT("+cell+")", straw, umber, true, `General;General;General;@" ?"`),
-		p.mark(compare("<", lowCol), rose, brick, true, `"▼ "General;"▼ "-General;"▼ "0`),
-		p.mark(compare(">", highCol), rose, brick, true, `"▲ "General;"▲ "-General;"▲ "0`),
-		p.mark(compare("<", acceptLowCol), straw, umber, true, `"▽ "General;"▽ "-General;"▽ "0`),
-		p.mark(compare(">", acceptHighCol), straw, umber, true, `"△ "General;"△ "-General;"△ "0`),
+		p.mark("ISTEXT("+cell+")", straw, umber, true, `General;General;General;@" ?"_)`),
+		p.mark(compare("<", lowCol), rose, brick, true, `"▼ "General_);"▼ "-General_);"▼ "0_)`),
+		p.mark(compare(">", highCol), rose, brick, true, `"▲ "General_);"▲ "-General_);"▲ "0_)`),
+		p.mark(compare("<", acceptLowCol), straw, umber, true, `"▽ "General_);"▽ "-General_);"▽ "0_)`),
+		p.mark(compare(">", acceptHighCol), straw, umber, true, `"△ "General_);"△ "-General_);"△ "0_)`),
 		p.mark("ISNUMBER("+cell+")", sage, moss, false, ""))
 }
 

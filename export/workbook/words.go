@@ -5,6 +5,8 @@ import (
 	"math"
 	"strconv"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"batchwright/tolerance/spread"
 )
@@ -64,6 +66,39 @@ func whole(n int) string {
 		s = s[:i] + "\u00a0" + s[i:]
 	}
 	return s
+}
+
+// capital begins a sentence.
+func capital(s string) string {
+	r, n := utf8.DecodeRuneInString(s)
+	if r == utf8.RuneError {
+		return s
+	}
+	if word, _, _ := strings.Cut(s, " "); strings.ContainsAny(word, "._0123456789") {
+		return s // a name from the build file
+	}
+	return string(unicode.ToUpper(r)) + s[n:]
+}
+
+// runs writes ascending numbers with their runs drawn together: 1–3, 5.
+func runs(numbers []int) string {
+	var parts []string
+	for i := 0; i < len(numbers); {
+		j := i
+		for j+1 < len(numbers) && numbers[j+1] == numbers[j]+1 {
+			j++
+		}
+		switch {
+		case j == i:
+			parts = append(parts, strconv.Itoa(numbers[i]))
+		case j == i+1:
+			parts = append(parts, strconv.Itoa(numbers[i]), strconv.Itoa(numbers[j]))
+		default:
+			parts = append(parts, fmt.Sprintf("%d–%d", numbers[i], numbers[j]))
+		}
+		i = j + 1
+	}
+	return strings.Join(parts, ", ")
 }
 
 // stageOf is the stage that a dotted name begins with.

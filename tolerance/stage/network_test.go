@@ -186,6 +186,8 @@ func TestJunctionDriveAgainstNetwork(t *testing.T) {
 	// x_i = v_i/(V_T·(1 + R_E·I_C/V_T))
 	near(t, "carrier_x", got["carrier_x"],
 		got["carrier_drive"]/(thermal*(1+given["emitter"]*got["current"]/thermal)), 1e-12)
+	near(t, "signal_x", got["signal_x"],
+		got["signal_drive"]/(thermal*(1+given["emitter"]*got["current"]/thermal)), 1e-12)
 }
 
 // A scope across the load: load, meter and probe in parallel.
@@ -196,8 +198,14 @@ func TestJunctionLoadAgainstNetwork(t *testing.T) {
 	n := newNetwork(1)
 	n.join(1, 0, conductance(given["load"])+complex(1e-7, 0)+susceptance(331e3, 15e-12))
 	n.i[1] = 1
-	near(t, "carrier_level", held["carrier_level"]/bare["carrier_level"], cmplx.Abs(n.solve(t)[1])/given["load"], 1e-12)
-	near(t, "swing", held["swing"]/bare["swing"], cmplx.Abs(n.solve(t)[1])/given["load"], 1e-12)
+	share := cmplx.Abs(n.solve(t)[1]) / given["load"]
+	near(t, "carrier_level", held["carrier_level"]/bare["carrier_level"], share, 1e-12)
+	n = newNetwork(1)
+	n.join(1, 0, conductance(given["load"])+complex(1e-7, 0)+susceptance(330.2e3, 15e-12))
+	n.i[1] = 1
+	near(t, "second_level", held["second_level"]/bare["second_level"], cmplx.Abs(n.solve(t)[1])/given["load"], 1e-12)
+	near(t, "tone_level", held["tone_level"]/bare["tone_level"], 1/(1+1e-7*given["load"]), 1e-12)
+	near(t, "swing", held["swing"]/bare["swing"], share, 1e-12)
 }
 
 func TestMultiplierCouplingAgainstNetwork(t *testing.T) {

@@ -79,6 +79,7 @@ func TestJunctionHarmonicsFromTables(t *testing.T) {
 		near(t, "carrier_x", first["carrier_x"], row.x, 1e-12)
 		near(t, "carrier_level", first["carrier_level"], 2*first["current"]*200*row.i1/row.i0, 1e-9)
 		both := c.at(t, scaled(scaled(given, row.x/unit["carrier_x"], "carrier.level"), 1/unit["signal_x"], "signal.level"))
+		near(t, "second_level", both["second_level"], 2*both["current"]*200*0.2079104153/0.4657596076, 1e-9)
 		near(t, "tone_level", both["tone_level"],
 			2*both["current"]*200*row.i1/row.i0*0.2079104153/0.4657596076, 1e-9)
 		near(t, "swing", both["swing"], both["current"]*200*(1/(row.i0*0.4657596076)-1), 1e-8)

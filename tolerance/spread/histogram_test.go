@@ -127,6 +127,15 @@ func TestQuantileErrorIsABound(t *testing.T) {
 	}
 }
 
+// TestQuantileErrorAtAnEdge: 1e-12 less 2^20 rounds to -2^20, just over the
+// edge of its bin. The bound must allow for that.
+func TestQuantileErrorAtAnEdge(t *testing.T) {
+	h := of(1<<20, -5000, 1e-12, 5000)
+	if miss := 1e-12 - h.Quantile(0.5); !(miss > 1024 && miss <= h.QuantileError(0.5)) {
+		t.Errorf("off by %v, bound %v", miss, h.QuantileError(0.5))
+	}
+}
+
 // TestQuantileDefinition: the quarter point of 1, 2, 3, 4 is 1.75 by
 // definition 7 (a quarter of the way is 3/4 of the step from 1 to 2).
 func TestQuantileDefinition(t *testing.T) {

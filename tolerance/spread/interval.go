@@ -53,10 +53,7 @@ func wilson(p, n, z float64) (low, high float64) {
 	middle := (p + w/2) / (1 + w)
 	half := math.Sqrt(p*(1-p)*w+w*w/4) / (1 + w)
 	low, high = math.Max(middle-half, 0), math.Min(middle+half, 1)
-	if p == 0 { // both terms are equal; they may round apart
-		low = 0
-	}
-	if p == 1 {
+	if p == 1 { // the terms may round to less; at 0 they are exactly equal
 		high = 1
 	}
 	return low, high

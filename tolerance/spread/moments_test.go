@@ -190,6 +190,15 @@ func TestMomentsOutlierFirst(t *testing.T) {
 	near(t, "variance of the rest", rest.Variance(), 1000.0/999, 1e-15)
 }
 
+// TestMomentsMeanRounds: about 1e16 numbers are 2 apart. Of 0, 2, 2 above it
+// the mean, 4/3 above, is rounded, and the squares about the true mean are
+// (16 + 4 + 4)/9 = 8/3 all the same, 4 or 8 about a rounded one.
+func TestMomentsMeanRounds(t *testing.T) {
+	var m Moments
+	m.AddColumn([]float64{1e16, 1e16 + 2, 1e16 + 2}, nil)
+	near(t, "variance", m.Variance(), 4.0/3, 1e-15)
+}
+
 func TestMomentsAllocateNothing(t *testing.T) {
 	x, keep := normals(rand.New(rand.NewPCG(1, 1)), 512), make([]bool, 512)
 	var m Moments

@@ -87,6 +87,17 @@ func (c *converter) node(y ast.Node, depth int) measured {
 	return c.scalar(y)
 }
 
+// nodeAfter converts what follows a colon or dash. Where nothing does, its place
+// is right behind the mark.
+func (c *converter) nodeAfter(mark *token.Token, y ast.Node, depth int) measured {
+	n := c.node(y, depth)
+	_, shared := y.(*ast.AliasNode)
+	if !shared && n.Kind == Null && n.Value == "" && mark != nil && mark.Position != nil {
+		n.Line, n.Column = mark.Position.Line, mark.Position.Column+1
+	}
+	return n
+}
+
 // scalar converts what is left: every plain or quoted value, as text.
 func (c *converter) scalar(y ast.Node) measured {
 	t := y.GetToken()
@@ -142,8 +153,12 @@ func (c *converter) sequence(y *ast.SequenceNode, depth int) measured {
 	if !c.spend(1, n.Node) {
 		return n
 	}
-	for _, value := range y.Values {
-		item := c.node(value, depth+1)
+	for i, value := range y.Values {
+		var dash *token.Token
+		if i < len(y.Entries) && !y.IsFlowStyle {
+			dash = y.Entries[i].Start
+		}
+		item := c.nodeAfter(dash, value, depth+1)
 		n.Items = append(n.Items, item.Node)
 		n.add(item)
 		if c.spent {

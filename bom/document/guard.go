@@ -16,6 +16,11 @@ const (
 	// blankRun is how many blank lines may follow each other: the scanner's
 	// time grows with the square of a run inside a block of text.
 	blankRun = 100
+	// mostTokens is how many words and marks a YAML file may have, and mostKeys
+	// how many keys a mapping in block style: the parser's time grows with the
+	// square of either, and it recurses from key to key.
+	mostTokens = 100_000
+	mostKeys   = 5_000
 	// decorations is how many anchors and tags may stand in a row.
 	decorations = 8
 )
@@ -76,52 +81,82 @@ func badLayout(text string) *Complaint {
 }
 
 // badNesting walks the tokens before they are parsed, for the parser recurses
-// and remembers a path for each: it finds what nests too deep, and what
-// decorates too much.
+// and remembers a path for each: it finds what nests too deep, what is too
+// much, and a second document.
 func badNesting(tokens token.Tokens) *Complaint {
-	flow, row, headers := 0, 0, 0
-	var columns []int // of the open block entries
+	if len(tokens) > mostTokens {
+		return at(tokens[mostTokens], "the file is too long", "at most 100000 words and marks")
+	}
+	var w walk
 	for _, t := range tokens {
 		if t.Position == nil {
 			continue
 		}
-		at := Complaint{Line: t.Position.Line, Column: t.Position.Column}
-		switch t.Type {
-		case token.MappingStartType, token.SequenceStartType:
-			flow++
-		case token.MappingEndType, token.SequenceEndType:
-			flow = max(0, flow-1)
-		case token.DocumentHeaderType:
-			if headers++; headers > 1 {
-				at.Message, at.Expected = "a second document in one file", "one document a file"
-				return &at
-			}
-		case token.AnchorType, token.TagType, token.MappingKeyType:
-			row += 2
-		case token.SequenceEntryType:
-			columns = open(columns, t.Position.Column)
-		case token.MappingValueType:
-			if t.Prev != nil && t.Prev.Position != nil && flow == 0 {
-				columns = open(columns, t.Prev.Position.Column)
-			}
-		}
-		row = max(0, row-1)
-		if flow+len(columns) > deepest {
-			at.Message, at.Expected = "nested too deep", "at most 32 levels"
-			return &at
-		}
-		if row > decorations {
-			at.Message, at.Expected = "too many anchors, tags or question marks in a row", "plain keys and values"
-			return &at
+		if c := w.step(t); c != nil {
+			return c
 		}
 	}
 	return nil
 }
 
-// open closes the block entries at or right of the column and opens one there.
-func open(columns []int, column int) []int {
-	for len(columns) > 0 && columns[len(columns)-1] >= column {
-		columns = columns[:len(columns)-1]
+func at(t *token.Token, message, expected string) *Complaint {
+	return &Complaint{Line: t.Position.Line, Column: t.Position.Column, Message: message, Expected: expected}
+}
+
+// walk is where in a document the tokens have come to.
+type walk struct {
+	flow    int     // open brackets and braces
+	blocks  []block // open mappings and lists in block style
+	row     int     // decorations that follow each other
+	headers int
+}
+
+// block is an open mapping or list: the column of its entries, and how many.
+type block struct{ column, entries int }
+
+// step takes a token.
+func (w *walk) step(t *token.Token) *Complaint {
+	switch t.Type {
+	case token.MappingStartType, token.SequenceStartType:
+		w.flow++
+	case token.MappingEndType, token.SequenceEndType:
+		w.flow = max(0, w.flow-1)
+	case token.DocumentHeaderType:
+		w.headers++
+	case token.AnchorType:
+		w.row += 3 // its name is a token too
+	case token.TagType, token.MappingKeyType:
+		w.row += 2
+	case token.SequenceEntryType:
+		w.entry(t.Position.Column)
+	case token.MappingValueType:
+		if t.Prev != nil && t.Prev.Position != nil && w.flow == 0 {
+			w.entry(t.Prev.Position.Column)
+		}
 	}
-	return append(columns, column)
+	w.row = max(0, w.row-1)
+	switch {
+	case w.headers > 1:
+		return at(t, "a second document in one file", "one document a file")
+	case w.flow+len(w.blocks) > deepest:
+		return at(t, "nested too deep", "at most 32 levels")
+	case w.row > decorations:
+		return at(t, "too many anchors, tags or question marks in a row", "plain keys and values")
+	case len(w.blocks) > 0 && w.blocks[len(w.blocks)-1].entries > mostKeys:
+		return at(t, "too many entries in one block", "at most 5000")
+	}
+	return nil
+}
+
+// entry takes an entry at a column: it closes the blocks to the right, and
+// goes on with the one at that column or opens it.
+func (w *walk) entry(column int) {
+	for len(w.blocks) > 0 && w.blocks[len(w.blocks)-1].column > column {
+		w.blocks = w.blocks[:len(w.blocks)-1]
+	}
+	if last := len(w.blocks) - 1; last >= 0 && w.blocks[last].column == column {
+		w.blocks[last].entries++
+		return
+	}
+	w.blocks = append(w.blocks, block{column, 1})
 }

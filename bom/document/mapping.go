@@ -26,7 +26,7 @@ func (c *converter) mapping(y ast.Node, start *token.Token, values []*ast.Mappin
 			continue
 		}
 		key, ok := c.key(value.Key)
-		child := c.node(value.Value, depth+1)
+		child := c.nodeAfter(value.Start, value.Value, depth+1)
 		if !ok {
 			continue
 		}

@@ -11,8 +11,8 @@ import (
 const longestWord = 64
 
 // Nearest is the known word most like the one found: of the same letters in
-// another case, or at an edit distance of at most a third of its length (one
-// edit is allowed to two-letter words). It is "" where nothing is close. Of
+// another case, or at an edit distance of at most a third of its length, rounded
+// (two letters swapped are two edits: five letters allow them). It is "" where nothing is close. Of
 // words equally close the first wins.
 func Nearest(word string, known []string) string {
 	length := utf8.RuneCountInString(word)
@@ -20,10 +20,7 @@ func Nearest(word string, known []string) string {
 		return ""
 	}
 	folded := strings.ToLower(word)
-	limit := max(1, length/3)
-	if length == 1 {
-		limit = 0
-	}
+	limit := (length + 1) / 3
 	nearest := ""
 	for _, k := range known {
 		if k == word {

@@ -13,9 +13,10 @@ import (
 )
 
 // Parse reads a YAML document: mappings with scalar keys, lists and scalars,
-// anchors, aliases and merge keys. It refuses files over 1 MiB, nesting over 32
-// levels, tags, duplicate keys, a second document, and aliases that contain
-// themselves or multiply beyond a budget. An empty file is a Null node. The
+// anchors, aliases and merge keys. It refuses files over 1 MiB or 100000 words,
+// nesting over 32 levels, tags, duplicate keys, a second document, and aliases
+// that contain themselves or multiply beyond a budget. An empty file is a Null
+// node. The
 // node is nil where there are complaints that leave nothing to go on with; with
 // complaints and a node, both are worth looking at.
 func Parse(file string, text []byte) (*Node, Complaints) {
@@ -79,9 +80,9 @@ func parseTree(source string) (tree *ast.File, bad *Complaint) {
 
 // mend is advice on the mistakes that quantities and equations invite.
 func mend(t *token.Token, message string) string {
-	switch {
-	case strings.HasPrefix(t.Value, "%"), strings.HasPrefix(t.Value, "@"), strings.HasPrefix(t.Value, "`"):
-		return "quotes around a value that begins with " + t.Value[:1]
+	switch first := strings.TrimSpace(t.Value + t.Origin); {
+	case strings.HasPrefix(first, "%"), strings.HasPrefix(first, "@"), strings.HasPrefix(first, "`"):
+		return "quotes around a value that begins with " + first[:1]
 	case strings.Contains(message, "mapping value is not allowed"):
 		return "quotes around a value with a colon and a space in it"
 	case strings.Contains(message, "not found"), strings.Contains(message, "end character"):

@@ -215,14 +215,14 @@ func (r *reader) readSeries(n *document.Node, family *part.Family, row *Row) boo
 	return true
 }
 
-// sold lists the magnitudes of a series in a range, which is all above zero or
-// all below it; empty if it is not.
+// sold lists the magnitudes of a series in a range that is all above zero or
+// all below it; of a range across zero it lists none.
 func (r *reader) sold(name string, low, high float64) []float64 {
 	if high < 0 {
 		low, high = -high, -low
 	}
 	k := span{name, low, high}
-	if _, known := r.values[k]; !known && low > 0 {
+	if _, known := r.values[k]; !known {
 		r.values[k] = series.Between(name, low, high)
 	}
 	return r.values[k]

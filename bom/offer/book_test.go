@@ -59,12 +59,15 @@ func TestReadBook(t *testing.T) {
 			t.Errorf("%s: %s", c.name, d)
 		}
 	}
+	other := fit(t, "fixed-regulator", 12, 0.04)
+	other.Family = "fixed-regulator-negative"
 	for _, c := range []struct {
 		name string
 		p    part.Part
 		want bool
 	}{
 		{"a value that a row of another does not sell", fit(t, "c0g", 120e-12, 0.01), false},
+		{"a negative rail's magnitude", other, false},
 		{"below the range", fit(t, "c0g", 82e-12, 0.05), false},
 		{"lowest of the range", fit(t, "c0g", math.Nextafter(100e-12, 0), 0.05), true},
 		{"highest of the range", fit(t, "c0g", math.Nextafter(1e-9, 1), 0.05), true},

@@ -149,6 +149,7 @@ func TestOfferLookUp(t *testing.T) {
 		{"crystal", fit(t, "at-cut-crystal", 4e6, 30e-6), true},
 		{"trimmer capacitor", trimmer(t, "film-trimmer", 4e-12, 34e-12, 0), true},
 		{"trimmer with another low end", trimmer(t, "film-trimmer", 3e-12, 34e-12, 0), false},
+		{"trimmer with another high end", trimmer(t, "film-trimmer", 4e-12, 35e-12, 0), false},
 		{"trimmer resistor", trimmer(t, "cermet-trimmer", 0, 10e3, 0.1), true},
 		{"ideal part", part.Part{Type: part.Capacitor}, false},
 		{"family the book does not know", part.Part{Family: "glass", Type: part.Capacitor}, false},

@@ -2,6 +2,7 @@ package order
 
 import (
 	"encoding/json"
+	"math"
 	"strings"
 	"testing"
 
@@ -144,6 +145,14 @@ func TestOrderDemonstration(t *testing.T) {
 	}
 }
 
+// More than any line can hold is offered by nobody.
+func TestOrderOfTooMany(t *testing.T) {
+	o := New([]part.Part{fit(t, "C1", "c0g", 220e-12, 0.05)}, 1_000_000_000, 0, prices(t), part.Embedded())
+	if len(o.Unoffered) != 1 || o.Total != 0 || o.Unoffered[0].Why != "1000000000 pieces are more than one line can be" {
+		t.Errorf("%+v", o)
+	}
+}
+
 // Nothing fitted is an order of nothing, with lists that JSON writes as such.
 func TestOrderOfNothing(t *testing.T) {
 	b, err := json.Marshal(New(nil, 24, 5, prices(t), part.Embedded()))
@@ -185,7 +194,7 @@ func TestKey(t *testing.T) {
 		{"reference and lots", base, mixed, true},
 		{"the default shape named", base, change(func(q *part.Parameter) { q.Shape = part.Normal }), true},
 		{"correlation", base, change(func(q *part.Parameter) { q.Correlation.Value = 0.9 }), true},
-		{"rounding of a prefix", base, change(func(q *part.Parameter) { q.Value = 0.22 * 1e-9 }), true},
+		{"rounding of a prefix", base, change(func(q *part.Parameter) { q.Value = math.Nextafter(q.Value, 1) }), true},
 		{"value", base, fit(t, "C1", "c0g", 270e-12, 0.05), false},
 		{"grade", base, fit(t, "C1", "c0g", 220e-12, 0.01), false},
 		{"family", base, fit(t, "C1", "polypropylene", 220e-12, 0.05), false},

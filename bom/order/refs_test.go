@@ -48,6 +48,7 @@ func TestRuns(t *testing.T) {
 		{"letters part runs", []string{"C1", "C2", "C3", "R4", "R5", "R6"}, "C1–C3, R4–R6"},
 		{"no numbers", []string{"X", "Y", "Z"}, "X, Y, Z"},
 		{"leading zeros do not run", []string{"C01", "C02", "C03"}, "C01, C02, C03"},
+		{"nor does one with them run on", []string{"C01", "C2", "C3"}, "C01, C2, C3"},
 		{"the same twice", []string{"C1", "C1", "C2"}, "C1, C1, C2"},
 		{"numbers before letters", []string{"2A", "2B", "2C"}, "2A, 2B, 2C"},
 	} {

@@ -196,7 +196,7 @@ func Text(v float64, u quantity.Unit) string {
 // ValueText is what the part is bought as, beside its family and grade:
 // "220 pF", "4..34 pF", "" for parts that have no value.
 func (p *Part) ValueText() string {
-	if !p.Type.sellsValues() || len(p.Parameters) == 0 {
+	if !p.soldByValue() {
 		return ""
 	}
 	m := p.Main()

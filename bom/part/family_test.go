@@ -129,6 +129,9 @@ func TestFitRegulators(t *testing.T) {
 	if m := adjustable.Main(); m.Value != 1.25 || m.Tolerance != 0.04 {
 		t.Errorf("%+v", m)
 	}
+	if adjustable.Grade() != 0 || adjustable.ValueText() != "" {
+		t.Errorf("nobody buys by the reference, but grade %g, text %q", adjustable.Grade(), adjustable.ValueText())
+	}
 }
 
 func TestFitCrystal(t *testing.T) {

@@ -136,10 +136,17 @@ func (p *Part) Main() Parameter {
 	return p.Parameters[0]
 }
 
+// soldByValue reports whether the part was bought by its main figure. An
+// adjustable regulator, whose first figure is a reference, was not.
+func (p *Part) soldByValue() bool {
+	a, _ := anatomyOf(p.Type)
+	return p.Type.sellsValues() && len(p.Parameters) > 0 && p.Parameters[0].Name == a.figures[0].name
+}
+
 // Grade is the tolerance by which the part is bought, a fraction: that of the
-// main figure, 0 for the types that are not sold by tolerance.
+// main figure, 0 for parts that are not bought by a value.
 func (p *Part) Grade() float64 {
-	if !p.Type.sellsValues() {
+	if !p.soldByValue() {
 		return 0
 	}
 	m := p.Main()

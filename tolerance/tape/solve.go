@@ -90,7 +90,11 @@ func (f *Frame) solve(l *loop) {
 func (s *solver) start(i int, low, high float64) ending {
 	f1, f2 := s.f1[i], s.f2[i]
 	s.x1[i], s.x2[i] = high, low
-	s.floor[i] = 1e-18 * math.Abs(high-low)
+	s.floor[i] = 0
+	if !(low > 0 && high > 0) && !(low < 0 && high < 0) {
+		// The root may be 0, of which no fraction is small enough.
+		s.floor[i] = 1e-18 * math.Abs(high-low)
+	}
 	switch {
 	case !(math.Abs(low) <= math.MaxFloat64) || !(math.Abs(high) <= math.MaxFloat64) || f1 != f1 || f2 != f2:
 		return hopeless
@@ -135,7 +139,22 @@ func (s *solver) first(i int) float64 {
 func (s *solver) between(i int, t float64) float64 {
 	x1, x2 := s.x1[i], s.x2[i]
 	x := x1 + float64(t*(x2-x1))
-	return math.Max(math.Min(x, math.Max(x1, x2)), math.Min(x1, x2))
+	if x1 > x2 {
+		x1, x2 = x2, x1
+	}
+	return clamped(x, x1, x2)
+}
+
+// clamped is what math.Max and math.Min would do to numbers, at a third of the
+// cost: the search spends a fifth of its time here.
+func clamped(x, low, high float64) float64 {
+	if x < low {
+		return low
+	}
+	if x > high {
+		return high
+	}
+	return x
 }
 
 // best is the end of the bracket with the smaller residual.
@@ -176,7 +195,7 @@ func (s *solver) step(i int, x, fx float64) float64 {
 		return best
 	}
 	if t, ok := s.interpolate(i); ok {
-		return s.between(i, math.Max(limit, math.Min(t, 1-limit)))
+		return s.between(i, clamped(t, limit, 1-limit))
 	}
 	return s.middle(i)
 }
@@ -191,7 +210,10 @@ func (s *solver) interpolate(i int) (float64, bool) {
 	if !(float64(phi*phi) < xi && float64((1-phi)*(1-phi)) < 1-xi) {
 		return 0, false
 	}
-	t := float64(f1/(f2-f1)*(f3/(f2-f3))) + float64((x3-x1)/(x2-x1)*(f1/(f3-f1))*(f2/(f3-f2)))
+	// f₁/(f₂−f₁)·f₃/(f₂−f₃) + (x₃−x₁)/(x₂−x₁)·f₁/(f₃−f₁)·f₂/(f₃−f₂), with
+	// one division for the four that share factors.
+	p, q := f2-f1, f3-f1
+	t := f1 * (float64((x3-x1)/(x2-x1)*f2*p) - float64(f3*q)) / (p * q * (f3 - f2))
 	return t, t == t
 }
 

@@ -13,10 +13,12 @@ type bank struct {
 	p        *Problem
 	kept     [][]int
 	order    []int
-	prices   [][]float64 // the price vectors; the first is all zero
+	prices   [][]float64 // the best for the whole first, all zero last
 	rounding []float64
 	rows     int
 	dearest  float64 // no sum of floors is above it
+	lattice  lattice
+	gauges   []gauge
 
 	// By depth: [o*len(prices)+b], [o*rows+k] and [o*demands+q].
 	priced [][]float64
@@ -31,11 +33,15 @@ type bank struct {
 // newBank lays out a relaxation for the search.
 func newBank(r *relaxation, prices [][]float64) *bank {
 	b := &bank{p: r.p, kept: r.kept, rows: len(r.limit), dearest: r.dearest()}
-	b.prices = append([][]float64{make([]float64, b.rows)}, prices...)
+	b.prices = append(slices.Clone(prices), make([]float64, b.rows))
+	b.lattice = r.p.lattice(r.kept)
+	for q := range r.p.Demands {
+		b.gauges = append(b.gauges, newGauge(&r.p.Demands[q]))
+	}
 	for _, v := range b.prices {
 		b.rounding = append(b.rounding, r.rounding(v))
 	}
-	b.order = r.order(b.prices[len(b.prices)-1])
+	b.order = r.order(b.prices[0])
 	n := len(b.order)
 	b.priced, b.use, b.effect = make([][]float64, n), make([][]float64, n), make([][]Effect, n)
 	b.restPriced, b.restUse, b.restReach = make([][]float64, n+1), make([][]float64, n+1), make([][]reach, n+1)
@@ -151,16 +157,7 @@ func (b *bank) stand(dst *standing, settled []int, depth int) {
 	clear(dst.use)
 	clear(dst.effect)
 	for d := range depth {
-		o := settled[b.order[d]]
-		for v := range dst.priced {
-			dst.priced[v] += b.priced[d][o*len(dst.priced)+v]
-		}
-		for k := range dst.use {
-			dst.use[k] += b.use[d][o*len(dst.use)+k]
-		}
-		for q := range dst.effect {
-			dst.effect[q].add(b.effect[d][o*len(dst.effect)+q])
-		}
+		b.take(dst, dst, d, settled[b.order[d]])
 	}
 }
 
@@ -170,10 +167,13 @@ func (b *bank) bound(s *standing, depth, o int, ceiling float64) float64 {
 	top := math.Inf(-1)
 	priced, rest := b.priced[depth][o*len(s.priced):], b.restPriced[depth+1]
 	for v, sum := range s.priced {
-		top = max(top, sum+priced[v]+rest[v]-b.rounding[v])
-	}
-	if top > ceiling {
-		return math.Inf(1)
+		value := sum + priced[v] + rest[v] - b.rounding[v]
+		if value > ceiling {
+			return math.Inf(1)
+		}
+		if value > top {
+			top = value
+		}
 	}
 	use, restUse := b.use[depth][o*len(s.use):], b.restUse[depth+1]
 	for k, sum := range s.use {
@@ -189,17 +189,32 @@ func (b *bank) bound(s *standing, depth, o int, ceiling float64) float64 {
 		r.variance += e.Variance
 		r.half += e.Half
 		r.size += math.Abs(e.Mean)
-		if b.p.Demands[q].beyond(r) {
+		if b.gauges[q].beyond(&r) {
 			return math.Inf(1)
 		}
 	}
 	return top
 }
 
-// keyed turns a bound on money into whole units, upward.
-func keyed(bound float64) int64 {
-	if bound >= math.MaxInt64/2 {
-		return math.MaxInt64 / 2
+// take adds option o at depth to a standing.
+func (b *bank) take(dst, s *standing, depth, o int) {
+	for v, sum := range s.priced {
+		dst.priced[v] = sum + b.priced[depth][o*len(s.priced)+v]
 	}
-	return int64(math.Ceil(bound - 1e-6))
+	for k, sum := range s.use {
+		dst.use[k] = sum + b.use[depth][o*len(s.use)+k]
+	}
+	copy(dst.effect, s.effect)
+	for q := range dst.effect {
+		dst.effect[q].add(b.effect[depth][o*len(s.effect)+q])
+	}
+}
+
+// below is the greatest sum of floors that a choice of at most this cost can
+// have.
+func (b *bank) below(cost int64) float64 {
+	if cost == none {
+		return b.dearest
+	}
+	return min(float64(b.lattice.down(cost)), b.dearest)
 }

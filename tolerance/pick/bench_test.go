@@ -21,10 +21,10 @@ func graded(seed uint64, lines, options, demands int, worst bool) *Problem {
 			weights[q] = r.NormFloat64()
 		}
 		var l Line
-		price := 200 + 800*r.Float64()
+		price := 5 + 35*r.Float64() // cents
 		for j := range options {
 			spread := math.Exp(-3 * float64(j) / float64(options-1) * (0.8 + 0.4*r.Float64()))
-			o := Option{Alone: true, Floor: int64(price*math.Pow(spread, -0.7)) + int64(r.IntN(40))}
+			o := Option{Alone: true, Floor: int64(price*math.Pow(spread, -0.7)) + int64(r.IntN(3))}
 			shift := 0.3 * spread * r.NormFloat64()
 			for q := range weights {
 				s := spread * weights[q]

@@ -118,30 +118,5 @@ func (p *Problem) judge(choice []int) Verdict {
 	return v
 }
 
-// A reach is what the totals of a demand can still come to: a mean between Low
-// and High, a variance and a half width of at least these.
-type reach struct {
-	low, high, variance, half float64
-	size                      float64 // greatest absolute sum of means, for rounding
-}
-
-// beyond says that no totals within the reach can meet the demand.
-func (d *Demand) beyond(r reach) bool {
-	if d.WorstCase {
-		slack := forgive * (r.size + r.half)
-		return r.low+r.half > d.High+slack || r.high-r.half < d.Low-slack ||
-			2*r.half > d.High-d.Low+2*slack
-	}
-	// The mean's own rounding is forgiven by letting it reach a little wider.
-	slack := forgive * r.size
-	low, high := r.low-slack, r.high+slack
-	least := r.variance * (1 - forgive)
-	if d.Share <= 0.5 {
-		return bestShare(d.Low, d.High, low, high, least) < d.Share*(1-forgive)
-	}
-	m := nearestMean(d.Low, d.High, low, high)
-	return outsideNormal(m, least, d.Low, d.High) > d.rest()
-}
-
 // rest is the share of units that may lie outside, rounding forgiven.
 func (d *Demand) rest() float64 { return (1-d.Share)*(1+forgive) + 1e-15 }

@@ -47,7 +47,7 @@ func (s *search) vectors(r *relaxation, prices []float64, target float64) [][]fl
 	order := r.order(prices)
 	best := make([]int, len(order))
 	r.bound(r.whole(), prices, best)
-	var out [][]float64
+	out := [][]float64{prices}
 	add := func(choice []int) {
 		for _, quarter := range [...]int{1, 2, 3} {
 			lines := order[:len(order)*quarter/4]
@@ -65,7 +65,7 @@ func (s *search) vectors(r *relaxation, prices []float64, target float64) [][]fl
 			add(choice)
 		}
 	}
-	return append(out, prices)
+	return out
 }
 
 // inKept turns the problem's indexes into kept ones.

@@ -79,17 +79,25 @@ type Verdict struct {
 
 // Limits bounds the work. The zero value means the defaults.
 type Limits struct {
-	Nodes       int // partial choices kept at a time, open and opened; 0: 1<<20, about 30 MB
+	Nodes       int // partial choices kept in memory, 28 bytes each; 0: DefaultNodes
+	Steps       int // partial choices looked at; 0: DefaultSteps
 	Simulations int // calls of Confirm; 0: no limit
+
+	piece int // steps of a dive between splits, for tests; 0: pieceSteps
 }
 
-// DefaultNodes is the limit meant by a zero Limits.Nodes.
-const DefaultNodes = 1 << 20
+// The limits meant by zero: some 4 MB and on one core some ten seconds.
+const (
+	DefaultNodes = 1 << 17
+	DefaultSteps = 1 << 27
+)
 
 // An Outcome is what the search found out.
 //
-// Proved with a Choice: no confirmed choice is cheaper, and among equally
-// cheap ones none comes first in lexicographic order. Proved without a Choice:
+// Proved with a Choice: no confirmed choice is cheaper, and of equally cheap
+// ones none comes before it in lexicographic order, unless the search needed
+// more partial choices than Limits.Nodes: then it is one of the cheapest, the
+// same in every run. Proved without a Choice:
 // no choice meets the demands and is confirmed. Not Proved: a limit or a
 // cancellation stopped the search; Choice, if any, is the best confirmed one
 // found, and nothing confirmed can cost less than Bound.

@@ -50,29 +50,42 @@ func (m *market) cost(choice []int) int64 {
 	return sum
 }
 
-// judge adds means and half widths, and variances with correlation rho between
+// total adds means and half widths, and variances with correlation rho between
 // lines that chose the same offer:
 //
 //	variance = sum s^2 + 2 rho sum over pairs of one offer s_i s_j
 //	         = (1-rho) sum s^2 + rho sum over offers (sum s)^2 >= (1-rho) sum s^2
+func (m *market) total(q int, choice []int) Effect {
+	d := &m.Demands[q]
+	t := Effect{d.BaseMean, d.BaseVariance, d.BaseHalf}
+	for i, j := range choice {
+		e := m.Lines[i].Options[j].Effects[q]
+		s := m.slope[i][j][q]
+		t.add(Effect{e.Mean, s * s, e.Half})
+		for k := range i {
+			if m.offers[k][choice[k]] == m.offers[i][j] {
+				t.Variance += 2 * m.rho * s * m.slope[k][choice[k]][q]
+			}
+		}
+	}
+	t.Variance = max(t.Variance, 0)
+	return t
+}
+
+func (m *market) meets(choice []int) bool {
+	for q := range m.Demands {
+		if t := m.total(q, choice); !m.Demands[q].Holds(t.Mean, t.Variance, t.Half) {
+			return false
+		}
+	}
+	return true
+}
+
+// judge is the exact judgement, with the greatest miss as the shortfall.
 func (m *market) judge(choice []int) Verdict {
 	v := Verdict{Meets: true}
 	for q := range m.Demands {
-		d := &m.Demands[q]
-		t := Effect{d.BaseMean, d.BaseVariance, d.BaseHalf}
-		for i, j := range choice {
-			e := m.Lines[i].Options[j].Effects[q]
-			s := m.slope[i][j][q]
-			t.Mean += e.Mean
-			t.Half += e.Half
-			t.Variance += s * s
-			for k := range i {
-				if m.offers[k][choice[k]] == m.offers[i][j] {
-					t.Variance += 2 * m.rho * s * m.slope[k][choice[k]][q]
-				}
-			}
-		}
-		t.Variance = max(t.Variance, 0)
+		d, t := &m.Demands[q], m.total(q, choice)
 		if d.Holds(t.Mean, t.Variance, t.Half) {
 			continue
 		}
@@ -250,15 +263,21 @@ func (m *market) brute() brute {
 	var b brute
 	choice := make([]int, len(m.Lines))
 	for {
-		cost, v := m.cost(choice), m.judge(choice)
-		if v.Meets && (b.choice == nil || cost < b.cost) && m.willing(choice) {
+		if cost := m.cost(choice); (b.choice == nil || cost < b.cost) && m.meets(choice) && m.willing(choice) {
 			b.choice, b.cost = slices.Clone(choice), cost
 		}
+		if !m.next(choice) {
+			break
+		}
+	}
+	for b.choice == nil {
+		cost, v := m.cost(choice), m.judge(choice)
 		if b.nearest == nil || v.Shortfall < b.verdict.Shortfall || v.Shortfall == b.verdict.Shortfall && cost < b.nearCost {
 			b.nearest, b.verdict, b.nearCost = slices.Clone(choice), v, cost
 		}
 		if !m.next(choice) {
-			return b
+			break
 		}
 	}
+	return b
 }

@@ -35,6 +35,12 @@ func (p *Problem) Cheapest(ctx context.Context, limits Limits) (Outcome, error) 
 	if limits.Nodes <= 0 {
 		limits.Nodes = DefaultNodes
 	}
+	if limits.Steps <= 0 {
+		limits.Steps = DefaultSteps
+	}
+	if limits.piece <= 0 {
+		limits.piece = pieceSteps
+	}
 	s := &search{p: p, limits: limits, answers: map[string]answer{}}
 	s.out.Candidates = p.candidates()
 	err := s.run(ctx)
@@ -62,8 +68,10 @@ type search struct {
 	limits  Limits
 	out     Outcome
 	answers map[string]answer
-	pool    []known // from the local search, cheapest first
+	pool    []known // the cheapest seen that Judge passes and Confirm did not refuse
 	refused int
+	steps   int   // partial choices looked at
+	want    int   // how many choices the pool has room for, at least poolSize
 	nearest known // the nearest seen so far, with its verdict in out
 }
 
@@ -74,6 +82,7 @@ const (
 	exhausted ending = iota // nothing left within the ceiling
 	confirmed
 	doubted // Confirm refused, and options had been dropped that may now matter
+	crowded // no memory left for more partial choices
 	stopped // a limit was reached
 )
 
@@ -82,17 +91,13 @@ func (s *search) run(ctx context.Context) error {
 	all := s.p.all()
 	kept, dominated := s.p.undominated()
 	s.out.Bound = s.p.leastFloor()
-	if err := s.start(ctx, kept); err != nil {
+	if err := cmp.Or(s.start(ctx, kept), s.aim(ctx, kept)); err != nil {
 		return err
 	}
-	ceiling := int64(none)
-	if len(s.pool) > 0 {
-		ceiling = s.pool[0].cost
-	}
-	for raised := 0; ; raised++ {
-		dropped := dominated
+	ceiling := s.ceiling()
+	for raised := 0; ; {
 		b, pegged := s.prepare(kept, ceiling)
-		s.out.Dropped = dropped + pegged
+		s.out.Dropped = dominated + pegged
 		end, err := exhausted, error(nil)
 		if b != nil {
 			end, err = s.pass(ctx, b, ceiling, dominated > 0)
@@ -103,6 +108,8 @@ func (s *search) run(ctx context.Context) error {
 		case end == confirmed:
 			s.out.Proved = true
 			return nil
+		case end == crowded:
+			return s.deep(ctx, kept, dominated > 0)
 		case end == stopped:
 			return s.settle(ctx)
 		case end == exhausted && ceiling == none && (dominated == 0 || s.refused == 0):
@@ -110,22 +117,66 @@ func (s *search) run(ctx context.Context) error {
 			return nil
 		case end == exhausted:
 			ceiling = s.raise(ceiling, raised)
+			raised++
 		}
 		kept, dominated = all, 0
 	}
 }
 
-// raise lets in dearer choices after all within the ceiling were refused.
+// raise lets in dearer choices after all within the ceiling were refused: up
+// to the cheapest known, or a few times as far above the floors.
 func (s *search) raise(ceiling int64, raised int) int64 {
-	if ceiling == none || raised > 1 {
+	if ceiling == none || raised > 20 {
 		return none
 	}
 	s.out.Bound = max(s.out.Bound, ceiling)
+	if next := s.ceiling(); next != none {
+		return max(next, ceiling)
+	}
 	step := 4 * max(ceiling-s.p.leastFloor(), 1)
-	if ceiling > none/2-step {
+	if raised > 2 || ceiling > none/2-step {
 		return none
 	}
 	return ceiling + step
+}
+
+// mostWanted is how many choices a dive looks for at most.
+const mostWanted = 4096
+
+// deep goes on by dives: each finds the cheapest few choices not refused, which
+// are then put to Confirm in the order of cost. The first dive wants one only;
+// the more are refused, the more the next one looks for.
+func (s *search) deep(ctx context.Context, kept [][]int, wary bool) error {
+	for want := 1; ; want = min(16*want, mostWanted) {
+		upTo, end, err := s.dive(ctx, kept, want)
+		if err != nil {
+			return err
+		}
+		if end == stopped {
+			return s.settle(ctx)
+		}
+		for len(s.pool) > 0 && s.pool[0].cost <= upTo && !(wary && s.refused > 0) {
+			s.out.Bound = max(s.out.Bound, s.pool[0].cost)
+			if err := ctx.Err(); err != nil {
+				return err
+			}
+			end, err = s.ask(s.pool[0].choice, s.pool[0].cost)
+			if err != nil || end == stopped {
+				return err
+			}
+			if end == confirmed {
+				s.out.Proved = true
+				return nil
+			}
+		}
+		switch {
+		case wary && s.refused > 0:
+			kept, wary = s.p.all(), false
+		case upTo == none:
+			s.out.Proved = true
+			return nil
+		}
+	}
 }
 
 // pass searches the bank's options in the order of cost up to the ceiling.
@@ -143,8 +194,11 @@ func (s *search) pass(ctx context.Context, b *bank, ceiling int64, wary bool) (e
 		}
 		switch {
 		case int(n.depth) < f.lines:
-			if !f.room(len(b.kept[b.order[n.depth]]), s.limits.Nodes) {
+			if s.steps >= s.limits.Steps {
 				return stopped, nil
+			}
+			if !f.room(len(b.kept[b.order[n.depth]]), s.limits.Nodes) {
+				return crowded, nil
 			}
 			f.settled(choice, i)
 			b.stand(at, choice, int(n.depth))
@@ -175,13 +229,14 @@ func (s *search) pass(ctx context.Context, b *bank, ceiling int64, wary bool) (e
 func (s *search) expand(f *frontier, b *bank, at *standing, i int32, ceiling int64) {
 	n := f.nodes[i]
 	depth := int(n.depth)
+	s.steps += len(b.kept[b.order[depth]])
 	for o := range b.kept[b.order[depth]] {
-		bound := b.bound(at, depth, o, min(float64(ceiling), b.dearest))
+		bound := b.bound(at, depth, o, b.below(ceiling))
 		if math.IsInf(bound, 1) {
 			s.out.CutByBound++
 			continue
 		}
-		f.push(f.child(i, o, max(n.key, keyed(bound))))
+		f.push(f.child(i, o, max(n.key, b.lattice.up(bound))))
 	}
 }
 
@@ -242,6 +297,7 @@ func (s *search) confirm(choice []int) (bool, error) {
 		a := s.answers[key]
 		a.refused = true
 		s.answers[key] = a
+		s.forget(choice)
 	}
 	return ok, nil
 }
@@ -249,12 +305,10 @@ func (s *search) confirm(choice []int) (bool, error) {
 // settle makes the best of a search that was stopped: the cheapest of the
 // local search's choices that Confirm confirms.
 func (s *search) settle(ctx context.Context) error {
-	for _, k := range s.pool {
+	for len(s.pool) > 0 {
+		k := s.pool[0]
 		if err := ctx.Err(); err != nil {
 			return err
-		}
-		if s.answers[name(k.choice)].refused {
-			continue
 		}
 		if s.limits.Simulations > 0 && s.out.Simulated >= s.limits.Simulations {
 			return nil

@@ -25,7 +25,7 @@ func randomShape(seed uint64) shape {
 
 func TestCheapestEqualsBruteForce(t *testing.T) {
 	found, refused, hopeless := 0, 0, 0
-	for seed := range uint64(800) {
+	for seed := range uint64(600) {
 		m := newMarket(seed, randomShape(seed))
 		want := m.brute()
 		got, err := m.Cheapest(context.Background(), Limits{})
@@ -52,7 +52,7 @@ func TestCheapestEqualsBruteForce(t *testing.T) {
 		}
 	}
 	t.Logf("%d found, %d of them after a refusal, %d without a choice", found, refused, hopeless)
-	if found < 300 || refused < 50 || hopeless < 100 {
+	if found < 250 || refused < 50 || hopeless < 100 {
 		t.Errorf("%d found, %d after refusals, %d hopeless: the draw no longer covers all cases", found, refused, hopeless)
 	}
 }
@@ -131,14 +131,12 @@ func TestNodeLimitIsHonest(t *testing.T) {
 		s.lines, s.options = 4+int(seed%3), 5
 		m := newMarket(seed, s)
 		want := m.brute()
-		out, err := m.Cheapest(context.Background(), Limits{Nodes: 12})
+		out, err := m.Cheapest(context.Background(), Limits{Nodes: 12, Steps: 30})
 		if err != nil {
 			t.Fatal(err)
 		}
 		if out.Proved {
-			if !slices.Equal(out.Choice, want.choice) {
-				t.Fatalf("seed %d: proved %v, want %v", seed, out.Choice, want.choice)
-			}
+			checkProof(t, seed, m, out, want)
 			continue
 		}
 		stopped++
@@ -158,8 +156,53 @@ func TestNodeLimitIsHonest(t *testing.T) {
 			gaps++
 		}
 	}
-	if stopped < 50 || gaps < 20 {
+	if stopped < 40 || gaps < 10 {
 		t.Errorf("%d stopped, %d with a gap: the limit was hardly tested", stopped, gaps)
+	}
+}
+
+// checkProof asserts that a proved outcome of a search short of memory is one
+// of the cheapest; which of them it need not say.
+func checkProof(t *testing.T, seed uint64, m *market, out Outcome, want brute) {
+	t.Helper()
+	if (out.Choice == nil) != (want.choice == nil) || out.Cost != want.cost {
+		t.Fatalf("seed %d: proved %v at %d, want %v at %d", seed, out.Choice, out.Cost, want.choice, want.cost)
+	}
+	if out.Choice != nil && !(m.judge(out.Choice).Meets && m.willing(out.Choice) && m.cost(out.Choice) == out.Cost) {
+		t.Fatalf("seed %d: %v is no answer", seed, out.Choice)
+	}
+}
+
+// Without memory for a frontier the search dives; with a dive of a few steps
+// only it splits again and again.
+func TestDivesEqualBruteForce(t *testing.T) {
+	for name, limits := range map[string]Limits{
+		"whole":  {Nodes: 1},
+		"split":  {Nodes: 1, piece: 4},
+		"midway": {Nodes: 25, piece: 9},
+	} {
+		t.Run(name, func(t *testing.T) {
+			found := 0
+			for seed := range uint64(120) {
+				s := randomShape(seed)
+				s.lines = min(s.lines, 5)
+				m := newMarket(seed, s)
+				out, err := m.Cheapest(context.Background(), limits)
+				if err != nil {
+					t.Fatal(err)
+				}
+				if !out.Proved {
+					t.Fatalf("seed %d: not proved: %+v", seed, out)
+				}
+				checkProof(t, seed, m, out, m.brute())
+				if out.Choice != nil {
+					found++
+				}
+			}
+			if found < 40 {
+				t.Errorf("%d found: hardly tested", found)
+			}
+		})
 	}
 }
 

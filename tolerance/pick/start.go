@@ -2,16 +2,15 @@ package pick
 
 import (
 	"context"
-	"math"
 	"slices"
 )
 
-// poolSize is how many choices of the local search are kept.
+// poolSize is how many of the cheapest choices are kept at least.
 const poolSize = 16
 
 // start fills the pool with good choices: each of a few choices that the
-// ascent passes is mended until the demands hold, then made cheaper by changes
-// of one line and of two, then judged.
+// ascent passes is mended until the demands hold, then made cheaper line by
+// line, then judged.
 func (s *search) start(ctx context.Context, kept [][]int) error {
 	l := newLocal(s.p, kept)
 	for _, choice := range l.seeds() {
@@ -29,16 +28,49 @@ func (s *search) start(ctx context.Context, kept [][]int) error {
 	return nil
 }
 
-// keep judges a choice and puts it in the pool.
+// keep judges a choice and, where Judge passes it, puts it in the pool, which
+// holds the cheapest, none of them refused.
 func (s *search) keep(k known) {
 	if !s.judge(k.choice, k.cost) {
 		return
 	}
 	at, found := slices.BinarySearchFunc(s.pool, k, known.compare)
-	if !found {
+	if !found && !s.answers[name(k.choice)].refused {
 		s.pool = slices.Insert(s.pool, at, k)
-		s.pool = s.pool[:min(len(s.pool), poolSize)]
+		s.pool = s.pool[:min(len(s.pool), max(s.want, poolSize))]
 	}
+}
+
+// forget takes a refused choice out of the pool.
+func (s *search) forget(choice []int) {
+	s.pool = slices.DeleteFunc(s.pool, func(k known) bool { return slices.Equal(k.choice, choice) })
+}
+
+// aim improves the pool with beams over ever fewer options.
+func (s *search) aim(ctx context.Context, kept [][]int) error {
+	for _, width := range beamWidths {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+		b, _ := s.prepare(kept, s.ceiling())
+		if b == nil {
+			return nil
+		}
+		for _, choice := range b.beam(width, s.ceiling()) {
+			if cost := s.p.cost(choice); cost <= s.ceiling() {
+				s.keep(known{choice, cost})
+			}
+		}
+	}
+	return nil
+}
+
+// ceiling is the cost of the cheapest choice known that may still be confirmed.
+func (s *search) ceiling() int64 {
+	if len(s.pool) == 0 {
+		return none
+	}
+	return s.pool[0].cost
 }
 
 // A local search works on full choices in the problem's own indexes, with the
@@ -51,40 +83,13 @@ type local struct {
 	changed []Effect
 }
 
-// A gauge has a demand's deviations at hand to measure a miss quickly.
-type gauge struct {
-	*Demand
-	z, widest, scale float64
-}
-
 func newLocal(p *Problem, kept [][]int) *local {
 	l := &local{p: p, kept: kept}
 	l.totals, l.changed = make([]Effect, len(p.Demands)), make([]Effect, len(p.Demands))
 	for q := range p.Demands {
-		d := &p.Demands[q]
-		g := gauge{Demand: d, scale: d.Scale(), widest: d.widest()}
-		if !d.WorstCase && d.Share > 0.5 {
-			g.z = quantile(d.rest())
-		}
-		l.gauges = append(l.gauges, g)
+		l.gauges = append(l.gauges, newGauge(&p.Demands[q]))
 	}
 	return l
-}
-
-// miss is 0 where the demand holds; else it grows with the distance, in
-// the demand's scale. It need only point the way.
-func (g *gauge) miss(t Effect) float64 {
-	if g.WorstCase {
-		return max(0, g.Low-(t.Mean-t.Half), t.Mean+t.Half-g.High) / g.scale
-	}
-	if g.Share > 0.5 {
-		s := math.Sqrt(t.Variance)
-		far := max(s*g.z-(t.Mean-g.Low), s*g.z-(g.High-t.Mean), s-g.widest)
-		if far > 0 {
-			return far / g.scale
-		}
-	}
-	return max(0, g.Share-ShareOfNormal(t.Mean, t.Variance, g.Low, g.High))
 }
 
 func (l *local) miss(totals []Effect) float64 {
@@ -169,63 +174,24 @@ func (l *local) mend(choice []int) bool {
 	return false
 }
 
-// cheapen makes changes of one line, and when there is none of two, that save
-// floor money while the demands hold.
+// cheapen makes the single change that saves most floor money while the demands
+// hold, until there is none.
 func (l *local) cheapen(choice []int) {
-	for l.one(choice) || l.two(choice) {
-	}
-}
-
-// one makes the single change that saves most.
-func (l *local) one(choice []int) bool {
-	l.sum(choice)
-	line, option, most := -1, 0, int64(0)
-	for i, from := range choice {
-		for _, j := range l.kept[i] {
-			if saves := l.floor(i, from) - l.floor(i, j); saves > most && l.change(l.totals, i, from, j) == 0 {
-				line, option, most = i, j, saves
+	for {
+		l.sum(choice)
+		line, option, most := -1, 0, int64(0)
+		for i, from := range choice {
+			for _, j := range l.kept[i] {
+				if saves := l.floor(i, from) - l.floor(i, j); saves > most && l.change(l.totals, i, from, j) == 0 {
+					line, option, most = i, j, saves
+				}
 			}
 		}
-	}
-	if line >= 0 {
+		if line < 0 {
+			return
+		}
 		choice[line] = option
 	}
-	return line >= 0
-}
-
-// two makes the first change of two lines that saves anything.
-func (l *local) two(choice []int) bool {
-	l.sum(choice)
-	first := make([]Effect, len(l.totals))
-	for i, from := range choice {
-		for _, j := range l.kept[i] {
-			if j == from {
-				continue
-			}
-			l.step(first, l.totals, i, from, j)
-			spare := l.floor(i, from) - l.floor(i, j)
-			if line, option := l.pay(choice, first, i, spare); line >= 0 {
-				choice[i], choice[line] = j, option
-				return true
-			}
-		}
-	}
-	return false
-}
-
-// pay finds a second change, of a line after i, that with what the first
-// spares (or costs, when negative) saves most while the demands hold.
-func (l *local) pay(choice []int, first []Effect, i int, spare int64) (line, option int) {
-	line, most := -1, int64(0)
-	for k := i + 1; k < len(choice); k++ {
-		for _, j := range l.kept[k] {
-			saves := spare + l.floor(k, choice[k]) - l.floor(k, j)
-			if saves > most && l.change(first, k, choice[k], j) == 0 {
-				line, option, most = k, j, saves
-			}
-		}
-	}
-	return line, option
 }
 
 // polish goes on with the exact cost, which merged lines make differ from the

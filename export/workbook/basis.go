@@ -57,20 +57,28 @@ func (p *page) conditions() {
 	}
 }
 
-// fact writes a heading, what it says, and where that comes from.
+// fact writes a heading, what it says, and where that comes from: beside it,
+// or below where it is long.
 func (p *page) fact(heading, text, source string) {
-	n := p.tallest(10, heading, text, "")
-	n = max(n, lines(clean(source), p.widths[2], 9, false))
+	heading, text, source = clean(heading), clean(text), clean(source)
 	l := look{wrap: true, bottom: hairline}
-	quiet := l
-	quiet.size, quiet.ink = 9, faded
-	if source == "" { // let a long text use the room
-		n = max(lines(clean(text), p.wide(2, 3), 10, false), lines(clean(heading), p.widths[0], 10, true))
+	quiet := look{wrap: true, bottom: hairline, size: 9, ink: faded}
+	n := lines(heading, p.widths[0], 10, true)
+	if beside := lines(source, p.widths[2], 9, false); source != "" && beside <= 2 {
+		n = max(n, lines(text, p.widths[1], 10, false), beside)
+		p.put(lineHeight(10, n), p.text(heading, bolder(l)), p.text(text, l), p.text(source, quiet))
+		return
 	}
-	p.put(lineHeight(10, n), p.text(heading, bolder(l)), p.text(text, l), p.text(source, quiet))
+	n = max(n, lines(text, p.wide(2, 3), 10, false))
 	if source == "" {
+		p.put(lineHeight(10, n), p.text(heading, bolder(l)), p.text(text, l), p.text("", l))
 		p.merge(2, 3)
+		return
 	}
+	p.put(lineHeight(10, n), p.text(heading, look{bold: true, wrap: true}), p.text(text, look{wrap: true}), excelize.Cell{})
+	p.merge(2, 3)
+	p.put(lineHeight(9, lines(source, p.wide(2, 3), 9, false)), p.text("", l), p.text(source, quiet), p.text("", l))
+	p.merge(2, 3)
 }
 
 // row is n cells that are not there.

@@ -14,15 +14,17 @@ type page struct {
 	name   string
 	widths []float64
 	out    *excelize.StreamWriter
-	last   int // the last row written
+	last   int     // the last row written
+	tall   float64 // all rows together, points
 }
 
 // setup is how a page prints and scrolls.
 type setup struct {
 	landscape bool
-	percent   uint // of full size; 0 fits the width to one page, and takes no page breaks
-	frozen    int  // columns that stay when scrolling
-	headRow   int  // the row of column headings; rows down to it stay when scrolling
+	percent   uint    // of full size; 0 fits the width to one page, and takes no page breaks
+	onePage   float64 // with percent 0: rows less tall than this, in points, are drawn together on one page
+	frozen    int     // columns that stay when scrolling
+	headRow   int     // the row of column headings; rows down to it stay when scrolling
 }
 
 // open starts a sheet with the given column widths (in digits at 11 points).
@@ -58,13 +60,14 @@ func (b *book) open(name string, widths []float64, s setup) *page {
 // put writes the next row and returns its number. A height of 0 is one line.
 func (p *page) put(height float64, cells ...excelize.Cell) int {
 	p.last++
-	if p.out == nil {
-		return p.last
-	}
 	if height == 0 {
 		height = 17
 	}
 	height = min(height, 409) // the highest a row can be
+	p.tall += height
+	if p.out == nil {
+		return p.last
+	}
 	row := make([]any, len(cells))
 	for i, c := range cells {
 		if c.StyleID != 0 || c.Value != nil || c.Formula != "" {
@@ -124,6 +127,9 @@ func (p *page) paragraph(s string, from, to int, l look) int {
 	n := lines(clean(s), p.wide(from, to), l.points(), l.bold)
 	return p.span(lineHeight(l.points(), n), from, to, p.text(s, l), look{})
 }
+
+// indented is how much narrower an indent of one makes a column.
+const indented = 1.5
 
 // lineHeight is the height of n lines of text with air above and below.
 func lineHeight(points float64, n int) float64 {
@@ -226,8 +232,11 @@ func (p *page) print(s setup) {
 	if s.percent > 0 {
 		layout.AdjustTo = &scale
 	} else {
-		one, any := 1, 0
-		layout.FitToWidth, layout.FitToHeight = &one, &any
+		one, down := 1, 0
+		if p.tall < s.onePage {
+			down = 1
+		}
+		layout.FitToWidth, layout.FitToHeight = &one, &down
 	}
 	p.keep(p.file.SetPageLayout(p.name, &layout))
 	side, top, bottom, edge := 0.25, 0.45, 0.6, 0.25

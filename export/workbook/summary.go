@@ -14,7 +14,7 @@ import (
 // summary writes the first page: what the plan is, whether it does what was
 // asked, what it costs, how its parts were chosen, and the state of the bench.
 func (b *book) summary(total string, verdicts tally) {
-	s := setup{}
+	s := setup{onePage: 1150} // about 70 % of full size, still easy to read
 	p := b.open(summarySheet, []float64{21, 22, 21, 11, 25, 20}, s)
 	p.span(34, 1, 6, p.text(cut(clean(b.plan.Title), 120), look{size: 22, bold: true, down: "bottom"}), look{})
 	p.span(18, 1, 6, p.text(fmt.Sprintf("Batch of %s · plan %s · seed %d · %s", plural(b.plan.Units, "unit"), b.plan.short(), b.plan.Seed, or(clean(b.plan.File), "no file")), look{ink: faded, bottom: heavy}), look{bottom: heavy})
@@ -89,7 +89,7 @@ func (p *page) target(t spread.TargetReport) {
 		complies += "  (" + i + ")"
 	}
 	worst := p.plan.worst(t)
-	n := max(p.tallest(10, t.Name, "", "", "", complies, worst), lines(clean(t.Asked), p.wide(2, 3), 10, false))
+	n := max(p.tallest(10, t.Name, "", "", "", complies+"  ", worst), lines(clean(t.Name), p.widths[0], 10, true), lines(clean(t.Asked), p.wide(2, 3), 10, false))
 	p.put(lineHeight(10, n), p.text(t.Name, bolder(text)), p.text(t.Asked, text), p.text("", text), p.text(word, verdict), p.text(complies, padded), p.text(worst, text))
 	p.merge(2, 3)
 	if t.Why != "" {
@@ -168,7 +168,7 @@ func (p *page) choices(r pick.Result) {
 	text := look{bottom: hairline, wrap: true}
 	for _, c := range r.Choices {
 		what := chosen(c)
-		n := max(lines(what, p.wide(2, 3), 10, false), lines(clean(c.Why), p.wide(5, 6), 9, false), p.tallest(10, order.Runs(c.Refs)))
+		n := max(lines(what, p.wide(2, 3), 10, false), lines(clean(c.Why), p.wide(5, 6)-indented, 9, false), p.tallest(10, order.Runs(c.Refs)))
 		small := text
 		small.size, small.indent = 9, 1
 		money := text

@@ -54,7 +54,7 @@ func (p *page) testHead(g grid) {
 	p.put(6)
 	p.field("Tested by", "Date")
 	p.field("Instruments", "Room, °C")
-	p.span(30, 1, fixedCols, p.text("▼ ▲ below or above what a good unit shows: look for a wrong part.   ▽ △ a good unit, but a target is not proved.   ? not a number.   Verdict: check, misses (a target), begun (readings missing), good.", look{size: 9, ink: faded, wrap: true}), look{})
+	p.span(18, 1, fixedCols, p.text("▼ ▲ below, above what a good unit shows: check its parts.   ▽ △ misses the proof of a target.   ? no number.   begun: readings are missing.", look{size: 9, ink: faded}), look{})
 	p.groupHeads()
 	p.unitHeads(g)
 	p.serials(g)
@@ -233,7 +233,7 @@ func (p *page) benchRow(r benchRow, g grid) {
 		cells = append(cells, p.text("", open))
 	}
 	n := max(p.tallest(10, "", "", r.at, r.read), lines(clean(name), p.widths[1], 10, true))
-	p.put(max(21, lineHeight(10, n)), cells...)
+	p.put(max(19, lineHeight(10, n)), cells...)
 }
 
 // testFoot writes the notes on rows and lines to write on.
@@ -242,10 +242,15 @@ func (p *page) testFoot(notes []string) {
 	for _, n := range notes {
 		p.paragraph(n, 1, fixedCols, look{size: 9, ink: faded})
 	}
-	p.span(16, 1, fixedCols, p.text("Notes", look{size: 9, ink: faded}), look{})
 	place := look{fill: sky, open: true, bottom: hairline}
-	for range 3 {
-		p.span(19, 1, fixedCols, p.text("", place), place)
+	for _, label := range []string{"Notes", "", ""} {
+		cells := make([]excelize.Cell, fixedCols)
+		cells[0] = p.text(label, look{size: 9, ink: faded})
+		for i := 1; i < fixedCols; i++ {
+			cells[i] = p.text("", place)
+		}
+		p.put(18, cells...)
+		p.merge(2, fixedCols)
 	}
 }
 

@@ -78,7 +78,7 @@ func (p *page) outputRow(o spread.OutputReport, first bool) string {
 	padded := text
 	padded.indent = 1
 	sources := contributions(o.Contributions)
-	n := p.tallest(10, name, condition, "", "", "", "", "", "", "", "", "", sources)
+	n := max(p.tallest(10, name, condition), lines(sources, p.widths[11]-indented, 10, false))
 	f := sc.format()
 	p.put(lineHeight(10, n), p.text(name, bold), p.text(condition, text), p.text(sc.symbol, text), p.number(sc.nearest(float64(o.Nominal)), f, bold),
 		p.number(sc.below(float64(worst.Low)), f, edge), p.number(sc.above(float64(worst.High)), f, edge), p.number(sc.nearest(float64(o.RootSumSquare.StandardUncertainty)), f, edge),

@@ -44,7 +44,7 @@ func (p *page) trim(t bench.Turn) {
 	middle.across = "center"
 	padded := text
 	padded.indent = 1
-	n := p.tallest(10, "", t.Ref, t.Turn, t.Watch, t.At, t.Condition, "", "", "", "", ends(report), short(report), advice)
+	n := max(p.tallest(10, "", t.Ref, t.Turn, t.Watch, t.At, t.Condition, "", "", "", "", ends(report), short(report)), lines(advice, p.widths[12]-indented, 10, false))
 	p.put(lineHeight(10, n), p.number(float64(t.Step), "0", look{bottom: hairline, bold: true, across: "left"}), p.text(t.Ref, bolder(text)), p.text(t.Turn, text), p.text(t.Watch, text), p.text(t.At, text),
 		p.text(t.Condition, text), p.text(sc.symbol, rightward(text)), p.number(sc.nearest(t.To), sc.format(), figure), p.number(sc.nearest(t.Within), sc.format(), look{bottom: hairline}),
 		p.text(rises, middle), p.text(ends(report), middle), p.text(short(report), middle), p.text(advice, padded))

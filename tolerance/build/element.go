@@ -177,8 +177,22 @@ func (c *compiler) input(ref, parameter string, column scatter.Column, perUnit f
 	}
 	v := c.Graph.Input()
 	c.inputs[k] = v
-	c.Inputs = append(c.Inputs, Input{Ref: ref, Parameter: parameter, Column: column, PerUnit: perUnit})
+	c.Inputs = append(c.Inputs, Input{
+		Ref: ref, Parameter: parameter, Column: column, PerUnit: perUnit, Common: c.commonness(column),
+	})
 	return v
+}
+
+// commonness is the correlation of two pieces' z that share a lot.
+func (c *compiler) commonness(column scatter.Column) float64 {
+	if column.Lot < 0 {
+		return 0
+	}
+	k := likeness{column.Shape, column.Rho}
+	if _, known := c.common[k]; !known {
+		c.common[k] = scatter.Correlation(column.Shape, column.Rho)
+	}
+	return c.common[k]
 }
 
 // stream numbers the draws of a parameter of a piece. It follows from the

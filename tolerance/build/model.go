@@ -4,6 +4,7 @@ import (
 	"fmt"
 
 	"batchwright/bom/order"
+	"batchwright/bom/part"
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/scatter"
 	"batchwright/tolerance/tape"
@@ -28,6 +29,7 @@ type Input struct {
 	Parameter string // "value", "temperature", "ageing", "beta", "setting error", …
 	scatter.Column
 	PerUnit float64 // change of the column for one SI unit of the parameter
+	Common  float64 // product-moment correlation with another piece of its lot
 }
 
 // Output is an output at a condition, or its change from another.
@@ -69,7 +71,14 @@ type compiler struct {
 	*Model
 	inputs map[string]tape.Ref // by reference and parameter
 	lots   map[string]string   // buying line -> the first reference on it
+	common map[likeness]float64
 	err    error
+}
+
+// likeness is what the correlation of two pieces follows from.
+type likeness struct {
+	shape part.Shape
+	rho   float64
 }
 
 // Compile builds the model. Errors are faults of this program, not of the
@@ -79,6 +88,7 @@ func (b *Build) Compile() (*Model, error) {
 		Model:  &Model{Build: b, Graph: tape.NewGraph()},
 		inputs: map[string]tape.Ref{},
 		lots:   map[string]string{},
+		common: map[likeness]float64{},
 	}
 	for _, p := range b.Parts() {
 		if key := order.Key(p); c.lots[key] == "" {

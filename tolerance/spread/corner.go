@@ -1,6 +1,7 @@
 package spread
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
@@ -18,13 +19,13 @@ const everyCorner = 12
 type search struct {
 	model   *build.Model
 	program *tape.Program
-	trims   int   // whose ends follow the node in the program's outputs
-	free    []int // inputs that scatter
+	slopes  *Differentiator // of the node, and of each trim's ends
+	trims   int             // whose ends follow the node in the program's outputs
+	kinks   int             // whose values follow those
+	free    []int           // inputs that scatter
 	columns *columns
-	slopes  []float64 // of the node by each free input's z, at the centre
-	reach   [][]float64
-	ends    [][2]float64 // of each trim at the centre: at low, at high
-	started int
+	starts  []picture
+	visited []point // corners gone to in this direction
 	evals   int
 }
 
@@ -37,34 +38,25 @@ func newSearch(m *build.Model, node tape.Ref, trims []int) *search {
 	for _, t := range trims {
 		refs = append(refs, m.Trims[t].AtLow, m.Trims[t].AtHigh)
 	}
+	kinks := m.Graph.Kinks(node)
+	refs = append(refs, kinks...)
 	n := &nodes{model: m, program: m.Graph.Program(refs...), count: len(refs)}
-	s := &search{model: m, program: n.program, trims: len(trims), columns: n.newColumns(lanes)}
+	s := &search{model: m, program: n.program, slopes: NewDifferentiator(m, refs...), trims: len(trims), kinks: len(kinks), columns: n.newColumns(lanes)}
 	for _, i := range n.program.Inputs() {
 		if m.Inputs[i].HalfWidth > 0 {
 			s.free = append(s.free, i)
 		}
 	}
-	l := Linearise(m, refs...)
-	s.slopes = s.byZ(l, 0)
-	for t := range trims {
-		s.reach = append(s.reach, s.byZ(l, 1+2*t), s.byZ(l, 2+2*t))
-		s.ends = append(s.ends, [2]float64{l.Values[1+2*t], l.Values[2+2*t]})
-	}
+	s.starts = s.newStarts()
 	return s
-}
-
-// byZ is a node's slopes by the z of each free input.
-func (s *search) byZ(l *Linear, node int) []float64 {
-	out := make([]float64, len(s.free))
-	for k, i := range s.free {
-		out[k] = l.Slopes[node][i] * s.model.Inputs[i].HalfWidth
-	}
-	return out
 }
 
 // evaluate computes the node at some points, at most lanes of them; NaN where
 // a trim does not reach.
-func (s *search) evaluate(points []point) []float64 {
+func (s *search) evaluate(points []point) []float64 { return s.evaluateColumn(points, 0) }
+
+// evaluateColumn computes one of the program's outputs at some points.
+func (s *search) evaluateColumn(points []point, column int) []float64 {
 	in, out := s.columns.cut(len(points))
 	for _, i := range s.program.Inputs() {
 		for lane := range points {
@@ -82,11 +74,11 @@ func (s *search) evaluate(points []point) []float64 {
 	for t := range s.trims {
 		for lane := range points {
 			if !reached(out[1+2*t][lane], out[2+2*t][lane]) {
-				out[0][lane] = math.NaN()
+				out[column][lane] = math.NaN()
 			}
 		}
 	}
-	return append([]float64(nil), out[0]...)
+	return slices.Clone(out[column])
 }
 
 // extreme is the best point found in one direction.
@@ -100,229 +92,322 @@ func (e extreme) better(v, direction float64) bool {
 	return !math.IsNaN(v) && (e.at == nil || direction*(v-e.value) > 1e-12*math.Abs(e.value))
 }
 
+// take keeps the better of two.
+func (e extreme) take(o extreme, direction float64) extreme {
+	if o.at != nil && e.better(o.value, direction) {
+		return o
+	}
+	return e
+}
+
 // run looks for the extreme in a direction, +1 or -1.
 func (s *search) run(direction float64) extreme {
 	best := extreme{}
 	if len(s.free) <= everyCorner {
 		best = s.corners(direction)
 	}
-	for _, start := range s.starts(direction) {
-		s.started++
-		if e := s.ascend(start, direction); e.at != nil && best.better(e.value, direction) {
-			best = e
+	s.visited = nil
+	if len(s.free) == 0 {
+		return s.best([]point{{}}, direction)
+	}
+	for i := range s.starts {
+		best = best.take(s.ascend(i, direction), direction)
+	}
+	for k := range s.kinks {
+		if at := s.zero(1 + 2*s.trims + k); at != nil {
+			best = best.take(s.climb(s.best([]point{at}, direction), direction), direction)
 		}
 	}
-	if best.at != nil {
-		best = s.along(best, direction)
-	}
 	return best
+}
+
+// zero looks for a place where one of the program's outputs is zero, on the
+// way from the centre to the corner that the output's own slopes point to.
+func (s *search) zero(column int) point {
+	centre := s.starts[0]
+	target := s.corner(centre, column, -math.Copysign(1, centre.Values[column]))
+	const steps = 32
+	low, high := 0.0, 1.0
+	var at point
+	for range 8 {
+		block := make([]point, steps+1)
+		for i := range block {
+			block[i] = mix(centre.at, target, low+(high-low)*float64(i)/steps)
+		}
+		v := s.evaluateColumn(block, column)
+		i := 1
+		for i <= steps && !(v[i-1]*v[i] <= 0) {
+			i++
+		}
+		if i > steps {
+			return at
+		}
+		at = block[i]
+		if math.Abs(v[i-1]) < math.Abs(v[i]) {
+			at = block[i-1]
+		}
+		width := (high - low) / steps
+		low, high = low+width*float64(i-1), low+width*float64(i)
+	}
+	return at
+}
+
+// picture is the linear picture at a place.
+type picture struct {
+	at point
+	*Linear
+}
+
+// newStarts are the places whose slopes point to the first corners: the
+// centre, and two places halfway to opposite corners.
+func (s *search) newStarts() []picture {
+	list := make([]picture, 3)
+	for i, z := range []float64{0, 0.5, -0.5} {
+		at := make(point, len(s.free))
+		for k := range at {
+			at[k] = z * (1 - 2*float64(k%2))
+		}
+		list[i] = s.picture(at)
+	}
+	return list
+}
+
+// picture differentiates at a place.
+func (s *search) picture(at point) picture {
+	inputs := slices.Clone(s.model.Inputs)
+	for k, i := range s.free {
+		inputs[i].Centre += inputs[i].HalfWidth * at[k]
+	}
+	s.evals += len(s.free)
+	return picture{at, s.slopes.At(inputs)}
 }
 
 // corners tries every corner.
 func (s *search) corners(direction float64) extreme {
 	best := extreme{}
-	var block []point
-	flush := func() {
-		for i, v := range s.evaluate(block) {
-			if best.better(v, direction) {
-				best = extreme{v, block[i]}
+	total := 1 << len(s.free)
+	for first := 0; first < total; first += lanes {
+		block := make([]point, min(lanes, total-first))
+		for i := range block {
+			block[i] = make(point, len(s.free))
+			for k := range s.free {
+				block[i][k] = float64((first+i)>>k&1)*2 - 1
 			}
 		}
-		block = block[:0]
-	}
-	for bits := range 1 << len(s.free) {
-		p := make(point, len(s.free))
-		for k := range p {
-			p[k] = float64(bits>>k&1)*2 - 1
-		}
-		if block = append(block, p); len(block) == lanes {
-			flush()
-		}
-	}
-	if len(block) > 0 {
-		flush()
+		best = best.take(s.best(block, direction), direction)
 	}
 	return best
 }
 
-// starts are where ascents begin: the corner that the slopes point to and,
-// where a trim does not reach there, that corner drawn in towards the centre
-// and the corners to which the slopes point when the trim's reach is paid for.
-func (s *search) starts(direction float64) []point {
-	corner := s.signs(direction, nil, 0)
-	drawn := s.drawIn(corner)
-	list := []point{drawn}
-	if slices.Equal(corner, drawn) {
-		return list
-	}
-	for _, against := range s.reach {
-		for _, price := range []float64{0.5, 2} {
-			list = append(list, s.drawIn(s.signs(direction, against, price)), s.drawIn(s.signs(direction, against, -price)))
-		}
-	}
-	return append(list, make(point, len(s.free)))
-}
-
-// signs is the corner that the slopes, less a price on another node's slopes,
-// point to.
-func (s *search) signs(direction float64, against []float64, price float64) point {
-	p := make(point, len(s.free))
-	scale := 0.0
-	if against != nil {
-		scale = price * total(s.slopes) / math.Max(total(against), 1e-300)
-	}
-	for k := range p {
-		g := direction * s.slopes[k]
-		if against != nil {
-			g -= scale * against[k]
-		}
-		switch {
-		case g > 0:
-			p[k] = 1
-		case g < 0:
-			p[k] = -1
-		}
-	}
-	return p
-}
-
-func total(x []float64) float64 {
-	var sum float64
-	for _, v := range x {
-		sum += math.Abs(v)
-	}
-	return sum
-}
-
-// drawIn scales a point towards the centre until every trim reaches there to
-// first order.
-func (s *search) drawIn(p point) point {
-	scale := 1.0
-	for t := range s.ends {
-		for side := range 2 {
-			at := s.ends[t][side]
-			var move float64
-			for k := range p {
-				move += s.reach[2*t+side][k] * p[k]
-			}
-			if room := -at / move; room > 0 && room < scale {
-				scale = 0.98 * room
-			}
-		}
-	}
-	drawn := make(point, len(p))
-	for k := range p {
-		drawn[k] = scale * p[k]
-	}
-	return drawn
-}
-
-// ascend improves a start by moving coordinates to their ends as long as that
-// helps.
-func (s *search) ascend(start point, direction float64) extreme {
+// best evaluates points and keeps the best.
+func (s *search) best(points []point, direction float64) extreme {
 	best := extreme{}
-	if v := s.evaluate([]point{start})[0]; !math.IsNaN(v) {
-		best = extreme{v, start}
-	} else {
+	for i, v := range s.evaluate(points) {
+		if best.better(v, direction) {
+			best = extreme{v, points[i]}
+		}
+	}
+	return best
+}
+
+// ascend goes to the corner that the slopes at a start point to, as far as the
+// trims reach, looks at the slopes there, and so on; then it climbs.
+func (s *search) ascend(start int, direction float64) extreme {
+	best := extreme{}
+	from := s.starts[start]
+	for range 6 { // slopes that keep changing their signs are left to pass
+		corner := s.corner(from, 0, direction)
+		if slices.ContainsFunc(s.visited, func(p point) bool { return slices.Equal(p, corner) }) {
+			break
+		}
+		s.visited = append(s.visited, corner)
+		next := s.line(from.at, corner, direction)
+		if next.at == nil || !best.better(next.value, direction) {
+			break
+		}
+		best = next
+		from = s.picture(best.at)
+	}
+	return s.climb(best, direction)
+}
+
+// climb moves single coordinates to their ends as long as that helps.
+func (s *search) climb(best extreme, direction float64) extreme {
+	if best.at == nil {
 		return best
 	}
-	for range 60 { // each pass fixes at least one coordinate; a few passes do
+	for range 40 { // each pass settles at least one coordinate
 		next := s.pass(best, direction)
 		if !best.better(next.value, direction) {
-			return best
+			break
 		}
 		best = next
 	}
 	return best
 }
 
-// pass tries every move of one coordinate, then all that help at once, half of
-// them, a quarter, and so on, and returns the best.
-func (s *search) pass(from extreme, direction float64) extreme {
-	moves, gains := s.moves(from, direction)
-	best := from
-	for i, g := range gains {
-		if g > 0 && best.better(from.value+direction*g, direction) {
-			best = extreme{from.value + direction*g, moves[i].of(from.at)}
+// line looks along the way from one place to another, the other end first, and
+// closer about what it finds on the way: an extreme such as a beat of zero
+// lies inside, where the output bends.
+func (s *search) line(from, to point, direction float64) extreme {
+	const steps = 16
+	best := extreme{}
+	low, high := 0.0, 1.0
+	for range 10 {
+		block := make([]point, steps+1)
+		for i := range block {
+			block[i] = mix(from, to, high-(high-low)*float64(i)/steps)
 		}
-	}
-	helping := helpful(moves, gains)
-	for n := len(helping); n > 1; n /= 2 {
-		p := append(point(nil), from.at...)
-		for _, m := range helping[:n] {
-			p[m.coordinate] = m.z
+		next := s.best(block, direction)
+		if next.at == nil || best.at != nil && !best.better(next.value, direction) {
+			return best
 		}
-		if v := s.evaluate([]point{p})[0]; best.better(v, direction) {
-			return extreme{v, p}
+		best = next
+		at := slices.IndexFunc(block, func(p point) bool { return &p[0] == &next.at[0] })
+		if at == 0 && high == 1 {
+			return best
 		}
+		width := (high - low) / steps
+		middle := high - width*float64(at)
+		low, high = math.Max(0, middle-width), math.Min(1, middle+width)
 	}
 	return best
 }
 
-// move is one coordinate's new place.
+// mix is the place a share t of the way from one to the other; the other
+// itself at 1.
+func mix(from, to point, t float64) point {
+	p := slices.Clone(to)
+	if t < 1 {
+		for k := range p {
+			p[k] = from[k] + t*(to[k]-from[k])
+		}
+	}
+	return p
+}
+
+// corner is the place where the linear picture of an output is greatest in the
+// direction, while every trim reaches to first order.
+func (s *search) corner(l picture, column int, direction float64) point {
+	c := s.byZ(l.Linear, column)
+	z := make(point, len(c))
+	for k := range z {
+		z[k] = l.at[k]
+		if g := direction * c[k]; g != 0 {
+			z[k] = math.Copysign(1, g)
+		}
+	}
+	for range 2 { // mending one trim may spoil another
+		for t := range s.trims {
+			low, high := l.Values[1+2*t], l.Values[2+2*t]
+			rising := math.Copysign(1, high-low)
+			mend(z, l.at, c, s.byZ(l.Linear, 1+2*t), rising, rising*low)
+			mend(z, l.at, c, s.byZ(l.Linear, 2+2*t), -rising, -rising*high)
+		}
+	}
+	return z
+}
+
+// byZ is a node's slopes by the z of each free input.
+func (s *search) byZ(l *Linear, node int) []float64 {
+	out := make([]float64, len(s.free))
+	for k, i := range s.free {
+		out[k] = l.Slopes[node][i] * s.model.Inputs[i].HalfWidth
+	}
+	return out
+}
+
+// mend moves z until the linear constraint
+//
+//	value + sign·g·(z − at) <= 0
+//
+// holds, at the least cost in c: the coordinates that give most for what they
+// cost go first (a continuous knapsack).
+func mend(z, at point, c, g []float64, sign, value float64) {
+	excess := value
+	var order []int
+	for k := range z {
+		excess += sign * g[k] * (z[k] - at[k])
+		if g[k] != 0 {
+			order = append(order, k)
+		}
+	}
+	slices.SortStableFunc(order, func(a, b int) int {
+		return cmp.Compare(math.Abs(c[a]*g[b]), math.Abs(c[b]*g[a]))
+	})
+	for _, k := range order {
+		if excess <= 0 {
+			return
+		}
+		end := -math.Copysign(1, sign*g[k])
+		gain := sign * g[k] * (z[k] - end)
+		if gain <= 0 {
+			continue
+		}
+		part := math.Min(1, 1.001*excess/gain) // a little more than enough
+		z[k] += part * (end - z[k])
+		excess -= part * gain
+	}
+}
+
+// pass tries every move of one coordinate to an end, then all that help at
+// once, half of them, a quarter, and so on, and returns the best.
+func (s *search) pass(from extreme, direction float64) extreme {
+	moves := s.moves(from, direction)
+	if len(moves) == 0 {
+		return from
+	}
+	best := extreme{from.value + direction*moves[0].gain, moves[0].of(from.at)}
+	var joint []point
+	for n := len(moves); n > 1; n /= 2 {
+		p := slices.Clone(from.at)
+		for _, m := range moves[:n] {
+			p[m.coordinate] = m.z
+		}
+		joint = append(joint, p)
+	}
+	if len(joint) > 0 {
+		best = best.take(s.best(joint, direction), direction)
+	}
+	return best
+}
+
+// move is one coordinate's new place, and what it gains.
 type move struct {
 	coordinate int
 	z, gain    float64
 }
 
 func (m move) of(p point) point {
-	out := append(point(nil), p...)
+	out := slices.Clone(p)
 	out[m.coordinate] = m.z
 	return out
 }
 
-// moves evaluates every move of one coordinate and what it gains.
-func (s *search) moves(from extreme, direction float64) ([]move, []float64) {
-	var moves []move
+// moves are the moves of one coordinate to an end that gain, the best first.
+func (s *search) moves(from extreme, direction float64) []move {
+	var all []move
 	for k := range s.free {
 		for _, z := range []float64{-1, 1} {
 			if z != from.at[k] {
-				moves = append(moves, move{coordinate: k, z: z})
+				all = append(all, move{coordinate: k, z: z})
 			}
 		}
 	}
-	gains := make([]float64, 0, len(moves))
-	for first := 0; first < len(moves); first += lanes {
-		var block []point
-		for _, m := range moves[first:min(first+lanes, len(moves))] {
-			block = append(block, m.of(from.at))
+	for first := 0; first < len(all); first += lanes {
+		some := all[first:min(first+lanes, len(all))]
+		block := make([]point, len(some))
+		for i, m := range some {
+			block[i] = m.of(from.at)
 		}
-		for _, v := range s.evaluate(block) {
-			gains = append(gains, direction*(v-from.value)) // NaN: out of reach
-		}
-	}
-	return moves, gains
-}
-
-// along looks between the centre and the best point, and a little to each
-// side of what it finds: an extreme such as a beat of zero lies inside.
-func (s *search) along(best extreme, direction float64) extreme {
-	low, high := 0.0, 1.0
-	corner := best.at
-	for range 6 {
-		const steps = 64
-		block := make([]point, steps+1)
-		for i := range block {
-			t := low + (high-low)*float64(i)/steps
-			block[i] = make(point, len(corner))
-			for k := range corner {
-				block[i][k] = t * corner[k]
-			}
-		}
-		at := -1
 		for i, v := range s.evaluate(block) {
-			if best.better(v, direction) {
-				best, at = extreme{v, block[i]}, i
-			}
+			some[i].gain = direction * (v - from.value) // NaN: out of reach
 		}
-		if at < 0 {
-			return best
-		}
-		width := (high - low) / steps
-		middle := low + width*float64(at)
-		low, high = math.Max(0, middle-width), math.Min(1, middle+width)
 	}
-	return best
+	enough := 1e-12 * math.Abs(from.value)
+	all = slices.DeleteFunc(all, func(m move) bool { return !(m.gain > enough) })
+	slices.SortStableFunc(all, func(a, b move) int { return cmp.Compare(b.gain, a.gain) })
+	return all
 }
 
 // searched says how the search went.
@@ -330,16 +415,17 @@ func (s *search) searched() string {
 	if len(s.free) <= everyCorner {
 		return fmt.Sprintf("every one of %d corners, then along coordinates; attained, %d evaluations", 1<<len(s.free), s.evals)
 	}
-	return fmt.Sprintf("%d inputs: corners guided by slopes, then coordinate ascent from %d starts; attained, not proved extreme, %d evaluations",
-		len(s.free), s.started, s.evals)
+	return fmt.Sprintf("%d inputs: corners that the slopes point to from three starts, within the trims' reach, then coordinate moves; attained, not proved extreme, %d evaluations",
+		len(s.free), s.evals)
 }
 
-// corner names the inputs of a point, those that move the node most first.
-func (s *search) corner(p point) []Corner {
-	corner := make([]Corner, 0, len(p))
-	for _, k := range byMagnitude(s.slopes) {
+// named names the inputs of a point, those that move the node most first.
+func (s *search) named(p point) []Corner {
+	slopes := s.byZ(s.starts[0].Linear, 0)
+	list := make([]Corner, 0, len(p))
+	for _, k := range byMagnitude(slopes) {
 		x := s.model.Inputs[s.free[k]]
-		corner = append(corner, Corner{x.Ref, x.Parameter, Figure(p[k])})
+		list = append(list, Corner{x.Ref, x.Parameter, Figure(p[k])})
 	}
-	return corner
+	return list
 }

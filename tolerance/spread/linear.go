@@ -10,42 +10,85 @@ import (
 	"batchwright/tolerance/tape"
 )
 
-// Linear is a model's first-order picture: the value of some nodes with every
-// input at its centre, and their slopes by every input, through the trims.
+// Linear is a first-order picture: the value of some nodes with every input at
+// its centre, and their slopes by every input that scatters, through the trims.
 type Linear struct {
-	Model  *build.Model
+	Inputs []build.Input
 	Values []float64
-	Slopes [][]float64 // [node][input], per unit of the input's column
+	Slopes [][]float64 // [node][input], per unit of the input's column; 0 by one that does not scatter
 }
 
-// Linearise differentiates nodes of a model by all its inputs: one block, a
-// direction in each lane.
+// Linearise differentiates nodes of a model at its inputs' centres.
 func Linearise(m *build.Model, refs ...tape.Ref) *Linear {
-	program := m.Graph.Program(refs...)
-	used := program.Inputs()
-	width := max(1, len(used))
-	l := &Linear{Model: m, Values: make([]float64, len(refs)), Slopes: make([][]float64, len(refs))}
-	in, din := make([][]float64, len(m.Inputs)), make([][]float64, len(m.Inputs))
-	for lane, i := range used {
-		in[i], din[i] = make([]float64, width), make([]float64, width)
-		for j := range in[i] {
-			in[i][j] = m.Inputs[i].Centre
+	return NewDifferentiator(m, refs...).At(m.Inputs)
+}
+
+// Differentiator differentiates nodes of a model at one place after another.
+// It is not safe for concurrent use.
+type Differentiator struct {
+	program            *tape.Program
+	frame              *tape.Frame
+	used               []int
+	in, din, out, dout [][]float64
+}
+
+// NewDifferentiator compiles nodes of a model.
+func NewDifferentiator(m *build.Model, refs ...tape.Ref) *Differentiator {
+	d := &Differentiator{program: m.Graph.Program(refs...)}
+	d.used = d.program.Inputs()
+	width := max(1, len(d.used))
+	d.frame = d.program.NewFrame(width)
+	d.in, d.din = block(len(m.Inputs), width), block(len(m.Inputs), width)
+	d.out, d.dout = block(len(refs), width), block(len(refs), width)
+	return d
+}
+
+func block(columns, width int) [][]float64 {
+	b := make([][]float64, columns)
+	for i := range b {
+		b[i] = make([]float64, width)
+	}
+	return b
+}
+
+// At differentiates about the centres of the inputs, which are the model's or
+// stand in their places: one block, a direction in each lane.
+func (d *Differentiator) At(inputs []build.Input) *Linear {
+	var free []int
+	for _, i := range d.used {
+		if inputs[i].HalfWidth > 0 {
+			free = append(free, i)
 		}
-		din[i][lane] = 1
 	}
-	out, dout := make([][]float64, len(refs)), make([][]float64, len(refs))
-	for k := range refs {
-		out[k], dout[k] = make([]float64, width), make([]float64, width)
+	width := max(1, len(free))
+	for _, i := range d.used {
+		for lane := range width {
+			d.in[i][lane], d.din[i][lane] = inputs[i].Centre, 0
+		}
 	}
-	program.Tangents(out, dout, in, din, program.NewFrame(width))
-	for k := range refs {
-		l.Values[k] = out[k][0]
-		l.Slopes[k] = make([]float64, len(m.Inputs))
-		for lane, i := range used {
-			l.Slopes[k][i] = dout[k][lane]
+	for lane, i := range free {
+		d.din[i][lane] = 1
+	}
+	d.program.Tangents(cut(d.out, width), cut(d.dout, width), cut(d.in, width), cut(d.din, width), d.frame)
+	l := &Linear{Inputs: inputs, Values: make([]float64, len(d.out)), Slopes: block(len(d.out), len(inputs))}
+	for k := range d.out {
+		l.Values[k] = d.out[k][0]
+		for lane, i := range free {
+			l.Slopes[k][i] = d.dout[k][lane]
 		}
 	}
 	return l
+}
+
+// cut shortens columns to their first width lanes.
+func cut(columns [][]float64, width int) [][]float64 {
+	short := make([][]float64, len(columns))
+	for i, c := range columns {
+		if c != nil {
+			short[i] = c[:width]
+		}
+	}
+	return short
 }
 
 // Term is what one input adds to a node's variance: its own, and its share of
@@ -65,21 +108,21 @@ type Term struct {
 func (l *Linear) Variance(node int) (float64, []Term) {
 	var terms []Term
 	var total float64
-	own := make([]float64, len(l.Model.Inputs)) // c·u
+	own := make([]float64, len(l.Inputs)) // c·u
 	lots := map[int]float64{}
-	for i, x := range l.Model.Inputs {
+	for i, x := range l.Inputs {
 		own[i] = l.Slopes[node][i] * x.HalfWidth * math.Sqrt(scatter.Variance(x.Shape))
 		if x.Lot >= 0 {
 			lots[x.Lot] += own[i]
 		}
 	}
-	for i, x := range l.Model.Inputs {
+	for i, x := range l.Inputs {
 		if own[i] == 0 {
 			continue
 		}
 		v := own[i] * own[i]
 		if x.Lot >= 0 {
-			v += own[i] * scatter.Correlation(x.Shape, x.Rho) * (lots[x.Lot] - own[i])
+			v += own[i] * x.Common * (lots[x.Lot] - own[i])
 		}
 		total += v
 		terms = append(terms, Term{i, v})
@@ -97,7 +140,7 @@ func (l *Linear) rootSumSquare(node int, o *OutputReport) {
 	}
 	o.Contributions = []Contribution{}
 	for _, t := range terms {
-		x := l.Model.Inputs[t.Input]
+		x := l.Inputs[t.Input]
 		o.Contributions = append(o.Contributions, Contribution{
 			Ref: x.Ref, Parameter: x.Parameter,
 			Sensitivity: Figure(l.Slopes[node][t.Input] * x.PerUnit),

@@ -101,16 +101,7 @@ func (n *nodes) newColumns(width int) *columns {
 
 // cut shortens every column to the first width lanes.
 func (c *columns) cut(width int) (in, out [][]float64) {
-	in, out = make([][]float64, len(c.in)), make([][]float64, len(c.out))
-	for i, x := range c.in {
-		if x != nil {
-			in[i] = x[:width]
-		}
-	}
-	for i, x := range c.out {
-		out[i] = x[:width]
-	}
-	return in, out
+	return cut(c.in, width), cut(c.out, width)
 }
 
 // nominal evaluates every column with each input at its centre.

@@ -13,25 +13,6 @@ import (
 	"batchwright/tolerance/tape"
 )
 
-// helpful are the moves that gain, the best first, one for each coordinate.
-func helpful(moves []move, gains []float64) []move {
-	best := map[int]move{}
-	for i, g := range gains {
-		m := moves[i]
-		if m.gain = g; g > 0 && g > best[m.coordinate].gain {
-			best[m.coordinate] = m
-		}
-	}
-	var list []move
-	for _, m := range best {
-		list = append(list, m)
-	}
-	slices.SortFunc(list, func(a, b move) int {
-		return cmp.Or(cmp.Compare(b.gain, a.gain), cmp.Compare(a.coordinate, b.coordinate))
-	})
-	return list
-}
-
 // byMagnitude is the order of x by falling magnitude.
 func byMagnitude(x []float64) []int {
 	order := make([]int, len(x))
@@ -55,7 +36,7 @@ func worstCase(m *build.Model, node tape.Ref, trims []int) *WorstCase {
 		return w
 	}
 	w.Low, w.High = Figure(low.value), Figure(high.value)
-	w.AtLow, w.AtHigh = s.corner(low.at), s.corner(high.at)
+	w.AtLow, w.AtHigh = s.named(low.at), s.named(high.at)
 	return w
 }
 
@@ -132,9 +113,9 @@ func reachWorstCase(m *build.Model, t int) (reaches bool, corner []Corner) {
 	case a.at == nil || b.at == nil:
 		return false, nil
 	case rising*a.value > 0:
-		return false, low.corner(a.at)
+		return false, low.named(a.at)
 	case rising*b.value < 0:
-		return false, high.corner(b.at)
+		return false, high.named(b.at)
 	}
 	return true, nil
 }

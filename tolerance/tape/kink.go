@@ -1,0 +1,38 @@
+package tape
+
+// Kinks lists the arguments of every absolute value that a value depends on,
+// but for those inside a root's loop: where one is zero, the value may have an
+// extreme to which no slope points.
+func (g *Graph) Kinks(r Ref) []Ref {
+	var kinks []Ref
+	seen := map[Ref]bool{}
+	var visit func(r Ref)
+	visit = func(r Ref) {
+		if seen[r] {
+			return
+		}
+		seen[r] = true
+		n := g.nodes[r]
+		if n.op == abs && g.free[n.a] == 0 {
+			kinks = append(kinks, n.a)
+		}
+		for _, a := range n.arguments() {
+			visit(a)
+		}
+	}
+	visit(r)
+	return kinks
+}
+
+// arguments are the values a node is computed from.
+func (n node) arguments() []Ref {
+	switch n.op {
+	case constant, input, unknown:
+		return nil
+	case root:
+		return []Ref{n.a, n.b, n.d}
+	case bracketed:
+		return []Ref{n.a}
+	}
+	return []Ref{n.a, n.b, n.c}[:operations[n.op].arity]
+}

@@ -115,6 +115,8 @@ func TestLowpassAgainstNetwork(t *testing.T) {
 	}
 	near(t, "gain_at_carrier", got["gain_at_carrier"], transfer(given["in.frequency"]), 1e-12)
 	near(t, "gain_at_tone", got["gain_at_tone"], transfer(given["in.tone_frequency"]), 1e-12)
+	near(t, "level", got["level"], given["in.level"]*transfer(given["in.frequency"]), 1e-12)
+	near(t, "tone_level", got["tone_level"], given["in.tone_level"]*transfer(given["in.tone_frequency"]), 1e-12)
 	near(t, "second_level", got["second_level"], given["in.second_level"]*transfer(given["in.second_frequency"]), 1e-12)
 	near(t, "dc", got["dc"], given["in.dc"]*transfer(0), 1e-12)
 	near(t, "3 dB at the corner", transfer(got["corner"])/transfer(0), 1/math.Sqrt2, 1e-12)

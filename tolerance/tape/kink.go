@@ -23,16 +23,3 @@ func (g *Graph) Kinks(r Ref) []Ref {
 	visit(r)
 	return kinks
 }
-
-// arguments are the values a node is computed from.
-func (n node) arguments() []Ref {
-	switch n.op {
-	case constant, input, unknown:
-		return nil
-	case root:
-		return []Ref{n.a, n.b, n.d}
-	case bracketed:
-		return []Ref{n.a}
-	}
-	return []Ref{n.a, n.b, n.c}[:operations[n.op].arity]
-}

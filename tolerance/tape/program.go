@@ -143,7 +143,7 @@ func (c *compiler) place(r Ref, s *scope) {
 		c.place(n.a, s)
 		s.flags[n.a] = r
 	default:
-		for _, a := range c.g.arguments(r) {
+		for _, a := range c.g.nodes[r].arguments() {
 			c.place(a, s)
 		}
 	}
@@ -222,7 +222,7 @@ func (c *compiler) slotOf(r Ref, s *scope) int32 {
 func (c *compiler) reads(r Ref, s *scope) []Ref {
 	n := c.g.nodes[r]
 	if n.op != root {
-		return c.g.arguments(r)
+		return c.g.nodes[r].arguments()
 	}
 	return append([]Ref{n.a, n.b}, c.outer(s.bodies[r], n.d)...)
 }

@@ -15,12 +15,15 @@ import (
 const (
 	driftReach = 15 // K
 	driftSteps = 12
+	driftUnits = 4_800 // simulated at most; the band's ends are good to a few per cent of its width
 )
 
 // Drifts moves every output whose change a target limits, or that a trim sets
 // where no target does, through the temperatures around the reference.
 func Drifts(ctx context.Context, b *build.Build, o spread.Options) ([]workbook.Drift, error) {
 	from, to := temperatures(b)
+	o.Units = min(o.Units, driftUnits)
+	o.Progress = nil // it counts from the start for every output
 	var list []workbook.Drift
 	for _, output := range driftOutputs(b) {
 		rows, err := spread.Drift(ctx, b, output, from, to, driftSteps, o)
@@ -31,7 +34,7 @@ func Drifts(ctx context.Context, b *build.Build, o spread.Options) ([]workbook.D
 			Title:   fmt.Sprintf("Change of %s with temperature, from %s", output, b.Conditions[0].Name),
 			Output:  output.String(),
 			Unit:    unitOf(b, output),
-			Meaning: "Low and high: 95 % of the units lie between. The trimmers stay as they were set.",
+			Meaning: fmt.Sprintf("Low and high: 95 %% of the units lie between. The trimmers stay as they were set at %s.", b.Conditions[0].Name),
 		}
 		d.Target, d.Limits = driftLimits(b, output)
 		for _, r := range rows {

@@ -177,6 +177,7 @@ func TestParseRefuses(t *testing.T) {
 		{"root of a dotted name", "root(a.b, 0, 1, a.b)", 8, "plain name", "unknown"},
 		{"root without its unknown", "root(i, 0, 1, x)", 15, "does not contain", "unknown"},
 		{"root whose unknown is an inner one", "root(i, 0, 1, root(i, 0, 1, i))", 15, "does not contain", "unknown"},
+		{"33 levels of brackets", strings.Repeat("(", 33) + "1" + strings.Repeat(")", 33), 33, "nested too deep", "32"},
 		{"reserved half of a name", "let.x", 1, "reserved", "another name"},
 	}
 	for _, r := range rows {

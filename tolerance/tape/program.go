@@ -329,7 +329,6 @@ func (c *compiler) loop(r Ref, s *scope, depth int) *loop {
 		l.bracketed = s.slot[flag]
 	}
 	body.slot[n.c] = l.unknown
-	body.last[n.d] = math.MaxInt
 	l.body = c.emit(body, depth+1)
 	l.residual = c.slotOf(n.d, body)
 	for _, a := range c.outer(body, n.d) {
@@ -338,12 +337,11 @@ func (c *compiler) loop(r Ref, s *scope, depth int) *loop {
 		}
 	}
 	c.p.outer = max(c.p.outer, len(l.outer))
-	for m, slot := range body.slot {
-		if m != n.c {
+	for _, m := range body.nodes {
+		if slot, ok := body.slot[m]; ok {
 			c.release(slot)
 		}
 	}
-	slices.Sort(c.idle) // the map's order must not show
 	return l
 }
 

@@ -23,3 +23,19 @@ func (g *Graph) Kinks(r Ref) []Ref {
 	visit(r)
 	return kinks
 }
+
+// Dependents says of every value of the graph, by its Ref, whether it depends on
+// an input column.
+func (g *Graph) Dependents(column int) []bool {
+	depends := make([]bool, len(g.nodes))
+	for r, n := range g.nodes { // arguments come before what is made of them
+		if n.op == input {
+			depends[r] = n.payload == uint64(column)
+			continue
+		}
+		for _, a := range n.arguments() {
+			depends[r] = depends[r] || depends[a]
+		}
+	}
+	return depends
+}

@@ -30,3 +30,26 @@ func TestKinks(t *testing.T) {
 		}
 	}
 }
+
+func TestDependents(t *testing.T) {
+	g := NewGraph()
+	x, y := g.Input(), g.Input()
+	u := g.Unknown()
+	root := g.Root(u, g.Constant(0), g.Constant(1), g.Sub(u, y))
+	byX, byY := g.Dependents(0), g.Dependents(1)
+	for _, c := range []struct {
+		name string
+		of   Ref
+		x, y bool
+	}{
+		{"x", x, true, false}, {"constant", g.Constant(3), false, false}, {"root", root, false, true},
+		{"both", g.Mul(x, root), true, true},
+	} {
+		if c.of >= Ref(len(byX)) { // made after the question was asked
+			byX, byY = g.Dependents(0), g.Dependents(1)
+		}
+		if byX[c.of] != c.x || byY[c.of] != c.y {
+			t.Errorf("%s depends on x %v and y %v, want %v and %v", c.name, byX[c.of], byY[c.of], c.x, c.y)
+		}
+	}
+}

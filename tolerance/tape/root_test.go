@@ -119,25 +119,22 @@ func TestRootSteps(t *testing.T) {
 	}
 }
 
-// countSteps finds how few steps the search of one lane needs, by replaying it.
+// countSteps replays the search of lane 0.
 func countSteps(f *Frame, l *loop) int {
-	s := &f.solvers[l.depth]
+	var s search
 	x, residual := f.cols[l.unknown], f.cols[l.residual]
 	low, high := f.cols[l.low][0], f.cols[l.high][0]
 	x[0] = low
 	f.run(l.body)
-	s.f2[0] = residual[0]
+	s.f2 = residual[0]
 	x[0] = high
 	f.run(l.body)
-	s.f1[0] = residual[0]
-	if s.state[0] = s.start(0, low, high); s.state[0] != searching {
-		return 0
-	}
-	x[0] = s.first(0)
+	s.f1 = residual[0]
+	x[0] = s.start(low, high)
 	steps := 0
-	for ; s.state[0] == searching && steps < 1000; steps++ {
+	for ; s.state == searching && steps < 1000; steps++ {
 		f.run(l.body)
-		x[0] = s.step(0, x[0], residual[0])
+		x[0] = s.step(x[0], residual[0])
 	}
 	return steps
 }

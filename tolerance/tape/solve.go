@@ -18,126 +18,116 @@ const (
 	hopeless // NaN
 )
 
-// solver is the state of a search, a lane each: x1 and x2 enclose the root with
-// residuals f1 and f2 of opposite sign, x1 the newer; x3, f3 came before.
+// search is the search of one lane, a cache line: x1 and x2 enclose the root
+// with residuals f1 and f2 of opposite sign, x1 the newer; x3, f3 came before.
+type search struct {
+	x1, f1, x2, f2, x3, f3 float64
+	floor                  float64 // the size below which differences do not count
+	state                  ending
+}
+
+// solver is the memory of a loop.
 type solver struct {
-	x1, f1, x2, f2, x3, f3 []float64
-	shift, slope           []float64
-	floor                  []float64
-	state                  []ending
-	saved                  [][]float64
+	lanes        []search
+	shift, slope []float64   // of the residual
+	saved        [][]float64 // tangents set aside
 }
 
 func newSolver(lanes, outer int) solver {
-	var s solver
-	for _, c := range []*[]float64{&s.x1, &s.f1, &s.x2, &s.f2, &s.x3, &s.f3, &s.shift, &s.slope, &s.floor} {
-		*c = make([]float64, lanes)
-	}
-	s.state = make([]ending, lanes)
-	s.saved = make([][]float64, outer)
-	return s
+	return solver{lanes: make([]search, lanes), shift: make([]float64, lanes), slope: make([]float64, lanes), saved: make([][]float64, outer)}
 }
 
 // solve runs the loop of a root: both ends, then steps until every lane is
 // done. Lanes that are done keep their result while the others go on, so no
 // lane depends on its neighbours.
 func (f *Frame) solve(l *loop) {
-	s := &f.solvers[l.depth]
 	x, low, high := f.cols[l.unknown], f.cols[l.low], f.cols[l.high]
 	residual := f.cols[l.residual]
-	n := f.n
+	lanes := f.solvers[l.depth].lanes[:f.n]
 	copy(x, low)
 	f.run(l.body)
-	copy(s.f2[:n], residual)
+	for i := range lanes {
+		lanes[i].f2 = residual[i]
+	}
 	copy(x, high)
 	f.run(l.body)
-	copy(s.f1[:n], residual)
 	going := 0
-	for i := range n {
-		s.state[i] = s.start(i, low[i], high[i])
-		if s.state[i] == searching {
-			x[i] = s.first(i)
+	for i := range lanes {
+		s := &lanes[i]
+		s.f1 = residual[i]
+		x[i] = s.start(low[i], high[i])
+		if s.state == searching {
 			going++
-		} else {
-			x[i] = s.result(i, low[i], high[i])
 		}
 	}
 	for step := 0; going > 0 && step < maxSteps; step++ {
 		f.run(l.body)
 		going = 0
-		for i := range n {
-			if s.state[i] != searching {
+		for i := range lanes {
+			s := &lanes[i]
+			if s.state != searching {
 				continue
 			}
-			x[i] = s.step(i, x[i], residual[i])
-			if s.state[i] == searching {
+			x[i] = s.step(x[i], residual[i])
+			if s.state == searching {
 				going++
 			}
 		}
 	}
-	for i := range n {
-		if s.state[i] == searching {
-			x[i] = s.best(i)
-			s.state[i] = found
+	for i := range lanes {
+		if s := &lanes[i]; s.state == searching {
+			x[i], s.state = s.best(), found
 		}
 	}
 	if l.bracketed >= 0 {
-		s.flag(f.cols[l.bracketed])
+		writeBracketed(f.cols[l.bracketed], lanes)
 	}
 }
 
-// start looks at the ends of a lane.
-func (s *solver) start(i int, low, high float64) ending {
-	f1, f2 := s.f1[i], s.f2[i]
-	s.x1[i], s.x2[i] = high, low
-	s.floor[i] = 0
+// start looks at the residuals at both ends and returns the first point to try,
+// or the result.
+func (s *search) start(low, high float64) float64 {
+	s.x1, s.x2 = high, low
+	s.floor = 0
 	if !(low > 0 && high > 0) && !(low < 0 && high < 0) {
 		// The root may be 0, of which no fraction is small enough.
-		s.floor[i] = 1e-18 * math.Abs(high-low)
+		s.floor = 1e-18 * math.Abs(high-low)
 	}
-	switch {
-	case !(math.Abs(low) <= math.MaxFloat64) || !(math.Abs(high) <= math.MaxFloat64) || f1 != f1 || f2 != f2:
-		return hopeless
+	finite := math.Abs(low) <= math.MaxFloat64 && math.Abs(high) <= math.MaxFloat64
+	switch f1, f2 := s.f1, s.f2; {
+	case !finite || f1 != f1 || f2 != f2:
+		s.state = hopeless
+		return math.NaN()
 	case f2 == 0:
-		s.x1[i], s.f1[i] = low, f2
-		return found
-	case f1 == 0:
-		return found
-	case (f1 > 0) == (f2 > 0):
-		if math.Abs(f1) < math.Abs(f2) {
-			return clampedHigh
-		}
-		return clampedLow
-	}
-	return searching
-}
-
-// result is the value of a lane that ended at once.
-func (s *solver) result(i int, low, high float64) float64 {
-	switch s.state[i] {
-	case clampedLow:
+		s.state = found
 		return low
-	case clampedHigh:
+	case f1 == 0:
+		s.state = found
 		return high
-	case found:
-		return s.x1[i]
+	case (f1 > 0) != (f2 > 0):
+		s.state = searching
+		return s.chord()
+	case math.Abs(f1) < math.Abs(f2):
+		s.state = clampedHigh
+		return high
 	}
-	return math.NaN()
+	s.state = clampedLow
+	return low
 }
 
-// first is where the chord meets zero: at once the root if the residual is a
-// straight line.
-func (s *solver) first(i int) float64 {
-	t := s.f1[i] / (s.f1[i] - s.f2[i])
+// chord is where the straight line between the ends meets zero: at once the
+// root if the residual is one.
+func (s *search) chord() float64 {
+	t := s.f1 / (s.f1 - s.f2)
 	if !(t > 0 && t < 1) {
 		t = 0.5
 	}
-	return s.between(i, t)
+	return s.between(t)
 }
 
 // between is the point a fraction t of the way from x1 to x2, not outside.
-func (s *solver) between(i int, t float64) float64 {
-	x1, x2 := s.x1[i], s.x2[i]
+func (s *search) between(t float64) float64 {
+	x1, x2 := s.x1, s.x2
 	x := x1 + float64(t*(x2-x1))
 	if x1 > x2 {
 		x1, x2 = x2, x1
@@ -158,11 +148,11 @@ func clamped(x, low, high float64) float64 {
 }
 
 // best is the end of the bracket with the smaller residual.
-func (s *solver) best(i int) float64 {
-	if math.Abs(s.f1[i]) < math.Abs(s.f2[i]) {
-		return s.x1[i]
+func (s *search) best() float64 {
+	if math.Abs(s.f1) < math.Abs(s.f2) {
+		return s.x1
 	}
-	return s.x2[i]
+	return s.x2
 }
 
 // step takes the residual fx at x in and returns the next point to try, or the
@@ -170,41 +160,41 @@ func (s *solver) best(i int) float64 {
 // three points say it converges, halving elsewhere (T. R. Chandrupatla,
 // Advances in Engineering Software 28 (1997) 145–149). Halving a bracket that
 // spans decades is done in the logarithm.
-func (s *solver) step(i int, x, fx float64) float64 {
+func (s *search) step(x, fx float64) float64 {
 	if fx != fx {
-		s.state[i] = hopeless
+		s.state = hopeless
 		return fx
 	}
-	if (fx > 0) == (s.f1[i] > 0) {
-		s.x3[i], s.f3[i] = s.x1[i], s.f1[i]
+	if (fx > 0) == (s.f1 > 0) {
+		s.x3, s.f3 = s.x1, s.f1
 	} else {
-		s.x3[i], s.f3[i] = s.x2[i], s.f2[i]
-		s.x2[i], s.f2[i] = s.x1[i], s.f1[i]
+		s.x3, s.f3 = s.x2, s.f2
+		s.x2, s.f2 = s.x1, s.f1
 	}
-	s.x1[i], s.f1[i] = x, fx
-	width := math.Abs(s.x2[i] - s.x1[i])
-	best := s.best(i)
+	s.x1, s.f1 = x, fx
+	width := math.Abs(s.x2 - s.x1)
+	best := s.best()
 	const ulp = 0x1p-52
-	limit := (2*ulp*math.Abs(best) + s.floor[i]) / width
+	limit := (2*ulp*math.Abs(best) + s.floor) / width
 	if fx == 0 {
-		s.state[i] = found
+		s.state = found
 		return x
 	}
 	if !(limit <= 0.5) {
-		s.state[i] = found
+		s.state = found
 		return best
 	}
-	if t, ok := s.interpolate(i); ok {
-		return s.between(i, clamped(t, limit, 1-limit))
+	if t, ok := s.interpolate(); ok {
+		return s.between(clamped(t, limit, 1-limit))
 	}
-	return s.middle(i)
+	return s.middle()
 }
 
 // interpolate is the inverse quadratic step, as a fraction of the way from x1
 // to x2, and whether it may be trusted.
-func (s *solver) interpolate(i int) (float64, bool) {
-	x1, x2, x3 := s.x1[i], s.x2[i], s.x3[i]
-	f1, f2, f3 := s.f1[i], s.f2[i], s.f3[i]
+func (s *search) interpolate() (float64, bool) {
+	x1, x2, x3 := s.x1, s.x2, s.x3
+	f1, f2, f3 := s.f1, s.f2, s.f3
 	xi := (x1 - x2) / (x3 - x2)
 	phi := (f1 - f2) / (f3 - f2)
 	if !(float64(phi*phi) < xi && float64((1-phi)*(1-phi)) < 1-xi) {
@@ -217,21 +207,21 @@ func (s *solver) interpolate(i int) (float64, bool) {
 	return t, t == t
 }
 
-func (s *solver) middle(i int) float64 {
-	x1, x2 := s.x1[i], s.x2[i]
+func (s *search) middle() float64 {
+	x1, x2 := s.x1, s.x2
 	if x1 > 0 && x2 > 0 && (x1 > 8*x2 || x2 > 8*x1) {
 		return math.Sqrt(x1) * math.Sqrt(x2)
 	}
 	if x1 < 0 && x2 < 0 && (x1 < 8*x2 || x2 < 8*x1) {
 		return -math.Sqrt(-x1) * math.Sqrt(-x2)
 	}
-	return s.between(i, 0.5)
+	return s.between(0.5)
 }
 
-// flag writes the second result of a root: whether it was bracketed.
-func (s *solver) flag(dst []float64) {
-	for i := range dst {
-		switch s.state[i] {
+// writeBracketed writes the second result of a root: whether it was bracketed.
+func writeBracketed(dst []float64, lanes []search) {
+	for i := range lanes {
+		switch lanes[i].state {
 		case found:
 			dst[i] = 1
 		case hopeless:
@@ -265,7 +255,7 @@ func (f *Frame) solveTangents(l *loop) {
 	}
 	dlow, dhigh := f.tans[l.low], f.tans[l.high]
 	for i := range n {
-		switch s.state[i] {
+		switch s.lanes[i].state {
 		case clampedLow:
 			dx[i] = dlow[i]
 		case clampedHigh:

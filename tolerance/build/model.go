@@ -213,29 +213,24 @@ func (c *compiler) compilePoints(settings []tape.Ref) {
 // findTrims notes which trims everything depends on: those whose setting
 // error it reads.
 func (c *compiler) findTrims() {
-	for i := range c.Outputs {
-		c.Outputs[i].Trims = c.trimsOf(c.Outputs[i].Node)
-	}
-	for i := range c.Points {
-		c.Points[i].Trims = c.trimsOf(c.Points[i].Loaded)
-	}
-	for i := range c.Trims {
-		c.Trims[i].Trims = c.trimsOf(c.Trims[i].AtLow, c.Trims[i].AtHigh)
-	}
-}
-
-func (c *compiler) trimsOf(nodes ...tape.Ref) []int {
-	read := map[int]bool{}
-	for _, i := range c.Graph.Program(nodes...).Inputs() {
-		read[i] = true
-	}
-	var trims []int
-	for i, t := range c.Trims {
-		if read[t.ErrorInput] {
-			trims = append(trims, i)
+	for t, trim := range c.Trims {
+		depends := c.Graph.Dependents(trim.ErrorInput)
+		for i := range c.Outputs {
+			if depends[c.Outputs[i].Node] {
+				c.Outputs[i].Trims = append(c.Outputs[i].Trims, t)
+			}
+		}
+		for i := range c.Points {
+			if depends[c.Points[i].Loaded] {
+				c.Points[i].Trims = append(c.Points[i].Trims, t)
+			}
+		}
+		for i := range c.Trims {
+			if depends[c.Trims[i].AtLow] || depends[c.Trims[i].AtHigh] {
+				c.Trims[i].Trims = append(c.Trims[i].Trims, t)
+			}
 		}
 	}
-	return trims
 }
 
 // fail keeps the first error.

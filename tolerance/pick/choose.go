@@ -48,7 +48,7 @@ func Choose(ctx context.Context, b *build.Build, o Options) (*Result, *build.Bui
 	if err != nil {
 		return nil, nil, err
 	}
-	return c.result(problem, found)
+	return c.result(found)
 }
 
 // chooser turns a build's openings into a problem.
@@ -58,7 +58,7 @@ type chooser struct {
 	build    *build.Build
 	fittings [][]build.Fitting // sold ones, of each opening
 	base     []build.Fitting   // the first of each
-	demands  []demandNode
+	pictures *pictures
 	refused  map[string]string // choices that the simulation refused, and why
 }
 
@@ -136,27 +136,26 @@ func (c *chooser) cost(choice []int) int64 {
 }
 
 // confirm simulates a choice: first a few batches, which refuse what is far
-// off, then as many units as the report will show.
+// off, then as many units as the report will show. Worst cases, which cost
+// more, are searched in between.
 func (c *chooser) confirm(choice []int) (bool, error) {
-	b, err := c.fit(choice)
+	m, err := c.compile(choice)
 	if err != nil {
 		return false, err
 	}
-	m, err := b.Compile()
-	if err != nil {
-		return false, err
-	}
-	quick := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, quickUnits)}
-	targets, _, err := spread.Judge(c.context, m, quick)
-	if err != nil {
-		return false, err
-	}
-	for i, t := range targets {
-		if asked := b.Targets[i]; !t.Met && (asked.WorstCase || float64(t.ShareInterval[1]) < asked.Share) {
-			return c.refuse(choice, t), nil
+	for _, units := range []int{240, 1920} {
+		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, units)}
+		targets, _, err := spread.JudgeShares(c.context, m, o)
+		if err != nil {
+			return false, err
+		}
+		for i, t := range targets {
+			if asked := m.Build.Targets[i]; !asked.WorstCase && float64(t.ShareInterval[1]) < asked.Share {
+				return c.refuse(choice, t), nil
+			}
 		}
 	}
-	targets, _, err = spread.Judge(c.context, m, spread.Options{Seed: c.Seed, Units: c.Units})
+	targets, _, err := spread.Judge(c.context, m, spread.Options{Seed: c.Seed, Units: c.Units})
 	if err != nil {
 		return false, err
 	}
@@ -168,12 +167,9 @@ func (c *chooser) confirm(choice []int) (bool, error) {
 	return true, nil
 }
 
-// The quick simulation's size, and what keeps its draws apart from those that
+// quickSeed keeps the draws of the quick simulations apart from those that
 // confirm.
-const (
-	quickUnits = 960
-	quickSeed  = 0x9e3779b97f4a7c15
-)
+const quickSeed = 0x9e3779b97f4a7c15
 
 // refuse notes why a choice was refused.
 func (c *chooser) refuse(choice []int, t spread.TargetReport) bool {

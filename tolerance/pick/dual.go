@@ -7,24 +7,24 @@ import (
 
 // A part of a relaxation: some lines are settled and what they take is
 // subtracted; the others are open.
-type part struct {
+type subproblem struct {
 	open  []int     // lines still open
 	base  float64   // money settled
 	limit []float64 // what is left of each row
 }
 
-func (r *relaxation) whole() part {
+func (r *relaxation) whole() subproblem {
 	open := make([]int, len(r.kept))
 	for i := range open {
 		open[i] = i
 	}
-	return part{open, float64(r.p.Base), r.limit}
+	return subproblem{open, float64(r.p.Base), r.limit}
 }
 
 // settle is the part left when the lines given are settled to the kept options
 // of choice (indexes into kept).
-func (r *relaxation) settle(lines []int, choice []int) part {
-	s := part{base: float64(r.p.Base), limit: slices.Clone(r.limit)}
+func (r *relaxation) settle(lines []int, choice []int) subproblem {
+	s := subproblem{base: float64(r.p.Base), limit: slices.Clone(r.limit)}
 	settled := make([]bool, len(r.kept))
 	for _, i := range lines {
 		settled[i] = true
@@ -62,7 +62,7 @@ func (r *relaxation) priced(i, o int, prices []float64) float64 {
 //	base - sum prices*limit + sum over lines of min over options of priced
 //
 // valid for every prices >= 0. best[i] becomes the option at the minimum.
-func (r *relaxation) bound(s part, prices []float64, best []int) float64 {
+func (r *relaxation) bound(s subproblem, prices []float64, best []int) float64 {
 	sum := s.base
 	for k, price := range prices {
 		sum -= price * s.limit[k]
@@ -82,7 +82,7 @@ func (r *relaxation) bound(s part, prices []float64, best []int) float64 {
 // ascend raises the bound by subgradient steps of Polyak's length toward the
 // target, starting at and improving prices in place. It returns the best bound
 // and calls visit, when not nil, with the choice at each step.
-func (r *relaxation) ascend(s part, prices []float64, target float64, steps int, visit func(best []int)) float64 {
+func (r *relaxation) ascend(s subproblem, prices []float64, target float64, steps int, visit func(best []int)) float64 {
 	best := make([]int, len(r.kept))
 	at := slices.Clone(prices)
 	slope := make([]float64, len(prices))
@@ -120,7 +120,7 @@ func (r *relaxation) ascend(s part, prices []float64, target float64, steps int,
 // slope fills the subgradient, how far the choice at the minimum breaks each
 // row, with directions that lead below a zero price left out; it returns the
 // squared length.
-func (r *relaxation) slope(s part, prices []float64, best []int, dst []float64) float64 {
+func (r *relaxation) slope(s subproblem, prices []float64, best []int, dst []float64) float64 {
 	for k := range dst {
 		dst[k] = -s.limit[k]
 	}

@@ -2,21 +2,25 @@ package pick
 
 import (
 	"math"
+	"slices"
 
-	"batchwright/bom/order"
+	"batchwright/bom/part"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/spread"
 	"batchwright/tolerance/tape"
 )
 
-// The linear picture is normal and first-order; the units are neither quite.
-// A bounded shape lies within a limit more often than its normal stand-in
-// (one bimodal part with its half width on the limit: always, against 81 %),
-// so a share is asked for with this much less, and a worst case's half width
-// counts for this much. What passes by mistake is refused by the simulation.
+// The linear picture is normal and first-order; the units are neither quite. A
+// bounded shape lies within a limit more often than its normal stand-in: one
+// bimodal part with its half width on the limit always, against 81 %. Mixed
+// with others it soon looks normal. So a share is asked for with shareSlack
+// less, and up to boundedSlack less the more of the variance one such source
+// makes; a worst case's half width counts for halfSlack. What passes by mistake
+// is refused by the simulation.
 const (
-	shareSlack = 0.2
-	halfSlack  = 0.7
+	shareSlack   = 0.02
+	boundedSlack = 0.18
+	halfSlack    = 0.7
 )
 
 // demandNode is a target at one condition: a node of the model and its limits.
@@ -34,8 +38,7 @@ func listDemands(m *build.Model) []demandNode {
 	var list []demandNode
 	for t, target := range m.Build.Targets {
 		d := demandNode{target: t, Demand: Demand{
-			Low: target.Low, High: target.High, WorstCase: target.WorstCase,
-			Share: math.Max(0, target.Share-shareSlack),
+			Low: target.Low, High: target.High, WorstCase: target.WorstCase, Share: target.Share,
 		}}
 		if target.Trim >= 0 {
 			d.node = func(m *build.Model) tape.Ref {
@@ -53,213 +56,157 @@ func listDemands(m *build.Model) []demandNode {
 	return list
 }
 
-// picture is the linear picture of a fitted build: for each demand the mean,
-// and what every part adds to variance and half width.
-type picture struct {
-	means    []float64
-	variance []map[string]float64 // by reference
-	half     []map[string]float64
+// pictures make the linear picture of any choice. Choices whose equations are
+// alike but for their scatter share a graph, so that a picture costs one
+// differentiation.
+type pictures struct {
+	*chooser
+	demands []demandNode
+	graphs  map[string]*graph
+	options [][]map[string]build.Input // of each line and option: its inputs, by reference and parameter
 }
 
-func newPicture(m *build.Model, demands []demandNode) picture {
-	var refs []tape.Ref
-	for _, d := range demands {
-		refs = append(refs, d.node(m))
-	}
-	l := spread.Linearise(m, refs...)
-	p := picture{means: l.Values}
-	for k := range demands {
-		variance, half := map[string]float64{}, map[string]float64{}
-		_, terms := l.Variance(k)
-		for _, t := range terms {
-			variance[m.Inputs[t.Input].Ref] += t.Variance
-		}
-		for i, x := range m.Inputs {
-			half[x.Ref] += math.Abs(l.Slopes[k][i]) * x.HalfWidth
-		}
-		p.variance, p.half = append(p.variance, variance), append(p.half, half)
-	}
-	return p
+// graph is a compiled choice that stands for all with its equations.
+type graph struct {
+	inputs []build.Input
+	slopes *spread.Differentiator
 }
 
-// of is what some parts add to a demand. Correlation may make a part's share
-// of a variance negative; a lot's whole share is not.
-func (p picture) of(k int, refs []string) (variance, half float64) {
-	for _, ref := range refs {
-		variance += p.variance[k][ref]
-		half += p.half[k][ref]
-	}
-	return math.Max(0, variance), half * halfSlack
-}
+func inputKey(x build.Input) string { return x.Ref + "|" + x.Parameter }
 
-// problem compiles the openings into a search: each option on its own, the
-// other openings as they are in the base.
-func (c *chooser) problem() (*Problem, error) {
-	fitted, err := c.build.Fit(c.base)
+// newPictures compiles each option on its own, the other lines as in the base.
+func newPictures(c *chooser) (*pictures, error) {
+	p := &pictures{chooser: c, graphs: map[string]*graph{}}
+	base := make([]int, len(c.fittings))
+	m, err := c.compile(base)
 	if err != nil {
 		return nil, err
 	}
-	m, err := fitted.Compile()
-	if err != nil {
-		return nil, err
-	}
-	c.demands = listDemands(m)
-	base := newPicture(m, c.demands)
-	p := &Problem{Cost: c.cost, Confirm: c.confirm, Base: c.fixedMoney()}
-	for k, d := range c.demands {
-		d.BaseMean = base.means[k]
-		d.BaseVariance, d.BaseHalf = base.of(k, c.fixedRefs(m))
-		p.Demands = append(p.Demands, d.Demand)
-	}
+	p.demands = listDemands(m)
 	for i := range c.fittings {
-		line, err := c.line(i, base)
-		if err != nil {
-			return nil, err
+		var list []map[string]build.Input
+		for j := range c.fittings[i] {
+			choice := slices.Clone(base)
+			choice[i] = j
+			m, err := c.compile(choice)
+			if err != nil {
+				return nil, err
+			}
+			list = append(list, ofLine(m, c.refs(i)))
 		}
-		p.Lines = append(p.Lines, line)
+		p.options = append(p.options, list)
 	}
 	return p, nil
 }
 
-// line compiles the options of one opening.
-func (c *chooser) line(i int, base picture) (Line, error) {
-	var line Line
-	refs := c.refs(i)
-	for _, f := range c.fittings[i] {
-		choice := append([]build.Fitting(nil), c.base...)
-		choice[i] = f
-		b, err := c.build.Fit(choice)
-		if err != nil {
-			return line, err
-		}
-		m, err := b.Compile()
-		if err != nil {
-			return line, err
-		}
-		own := newPicture(m, c.demands)
-		o := Option{Alone: c.alone(i, f)}
-		o.Floor = c.floor(i, f, o.Alone)
-		for k := range c.demands {
-			e := Effect{Mean: own.means[k] - base.means[k]}
-			e.Variance, e.Half = own.of(k, refs)
-			o.Effects = append(o.Effects, e)
-		}
-		line.Options = append(line.Options, o)
-	}
-	return line, nil
-}
-
-// refs are the references at an opening's positions.
-func (c *chooser) refs(i int) []string {
-	var refs []string
-	for _, position := range c.build.Openings[i].Positions {
-		refs = append(refs, c.build.Place(position).Part.Ref)
-	}
-	return refs
-}
-
-// fixedRefs are the references of everything that scatters and is not open.
-func (c *chooser) fixedRefs(m *build.Model) []string {
-	open := map[string]bool{}
-	for i := range c.fittings {
-		for _, ref := range c.refs(i) {
-			open[ref] = true
-		}
-	}
-	var refs []string
+// ofLine are the inputs of a model that belong to some references.
+func ofLine(m *build.Model, refs []string) map[string]build.Input {
+	inputs := map[string]build.Input{}
 	for _, x := range m.Inputs {
-		if !open[x.Ref] {
-			open[x.Ref] = true // each once
-			refs = append(refs, x.Ref)
+		if slices.Contains(refs, x.Ref) {
+			inputs[inputKey(x)] = x
 		}
 	}
-	return refs
+	return inputs
 }
 
-// fixedMoney is what the parts that are not open cost by themselves.
-func (c *chooser) fixedMoney() int64 {
-	open := map[string]bool{}
-	for i := range c.fittings {
-		for _, ref := range c.refs(i) {
-			open[ref] = true
-		}
+// compile fits a choice and compiles it.
+func (c *chooser) compile(choice []int) (*build.Model, error) {
+	b, err := c.fit(choice)
+	if err != nil {
+		return nil, err
 	}
-	parts := c.build.Parts()
-	var fixed = parts[:0:0]
-	for _, p := range parts {
-		if !open[p.Ref] {
-			fixed = append(fixed, p)
-		}
-	}
-	return int64(c.order(fixed).Total)
+	return b.Compile()
 }
 
-// alone says whether nothing else in the build, and nothing that may fill
-// another opening, is bought on the same line as a fitting.
-func (c *chooser) alone(i int, f build.Fitting) bool {
-	key := order.Key(f.Part)
-	for j, others := range c.fittings {
-		for _, other := range others {
-			if j != i && order.Key(other.Part) == key {
-				return false
+// of is the linear picture of a choice.
+func (p *pictures) of(choice []int) (*spread.Linear, error) {
+	g, err := p.graph(choice)
+	if err != nil {
+		return nil, err
+	}
+	inputs := slices.Clone(g.inputs)
+	for i := range choice {
+		own := p.options[i][choice[i]]
+		for k, x := range inputs {
+			if y, ok := own[inputKey(x)]; ok {
+				inputs[k] = y
 			}
 		}
 	}
-	return c.fixedCount(key) == 0
+	return g.slopes.At(inputs), nil
 }
 
-// fixedCount is how many parts that are not open are bought on a line.
-func (c *chooser) fixedCount(key string) int {
-	open := map[string]bool{}
-	for i := range c.fittings {
-		for _, ref := range c.refs(i) {
-			open[ref] = true
-		}
+// graph is the compiled choice whose equations are those of a choice.
+func (p *pictures) graph(choice []int) (*graph, error) {
+	k := p.equations(choice)
+	if g, ok := p.graphs[k]; ok {
+		return g, nil
 	}
-	n := 0
-	for _, p := range c.build.Parts() {
-		if !open[p.Ref] && order.Key(p) == key {
-			n++
-		}
+	m, err := p.compile(choice)
+	if err != nil {
+		return nil, err
 	}
-	return n
+	var refs []tape.Ref
+	for _, d := range p.demands {
+		refs = append(refs, d.node(m))
+	}
+	g := &graph{m.Inputs, spread.NewDifferentiator(m, refs...)}
+	p.graphs[k] = g
+	return g, nil
 }
 
-// floor is the least that an option can add to the money: its own price where
-// it is alone on its line; otherwise the least over every number of pieces
-// that others may put on that line.
-func (c *chooser) floor(i int, f build.Fitting, alone bool) int64 {
-	own := len(c.build.Openings[i].Positions)
-	if alone {
-		money, _ := c.buying(f.Part, own)
-		return int64(money)
+// totals are what a demand is judged by.
+func totals(l *spread.Linear, k int) Effect {
+	t := Effect{Mean: l.Values[k]}
+	t.Variance, _ = l.Variance(k)
+	for i, x := range l.Inputs {
+		t.Half += math.Abs(l.Slopes[k][i]) * x.HalfWidth * halfSlack
 	}
-	least := int64(math.MaxInt64)
-	for others := range c.company(i, f) {
-		with, _ := c.buying(f.Part, others+own)
-		without, _ := c.buying(f.Part, others)
-		least = min(least, int64(with-without))
-	}
-	return least
+	return t
 }
 
-// company is every number of pieces that others may put on a fitting's line.
-func (c *chooser) company(i int, f build.Fitting) map[int]bool {
-	key := order.Key(f.Part)
-	counts := map[int]bool{c.fixedCount(key): true}
-	for j, others := range c.fittings {
-		if j == i {
+// judge judges a choice against every demand.
+func (p *pictures) judge(choice []int) Verdict {
+	l, err := p.of(choice)
+	if err != nil {
+		return Verdict{Shortfall: math.Inf(1)} // Confirm would say the same
+	}
+	v := Verdict{Meets: true}
+	for k := range p.demands {
+		d, t := p.demands[k].Demand, totals(l, k)
+		d.Share = math.Max(0, d.Share-shareSlack-boundedSlack*dominance(l, k, t.Variance))
+		if d.Holds(t.Mean, t.Variance, t.Half) {
 			continue
 		}
-		for _, other := range others {
-			if order.Key(other.Part) != key {
-				continue
-			}
-			for n := range counts {
-				counts[n+len(c.build.Openings[j].Positions)] = true
-			}
-			break
+		miss := d.Miss(t.Mean, t.Variance, t.Half) / d.Scale()
+		if v.Meets || !(miss <= v.Shortfall) {
+			v = Verdict{Shortfall: miss, Worst: k}
 		}
 	}
-	return counts
+	return v
+}
+
+// dominance is the square of the largest share of a demand's variance that one
+// source of a shape other than normal makes; the pieces of a lot are one.
+func dominance(l *spread.Linear, k int, variance float64) float64 {
+	_, terms := l.Variance(k)
+	sources := map[int]float64{}
+	var largest float64
+	for _, t := range terms {
+		x := l.Inputs[t.Input]
+		if x.Shape == part.Normal || x.Shape == "" {
+			continue
+		}
+		source := -1 - t.Input // its own
+		if x.Lot >= 0 {
+			source = x.Lot
+		}
+		sources[source] += t.Variance
+		largest = math.Max(largest, sources[source])
+	}
+	if !(variance > 0) {
+		return 1
+	}
+	return (largest / variance) * (largest / variance)
 }

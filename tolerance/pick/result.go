@@ -13,8 +13,16 @@ type Choice struct {
 	Value     float64     `json:"value"`
 	Text      string      `json:"-"` // value as people write it
 	Combine   string      `json:"combine"`
+	Parts     []Piece     `json:"parts"`     // what is combined; one piece where Combine is "single"
 	UnitCost  offer.Money `json:"unit_cost"` // of this line in one unit, spares not counted
 	Why       string      `json:"why"`       // from the numbers, one sentence
+}
+
+// Piece is one part that is bought for a position.
+type Piece struct {
+	Family    string  `json:"family"`
+	Value     float64 `json:"value"`
+	Tolerance float64 `json:"tolerance"`
 }
 
 // Result is the outcome of a search.

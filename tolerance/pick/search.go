@@ -269,6 +269,10 @@ func (s *search) ask(choice []int, cost int64) (ending, error) {
 	return doubted, nil
 }
 
+// remembered is how many answers are kept at most; a choice met again after
+// that is judged again.
+const remembered = 1 << 18
+
 // judge says whether Judge passes a choice and remembers the answer.
 func (s *search) judge(choice []int, cost int64) bool {
 	key := name(choice)
@@ -277,7 +281,9 @@ func (s *search) judge(choice []int, cost int64) bool {
 	}
 	v := s.p.judge(choice)
 	s.out.Examined++
-	s.answers[key] = answer{judged: true, meets: v.Meets}
+	if len(s.answers) < remembered {
+		s.answers[key] = answer{judged: true, meets: v.Meets}
+	}
 	s.see(choice, cost, v)
 	return v.Meets
 }
@@ -293,10 +299,7 @@ func (s *search) confirm(choice []int) (bool, error) {
 	}
 	if !ok {
 		s.refused++
-		key := name(choice)
-		a := s.answers[key]
-		a.refused = true
-		s.answers[key] = a
+		s.answers[name(choice)] = answer{judged: true, meets: true, refused: true}
 		s.forget(choice)
 	}
 	return ok, nil

@@ -55,18 +55,30 @@ func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
 // Judge simulates only what the targets ask about, and gives their verdicts
 // and the yield.
 func Judge(ctx context.Context, m *build.Model, o Options) ([]TargetReport, YieldReport, error) {
-	s, err := simulate(ctx, newNodes(m, targetOutputs(m), false), o)
-	if err != nil {
-		return nil, YieldReport{}, err
-	}
 	worst := make([]*WorstCase, len(m.Outputs))
-	var list []TargetReport
 	for t, target := range m.Build.Targets {
 		if target.WorstCase {
 			for _, i := range m.Targets[t].Outputs {
 				worst[i] = worstCase(m, m.Outputs[i].Node, m.Outputs[i].Trims)
 			}
 		}
+	}
+	return judge(ctx, m, o, worst)
+}
+
+// JudgeShares is Judge without a search for worst cases: a target by worst case
+// has its share, but counts as missed.
+func JudgeShares(ctx context.Context, m *build.Model, o Options) ([]TargetReport, YieldReport, error) {
+	return judge(ctx, m, o, nil)
+}
+
+func judge(ctx context.Context, m *build.Model, o Options, worst []*WorstCase) ([]TargetReport, YieldReport, error) {
+	s, err := simulate(ctx, newNodes(m, targetOutputs(m), false), o)
+	if err != nil {
+		return nil, YieldReport{}, err
+	}
+	var list []TargetReport
+	for t := range m.Build.Targets {
 		list = append(list, s.target(t, worst))
 	}
 	return list, s.yield(), nil
@@ -146,6 +158,10 @@ func (s *sample) target(t int, worst []*WorstCase) TargetReport {
 		if low < target.Share && high > target.Share {
 			r.Why = fmt.Sprintf("close: %.4g %% of the units comply, between %.4g %% and %.4g %% at 95 %% confidence", 100*share, 100*low, 100*high)
 		}
+		return r
+	}
+	if worst == nil {
+		r.Why = "its worst case was not searched"
 		return r
 	}
 	if target.Trim >= 0 {

@@ -128,7 +128,7 @@ func (p *program) showTargets(targets []spread.TargetReport) {
 			verdict = "met"
 		}
 		asked := t.Asked
-		if !t.Met && t.Why != "" {
+		if t.Why != "" {
 			asked += "; " + t.Why
 		}
 		rows = append(rows, []string{

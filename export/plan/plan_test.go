@@ -196,9 +196,10 @@ func TestShare(t *testing.T) {
 		want  string
 	}{
 		{"all", 1, "100 %"}, {"none", 0, "0 %"}, {"plain", 0.9345, "93.5 %"},
-		{"all but one in 24,000", 1 - 1.0/24000, "99.9958 %"},
-		{"all but one in a thousand million", 1 - 1e-9, "99.9999 %"},
-		{"one in 24,000", 1.0 / 24000, "0.0042 %"}, {"one in a thousand million", 1e-9, "0.0001 %"},
+		{"all but one in 24,000", 1 - 1.0/24000, "99.99 %"},
+		{"all but one in a thousand million", 1 - 1e-9, "99.99 %"},
+		{"one in 24,000", 1.0 / 24000, "0.01 %"}, {"one in a thousand million", 1e-9, "0.01 %"},
+		{"two in ten thousand", 0.9998, "99.98 %"}, {"few", 0.0004, "0.04 %"},
 		{"unknown", math.NaN(), "–"},
 	} {
 		if got := Share(spread.Figure(c.share)); got != c.want {

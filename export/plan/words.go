@@ -54,10 +54,10 @@ func variable(v build.Variable, x float64) string {
 	return strings.ReplaceAll(v.Name, "_", " ") + " " + text
 }
 
-// findings are the sentences of the first page.
+// findings are sentences for the first page, beside the verdicts and the yield,
+// which it has already.
 func findings(w Work) []string {
-	y := w.Report.Yield
-	list := []string{YieldSentence(y)}
+	var list []string
 	if w.Pick.Why != "" {
 		list = append(list, w.Pick.Why)
 	}
@@ -90,9 +90,9 @@ func Share(f spread.Figure) string {
 	case x == 0 || x == 100:
 		return fmt.Sprintf("%.0f %%", x)
 	case x > 99.95:
-		return fmt.Sprintf("%.4f %%", min(x, 99.9999))
+		return fmt.Sprintf("%.2f %%", min(x, 99.99))
 	case x < 0.05:
-		return fmt.Sprintf("%.4f %%", max(x, 0.0001))
+		return fmt.Sprintf("%.2f %%", max(x, 0.01))
 	}
 	return fmt.Sprintf("%.1f %%", x)
 }

@@ -11,13 +11,11 @@ import (
 	"batchwright/tolerance/build"
 )
 
-// basis is what the figures rest on.
+// basis is what the figures rest on, beside what the workbook says by itself:
+// file, digest, seed, sizes and how the limits of its test sheet are made.
 func basis(w Work) []workbook.Basis {
 	list := []workbook.Basis{
-		{Heading: "Made from", Text: fmt.Sprintf("%s, seed %d, %d simulated batches of %d units (%d units).",
-			w.File, w.Seed, w.Report.Simulation.Batches, w.Build.Units, w.Report.Simulation.Units)},
 		{Heading: "Versions", Text: fmt.Sprintf("batchwright %s, %s. Same input, seed and version: same workbook.", w.Version, runtime.Version())},
-		{Heading: "Digest", Text: w.Digest(), Source: "SHA-256 of the build file, the seed, the sizes and the version"},
 		prices(w),
 	}
 	list = append(list, semantics...)
@@ -44,7 +42,6 @@ var semantics = []workbook.Basis{
 	{Heading: "Worst case", Text: "Every z anywhere in −1 to 1 independently, trims solved again at each point. What is given is the worst point that was found and how it was searched."},
 	{Heading: "Standard uncertainty", Text: "First-order propagation with the correlation within lots, trims included.", Source: "JCGM 100:2008, 5.2"},
 	{Heading: "Simulation", Text: "Whole batches, each with lots of its own. Every draw is a hash of seed, batch, unit and parameter, so any unit can be drawn again alone. Intervals are at 95 % confidence and respect the batches."},
-	{Heading: "Test windows", Text: "Expected: the central 99.73 % of good units' readings with the instrument connected, widened by its expanded uncertainty (k = 2). Accept: the target's limits drawn in by the same uncertainty.", Source: "JCGM 106:2012, 8.3.2"},
 }
 
 // instruments says what each instrument used is taken to be.

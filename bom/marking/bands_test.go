@@ -157,6 +157,13 @@ func TestReadStripes(t *testing.T) {
 	if diff := cmp.Diff(Reading{150e-12, -0.02, 0.02}, got, close12); diff != "" {
 		t.Error(diff)
 	}
+	// From memory, so this only detects change.
+	for stripes, want := range map[string][2]float64{"black brown": {0.2, 100}, "white red": {0.1, 250}, "green yellow": {0.05, 400}, "brown brown": {0.01, 100}} {
+		got, volts, err := ReadStripes(strings.Fields("brown green brown " + stripes))
+		if err != nil || got.High != want[0] || got.Low != -want[0] || volts != want[1] {
+			t.Errorf("%s: %+v, %v, %v", stripes, got, volts, err)
+		}
+	}
 	for _, bad := range []string{"brown green brown red", "brown green brown mauve brown", "brown green brown red gold", "gold green brown red brown"} {
 		if got, _, err := ReadStripes(strings.Fields(bad)); err == nil {
 			t.Errorf("%q reads as %+v", bad, got)

@@ -64,6 +64,7 @@ func TestReadResistance(t *testing.T) {
 		{"4991", Reading{Value: 4990}, recalled}, {"49R9", Reading{Value: 49.9}, recalled},
 		{"0R05", Reading{Value: 0.05}, recalled}, {"000", Reading{Value: 0}, recalled},
 		{"100", Reading{Value: 10}, "digits: 10 with no zeros, unlike 100R"},
+		{"100R001", Reading{Value: 100.001}, "six digits"},
 		{"47KM", Reading{47000, -0.2, 0.2}, "the last letter is the tolerance"},
 	})
 }
@@ -109,7 +110,7 @@ func TestUnreadableCodes(t *testing.T) {
 		{"", "nothing", ReadResistance}, {"R", "a letter alone", ReadResistance}, {"4p7", "a capacitor's letter", ReadResistance},
 		{"4K7K2", "two letters", ReadResistance}, {"4K7P", "P is disputed", ReadResistance}, {"4K7V", "V is disputed", ReadResistance},
 		{"4K7W", "W is disputed", ReadResistance}, {"4K7Y", "Y is disputed", ReadResistance}, {"4K7E", "E is disputed", ReadResistance},
-		{"109", "9 as a power is disputed", ReadResistance}, {"12345", "five digits", ReadResistance}, {"-4R7", "a sign", ReadResistance},
+		{"109", "9 as a power is disputed", ReadResistance}, {"12345", "five digits", ReadResistance}, {"-4R7", "a sign", ReadResistance}, {"1000R001", "seven digits", ReadResistance},
 		{"4k7", "a resistor's letter", ReadCapacitance}, {"1002", "four digits", ReadCapacitance}, {"µ", "a letter alone", ReadCapacitance},
 		{"\xff", "no UTF-8", ReadCapacitance}, {"4n7", "a capacitor's letter", ReadInductance},
 	} {
@@ -172,6 +173,7 @@ func TestCode(t *testing.T) {
 		{"1 % of 4.7 pF has no letter, F being 1 pF", part.Capacitor, 4.7e-12, 0.01, "4p7"},
 		{"5 % of 4.7 pF has", part.Capacitor, 4.7e-12, 0.05, "4p7J"},
 		{"no code for a coil", part.Coil, 1e-3, 0.05, ""},
+		{"220 F would read as 22 pF of 1 %", part.Capacitor, 220, 0, ""},
 		{"NaN", part.Resistor, math.NaN(), 0.05, ""},
 		{"zero", part.Resistor, 0, 0.05, ""},
 		{"infinite", part.Capacitor, math.Inf(1), 0.05, ""},

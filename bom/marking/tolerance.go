@@ -64,9 +64,6 @@ func toleranceLetterOnly(tolerance float64) string {
 // withTolerance completes a value with the meaning of its letter; capacitor says
 // that some letters are absolute below 10 pF.
 func withTolerance(value float64, letter string, capacitor bool) (Reading, bool) {
-	if letter == "" {
-		return Reading{Value: value}, true
-	}
 	if capacitor && value < smallCapacitor {
 		for _, a := range absolutes {
 			if a.letter == letter && value > 0 {

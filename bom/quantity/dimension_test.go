@@ -4,6 +4,7 @@ import (
 	"math"
 	"testing"
 
+	"github.com/google/go-cmp/cmp"
 	"pgregory.net/rapid"
 )
 
@@ -99,14 +100,19 @@ func TestUnitsAgree(t *testing.T) {
 			t.Errorf("%s: %v, %v", c.law, c.a, c.b)
 		}
 	}
-	words := map[string]bool{}
+}
+
+// The names equations know, in the order of the table.
+func TestWords(t *testing.T) {
+	var words []string
 	for _, u := range Words() {
-		if u.Scale != 1 || u.Offset != 0 || words[u.Word] {
+		if u.Scale != 1 || u.Offset != 0 || u.Dimension.String() != u.Symbol {
 			t.Errorf("%s cannot be a constant: %+v", u.Word, u)
 		}
-		words[u.Word] = true
+		words = append(words, u.Word+" "+u.Symbol)
 	}
-	if len(words) != 11 {
-		t.Errorf("%d words, want 11: %v", len(words), words)
+	want := []string{"ohm \u03a9", "siemens S", "farad F", "henry H", "volt V", "ampere A", "watt W", "hertz Hz", "second s", "metre m", "kelvin K"}
+	if diff := cmp.Diff(want, words); diff != "" {
+		t.Error(diff)
 	}
 }

@@ -83,7 +83,7 @@ func TestFind(t *testing.T) {
 			t.Errorf("Find(%q): %v %s", c.text, ok, diff)
 		}
 	}
-	for _, text := range []string{"", "x", "kk", "V V", "V//K", "/", "V/", "%%", "°C/V", "dB²", "k", "Hz^9", "2"} {
+	for _, text := range []string{"", "x", "kk", "V V", "V//K", "/", "V/", "%%", "°C/V", "dB²", "V·dB", "V·°C", "V/dB", "% RH·V", "V·% RH", "V/% RH²", "k", "Hz^9", "2"} {
 		if got, ok := Find(text); ok {
 			t.Errorf("Find(%q) = %+v", text, got)
 		}

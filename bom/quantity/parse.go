@@ -74,7 +74,7 @@ func (m measure) value(number string) float64 {
 	e := 0
 	if exponent != "" {
 		var err error
-		if e, err = strconv.Atoi(exponent); err != nil || max(e, -e) > 1e6 {
+		if e, err = strconv.Atoi(exponent); err != nil {
 			e = 1e6 // the bounds refuse what this makes of it
 			if exponent[0] == '-' {
 				e = -1e6

@@ -100,6 +100,7 @@ func TestParseRefuses(t *testing.T) {
 		{"", Ohm, "nothing where a quantity is needed", ohms}, {"  ", Ohm, "nothing where a quantity is needed", ohms},
 		{strings.Repeat("1", 101), Ohm, "too long for a quantity", ohms}, {"1 \xff", Ohm, "not valid UTF-8", ohms},
 		{"5 parsec", Volt, "unknown unit parsec", volts}, {"23 C", Celsius, "unknown unit C; a degree sign is missing (°C or degC)", "a temperature, such as 23 °C"},
+		{"5 C", Volt, "unknown unit C", volts}, {"23 X", Celsius, "unknown unit X", "a temperature, such as 23 °C"},
 		{"1 000 V", Volt, "a gap in a number", volts}, {"kΩ", Ohm, "a unit without a number", ohms}, {"lots", Ohm, "not a number with a unit", ohms},
 		{"1.2.3 V", Volt, "not a number with a unit", volts}, {"--1 V", Volt, "not a number with a unit", volts}, {"±-1 V", Volt, "not a number with a unit", volts}, {"0x10 V", Volt, "unknown unit x10 V", volts},
 		{"1_000 V", Volt, "unknown unit _000 V", volts}, {"12 V DC", Volt, "unknown unit V DC", volts}, {"-4k7", Ohm, "unknown unit k7", ohms}, {"5 %%", Percent, "unknown unit %%", share},
@@ -113,6 +114,36 @@ func TestParseRefuses(t *testing.T) {
 		}
 		if diff := cmp.Diff(&Error{c.text, c.expected, c.reason}, e); diff != "" {
 			t.Errorf("Parse(%q, %s): %s", c.text, c.unit.Symbol, diff)
+		}
+	}
+}
+
+// What a wrong unit is said to be for, and what is expected, for every unit.
+func TestEveryUnitIsNamed(t *testing.T) {
+	for _, c := range []struct {
+		unit              Unit
+		symbol, noun, own string
+	}{
+		{Percent, "%", "a share", "5 %"}, {PPM, "ppm", "a share", "30 ppm"}, {PPMPerKelvin, "ppm/K", "a temperature coefficient", "30 ppm/K"},
+		{PPMPerPercentRH, "ppm/% RH", "a humidity coefficient", "100 ppm/% RH"}, {Ohm, "\u03a9", "a resistance", "4.7 k\u03a9"}, {Siemens, "S", "a conductance", "2 mS"},
+		{Farad, "F", "a capacitance", "220 pF"}, {Henry, "H", "an inductance", "470 µH"}, {Volt, "V", "a voltage", "12 V"}, {Ampere, "A", "a current", "2 mA"},
+		{Watt, "W", "a power", "250 mW"}, {Hertz, "Hz", "a frequency", "455 kHz"}, {Second, "s", "a time", "10 ms"}, {Hour, "h", "a time", "1000 h"}, {Metre, "m", "a length", "40 cm"},
+		{Kelvin, "K", "a temperature difference", "3 K"}, {Celsius, "°C", "a temperature", "23 °C"}, {VoltPerKelvin, "V/K", "a voltage slope", "-2 mV/K"}, {VoltPerSecond, "V/s", "a slew rate", "13 V/µs"},
+		{Decibel, "dB", "a level", "-3 dB"}, {Cent, "cents", "a musical interval", "20 cents"}, {PerKelvin, "1/K", "a temperature coefficient", "30 ppm/K"},
+		{PerKelvin2, "1/K²", "a second-order temperature coefficient", "-0.035 ppm/K²"}, {PerKelvin3, "1/K³", "a third-order temperature coefficient", "0.0001 ppm/K³"},
+	} {
+		other := Volt
+		if c.unit == Volt {
+			other = Ohm
+		}
+		_, err := Parse("5 "+c.symbol, other)
+		var e *Error
+		if want := "wrong unit: " + c.symbol + " is for " + c.noun; !errors.As(err, &e) || e.Reason != want {
+			t.Errorf("%v, want %s", err, want)
+		}
+		_, err = Parse("lots", c.unit)
+		if want := c.noun + ", such as " + c.own; !errors.As(err, &e) || e.Expected != want {
+			t.Errorf("%v, want %s", err, want)
 		}
 	}
 }

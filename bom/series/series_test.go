@@ -253,6 +253,16 @@ func TestPairsAreNearest(t *testing.T) {
 		if len(got) != 1 {
 			t.Fatal("no pair")
 		}
+		for _, p := range Pairs("E6", target, join, 40) {
+			// The lesser share of the sum of values or of reciprocals, to the target's.
+			share := min(p.First, p.Second) / target
+			if join == Reciprocal {
+				share = target / max(p.First, p.Second)
+			}
+			if share < 1e-3*(1-1e-6) || p.Value != join.Of(p.First, p.Second) {
+				t.Fatalf("%+v is no pair", p)
+			}
+		}
 		all := Between("E6", target/900, target*900)
 		for _, a := range all {
 			for _, b := range all {

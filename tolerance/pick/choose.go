@@ -57,7 +57,9 @@ type chooser struct {
 	context  context.Context
 	build    *build.Build
 	fittings [][]build.Fitting // sold ones, of each opening
+	keys     [][]string        // their buying lines
 	base     []build.Fitting   // the first of each
+	fixed    map[string]int    // parts that are not open, by buying line
 	pictures *pictures
 	refused  map[string]string // choices that the simulation refused, and why
 }
@@ -77,11 +79,17 @@ func newChooser(b *build.Build, o Options) (*chooser, error) {
 			return nil, fmt.Errorf("pick: nothing can fill %s", opening.Positions[0])
 		}
 		c.fittings = append(c.fittings, sold)
+		keys := make([]string, len(sold))
+		for j, f := range sold {
+			keys[j] = order.Key(f.Part)
+		}
+		c.keys = append(c.keys, keys)
 		if len(sold) > 0 {
 			all = sold
 		}
 		c.base = append(c.base, all[0])
 	}
+	c.countFixed()
 	return c, nil
 }
 
@@ -136,35 +144,47 @@ func (c *chooser) cost(choice []int) int64 {
 }
 
 // confirm simulates a choice: first a few batches, which refuse what is far
-// off, then as many units as the report will show. Worst cases, which cost
-// more, are searched in between.
+// off, then as many units as the report will show. Worst cases, which cost as
+// much again, are searched last.
 func (c *chooser) confirm(choice []int) (bool, error) {
 	m, err := c.compile(choice)
 	if err != nil {
 		return false, err
 	}
-	for _, units := range []int{240, 1920} {
+	for _, units := range []int{240, 960, 3840} {
 		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, units)}
-		targets, _, err := spread.JudgeShares(c.context, m, o)
-		if err != nil {
+		refused, err := c.refusedBy(choice, m, o, func(t spread.TargetReport) bool {
+			return float64(t.ShareInterval[1]) >= t.Demand // it may still do
+		})
+		if refused || err != nil {
 			return false, err
 		}
-		for i, t := range targets {
-			if asked := m.Build.Targets[i]; !asked.WorstCase && float64(t.ShareInterval[1]) < asked.Share {
-				return c.refuse(choice, t), nil
-			}
-		}
 	}
-	targets, _, err := spread.Judge(c.context, m, spread.Options{Seed: c.Seed, Units: c.Units})
-	if err != nil {
+	o := spread.Options{Seed: c.Seed, Units: c.Units}
+	if refused, err := c.refusedBy(choice, m, o, func(t spread.TargetReport) bool { return t.Met }); refused || err != nil {
 		return false, err
 	}
-	for _, t := range targets {
+	for _, t := range spread.JudgeWorstCases(m) {
 		if !t.Met {
 			return c.refuse(choice, t), nil
 		}
 	}
 	return true, nil
+}
+
+// refusedBy says whether a simulation finds a target by share that is not met.
+func (c *chooser) refusedBy(choice []int, m *build.Model, o spread.Options, met func(spread.TargetReport) bool) (bool, error) {
+	targets, err := spread.JudgeShares(c.context, m, o)
+	if err != nil {
+		return false, err
+	}
+	for _, t := range targets {
+		if !met(t) {
+			c.refuse(choice, t)
+			return true, nil
+		}
+	}
+	return false, nil
 }
 
 // quickSeed keeps the draws of the quick simulations apart from those that

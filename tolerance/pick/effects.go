@@ -64,6 +64,7 @@ type pictures struct {
 	demands []demandNode
 	graphs  map[string]*graph
 	options [][]map[string]build.Input // of each line and option: its inputs, by reference and parameter
+	signs   [][]string                 // and what its equations follow from
 }
 
 // graph is a compiled choice that stands for all with its equations.
@@ -85,6 +86,7 @@ func newPictures(c *chooser) (*pictures, error) {
 	p.demands = listDemands(m)
 	for i := range c.fittings {
 		var list []map[string]build.Input
+		var signs []string
 		for j := range c.fittings[i] {
 			choice := slices.Clone(base)
 			choice[i] = j
@@ -93,8 +95,9 @@ func newPictures(c *chooser) (*pictures, error) {
 				return nil, err
 			}
 			list = append(list, ofLine(m, c.refs(i)))
+			signs = append(signs, sign(c.fittings[i][j]))
 		}
-		p.options = append(p.options, list)
+		p.options, p.signs = append(p.options, list), append(p.signs, signs)
 	}
 	return p, nil
 }

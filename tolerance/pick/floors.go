@@ -19,11 +19,11 @@ func (c *chooser) problem() (*Problem, error) {
 		return nil, err
 	}
 	c.pictures = pictures
-	p := &Problem{Cost: c.cost, Judge: pictures.judge, Confirm: c.confirm, Base: c.fixedMoney()}
+	p := &Problem{Cost: c.cost, Judge: pictures.judge, Confirm: c.confirm, Base: int64(c.order(c.fixedParts()).Total)}
 	for i := range c.fittings {
 		var line Line
-		for _, f := range c.fittings[i] {
-			line.Options = append(line.Options, Option{Floor: c.floor(i, f)})
+		for j := range c.fittings[i] {
+			line.Options = append(line.Options, Option{Floor: c.floor(i, j)})
 		}
 		p.Lines = append(p.Lines, line)
 	}
@@ -50,26 +50,34 @@ func (c *chooser) openRefs() map[string]bool {
 	return open
 }
 
-// fixedMoney is what the parts that are not open cost by themselves.
-func (c *chooser) fixedMoney() int64 {
+// countFixed counts the parts that are not open on each buying line.
+func (c *chooser) countFixed() {
+	c.fixed = map[string]int{}
+	for _, p := range c.fixedParts() {
+		c.fixed[order.Key(p)]++
+	}
+}
+
+// fixedParts are the parts that are not open.
+func (c *chooser) fixedParts() []part.Part {
 	open := c.openRefs()
-	parts := c.build.Parts()
-	fixed := parts[:0:0]
-	for _, p := range parts {
+	var fixed []part.Part
+	for _, p := range c.build.Parts() {
 		if !open[p.Ref] {
 			fixed = append(fixed, p)
 		}
 	}
-	return int64(c.order(fixed).Total)
+	return fixed
 }
 
 // floor is the least that an option can add to the money: its own price where
 // nothing else can be bought on its line; otherwise the least over every number
 // of pieces that others may put there.
-func (c *chooser) floor(i int, f build.Fitting) int64 {
+func (c *chooser) floor(i, j int) int64 {
+	f := c.fittings[i][j]
 	own := len(c.build.Openings[i].Positions)
 	least := int64(math.MaxInt64)
-	for others := range c.company(i, f) {
+	for others := range c.company(i, j) {
 		with, _ := c.buying(f.Part, others+own)
 		without, _ := c.buying(f.Part, others)
 		least = min(least, int64(with-without))
@@ -79,51 +87,44 @@ func (c *chooser) floor(i int, f build.Fitting) int64 {
 
 // company is every number of pieces a unit that others may put on a fitting's
 // line.
-func (c *chooser) company(i int, f build.Fitting) map[int]bool {
-	key := order.Key(f.Part)
-	counts := map[int]bool{c.fixedCount(key): true}
-	for j, others := range c.fittings {
-		if j == i || !slices.ContainsFunc(others, func(o build.Fitting) bool { return order.Key(o.Part) == key }) {
+func (c *chooser) company(i, j int) map[int]bool {
+	key := c.keys[i][j]
+	counts := map[int]bool{c.fixed[key]: true}
+	for k, others := range c.keys {
+		if k == i || !slices.Contains(others, key) {
 			continue
 		}
 		for _, n := range slices.Collect(maps.Keys(counts)) {
-			counts[n+len(c.build.Openings[j].Positions)] = true
+			counts[n+len(c.build.Openings[k].Positions)] = true
 		}
 	}
 	return counts
-}
-
-// fixedCount is how many parts that are not open are bought on a line.
-func (c *chooser) fixedCount(key string) int {
-	open := c.openRefs()
-	n := 0
-	for _, p := range c.build.Parts() {
-		if !open[p.Ref] && order.Key(p) == key {
-			n++
-		}
-	}
-	return n
 }
 
 // equations name what a choice's graph follows from: the nominal values and
 // which terms its parts' scatter has. Where two lines buy the same piece they
 // share a lot, so such a choice stands for itself alone.
 func (p *pictures) equations(choice []int) string {
-	var none part.Spread
 	var b strings.Builder
 	bought := map[string]bool{}
 	for i, j := range choice {
-		f := p.fittings[i][j]
-		key := order.Key(f.Part)
-		if bought[key] || p.fixedCount(key) > 0 {
+		key := p.keys[i][j]
+		if bought[key] || p.fixed[key] > 0 {
 			return "choice " + fmt.Sprint(choice)
 		}
 		bought[key] = true
-		for _, q := range f.Part.Parameters {
-			fmt.Fprintf(&b, "%g %v %v %v %v %v %v;", q.Value, q.Absolute, q.Law, q.Temperature == none,
-				q.Humidity == none, q.Ageing.Spread == none, q.Ageing.Per)
-		}
-		b.WriteByte('|')
+		b.WriteString(p.signs[i][j])
 	}
 	return b.String()
+}
+
+// sign names what a part's equations follow from.
+func sign(f build.Fitting) string {
+	var none part.Spread
+	var b strings.Builder
+	for _, q := range f.Part.Parameters {
+		fmt.Fprintf(&b, "%g %v %v %v %v %v %v;", q.Value, q.Absolute, q.Law, q.Temperature == none,
+			q.Humidity == none, q.Ageing.Spread == none, q.Ageing.Per)
+	}
+	return b.String() + "|"
 }

@@ -52,36 +52,39 @@ func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
 	return r, nil
 }
 
-// Judge simulates only what the targets ask about, and gives their verdicts
-// and the yield.
-func Judge(ctx context.Context, m *build.Model, o Options) ([]TargetReport, YieldReport, error) {
-	worst := make([]*WorstCase, len(m.Outputs))
-	for t, target := range m.Build.Targets {
-		if target.WorstCase {
-			for _, i := range m.Targets[t].Outputs {
-				worst[i] = worstCase(m, m.Outputs[i].Node, m.Outputs[i].Trims)
-			}
-		}
-	}
-	return judge(ctx, m, o, worst)
-}
-
-// JudgeShares is Judge without a search for worst cases: a target by worst case
-// has its share, but counts as missed.
-func JudgeShares(ctx context.Context, m *build.Model, o Options) ([]TargetReport, YieldReport, error) {
-	return judge(ctx, m, o, nil)
-}
-
-func judge(ctx context.Context, m *build.Model, o Options, worst []*WorstCase) ([]TargetReport, YieldReport, error) {
+// JudgeShares simulates only what the targets by share ask about, and gives
+// their verdicts.
+func JudgeShares(ctx context.Context, m *build.Model, o Options) ([]TargetReport, error) {
 	s, err := simulate(ctx, newNodes(m, targetOutputs(m), false), o)
 	if err != nil {
-		return nil, YieldReport{}, err
+		return nil, err
 	}
 	var list []TargetReport
-	for t := range m.Build.Targets {
-		list = append(list, s.target(t, worst))
+	for t, target := range m.Build.Targets {
+		if !target.WorstCase {
+			list = append(list, s.target(t, nil))
+		}
 	}
-	return list, s.yield(), nil
+	return list, nil
+}
+
+// JudgeWorstCases gives the verdicts on the targets by worst case, without
+// their shares.
+func JudgeWorstCases(m *build.Model) []TargetReport {
+	var list []TargetReport
+	for t, target := range m.Build.Targets {
+		if !target.WorstCase {
+			continue
+		}
+		worst := make([]*WorstCase, len(m.Outputs))
+		for _, i := range m.Targets[t].Outputs {
+			worst[i] = worstCase(m, m.Outputs[i].Node, m.Outputs[i].Trims)
+		}
+		r := targetReport(target)
+		judgeWorst(&r, m, t, worst)
+		list = append(list, r)
+	}
+	return list
 }
 
 func linearOutputs(m *build.Model) *Linear {
@@ -149,37 +152,37 @@ func (s *sample) target(t int, worst []*WorstCase) TargetReport {
 	m := s.nodes.model
 	target := m.Build.Targets[t]
 	share, low, high := ShareInterval(s.perBatch(s.comply[t]), m.Build.Units, Confidence)
-	r := TargetReport{
-		Name: target.Name, Output: target.Output.String(), Asked: target.Asked,
-		Share: Figure(share), ShareInterval: [2]Figure{Figure(low), Figure(high)},
-	}
-	if !target.WorstCase {
-		r.Met = share >= target.Share
-		if low < target.Share && high > target.Share {
-			r.Why = fmt.Sprintf("close: %.4g %% of the units comply, between %.4g %% and %.4g %% at 95 %% confidence", 100*share, 100*low, 100*high)
-		}
+	r := targetReport(target)
+	r.Share, r.ShareInterval = Figure(share), [2]Figure{Figure(low), Figure(high)}
+	if target.WorstCase {
+		judgeWorst(&r, m, t, worst)
 		return r
 	}
-	if worst == nil {
-		r.Why = "its worst case was not searched"
-		return r
+	r.Met = share >= target.Share
+	if low < target.Share && high > target.Share {
+		r.Why = fmt.Sprintf("close: %.4g %% of the units comply, between %.4g %% and %.4g %% at 95 %% confidence", 100*share, 100*low, 100*high)
 	}
+	return r
+}
+
+// targetReport is a target's report before its verdict.
+func targetReport(t build.Target) TargetReport {
+	return TargetReport{Name: t.Name, Output: t.Output.String(), Asked: t.Asked, Demand: t.Share}
+}
+
+// judgeWorst judges a target by the worst case over its conditions.
+func judgeWorst(r *TargetReport, m *build.Model, t int, worst []*WorstCase) {
+	target := m.Build.Targets[t]
 	if target.Trim >= 0 {
 		var corner []Corner
 		r.Met, corner = reachWorstCase(m, target.Trim)
 		if !r.Met {
 			r.Why = "out of reach at " + cornerText(corner)
 		}
-		return r
+		return
 	}
-	s.judgeWorst(&r, m.Targets[t].Outputs, target, worst)
-	return r
-}
-
-// judgeWorst compares the worst case over a target's conditions with its limits.
-func (s *sample) judgeWorst(r *TargetReport, outputs []int, target build.Target, worst []*WorstCase) {
 	limits := Limits{Figure(math.Inf(1)), Figure(math.Inf(-1))}
-	for _, i := range outputs {
+	for _, i := range m.Targets[t].Outputs {
 		w := worst[i]
 		if w.Why != "" {
 			r.Why = w.Why

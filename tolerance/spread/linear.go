@@ -69,7 +69,7 @@ func (d *Differentiator) At(inputs []build.Input) *Linear {
 	for lane, i := range free {
 		d.din[i][lane] = 1
 	}
-	d.program.Tangents(cut(d.out, width), cut(d.dout, width), cut(d.in, width), cut(d.din, width), d.frame)
+	d.program.Gradient(cut(d.out, width), cut(d.dout, width), cut(d.in, width), cut(d.din, width), d.frame)
 	l := &Linear{Inputs: inputs, Values: make([]float64, len(d.out)), Slopes: block(len(d.out), len(inputs))}
 	for k := range d.out {
 		l.Values[k] = d.out[k][0]

@@ -136,6 +136,7 @@ type TargetReport struct {
 	Name          string    `json:"name"`
 	Output        string    `json:"output"`
 	Asked         string    `json:"asked"` // the demand in words
+	Demand        float64   `json:"-"`     // the share of units that must comply
 	Met           bool      `json:"met"`
 	Share         Figure    `json:"share"`
 	ShareInterval [2]Figure `json:"share_interval"`

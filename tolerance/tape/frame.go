@@ -13,6 +13,7 @@ type Frame struct {
 	tans      [][]float64 // its tangent
 	zero, one []float64
 	solvers   []solver // by depth of loop
+	alike     bool     // every lane of the block has the same inputs
 }
 
 // NewFrame returns working memory for blocks of up to lanes units.
@@ -103,6 +104,15 @@ func (p *Program) Tangents(dst, ddst, in, din [][]float64, f *Frame) {
 		copy(f.cols[c.output], f.cols[c.from])
 		copy(f.tans[c.output], f.tans[c.from])
 	}
+}
+
+// Gradient is Tangents for a block whose lanes all have the same inputs and
+// differ in direction only: each root is then searched once, not in every lane.
+// The results are the same bits.
+func (p *Program) Gradient(dst, ddst, in, din [][]float64, f *Frame) {
+	f.alike = true
+	p.Tangents(dst, ddst, in, din, f)
+	f.alike = false
 }
 
 // begin lays the columns of a block out; false if there is nothing to do.

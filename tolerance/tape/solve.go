@@ -84,6 +84,30 @@ func (f *Frame) solve(l *loop) {
 	}
 }
 
+// solveOnce solves the first lane and gives every lane its result.
+func (f *Frame) solveOnce(l *loop) {
+	n := f.n
+	f.narrow(1)
+	f.solve(l)
+	f.narrow(n)
+	lanes := f.solvers[l.depth].lanes[:n]
+	x := f.cols[l.unknown]
+	for i := range lanes {
+		lanes[i], x[i] = lanes[0], x[0]
+	}
+	if l.bracketed >= 0 {
+		writeBracketed(f.cols[l.bracketed], lanes)
+	}
+}
+
+// narrow changes the lanes of the current block.
+func (f *Frame) narrow(n int) {
+	f.n = n
+	for s, c := range f.cols {
+		f.cols[s] = c[:n]
+	}
+}
+
 // start looks at the residuals at both ends and returns the first point to try,
 // or the result.
 func (s *search) start(low, high float64) float64 {
@@ -235,7 +259,11 @@ func writeBracketed(dst []float64, lanes []search) {
 // solveTangents solves, then differentiates the residual at the solution twice:
 // with the unknown at rest, and with the unknown alone in motion.
 func (f *Frame) solveTangents(l *loop) {
-	f.solve(l)
+	if f.alike {
+		f.solveOnce(l)
+	} else {
+		f.solve(l)
+	}
 	s := &f.solvers[l.depth]
 	n := f.n
 	dx := f.tans[l.unknown]

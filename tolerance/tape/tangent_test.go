@@ -3,6 +3,8 @@ package tape
 import (
 	"math"
 	"testing"
+
+	"batchwright/tolerance/formula"
 )
 
 // Slopes against the closed form, at an ordinary point.
@@ -123,4 +125,39 @@ func TestTangentsGiveValues(t *testing.T) {
 	}
 	sameBits(t, "clamped slopes", []float64{slopes[0][1], slopes[0][4]}, []float64{0, 0})
 	sameBits(t, "slope of an input and of a constant", []float64{slopes[2][0], slopes[3][0]}, []float64{0, 0})
+}
+
+// TestGradient asks for the bits of Tangents where every lane has the same
+// inputs, through nested roots, some clamped.
+func TestGradient(t *testing.T) {
+	for _, text := range []string{
+		"sqrt(x)*y + exp(x*y)",
+		"root(w, 1, 9, w^3 - root(u, 0, 9, u*u - w - y) - x)",
+		"x*root(u, 0, 0.1, exp(u) - 1 - y)",
+		"root(u, -1, 1, ln(u) - x)",
+	} {
+		g := NewGraph()
+		x, y := g.Input(), g.Input()
+		e, mistakes := formula.Parse(text)
+		if len(mistakes) > 0 {
+			t.Fatal(mistakes)
+		}
+		r, err := g.Lower(e, func(name string) (Ref, bool) { return map[string]Ref{"x": x, "y": y}[name], true })
+		if err != nil {
+			t.Fatal(err)
+		}
+		p := g.Program(r)
+		const n = 5
+		in := [][]float64{{1.3, 1.3, 1.3, 1.3, 1.3}, {0.7, 0.7, 0.7, 0.7, 0.7}}
+		din := [][]float64{{1, 0, 1, -2, 0}, {0, 1, 1, 0.5, 0}}
+		var value, slope [2][n]float64
+		f := p.NewFrame(n)
+		p.Gradient([][]float64{value[0][:]}, [][]float64{slope[0][:]}, in, din, f)
+		p.Tangents([][]float64{value[1][:]}, [][]float64{slope[1][:]}, in, din, f)
+		for i := range n {
+			if math.Float64bits(value[0][i]) != math.Float64bits(value[1][i]) || math.Float64bits(slope[0][i]) != math.Float64bits(slope[1][i]) {
+				t.Errorf("%s, lane %d: %v and %v, want %v and %v", text, i, value[0][i], slope[0][i], value[1][i], slope[1][i])
+			}
+		}
+	}
 }

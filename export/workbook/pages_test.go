@@ -2,7 +2,10 @@ package workbook
 
 import (
 	"fmt"
+	"regexp"
 	"testing"
+
+	"github.com/google/go-cmp/cmp"
 )
 
 // Every sheet is as wide as one page, drifts have a page each, and the test
@@ -35,5 +38,18 @@ func TestPagesLongBench(t *testing.T) {
 	got := pages(t, saved(t, p))
 	if !(got >= 8+2*2 && got <= 8+2*4) {
 		t.Errorf("%d pages, want 2 to 4 down and 2 across for the test sheet, and 8", got)
+	}
+}
+
+// Breaks stand before units 11, 21 and 31: columns V, AF and AP, whose left
+// neighbours are the 21st, 31st and 41st.
+func TestPageBreaks(t *testing.T) {
+	_, text := parts(t, written(t, sample(31)))
+	var got []string
+	for _, m := range regexp.MustCompile(`<brk id="(\d+)"`).FindAllStringSubmatch(text["xl/worksheets/sheet5.xml"], -1) {
+		got = append(got, m[1])
+	}
+	if d := cmp.Diff([]string{"21", "31", "41"}, got); d != "" {
+		t.Errorf("(-want +got):\n%s", d)
 	}
 }

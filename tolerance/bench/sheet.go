@@ -91,23 +91,34 @@ func (s *sheet) turn(i int) Turn {
 }
 
 // where is the place to hold the probe for an output, if one of its stage's
-// test points reads it.
+// test points reads it; otherwise what the output is.
 func (s *sheet) where(n build.OutputName) string {
 	for _, p := range s.model.Points {
 		if q := p.Stage.Kind.Points[p.Index]; p.Stage.Name == n.Stage && q.Name == n.Output {
 			return withReferences(q.At, p.Stage)
 		}
 	}
+	for _, o := range s.model.Build.Stage(n.Stage).Outputs {
+		if o.Name == n.Output {
+			return n.Stage + ": " + o.Summary
+		}
+	}
 	return n.Stage
 }
 
-// withReferences puts each part's reference behind its role.
+// withReferences puts each part's reference before its role: "collector of the
+// transistor" becomes "collector of Q1 (transistor)".
 func withReferences(text string, s *build.Stage) string {
 	words := strings.FieldsFunc(text, func(r rune) bool { return !(r == '_' || r >= '0' && r <= '9' || r >= 'A' && r <= 'z') })
 	for _, w := range words {
 		for _, p := range s.Places {
 			if p.Role == w && p.Fitted {
-				text = strings.Replace(text, w, p.Part.Ref+" ("+w+")", 1)
+				named := p.Part.Ref + " (" + w + ")"
+				if with := strings.Replace(text, "the "+w, named, 1); with != text {
+					text = with
+				} else {
+					text = strings.Replace(text, w, named, 1)
+				}
 			}
 		}
 	}

@@ -192,6 +192,13 @@ func TestNearest(t *testing.T) {
 	if got := Nearest("ab", []string{"ax", "ay"}); got != "ax" {
 		t.Errorf("of words equally close the first: %q", got)
 	}
+	long := strings.Repeat("c", 64)
+	if got := Nearest(long, []string{long[1:]}); got != long[1:] {
+		t.Errorf("of the longest word: %q", got)
+	}
+	if got := Nearest(long+"c", []string{long}); got != "" {
+		t.Errorf("of a longer one: %q", got)
+	}
 	if got := Nearest("ab", nil); got != "" {
 		t.Errorf("of no words: %q", got)
 	}

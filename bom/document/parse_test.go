@@ -253,6 +253,27 @@ func TestDepthLimit(t *testing.T) {
 	}
 }
 
+// What just fits is read; a step more is refused.
+func TestLimits(t *testing.T) {
+	for _, c := range []struct {
+		reason string
+		text   func(int) string
+		most   int
+	}{
+		{"bytes", func(n int) string { return strings.Repeat("#", n) }, 1 << 20},
+		{"blank lines", func(n int) string { return "a: b\n" + strings.Repeat("\n", n) + "c: d" }, 100},
+		{"entries of a list", func(n int) string { return strings.Repeat("- a\n", n) }, 5000},
+		{"tags, question marks and anchors in a row", func(n int) string { return strings.Repeat("&a ", n) + "b" }, 1},
+	} {
+		if _, complaints := quick(t, c.text(c.most)); complaints != nil {
+			t.Errorf("%s: %v", c.reason, complaints)
+		}
+		if _, complaints := quick(t, c.text(c.most+1)); complaints == nil {
+			t.Errorf("%s: a step more is read", c.reason)
+		}
+	}
+}
+
 // A wide shallow file is read whole.
 func TestLargeFile(t *testing.T) {
 	var b strings.Builder

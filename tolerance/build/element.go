@@ -4,7 +4,6 @@ import (
 	"hash/fnv"
 	"math"
 
-	"batchwright/bom/order"
 	"batchwright/bom/part"
 	"batchwright/tolerance/scatter"
 	"batchwright/tolerance/tape"
@@ -30,7 +29,7 @@ func (c *compiler) placed(e *environment, s *Stage, p *Place, parameter string) 
 	if !p.Fitted {
 		return c.Graph.Constant(0)
 	}
-	x := source{ref: p.Part.Ref, line: order.Key(p.Part), mixed: p.Part.LotsMixed, stage: s}
+	x := source{ref: p.Part.Ref, line: c.lines[p.Part.Ref], mixed: p.Part.LotsMixed, stage: s}
 	if p.Type.Trimmer() {
 		return c.trimmer(e, x, s, p)
 	}

@@ -70,6 +70,7 @@ type Point struct {
 type compiler struct {
 	*Model
 	inputs map[string]tape.Ref // by reference and parameter
+	lines  map[string]string   // buying line of each reference
 	lots   map[string]string   // buying line -> the first reference on it
 	common map[likeness]float64
 	err    error
@@ -87,11 +88,14 @@ func (b *Build) Compile() (*Model, error) {
 	c := &compiler{
 		Model:  &Model{Build: b, Graph: tape.NewGraph()},
 		inputs: map[string]tape.Ref{},
+		lines:  map[string]string{},
 		lots:   map[string]string{},
 		common: map[likeness]float64{},
 	}
 	for _, p := range b.Parts() {
-		if key := order.Key(p); c.lots[key] == "" {
+		key := order.Key(p)
+		c.lines[p.Ref] = key
+		if c.lots[key] == "" {
 			c.lots[key] = p.Ref
 		}
 	}

@@ -48,6 +48,12 @@ func Choose(ctx context.Context, b *build.Build, o Options) (*Result, *build.Bui
 	if err != nil {
 		return nil, nil, err
 	}
+	if found.Choice == nil && len(c.refused) == 0 { // what comes nearest needs every demand
+		problem.Judge = c.pictures.wholly
+		if found, err = problem.Cheapest(ctx, o.Limits); err != nil {
+			return nil, nil, err
+		}
+	}
 	return c.result(found)
 }
 
@@ -60,13 +66,15 @@ type chooser struct {
 	keys     [][]string        // their buying lines
 	base     []build.Fitting   // the first of each
 	fixed    map[string]int    // parts that are not open, by buying line
+	rest     int64             // the money for those
+	prices   map[lineCount]int64
 	pictures *pictures
 	refused  map[string]string // choices that the simulation refused, and why
 }
 
 // newChooser lists what may fill each opening and is offered.
 func newChooser(b *build.Build, o Options) (*chooser, error) {
-	c := &chooser{Options: o, build: b, refused: map[string]string{}}
+	c := &chooser{Options: o, build: b, refused: map[string]string{}, prices: map[lineCount]int64{}}
 	for _, opening := range b.Openings {
 		var sold []build.Fitting
 		all := b.Fittings(opening)
@@ -90,6 +98,7 @@ func newChooser(b *build.Build, o Options) (*chooser, error) {
 		c.base = append(c.base, all[0])
 	}
 	c.countFixed()
+	c.rest = int64(c.order(c.fixedParts()).Total)
 	return c, nil
 }
 
@@ -134,35 +143,63 @@ func (c *chooser) fit(choice []int) (*build.Build, error) {
 	return c.build.Fit(fittings)
 }
 
-// cost is the exact money of a choice: the whole order.
+// cost is the exact money of a choice: what is bought on each of its lines
+// together with whatever else is bought there, and the rest of the order.
 func (c *chooser) cost(choice []int) int64 {
-	b, err := c.fit(choice)
-	if err != nil {
-		panic("pick: " + err.Error()) // fittings came from the build itself
+	counts := make(map[string]int, len(choice))
+	total := c.rest
+	for i, j := range choice {
+		key := c.keys[i][j]
+		if _, there := counts[key]; !there {
+			counts[key] = c.fixed[key]
+			total -= c.price(c.fittings[i][j].Part, key, c.fixed[key])
+		}
+		counts[key] += len(c.build.Openings[i].Positions)
 	}
-	return int64(c.order(b.Parts()).Total)
+	for i, j := range choice {
+		if key := c.keys[i][j]; counts[key] > 0 {
+			total += c.price(c.fittings[i][j].Part, key, counts[key])
+			counts[key] = 0
+		}
+	}
+	return total
 }
 
-// confirm simulates a choice: first a few batches, which refuse what is far
-// off, then as many units as the report will show. Worst cases, which cost as
-// much again, are searched last.
+// price is the money for some pieces a unit on one line.
+func (c *chooser) price(p part.Part, key string, perUnit int) int64 {
+	if perUnit == 0 {
+		return 0
+	}
+	k := lineCount{key, perUnit}
+	money, known := c.prices[k]
+	if !known {
+		bought, _ := c.buying(p, perUnit)
+		money = int64(bought)
+		c.prices[k] = money
+	}
+	return money
+}
+
+// lineCount is a buying line and how many of its pieces a unit takes.
+type lineCount struct {
+	key   string
+	count int
+}
+
+// confirm simulates a choice: first a few batches and the targets that are
+// cheap to simulate, which refuse what is far off, then every target on as many
+// units as the report will show. Worst cases, which cost most, are searched
+// last.
 func (c *chooser) confirm(choice []int) (bool, error) {
 	m, err := c.compile(choice)
 	if err != nil {
 		return false, err
 	}
-	for _, units := range []int{240, 960, 3840} {
-		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, units)}
-		refused, err := c.refusedBy(choice, m, o, func(t spread.TargetReport) bool {
-			return float64(t.ShareInterval[1]) >= t.Demand // it may still do
-		})
-		if refused || err != nil {
+	cheap, rest := spread.CheapFirst(m)
+	for _, targets := range [][]int{cheap, rest} {
+		if refused, err := c.refusedBySome(choice, m, targets); refused || err != nil {
 			return false, err
 		}
-	}
-	o := spread.Options{Seed: c.Seed, Units: c.Units}
-	if refused, err := c.refusedBy(choice, m, o, func(t spread.TargetReport) bool { return t.Met }); refused || err != nil {
-		return false, err
 	}
 	for _, t := range spread.JudgeWorstCases(m) {
 		if !t.Met {
@@ -172,13 +209,32 @@ func (c *chooser) confirm(choice []int) (bool, error) {
 	return true, nil
 }
 
-// refusedBy says whether a simulation finds a target by share that is not met.
-func (c *chooser) refusedBy(choice []int, m *build.Model, o spread.Options, met func(spread.TargetReport) bool) (bool, error) {
-	targets, err := spread.JudgeShares(c.context, m, o)
+// refusedBySome says whether one of some targets is not met: by more and more
+// units as long as it may still be, at last by those of the report.
+func (c *chooser) refusedBySome(choice []int, m *build.Model, targets []int) (bool, error) {
+	if len(targets) == 0 {
+		return false, nil
+	}
+	for _, units := range []int{240, 960, 3840} {
+		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, units)}
+		refused, err := c.refusedBy(choice, m, targets, o, func(t spread.TargetReport) bool {
+			return float64(t.ShareInterval[1]) >= t.Demand // it may still do
+		})
+		if refused || err != nil {
+			return refused, err
+		}
+	}
+	o := spread.Options{Seed: c.Seed, Units: c.Units}
+	return c.refusedBy(choice, m, targets, o, func(t spread.TargetReport) bool { return t.Met })
+}
+
+// refusedBy says whether a simulation finds a target that is not met.
+func (c *chooser) refusedBy(choice []int, m *build.Model, targets []int, o spread.Options, met func(spread.TargetReport) bool) (bool, error) {
+	reports, err := spread.JudgeShares(c.context, m, targets, o)
 	if err != nil {
 		return false, err
 	}
-	for _, t := range targets {
+	for _, t := range reports {
 		if !met(t) {
 			c.refuse(choice, t)
 			return true, nil

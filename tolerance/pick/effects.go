@@ -1,6 +1,8 @@
 package pick
 
 import (
+	"cmp"
+	"fmt"
 	"math"
 	"slices"
 
@@ -56,15 +58,30 @@ func listDemands(m *build.Model) []demandNode {
 	return list
 }
 
-// pictures make the linear picture of any choice. Choices whose equations are
-// alike but for their scatter share a graph, so that a picture costs one
-// differentiation.
+// pictures make the linear picture of any choice. A demand's picture follows
+// from the choices on the lines that it depends on, and is made once for each.
+// Choices whose equations are alike but for their scatter share a graph, so
+// that a picture costs one differentiation.
 type pictures struct {
 	*chooser
 	demands []demandNode
-	graphs  map[string]*graph
+	groups  []*group
 	options [][]map[string]build.Input // of each line and option: its inputs, by reference and parameter
 	signs   [][]string                 // and what its equations follow from
+}
+
+// group is the demands that depend on the same lines.
+type group struct {
+	lines   []int
+	demands []int
+	graphs  map[string]*graph
+	seen    map[string][]judged // by the choices on its lines
+}
+
+// judged is what a demand is judged by.
+type judged struct {
+	Effect
+	slack float64 // of the share that is asked for
 }
 
 // graph is a compiled choice that stands for all with its equations.
@@ -77,7 +94,7 @@ func inputKey(x build.Input) string { return x.Ref + "|" + x.Parameter }
 
 // newPictures compiles each option on its own, the other lines as in the base.
 func newPictures(c *chooser) (*pictures, error) {
-	p := &pictures{chooser: c, graphs: map[string]*graph{}}
+	p := &pictures{chooser: c}
 	base := make([]int, len(c.fittings))
 	m, err := c.compile(base)
 	if err != nil {
@@ -99,7 +116,37 @@ func newPictures(c *chooser) (*pictures, error) {
 		}
 		p.options, p.signs = append(p.options, list), append(p.signs, signs)
 	}
+	p.makeGroups(m)
 	return p, nil
+}
+
+// makeGroups finds the lines that each demand depends on.
+func (p *pictures) makeGroups(m *build.Model) {
+	by := map[string]*group{}
+	for k, d := range p.demands {
+		node := d.node(m)
+		lines := p.linesOf(m, node)
+		name := fmt.Sprint(lines)
+		if by[name] == nil {
+			by[name] = &group{lines: lines, graphs: map[string]*graph{}, seen: map[string][]judged{}}
+			p.groups = append(p.groups, by[name])
+		}
+		by[name].demands = append(by[name].demands, k)
+	}
+	slices.SortStableFunc(p.groups, func(a, b *group) int { return cmp.Compare(len(a.lines), len(b.lines)) })
+}
+
+// linesOf lists the openings whose parts a node depends on.
+func (p *pictures) linesOf(m *build.Model, node tape.Ref) []int {
+	var lines []int
+	read := m.Graph.Program(node).Inputs()
+	for i := range p.fittings {
+		refs := p.refs(i)
+		if slices.ContainsFunc(read, func(k int) bool { return slices.Contains(refs, m.Inputs[k].Ref) }) {
+			lines = append(lines, i)
+		}
+	}
+	return lines
 }
 
 // ofLine are the inputs of a model that belong to some references.
@@ -122,14 +169,36 @@ func (c *chooser) compile(choice []int) (*build.Model, error) {
 	return b.Compile()
 }
 
-// of is the linear picture of a choice.
-func (p *pictures) of(choice []int) (*spread.Linear, error) {
-	g, err := p.graph(choice)
+// of is what each of a group's demands is judged by, for a choice.
+func (p *pictures) of(g *group, choice []int) ([]judged, error) {
+	own := make([]int, len(g.lines)) // what the group's lines hold, the others as in the base
+	for k, i := range g.lines {
+		own[k] = choice[i]
+	}
+	key := fmt.Sprint(own)
+	if seen, ok := g.seen[key]; ok {
+		return seen, nil
+	}
+	l, err := p.linear(g, choice)
 	if err != nil {
 		return nil, err
 	}
-	inputs := slices.Clone(g.inputs)
-	for i := range choice {
+	list := make([]judged, len(g.demands))
+	for k := range list {
+		list[k] = judge(l, k)
+	}
+	g.seen[key] = list
+	return list, nil
+}
+
+// linear is the linear picture of a group's demands.
+func (p *pictures) linear(g *group, choice []int) (*spread.Linear, error) {
+	made, err := p.graph(g, choice)
+	if err != nil {
+		return nil, err
+	}
+	inputs := slices.Clone(made.inputs)
+	for _, i := range g.lines {
 		own := p.options[i][choice[i]]
 		for k, x := range inputs {
 			if y, ok := own[inputKey(x)]; ok {
@@ -137,79 +206,86 @@ func (p *pictures) of(choice []int) (*spread.Linear, error) {
 			}
 		}
 	}
-	return g.slopes.At(inputs), nil
+	return made.slopes.At(inputs), nil
 }
 
-// graph is the compiled choice whose equations are those of a choice.
-func (p *pictures) graph(choice []int) (*graph, error) {
-	k := p.equations(choice)
-	if g, ok := p.graphs[k]; ok {
-		return g, nil
+// graph is the compiled choice whose equations are those of a choice, as far
+// as a group depends on them.
+func (p *pictures) graph(g *group, choice []int) (*graph, error) {
+	key := p.equations(g, choice)
+	if made, ok := g.graphs[key]; ok {
+		return made, nil
 	}
 	m, err := p.compile(choice)
 	if err != nil {
 		return nil, err
 	}
 	var refs []tape.Ref
-	for _, d := range p.demands {
-		refs = append(refs, d.node(m))
+	for _, k := range g.demands {
+		refs = append(refs, p.demands[k].node(m))
 	}
-	g := &graph{m.Inputs, spread.NewDifferentiator(m, refs...)}
-	p.graphs[k] = g
-	return g, nil
+	made := &graph{m.Inputs, spread.NewDifferentiator(m, refs...)}
+	g.graphs[key] = made
+	return made, nil
 }
 
-// totals are what a demand is judged by.
-func totals(l *spread.Linear, k int) Effect {
-	t := Effect{Mean: l.Values[k]}
-	t.Variance, _ = l.Variance(k)
-	for i, x := range l.Inputs {
-		t.Half += math.Abs(l.Slopes[k][i]) * x.HalfWidth * halfSlack
-	}
-	return t
-}
-
-// judge judges a choice against every demand.
-func (p *pictures) judge(choice []int) Verdict {
-	l, err := p.of(choice)
-	if err != nil {
-		return Verdict{Shortfall: math.Inf(1)} // Confirm would say the same
-	}
-	v := Verdict{Meets: true}
-	for k := range p.demands {
-		d, t := p.demands[k].Demand, totals(l, k)
-		d.Share = math.Max(0, d.Share-shareSlack-boundedSlack*dominance(l, k, t.Variance))
-		if d.Holds(t.Mean, t.Variance, t.Half) {
-			continue
-		}
-		miss := d.Miss(t.Mean, t.Variance, t.Half) / d.Scale()
-		if v.Meets || !(miss <= v.Shortfall) {
-			v = Verdict{Shortfall: miss, Worst: k}
-		}
-	}
-	return v
-}
-
-// dominance is the square of the largest share of a demand's variance that one
-// source of a shape other than normal makes; the pieces of a lot are one.
-func dominance(l *spread.Linear, k int, variance float64) float64 {
-	_, terms := l.Variance(k)
-	sources := map[int]float64{}
+// judge sums up a node: mean, variance, half width, and how far from normal
+// its scatter may be: the square of the largest share of the variance that one
+// source of a shape other than normal makes, the pieces of a lot being one.
+func judge(l *spread.Linear, node int) judged {
+	j := judged{Effect: Effect{Mean: l.Values[node]}}
+	lots := map[int]float64{}
 	var largest float64
-	for _, t := range terms {
+	for _, t := range l.Terms(node) {
 		x := l.Inputs[t.Input]
+		j.Variance += t.Variance
+		j.Half += math.Abs(l.Slopes[node][t.Input]) * x.HalfWidth * halfSlack
 		if x.Shape == part.Normal || x.Shape == "" {
 			continue
 		}
-		source := -1 - t.Input // its own
+		source := t.Variance
 		if x.Lot >= 0 {
-			source = x.Lot
+			lots[x.Lot] += t.Variance
+			source = lots[x.Lot]
 		}
-		sources[source] += t.Variance
-		largest = math.Max(largest, sources[source])
+		largest = math.Max(largest, source)
 	}
-	if !(variance > 0) {
-		return 1
+	j.slack = shareSlack
+	if j.Variance > 0 {
+		j.slack += boundedSlack * (largest / j.Variance) * (largest / j.Variance)
 	}
-	return (largest / variance) * (largest / variance)
+	return j
+}
+
+// quickly judges a choice by one group of demands after the other and stops at
+// the first that fails, which is all that a search needs.
+func (p *pictures) quickly(choice []int) Verdict { return p.verdict(choice, false) }
+
+// wholly judges a choice by every demand, so that misses can be compared.
+func (p *pictures) wholly(choice []int) Verdict { return p.verdict(choice, true) }
+
+func (p *pictures) verdict(choice []int, whole bool) Verdict {
+	v := Verdict{Meets: true}
+	for _, g := range p.groups {
+		list, err := p.of(g, choice)
+		if err != nil {
+			return Verdict{Shortfall: math.Inf(1)} // Confirm would say the same
+		}
+		for n, j := range list {
+			k := g.demands[n]
+			d := p.demands[k].Demand
+			d.Share = math.Max(0, d.Share-j.slack)
+			if d.Holds(j.Mean, j.Variance, j.Half) {
+				continue
+			}
+			miss := d.Miss(j.Mean, j.Variance, j.Half) / d.Scale()
+			if v.Meets || !(miss <= v.Shortfall) {
+				v = Verdict{Shortfall: miss, Worst: k}
+			}
+		}
+		if !v.Meets && !whole {
+			return v
+		}
+	}
+	return v
 }

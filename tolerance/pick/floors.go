@@ -19,7 +19,7 @@ func (c *chooser) problem() (*Problem, error) {
 		return nil, err
 	}
 	c.pictures = pictures
-	p := &Problem{Cost: c.cost, Judge: pictures.judge, Confirm: c.confirm, Base: int64(c.order(c.fixedParts()).Total)}
+	p := &Problem{Cost: c.cost, Judge: pictures.quickly, Confirm: c.confirm, Base: c.rest}
 	for i := range c.fittings {
 		var line Line
 		for j := range c.fittings[i] {
@@ -78,9 +78,8 @@ func (c *chooser) floor(i, j int) int64 {
 	own := len(c.build.Openings[i].Positions)
 	least := int64(math.MaxInt64)
 	for others := range c.company(i, j) {
-		with, _ := c.buying(f.Part, others+own)
-		without, _ := c.buying(f.Part, others)
-		least = min(least, int64(with-without))
+		with, without := c.price(f.Part, c.keys[i][j], others+own), c.price(f.Part, c.keys[i][j], others)
+		least = min(least, with-without)
 	}
 	return least
 }
@@ -101,13 +100,14 @@ func (c *chooser) company(i, j int) map[int]bool {
 	return counts
 }
 
-// equations name what a choice's graph follows from: the nominal values and
-// which terms its parts' scatter has. Where two lines buy the same piece they
-// share a lot, so such a choice stands for itself alone.
-func (p *pictures) equations(choice []int) string {
+// equations name what a choice's graph follows from on a group's lines: the
+// nominal values and which terms the parts' scatter has. Where two lines buy the
+// same piece they share a lot, so such a choice stands for itself alone.
+func (p *pictures) equations(g *group, choice []int) string {
 	var b strings.Builder
 	bought := map[string]bool{}
-	for i, j := range choice {
+	for _, i := range g.lines {
+		j := choice[i]
 		key := p.keys[i][j]
 		if bought[key] || p.fixed[key] > 0 {
 			return "choice " + fmt.Sprint(choice)

@@ -3,6 +3,7 @@ package pick
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"batchwright/bom/offer"
 	"batchwright/bom/part"
@@ -57,17 +58,31 @@ func (c *chooser) outOfReach(found Outcome) string {
 
 // predicted says what the linear picture makes of a demand.
 func (c *chooser) predicted(choice []int, k int) string {
-	l, err := c.pictures.of(choice)
-	if err != nil {
+	j, ok := c.pictures.demand(choice, k)
+	if !ok {
 		return "cannot be compiled"
 	}
-	d, t := c.pictures.demands[k], totals(l, k)
+	d := c.pictures.demands[k]
 	if d.WorstCase {
 		unit := c.build.Targets[d.target].Unit
-		full := t.Half / halfSlack
-		return fmt.Sprintf("runs from %s to %s", part.Text(t.Mean-full, unit), part.Text(t.Mean+full, unit))
+		full := j.Half / halfSlack
+		return fmt.Sprintf("runs from %s to %s", part.Text(j.Mean-full, unit), part.Text(j.Mean+full, unit))
 	}
-	return fmt.Sprintf("meets it on some %.3g %% of the units", 100*ShareOfNormal(t.Mean, t.Variance, d.Low, d.High))
+	return fmt.Sprintf("meets it on some %.3g %% of the units", 100*ShareOfNormal(j.Mean, j.Variance, d.Low, d.High))
+}
+
+// demand is what one demand is judged by.
+func (p *pictures) demand(choice []int, k int) (judged, bool) {
+	for _, g := range p.groups {
+		if n := slices.Index(g.demands, k); n >= 0 {
+			list, err := p.of(g, choice)
+			if err != nil {
+				return judged{}, false
+			}
+			return list[n], true
+		}
+	}
+	return judged{}, false
 }
 
 // choice describes what was picked for one opening, and why.
@@ -106,7 +121,7 @@ func (c *chooser) why(choice []int, i, j int) string {
 	if text, ok := c.refused[fmt.Sprint(other)]; ok {
 		return fmt.Sprintf("%s would save %v, but meets %s", name, saving, text)
 	}
-	if v := c.pictures.judge(other); !v.Meets {
+	if v := c.pictures.wholly(other); !v.Meets {
 		t := c.build.Targets[c.pictures.demands[v.Worst].target]
 		return fmt.Sprintf("%s would save %v, but on %q, to first order, %s", name, saving, t.Name, c.predicted(other, v.Worst))
 	}

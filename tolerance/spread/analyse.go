@@ -27,7 +27,7 @@ const (
 // Analyse does everything: nominal values, worst cases, root sum squares,
 // contributions and a simulation with its yield.
 func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
-	s, err := simulate(ctx, newNodes(m, allOutputs(m), true), o)
+	s, err := simulate(ctx, newNodes(m, allOutputs(m), allTargets(m), true), o)
 	if err != nil {
 		return nil, err
 	}
@@ -40,8 +40,8 @@ func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
 	for i := range m.Outputs {
 		r.Outputs = append(r.Outputs, s.output(l, i, worst[i]))
 	}
-	for t := range m.Trims {
-		r.Trims = append(r.Trims, s.trim(t))
+	for k := range s.nodes.trims { // all of them
+		r.Trims = append(r.Trims, s.trim(k))
 	}
 	for t := range m.Build.Targets {
 		r.Targets = append(r.Targets, s.target(t, worst))
@@ -52,20 +52,38 @@ func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
 	return r, nil
 }
 
-// JudgeShares simulates only what the targets by share ask about, and gives
-// their verdicts.
-func JudgeShares(ctx context.Context, m *build.Model, o Options) ([]TargetReport, error) {
-	s, err := simulate(ctx, newNodes(m, targetOutputs(m), false), o)
+// JudgeShares simulates only what some of the targets ask about, and gives
+// their verdicts by share.
+func JudgeShares(ctx context.Context, m *build.Model, targets []int, o Options) ([]TargetReport, error) {
+	s, err := simulate(ctx, newNodes(m, nil, targets, false), o)
 	if err != nil {
 		return nil, err
 	}
 	var list []TargetReport
-	for t, target := range m.Build.Targets {
-		if !target.WorstCase {
-			list = append(list, s.target(t, nil))
-		}
+	for k := range targets {
+		list = append(list, s.shareOf(k))
 	}
 	return list, nil
+}
+
+// CheapFirst divides the targets by share into those that take a small part of
+// the operations of simulating all, and the rest.
+func CheapFirst(m *build.Model) (cheap, rest []int) {
+	var shares []int
+	for t, target := range m.Build.Targets {
+		if !target.WorstCase {
+			shares = append(shares, t)
+		}
+	}
+	all := newNodes(m, nil, shares, false).program.Cost()
+	for _, t := range shares {
+		if 5*newNodes(m, nil, []int{t}, false).program.Cost() < all {
+			cheap = append(cheap, t)
+		} else {
+			rest = append(rest, t)
+		}
+	}
+	return cheap, rest
 }
 
 // JudgeWorstCases gives the verdicts on the targets by worst case, without
@@ -129,35 +147,39 @@ func (s summary) report(units int) Simulated {
 	return r
 }
 
-// trim reports where a trimmer ends.
-func (s *sample) trim(t int) TrimReport {
-	m := s.nodes.model
-	trim := m.Build.Trims[t]
-	x := s.settings[t]
+// trim reports where the k-th trimmer ends.
+func (s *sample) trim(k int) TrimReport {
+	trim := s.nodes.model.Build.Trims[s.nodes.trims[k]]
+	x := s.settings[k]
 	units := float64(s.units)
 	return TrimReport{
 		Turn:         trim.Stage + "." + trim.Role,
-		ReachedShare: Figure(1 - float64(s.short[t][0]+s.short[t][1])/units),
-		ShortLow:     Figure(float64(s.short[t][0]) / units),
-		ShortHigh:    Figure(float64(s.short[t][1]) / units),
+		ReachedShare: Figure(1 - float64(s.short[k][0]+s.short[k][1])/units),
+		ShortLow:     Figure(float64(s.short[k][0]) / units),
+		ShortHigh:    Figure(float64(s.short[k][1]) / units),
 		Setting: TrimSetting{
-			Nominal: Figure(s.nominal[s.nodes.trims+3*t]), Mean: Figure(x.moments.Mean()),
+			Nominal: Figure(s.nominal[s.nodes.trimColumn(k)]), Mean: Figure(x.moments.Mean()),
 			P01: Figure(x.histogram.Quantile(0.01)), P99: Figure(x.histogram.Quantile(0.99)),
 		},
 	}
 }
 
-// target gives the verdict on a target: by share, or by its worst case.
-func (s *sample) target(t int, worst []*WorstCase) TargetReport {
-	m := s.nodes.model
-	target := m.Build.Targets[t]
-	share, low, high := ShareInterval(s.perBatch(s.comply[t]), m.Build.Units, Confidence)
+// target gives the verdict on the k-th target: by share, or by its worst case.
+func (s *sample) target(k int, worst []*WorstCase) TargetReport {
+	r := s.shareOf(k)
+	if t := s.nodes.targets[k]; s.nodes.model.Build.Targets[t].WorstCase {
+		r.Met, r.Why = false, ""
+		judgeWorst(&r, s.nodes.model, t, worst)
+	}
+	return r
+}
+
+// shareOf gives the verdict on the k-th target by its share.
+func (s *sample) shareOf(k int) TargetReport {
+	target := s.nodes.model.Build.Targets[s.nodes.targets[k]]
+	share, low, high := ShareInterval(s.perBatch(s.comply[k]), s.nodes.model.Build.Units, Confidence)
 	r := targetReport(target)
 	r.Share, r.ShareInterval = Figure(share), [2]Figure{Figure(low), Figure(high)}
-	if target.WorstCase {
-		judgeWorst(&r, m, t, worst)
-		return r
-	}
 	r.Met = share >= target.Share
 	if low < target.Share && high > target.Share {
 		r.Why = fmt.Sprintf("close: %.4g %% of the units comply, between %.4g %% and %.4g %% at 95 %% confidence", 100*share, 100*low, 100*high)

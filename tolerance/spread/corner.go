@@ -115,10 +115,10 @@ func (s *search) run(direction float64) extreme {
 	}
 	for k := range s.kinks {
 		if at := s.zero(1 + 2*s.trims + k); at != nil {
-			best = best.take(s.climb(s.best([]point{at}, direction), direction), direction)
+			best = best.take(s.best([]point{at}, direction), direction)
 		}
 	}
-	return best
+	return s.climb(best, direction)
 }
 
 // zero looks for a place where one of the program's outputs is zero, on the
@@ -211,11 +211,11 @@ func (s *search) best(points []point, direction float64) extreme {
 }
 
 // ascend goes to the corner that the slopes at a start point to, as far as the
-// trims reach, looks at the slopes there, and so on; then it climbs.
+// trims reach, looks at the slopes there, and so on.
 func (s *search) ascend(start int, direction float64) extreme {
 	best := extreme{}
 	from := s.starts[start]
-	for range 6 { // slopes that keep changing their signs are left to pass
+	for range 6 { // slopes that keep changing their signs are left to climb
 		corner := s.corner(from, 0, direction)
 		if slices.ContainsFunc(s.visited, func(p point) bool { return slices.Equal(p, corner) }) {
 			break
@@ -228,7 +228,7 @@ func (s *search) ascend(start int, direction float64) extreme {
 		best = next
 		from = s.picture(best.at)
 	}
-	return s.climb(best, direction)
+	return best
 }
 
 // climb moves single coordinates to their ends as long as that helps.

@@ -28,7 +28,7 @@ func Drift(ctx context.Context, b *build.Build, output build.OutputName, from, t
 	if err != nil {
 		return nil, err
 	}
-	s, err := simulate(ctx, newNodes(m, targetOutputs(m), false), o)
+	s, err := simulate(ctx, newNodes(m, nil, allTargets(m), false), o)
 	if err != nil {
 		return nil, err
 	}

@@ -98,42 +98,45 @@ type Term struct {
 	Variance float64
 }
 
-// Variance is the first-order variance of a node and its terms, with the
+// Terms are what each input adds to a node's first-order variance, with the
 // correlation that lots bring (JCGM 100:2008, 5.2.2):
 //
 //	u² = Σ_i Σ_j c_i·u_i·c_j·u_j·r_ij
 //
 // with c the slope, u the standard deviation of an input's shape, and r_ij the
-// product-moment correlation of two pieces of one lot.
-func (l *Linear) Variance(node int) (float64, []Term) {
+// product-moment correlation of two pieces of one lot. Their sum is the variance.
+func (l *Linear) Terms(node int) []Term {
 	var terms []Term
-	var total float64
-	own := make([]float64, len(l.Inputs)) // c·u
 	lots := map[int]float64{}
 	for i, x := range l.Inputs {
-		own[i] = l.Slopes[node][i] * x.HalfWidth * math.Sqrt(scatter.Variance(x.Shape))
-		if x.Lot >= 0 {
-			lots[x.Lot] += own[i]
-		}
-	}
-	for i, x := range l.Inputs {
-		if own[i] == 0 {
+		own := l.Slopes[node][i] * x.HalfWidth * math.Sqrt(scatter.Variance(x.Shape)) // c·u
+		if own == 0 {
 			continue
 		}
-		v := own[i] * own[i]
+		terms = append(terms, Term{i, own})
 		if x.Lot >= 0 {
-			v += own[i] * x.Common * (lots[x.Lot] - own[i])
+			lots[x.Lot] += own
 		}
-		total += v
-		terms = append(terms, Term{i, v})
 	}
-	slices.SortStableFunc(terms, func(a, b Term) int { return cmp.Compare(b.Variance, a.Variance) })
-	return total, terms
+	for k, t := range terms {
+		x := l.Inputs[t.Input]
+		own := t.Variance
+		terms[k].Variance = own * own
+		if x.Lot >= 0 {
+			terms[k].Variance += own * x.Common * (lots[x.Lot] - own)
+		}
+	}
+	return terms
 }
 
 // rootSumSquare fills in the first-order part of an output's report.
 func (l *Linear) rootSumSquare(node int, o *OutputReport) {
-	variance, terms := l.Variance(node)
+	terms := l.Terms(node)
+	var variance float64
+	for _, t := range terms {
+		variance += t.Variance
+	}
+	slices.SortStableFunc(terms, func(a, b Term) int { return cmp.Compare(b.Variance, a.Variance) })
 	o.RootSumSquare.StandardUncertainty = Figure(math.Sqrt(math.Max(0, variance)))
 	if math.IsNaN(variance) {
 		o.RootSumSquare.Why = "the output has no derivative at its nominal value"

@@ -5,6 +5,7 @@ package spread
 
 import (
 	"math"
+	"slices"
 
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/tape"
@@ -19,17 +20,21 @@ const lanes = 256
 type nodes struct {
 	model    *build.Model
 	program  *tape.Program
+	targets  []int       // of Build.Targets, that are judged
 	outputs  []int       // the first of Model.Outputs in each column
 	columnOf map[int]int // from an index of Model.Outputs
-	trims    int         // first column of the trims: setting, at low, at high for each
+	trims    []int       // of Model.Trims; setting, at low, at high follow the outputs for each
 	points   int         // first column of the loaded readings
 	count    int
 }
 
-// newNodes compiles the outputs wanted, every trim and, with points, every
-// reading.
-func newNodes(m *build.Model, outputs []int, points bool) *nodes {
-	n := &nodes{model: m, columnOf: map[int]int{}}
+// newNodes compiles some outputs and what some targets judge, the trims that
+// either depends on and, with points, every trim and reading.
+func newNodes(m *build.Model, outputs, targets []int, points bool) *nodes {
+	n := &nodes{model: m, targets: targets, columnOf: map[int]int{}}
+	for _, t := range targets {
+		outputs = append(slices.Clip(outputs), m.Targets[t].Outputs...)
+	}
 	var refs []tape.Ref
 	column := map[tape.Ref]int{}
 	for _, i := range outputs {
@@ -41,9 +46,9 @@ func newNodes(m *build.Model, outputs []int, points bool) *nodes {
 		}
 		n.columnOf[i] = column[node]
 	}
-	n.trims = len(refs)
-	for _, t := range m.Trims {
-		refs = append(refs, t.Setting, t.AtLow, t.AtHigh)
+	n.findTrims(points)
+	for _, t := range n.trims {
+		refs = append(refs, m.Trims[t].Setting, m.Trims[t].AtLow, m.Trims[t].AtHigh)
 	}
 	n.points = len(refs)
 	if points {
@@ -56,6 +61,32 @@ func newNodes(m *build.Model, outputs []int, points bool) *nodes {
 	return n
 }
 
+// findTrims lists the trims that the outputs and targets depend on, or all.
+func (n *nodes) findTrims(all bool) {
+	need := make([]bool, len(n.model.Trims))
+	mark := func(trims []int) {
+		for _, t := range trims {
+			need[t] = true
+		}
+	}
+	for _, i := range n.outputs {
+		mark(n.model.Outputs[i].Trims)
+	}
+	for _, t := range n.targets {
+		if trim := n.model.Build.Targets[t].Trim; trim >= 0 {
+			mark(append([]int{trim}, n.model.Trims[trim].Trims...))
+		}
+	}
+	for t := range need {
+		if need[t] || all {
+			n.trims = append(n.trims, t)
+		}
+	}
+}
+
+// trimColumn is the first column of the k-th trim.
+func (n *nodes) trimColumn(k int) int { return len(n.outputs) + 3*k }
+
 // allOutputs are the indices of every output of a model.
 func allOutputs(m *build.Model) []int {
 	all := make([]int, len(m.Outputs))
@@ -65,19 +96,13 @@ func allOutputs(m *build.Model) []int {
 	return all
 }
 
-// targetOutputs are the indices of the outputs that targets judge.
-func targetOutputs(m *build.Model) []int {
-	var list []int
-	seen := map[int]bool{}
-	for _, t := range m.Targets {
-		for _, i := range t.Outputs {
-			if !seen[i] {
-				seen[i] = true
-				list = append(list, i)
-			}
-		}
+// allTargets are the indices of every target of a build.
+func allTargets(m *build.Model) []int {
+	all := make([]int, len(m.Build.Targets))
+	for i := range all {
+		all[i] = i
 	}
-	return list
+	return all
 }
 
 // columns are a worker's own memory: the inputs and results of one block.

@@ -32,11 +32,11 @@ type sample struct {
 	units    int // in all
 	nominal  []float64
 	outputs  []summary // as nodes.outputs
-	settings []summary // as Model.Trims
+	settings []summary // as nodes.trims
 	points   []summary // over good units; as Model.Points
 	short    [][2]int  // of each trim: units that ran out at setting 0, at 1
-	comply   [][]bool  // [target][unit]
-	good     []bool    // units that meet every target
+	comply   [][]bool  // [of nodes.targets][unit]
+	good     []bool    // units that meet every one of those
 }
 
 // summary is the distribution of one column.
@@ -95,13 +95,17 @@ func simulate(ctx context.Context, n *nodes, o Options) (*sample, error) {
 
 func newSample(n *nodes, batches, units int) *sample {
 	s := &sample{nodes: n, batches: batches, units: batches * units, nominal: n.nominal()}
-	s.outputs = s.summaries(0, len(n.outputs))
-	s.settings = s.summaries(n.trims, len(n.model.Trims))
-	if n.count > n.points {
-		s.points = s.summaries(n.points, n.count-n.points)
+	for column := range n.outputs {
+		s.outputs = append(s.outputs, newSummary(s.nominal[column]))
 	}
-	s.short = make([][2]int, len(n.model.Trims))
-	s.comply = make([][]bool, len(n.model.Targets))
+	for k := range n.trims {
+		s.settings = append(s.settings, newSummary(s.nominal[n.trimColumn(k)]))
+	}
+	for column := n.points; column < n.count; column++ {
+		s.points = append(s.points, newSummary(s.nominal[column]))
+	}
+	s.short = make([][2]int, len(n.trims))
+	s.comply = make([][]bool, len(n.targets))
 	for i := range s.comply {
 		s.comply[i] = make([]bool, s.units)
 	}
@@ -109,22 +113,12 @@ func newSample(n *nodes, batches, units int) *sample {
 	return s
 }
 
-// summaries makes empty summaries about the nominal values of some columns;
-// trims take three columns each.
-func (s *sample) summaries(first, count int) []summary {
-	stride := 1
-	if first == s.nodes.trims && count == len(s.nodes.model.Trims) {
-		stride = 3
+// newSummary is an empty summary about a nominal value.
+func newSummary(nominal float64) summary {
+	if !finite(nominal) {
+		nominal = 0
 	}
-	list := make([]summary, count)
-	for i := range list {
-		centre := s.nominal[first+i*stride]
-		if !finite(centre) {
-			centre = 0
-		}
-		list[i].centre, list[i].histogram = centre, NewHistogram(centre)
-	}
-	return list
+	return summary{centre: nominal, histogram: NewHistogram(nominal)}
 }
 
 // mergeJobs joins the runs' sums in their order.

@@ -26,8 +26,8 @@ func (s *sample) newWorker(source scatter.Source) *worker {
 		outputs: emptied(s.outputs), settings: emptied(s.settings), points: emptied(s.points),
 	}
 	w.reached = make([][]bool, len(s.nodes.model.Trims))
-	for i := range w.reached {
-		w.reached[i] = make([]bool, lanes)
+	for _, t := range s.nodes.trims {
+		w.reached[t] = make([]bool, lanes)
 	}
 	return w
 }
@@ -111,17 +111,17 @@ func (w *worker) keepReached(trims []int, width int) []bool {
 
 // addTrims notes which trims reached and where their settings ended.
 func (w *worker) addTrims(j *job, out [][]float64, width int) {
-	for t := range w.settings {
-		column := w.nodes.trims + 3*t
+	for k, t := range w.nodes.trims {
+		column := w.nodes.trimColumn(k)
 		low, high := out[column+1], out[column+2]
 		for i := range width {
 			w.reached[t][i] = reached(low[i], high[i])
 			if !w.reached[t][i] {
-				j.short[t][(shortSide(low[i], high[i])+1)/2]++
+				j.short[k][(shortSide(low[i], high[i])+1)/2]++
 			}
 		}
 		earlier := append([]int{t}, w.nodes.model.Trims[t].Trims...)
-		w.add(&j.settings[t], w.settings[t], out[column], w.keepReached(earlier, width))
+		w.add(&j.settings[k], w.settings[k], out[column], w.keepReached(earlier, width))
 	}
 }
 
@@ -131,8 +131,8 @@ func (w *worker) judge(out [][]float64, first, width int) {
 	for i := range good {
 		good[i] = true
 	}
-	for t := range w.comply {
-		comply := w.comply[t][first : first+width]
+	for k, t := range w.nodes.targets {
+		comply := w.comply[k][first : first+width]
 		w.judgeTarget(t, out, comply)
 		for i := range good {
 			good[i] = good[i] && comply[i]

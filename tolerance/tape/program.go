@@ -385,3 +385,19 @@ func (c *compiler) move(list []instruction) {
 		in.dst, in.a, in.b, in.c = c.final(in.dst), c.final(in.a), c.final(in.b), c.final(in.c)
 	}
 }
+
+// Cost estimates how many operations the program takes for one unit: a loop
+// counts as often as a search usually steps.
+func (p *Program) Cost() int { return cost(p.code) }
+
+func cost(list []instruction) int {
+	const steps = 10
+	total := 0
+	for _, in := range list {
+		total++
+		if in.loop != nil {
+			total += steps * cost(in.loop.body)
+		}
+	}
+	return total
+}

@@ -98,8 +98,3 @@ func sentence(text, more string) string {
 	}
 	return text + " " + more
 }
-
-// judged says whether a reading can be inside or outside of anything.
-func (r benchRow) judged() bool {
-	return finite(r.low) || finite(r.high) || finite(r.acceptLow) || finite(r.acceptHigh)
-}

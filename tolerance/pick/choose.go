@@ -8,6 +8,7 @@ import (
 	"batchwright/bom/order"
 	"batchwright/bom/part"
 	"batchwright/tolerance/build"
+	"batchwright/tolerance/pick/exact"
 	"batchwright/tolerance/spread"
 )
 
@@ -15,7 +16,7 @@ import (
 type Options struct {
 	Seed     uint64 // of the simulation that confirms
 	Units    int    // that it simulates at least
-	Limits   Limits
+	Limits   exact.Limits
 	Progress func(text string) // nil: not called
 }
 

@@ -8,6 +8,7 @@ import (
 
 	"batchwright/bom/part"
 	"batchwright/tolerance/build"
+	"batchwright/tolerance/pick/exact"
 	"batchwright/tolerance/spread"
 	"batchwright/tolerance/tape"
 )
@@ -27,7 +28,7 @@ const (
 
 // demandNode is a target at one condition: a node of the model and its limits.
 type demandNode struct {
-	Demand
+	exact.Demand
 	target int
 	node   func(m *build.Model) tape.Ref
 }
@@ -39,7 +40,7 @@ type demandNode struct {
 func listDemands(m *build.Model) []demandNode {
 	var list []demandNode
 	for t, target := range m.Build.Targets {
-		d := demandNode{target: t, Demand: Demand{
+		d := demandNode{target: t, Demand: exact.Demand{
 			Low: target.Low, High: target.High, WorstCase: target.WorstCase, Share: target.Share,
 		}}
 		if target.Trim >= 0 {
@@ -80,7 +81,7 @@ type group struct {
 
 // judged is what a demand is judged by.
 type judged struct {
-	Effect
+	exact.Effect
 	slack float64 // of the share that is asked for
 }
 
@@ -233,7 +234,7 @@ func (p *pictures) graph(g *group, choice []int) (*graph, error) {
 // its scatter may be: the square of the largest share of the variance that one
 // source of a shape other than normal makes, the pieces of a lot being one.
 func judge(l *spread.Linear, node int) judged {
-	j := judged{Effect: Effect{Mean: l.Values[node]}}
+	j := judged{Effect: exact.Effect{Mean: l.Values[node]}}
 	lots := map[int]float64{}
 	var largest float64
 	for _, t := range l.Terms(node) {
@@ -259,17 +260,17 @@ func judge(l *spread.Linear, node int) judged {
 
 // quickly judges a choice by one group of demands after the other and stops at
 // the first that fails, which is all that a search needs.
-func (p *pictures) quickly(choice []int) Verdict { return p.verdict(choice, false) }
+func (p *pictures) quickly(choice []int) exact.Verdict { return p.verdict(choice, false) }
 
 // wholly judges a choice by every demand, so that misses can be compared.
-func (p *pictures) wholly(choice []int) Verdict { return p.verdict(choice, true) }
+func (p *pictures) wholly(choice []int) exact.Verdict { return p.verdict(choice, true) }
 
-func (p *pictures) verdict(choice []int, whole bool) Verdict {
-	v := Verdict{Meets: true}
+func (p *pictures) verdict(choice []int, whole bool) exact.Verdict {
+	v := exact.Verdict{Meets: true}
 	for _, g := range p.groups {
 		list, err := p.of(g, choice)
 		if err != nil {
-			return Verdict{Shortfall: math.Inf(1)} // Confirm would say the same
+			return exact.Verdict{Shortfall: math.Inf(1)} // Confirm would say the same
 		}
 		for n, j := range list {
 			k := g.demands[n]
@@ -280,7 +281,7 @@ func (p *pictures) verdict(choice []int, whole bool) Verdict {
 			}
 			miss := d.Miss(j.Mean, j.Variance, j.Half) / d.Scale()
 			if v.Meets || !(miss <= v.Shortfall) {
-				v = Verdict{Shortfall: miss, Worst: k}
+				v = exact.Verdict{Shortfall: miss, Worst: k}
 			}
 		}
 		if !v.Meets && !whole {

@@ -10,20 +10,21 @@ import (
 	"batchwright/bom/order"
 	"batchwright/bom/part"
 	"batchwright/tolerance/build"
+	"batchwright/tolerance/pick/exact"
 )
 
 // problem compiles the openings into a search.
-func (c *chooser) problem() (*Problem, error) {
+func (c *chooser) problem() (*exact.Problem, error) {
 	pictures, err := newPictures(c)
 	if err != nil {
 		return nil, err
 	}
 	c.pictures = pictures
-	p := &Problem{Cost: c.cost, Judge: pictures.quickly, Confirm: c.confirm, Base: c.rest}
+	p := &exact.Problem{Cost: c.cost, Judge: pictures.quickly, Confirm: c.confirm, Base: c.rest}
 	for i := range c.fittings {
-		var line Line
+		var line exact.Line
 		for j := range c.fittings[i] {
-			line.Options = append(line.Options, Option{Floor: c.floor(i, j)})
+			line.Options = append(line.Options, exact.Option{Floor: c.floor(i, j)})
 		}
 		p.Lines = append(p.Lines, line)
 	}

@@ -9,10 +9,11 @@ import (
 	"batchwright/bom/part"
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/build"
+	"batchwright/tolerance/pick/exact"
 )
 
 // result puts what the search found into the build's terms.
-func (c *chooser) result(found Outcome) (*Result, *build.Build, error) {
+func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 	r := &Result{
 		Choices: []Choice{}, ProvedCheapest: found.Proved && found.Choice != nil,
 		Candidates: found.Candidates, Examined: found.Examined, Simulated: found.Simulated,
@@ -40,7 +41,7 @@ func (c *chooser) result(found Outcome) (*Result, *build.Build, error) {
 }
 
 // outOfReach says which target no choice meets, and how near the best comes.
-func (c *chooser) outOfReach(found Outcome) string {
+func (c *chooser) outOfReach(found exact.Outcome) string {
 	if found.Nearest == nil {
 		return "the search ended before any choice was judged"
 	}
@@ -68,7 +69,7 @@ func (c *chooser) predicted(choice []int, k int) string {
 		full := j.Half / halfSlack
 		return fmt.Sprintf("runs from %s to %s", part.Text(j.Mean-full, unit), part.Text(j.Mean+full, unit))
 	}
-	return fmt.Sprintf("meets it on some %.3g %% of the units", 100*ShareOfNormal(j.Mean, j.Variance, d.Low, d.High))
+	return fmt.Sprintf("meets it on some %.3g %% of the units", 100*exact.ShareOfNormal(j.Mean, j.Variance, d.Low, d.High))
 }
 
 // demand is what one demand is judged by.

@@ -56,7 +56,7 @@ func TestConstantsFold(t *testing.T) {
 		}
 	}
 	// A NaN constant is one node too, though NaN is not equal to itself.
-	if r.g.Constant(math.NaN()) != r.g.Constant(math.NaN()) {
+	if first := r.g.Constant(math.NaN()); first != r.g.Constant(math.NaN()) {
 		t.Error("NaN is two nodes")
 	}
 }

@@ -1,4 +1,4 @@
-package pick
+package exact
 
 import (
 	"cmp"
@@ -30,7 +30,7 @@ const none = math.MaxInt64
 // the outcome then holds what was known so far.
 func (p *Problem) Cheapest(ctx context.Context, limits Limits) (Outcome, error) {
 	if err := p.check(); err != nil {
-		return Outcome{}, fmt.Errorf("pick: %w", err)
+		return Outcome{}, fmt.Errorf("exact: %w", err)
 	}
 	if limits.Nodes <= 0 {
 		limits.Nodes = DefaultNodes
@@ -245,7 +245,7 @@ func (s *search) expand(f *frontier, b *bank, at *standing, i int32, ceiling int
 func (s *search) price(choice []int) (int64, error) {
 	cost := s.p.cost(choice)
 	if floor := s.p.floor(choice); cost < floor {
-		return 0, fmt.Errorf("pick: choice %v costs %d, expected at least the sum of its floors, %d", choice, cost, floor)
+		return 0, fmt.Errorf("exact: choice %v costs %d, expected at least the sum of its floors, %d", choice, cost, floor)
 	}
 	return cost, nil
 }
@@ -295,7 +295,7 @@ func (s *search) confirm(choice []int) (bool, error) {
 	s.out.Simulated++
 	ok, err := s.p.Confirm(slices.Clone(choice))
 	if err != nil {
-		return false, fmt.Errorf("pick: confirming: %w", err)
+		return false, fmt.Errorf("exact: confirming: %w", err)
 	}
 	if !ok {
 		s.refused++

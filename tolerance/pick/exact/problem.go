@@ -1,4 +1,7 @@
-package pick
+// Package exact searches for the cheapest choice of one option for each of
+// several lines that meets every demand, and proves that nothing cheaper does.
+// It knows nothing of builds: package pick turns those into a Problem.
+package exact
 
 import (
 	"fmt"

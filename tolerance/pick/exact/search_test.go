@@ -1,4 +1,4 @@
-package pick
+package exact
 
 import (
 	"context"
@@ -318,7 +318,7 @@ func TestBrokenPromiseOfFloors(t *testing.T) {
 	p := flat(2, 2)
 	p.Cost = func([]int) int64 { return 13 }
 	_, err := p.Cheapest(context.Background(), Limits{})
-	want := "pick: choice [0 0] costs 13, expected at least the sum of its floors, 14"
+	want := "exact: choice [0 0] costs 13, expected at least the sum of its floors, 14"
 	if fmt.Sprint(err) != want {
 		t.Errorf("error %q, want %q", err, want)
 	}
@@ -331,18 +331,18 @@ func TestFaultyProblems(t *testing.T) {
 		p    Problem
 		want string
 	}{
-		"line without options": {Problem{Lines: []Line{{}}}, "pick: line 0: no options"},
-		"effects missing":      {one(Option{}, Demand{Share: 0.9}), "pick: line 0, option 0: 0 effects, expected one for each of the 1 demands"},
+		"line without options": {Problem{Lines: []Line{{}}}, "exact: line 0: no options"},
+		"effects missing":      {one(Option{}, Demand{Share: 0.9}), "exact: line 0, option 0: 0 effects, expected one for each of the 1 demands"},
 		"negative variance": {one(Option{Effects: []Effect{{0, -1, 0}}}, Demand{Share: 0.9}),
-			"pick: line 0, option 0: effect 0 is {0 -1 0}, expected finite numbers, variance and half width not negative"},
+			"exact: line 0, option 0: effect 0 is {0 -1 0}, expected finite numbers, variance and half width not negative"},
 		"mean not a number": {one(Option{Effects: []Effect{{nan, 1, 0}}}, Demand{Share: 0.9}),
-			"pick: line 0, option 0: effect 0 is {NaN 1 0}, expected finite numbers, variance and half width not negative"},
-		"limits swapped":      {one(Option{}, Demand{Low: 2, High: 1, Share: 0.9}), "pick: demand 0: limits 2 to 1, expected low <= high"},
-		"limit not a number":  {one(Option{}, Demand{Low: nan, High: 1, Share: 0.9}), "pick: demand 0: limits NaN to 1, expected low <= high"},
-		"share above one":     {one(Option{}, Demand{Share: 1.5}), "pick: demand 0: share 1.5, expected 0 to 1"},
-		"share not a number":  {one(Option{}, Demand{Share: nan}), "pick: demand 0: share NaN, expected 0 to 1"},
-		"base not a number":   {one(Option{}, Demand{BaseHalf: nan}), "pick: demand 0: base mean 0, variance 0, half width NaN, expected finite numbers, the last two not negative"},
-		"base variance below": {one(Option{}, Demand{BaseVariance: -1}), "pick: demand 0: base mean 0, variance -1, half width 0, expected finite numbers, the last two not negative"},
+			"exact: line 0, option 0: effect 0 is {NaN 1 0}, expected finite numbers, variance and half width not negative"},
+		"limits swapped":      {one(Option{}, Demand{Low: 2, High: 1, Share: 0.9}), "exact: demand 0: limits 2 to 1, expected low <= high"},
+		"limit not a number":  {one(Option{}, Demand{Low: nan, High: 1, Share: 0.9}), "exact: demand 0: limits NaN to 1, expected low <= high"},
+		"share above one":     {one(Option{}, Demand{Share: 1.5}), "exact: demand 0: share 1.5, expected 0 to 1"},
+		"share not a number":  {one(Option{}, Demand{Share: nan}), "exact: demand 0: share NaN, expected 0 to 1"},
+		"base not a number":   {one(Option{}, Demand{BaseHalf: nan}), "exact: demand 0: base mean 0, variance 0, half width NaN, expected finite numbers, the last two not negative"},
+		"base variance below": {one(Option{}, Demand{BaseVariance: -1}), "exact: demand 0: base mean 0, variance -1, half width 0, expected finite numbers, the last two not negative"},
 	}
 	for name, c := range cases {
 		t.Run(name, func(t *testing.T) {

@@ -1,4 +1,4 @@
-package pick
+package exact
 
 import (
 	"math"

@@ -1,8 +1,11 @@
 package cli
 
 import (
+	"bytes"
 	"context"
+	"errors"
 	"fmt"
+	"io/fs"
 	"os"
 	"path/filepath"
 	"strings"
@@ -61,7 +64,7 @@ func (p *program) plan(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
-	path, err := save(c.String("out"), file, src.Title, plan.Compose(*work))
+	path, err := p.save(c.String("out"), file, src.Title, plan.Compose(*work))
 	if err != nil {
 		return err
 	}
@@ -144,7 +147,7 @@ func usableFolder(folder string) error {
 }
 
 // save writes the workbook, whole or not at all, and returns its path.
-func save(folder, buildFile, title string, w workbook.Plan) (string, error) {
+func (p *program) save(folder, buildFile, title string, w workbook.Plan) (string, error) {
 	if err := os.MkdirAll(folder, 0o755); err != nil {
 		return "", unwritable(folder, err)
 	}
@@ -152,10 +155,45 @@ func save(folder, buildFile, title string, w workbook.Plan) (string, error) {
 	if sameFile(path, buildFile) {
 		return "", usage("the workbook %s would replace the build file: give --out another folder", path)
 	}
+	if err := p.keepPrevious(path, w); err != nil {
+		return "", err
+	}
 	if err := workbook.Save(path, w); err != nil {
 		return "", &fault{exitFile, err}
 	}
 	return path, nil
+}
+
+// keepPrevious moves a workbook that stands in the way, and is not the very one
+// about to be written, to a name of its own: readings may have been typed into
+// it.
+func (p *program) keepPrevious(path string, w workbook.Plan) error {
+	old, err := os.ReadFile(path)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil
+	}
+	if err != nil {
+		return &fault{exitFile, err}
+	}
+	var fresh bytes.Buffer
+	if err := workbook.Write(&fresh, w); err != nil {
+		return &fault{exitFile, err}
+	}
+	if bytes.Equal(old, fresh.Bytes()) {
+		return nil
+	}
+	stem := strings.TrimSuffix(path, ".xlsx")
+	for i := 1; ; i++ {
+		aside := fmt.Sprintf("%s.previous-%d.xlsx", stem, i)
+		if _, err := os.Lstat(aside); !errors.Is(err, fs.ErrNotExist) {
+			continue
+		}
+		if err := os.Rename(path, aside); err != nil {
+			return &fault{exitFile, err}
+		}
+		fmt.Fprintf(p.stderr, "batchwright: %s was there already; it is now %s\n", path, aside)
+		return nil
+	}
 }
 
 func sameFile(a, b string) bool {

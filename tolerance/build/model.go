@@ -85,6 +85,23 @@ type likeness struct {
 // Compile builds the model. Errors are faults of this program, not of the
 // build, which Read has checked.
 func (b *Build) Compile() (*Model, error) {
+	c := b.newCompiler()
+	settings := c.compileTrims()
+	c.compileOutputs(settings)
+	c.compilePoints(settings)
+	c.findTrims()
+	return c.Model, c.err
+}
+
+// CompileTargets builds the model of what the targets judge, and no more.
+func (b *Build) CompileTargets() (*Model, error) {
+	c := b.newCompiler()
+	c.compileTargets(c.environments(c.compileTrims()), map[string]int{})
+	c.findTrims()
+	return c.Model, c.err
+}
+
+func (b *Build) newCompiler() *compiler {
 	c := &compiler{
 		Model:  &Model{Build: b, Graph: tape.NewGraph()},
 		inputs: map[string]tape.Ref{},
@@ -99,11 +116,7 @@ func (b *Build) Compile() (*Model, error) {
 			c.lots[key] = p.Ref
 		}
 	}
-	settings := c.compileTrims()
-	c.compileOutputs(settings)
-	c.compilePoints(settings)
-	c.findTrims()
-	return c.Model, c.err
+	return c
 }
 
 // compileTrims solves the trims in order. While one is done, the later
@@ -135,26 +148,54 @@ func (c *compiler) compileTrims() []tape.Ref {
 	return settings
 }
 
+// environments are those of every condition, after the trims.
+func (c *compiler) environments(settings []tape.Ref) []*environment {
+	var list []*environment
+	for i := range c.Build.Conditions {
+		list = append(list, c.newEnvironment(i, settings))
+	}
+	return list
+}
+
 // compileOutputs makes a node for every output at every condition, and for
 // every change that a target asks about.
 func (c *compiler) compileOutputs(settings []tape.Ref) {
-	b := c.Build
 	at := map[string]int{}
-	var environments []*environment
-	for i := range b.Conditions {
-		environments = append(environments, c.newEnvironment(i, settings))
-	}
-	for _, s := range b.Stages {
+	environments := c.environments(settings)
+	for _, s := range c.Build.Stages {
 		for _, o := range s.Outputs {
-			for i, e := range environments {
-				name := OutputName{s.Name, o.Name}
-				at[key(name, i, -1)] = len(c.Outputs)
-				c.Outputs = append(c.Outputs, Output{Name: name, Unit: o.Unit, Condition: i, ChangeFrom: -1, Node: c.output(e, name)})
+			for i := range environments {
+				c.outputAt(OutputName{s.Name, o.Name}, i, environments, at)
 			}
 		}
 	}
-	for _, t := range b.Targets {
-		c.Targets = append(c.Targets, c.compileTarget(t, at))
+	c.compileTargets(environments, at)
+}
+
+// outputAt is the index of an output at a condition, made on first use.
+func (c *compiler) outputAt(name OutputName, condition int, environments []*environment, at map[string]int) int {
+	k := key(name, condition, -1)
+	i, made := at[k]
+	if !made {
+		o, _ := c.Build.Stage(name.Stage).output(name.Output)
+		i = len(c.Outputs)
+		at[k] = i
+		c.Outputs = append(c.Outputs, Output{Name: name, Unit: o.Unit, Condition: condition, ChangeFrom: -1,
+			Node: c.output(environments[condition], name)})
+	}
+	return i
+}
+
+// compileTargets finds the outputs that each target judges.
+func (c *compiler) compileTargets(environments []*environment, at map[string]int) {
+	for _, t := range c.Build.Targets {
+		var n TargetNodes
+		if t.Trim < 0 {
+			for _, condition := range t.At {
+				n.Outputs = append(n.Outputs, c.judged(t, condition, environments, at))
+			}
+		}
+		c.Targets = append(c.Targets, n)
 	}
 }
 
@@ -163,29 +204,27 @@ func key(name OutputName, condition, from int) string {
 	return fmt.Sprintf("%s|%d|%d", name, condition, from)
 }
 
-// compileTarget finds the outputs a target judges, adding changes.
-func (c *compiler) compileTarget(t Target, at map[string]int) TargetNodes {
-	var n TargetNodes
-	if t.Trim >= 0 {
-		return n
+// judged is the index of the output that a target judges at a condition: itself
+// or its change.
+func (c *compiler) judged(t Target, condition int, environments []*environment, at map[string]int) int {
+	i := c.outputAt(t.Output, condition, environments, at)
+	if t.ChangeFrom < 0 {
+		return i
 	}
-	for _, condition := range t.At {
-		k := key(t.Output, condition, t.ChangeFrom)
-		i, ok := at[k]
-		if !ok {
-			to := c.Outputs[at[key(t.Output, condition, -1)]]
-			from := c.Outputs[at[key(t.Output, t.ChangeFrom, -1)]]
-			to.ChangeFrom, to.Node = t.ChangeFrom, c.Graph.Sub(to.Node, from.Node)
-			if to.Unit.Offset != 0 { // a difference of temperatures is in kelvin
-				to.Unit = quantity.Kelvin
-			}
-			i = len(c.Outputs)
-			at[k] = i
-			c.Outputs = append(c.Outputs, to)
+	from := c.Outputs[c.outputAt(t.Output, t.ChangeFrom, environments, at)]
+	k := key(t.Output, condition, t.ChangeFrom)
+	change, made := at[k]
+	if !made {
+		to := c.Outputs[i]
+		to.ChangeFrom, to.Node = t.ChangeFrom, c.Graph.Sub(to.Node, from.Node)
+		if to.Unit.Offset != 0 { // a difference of temperatures is in kelvin
+			to.Unit = quantity.Kelvin
 		}
-		n.Outputs = append(n.Outputs, i)
+		change = len(c.Outputs)
+		at[k] = change
+		c.Outputs = append(c.Outputs, to)
 	}
-	return n
+	return change
 }
 
 // compilePoints makes the readings of every test point at the reference

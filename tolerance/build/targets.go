@@ -216,9 +216,9 @@ func (r *reader) asked(t *Target) string {
 // limitText puts two limits into words.
 func limitText(low, high float64, u quantity.Unit) string {
 	if math.Abs(low+high) <= 1e-12*high {
-		return "at most ±" + quantity.Format(high, u, 4)
+		return "at most ±" + quantity.Format(high, u, 0)
 	}
-	return "from " + quantity.Format(low, u, 4) + " to " + quantity.Format(high, u, 4)
+	return "from " + quantity.Format(low, u, 0) + " to " + quantity.Format(high, u, 0)
 }
 
 // shareText puts the demanded share into words.
@@ -226,5 +226,5 @@ func (t *Target) shareText() string {
 	if t.WorstCase {
 		return "every corner"
 	}
-	return quantity.Format(t.Share, quantity.Percent, 4) + " of the units"
+	return quantity.Format(t.Share, quantity.Percent, 0) + " of the units"
 }

@@ -167,7 +167,7 @@ func (c *chooser) compile(choice []int) (*build.Model, error) {
 	if err != nil {
 		return nil, err
 	}
-	return b.Compile()
+	return b.CompileTargets()
 }
 
 // of is what each of a group's demands is judged by, for a choice.

@@ -149,7 +149,7 @@ func (c *chooser) name(i, j int) string {
 	f := c.fittings[i][j]
 	text := f.Family
 	if f.Tolerance > 0 {
-		text += " " + quantity.Format(f.Tolerance, quantity.Percent, 2)
+		text += " " + quantity.Format(f.Tolerance, quantity.Percent, 0)
 	}
 	if o := c.build.Openings[i]; len(o.Values) > 0 {
 		text += " " + f.Text

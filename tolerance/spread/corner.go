@@ -41,7 +41,7 @@ func newSearch(m *build.Model, node tape.Ref, trims []int) *search {
 	kinks := m.Graph.Kinks(node)
 	refs = append(refs, kinks...)
 	n := &nodes{model: m, program: m.Graph.Program(refs...), count: len(refs)}
-	s := &search{model: m, program: n.program, slopes: NewDifferentiator(m, refs...), trims: len(trims), kinks: len(kinks), columns: n.newColumns(lanes)}
+	s := &search{model: m, program: n.program, slopes: differentiator(n.program, len(m.Inputs), len(refs)), trims: len(trims), kinks: len(kinks), columns: n.newColumns(lanes)}
 	for _, i := range n.program.Inputs() {
 		if m.Inputs[i].HalfWidth > 0 {
 			s.free = append(s.free, i)
@@ -159,10 +159,10 @@ type picture struct {
 }
 
 // newStarts are the places whose slopes point to the first corners: the
-// centre, and two places halfway to opposite corners.
+// centre, and a place halfway to a corner.
 func (s *search) newStarts() []picture {
-	list := make([]picture, 3)
-	for i, z := range []float64{0, 0.5, -0.5} {
+	list := make([]picture, 2)
+	for i, z := range []float64{0, 0.5} {
 		at := make(point, len(s.free))
 		for k := range at {
 			at[k] = z * (1 - 2*float64(k%2))
@@ -246,12 +246,16 @@ func (s *search) climb(best extreme, direction float64) extreme {
 	return best
 }
 
-// line looks along the way from one place to another, the other end first, and
-// closer about what it finds on the way: an extreme such as a beat of zero
-// lies inside, where the output bends.
+// line looks along the way from one place to another, the other end first.
+// Where something on the way is better than the end, it looks closer about
+// that: an extreme such as a beat of zero lies inside, where the output bends.
 func (s *search) line(from, to point, direction float64) extreme {
 	const steps = 16
-	best := extreme{}
+	coarse := []point{to, mix(from, to, 0.9), mix(from, to, 0.6), mix(from, to, 0.3), mix(from, to, 0.1)}
+	best := s.best(coarse, direction)
+	if best.at == nil || &best.at[0] == &to[0] {
+		return best
+	}
 	low, high := 0.0, 1.0
 	for range 10 {
 		block := make([]point, steps+1)
@@ -259,14 +263,11 @@ func (s *search) line(from, to point, direction float64) extreme {
 			block[i] = mix(from, to, high-(high-low)*float64(i)/steps)
 		}
 		next := s.best(block, direction)
-		if next.at == nil || best.at != nil && !best.better(next.value, direction) {
+		if next.at == nil || !best.better(next.value, direction) {
 			return best
 		}
 		best = next
 		at := slices.IndexFunc(block, func(p point) bool { return &p[0] == &next.at[0] })
-		if at == 0 && high == 1 {
-			return best
-		}
 		width := (high - low) / steps
 		middle := high - width*float64(at)
 		low, high = math.Max(0, middle-width), math.Min(1, middle+width)
@@ -415,7 +416,7 @@ func (s *search) searched() string {
 	if len(s.free) <= everyCorner {
 		return fmt.Sprintf("every one of %d corners, then along coordinates; attained, %d evaluations", 1<<len(s.free), s.evals)
 	}
-	return fmt.Sprintf("%d inputs: corners that the slopes point to from three starts, within the trims' reach, then coordinate moves; attained, not proved extreme, %d evaluations",
+	return fmt.Sprintf("%d inputs: corners that the slopes point to from several starts, within the trims' reach, then coordinate moves; attained, not proved extreme, %d evaluations",
 		len(s.free), s.evals)
 }
 

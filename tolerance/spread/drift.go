@@ -24,7 +24,7 @@ func Drift(ctx context.Context, b *build.Build, output build.OutputName, from, t
 	if err != nil {
 		return nil, err
 	}
-	m, err := swept.Compile()
+	m, err := swept.CompileTargets()
 	if err != nil {
 		return nil, err
 	}

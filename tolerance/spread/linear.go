@@ -34,12 +34,19 @@ type Differentiator struct {
 
 // NewDifferentiator compiles nodes of a model.
 func NewDifferentiator(m *build.Model, refs ...tape.Ref) *Differentiator {
-	d := &Differentiator{program: m.Graph.Program(refs...)}
-	d.used = d.program.Inputs()
+	return differentiator(m.Graph.Program(refs...), len(m.Inputs), len(refs))
+}
+
+// differentiator differentiates a program's outputs.
+func differentiator(p *tape.Program, inputs, outputs int) *Differentiator {
+	d := &Differentiator{program: p, used: p.Inputs()}
 	width := max(1, len(d.used))
-	d.frame = d.program.NewFrame(width)
-	d.in, d.din = block(len(m.Inputs), width), block(len(m.Inputs), width)
-	d.out, d.dout = block(len(refs), width), block(len(refs), width)
+	d.frame = p.NewFrame(width)
+	d.in, d.din = make([][]float64, inputs), make([][]float64, inputs)
+	for _, i := range d.used {
+		d.in[i], d.din[i] = make([]float64, width), make([]float64, width)
+	}
+	d.out, d.dout = block(outputs, width), block(outputs, width)
 	return d
 }
 

@@ -52,7 +52,7 @@ func choiceText(c pick.Choice) string {
 func proofText(r *pick.Result) string {
 	how := "Not proved to be the cheapest"
 	if r.ProvedCheapest {
-		how = "Proved: nothing cheaper meets the targets"
+		how = "Proved: nothing cheaper meets the targets; every cheaper choice misses one, to first order with room to spare or in simulation"
 	}
 	if r.Why != "" {
 		how = strings.ToUpper(r.Why[:1]) + r.Why[1:]

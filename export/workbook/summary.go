@@ -195,7 +195,7 @@ func chosen(c pick.Choice) string {
 func proof(r pick.Result) string {
 	words := fmt.Sprintf("%s combinations exist, %s were judged, %s simulated.", whole(r.Candidates), whole(r.Examined), whole(r.Simulated))
 	if r.ProvedCheapest {
-		return words + " Proved: nothing cheaper meets the targets."
+		return words + " Proved: nothing cheaper meets the targets; every cheaper choice misses one, to first order with room to spare or in simulation."
 	}
 	return sentence(words+" Not proved to be the cheapest.", capital(clean(r.Why)))
 }

@@ -1,0 +1,132 @@
+package spread
+
+import (
+	"cmp"
+	"math"
+	"slices"
+)
+
+// picture is the linear picture at a place.
+type picture struct {
+	at point
+	*Linear
+}
+
+// newStarts are the places whose slopes point to the first corners: the
+// centre, and a place halfway to a corner.
+func (s *search) newStarts() []picture {
+	list := make([]picture, 2)
+	for i, z := range []float64{0, 0.5} {
+		at := make(point, len(s.free))
+		for k := range at {
+			at[k] = z * (1 - 2*float64(k%2))
+		}
+		list[i] = s.picture(at)
+	}
+	return list
+}
+
+// picture differentiates at a place.
+func (s *search) picture(at point) picture {
+	inputs := slices.Clone(s.model.Inputs)
+	for k, i := range s.free {
+		inputs[i].Centre += inputs[i].HalfWidth * at[k]
+	}
+	s.evals += len(s.free)
+	return picture{at, s.slopes.At(inputs)}
+}
+
+// corner is the place where the linear picture of an output is greatest in the
+// direction, while every trim reaches to first order.
+func (s *search) corner(l picture, column int, direction float64) point {
+	c := s.byZ(l.Linear, column)
+	z := make(point, len(c))
+	for k := range z {
+		z[k] = l.at[k]
+		if g := direction * c[k]; g != 0 {
+			z[k] = math.Copysign(1, g)
+		}
+	}
+	for range 2 { // mending one trim may spoil another
+		for t := range s.trims {
+			low, high := l.Values[1+2*t], l.Values[2+2*t]
+			rising := math.Copysign(1, high-low)
+			mend(z, l.at, c, s.byZ(l.Linear, 1+2*t), rising, rising*low)
+			mend(z, l.at, c, s.byZ(l.Linear, 2+2*t), -rising, -rising*high)
+		}
+	}
+	return z
+}
+
+// byZ is a node's slopes by the z of each free input.
+func (s *search) byZ(l *Linear, node int) []float64 {
+	out := make([]float64, len(s.free))
+	for k, i := range s.free {
+		out[k] = l.Slopes[node][i] * s.model.Inputs[i].HalfWidth
+	}
+	return out
+}
+
+// mend moves z until the linear constraint
+//
+//	value + sign·g·(z − at) <= 0
+//
+// holds, at the least cost in c: the coordinates that give most for what they
+// cost go first (a continuous knapsack).
+func mend(z, at point, c, g []float64, sign, value float64) {
+	excess := value
+	var order []int
+	for k := range z {
+		excess += sign * g[k] * (z[k] - at[k])
+		if g[k] != 0 {
+			order = append(order, k)
+		}
+	}
+	slices.SortStableFunc(order, func(a, b int) int {
+		return cmp.Compare(math.Abs(c[a]*g[b]), math.Abs(c[b]*g[a]))
+	})
+	for _, k := range order {
+		if excess <= 0 {
+			return
+		}
+		end := -math.Copysign(1, sign*g[k])
+		gain := sign * g[k] * (z[k] - end)
+		if gain <= 0 {
+			continue
+		}
+		part := math.Min(1, 1.001*excess/gain) // a little more than enough
+		z[k] += part * (end - z[k])
+		excess -= part * gain
+	}
+}
+
+// zero looks for a place where one of the program's outputs is zero, on the
+// way from the centre to the corner that the output's own slopes point to.
+func (s *search) zero(column int) point {
+	centre := s.starts[0]
+	target := s.corner(centre, column, -math.Copysign(1, centre.Values[column]))
+	const steps = 32
+	low, high := 0.0, 1.0
+	var at point
+	for range 8 {
+		block := make([]point, steps+1)
+		for i := range block {
+			block[i] = mix(centre.at, target, low+(high-low)*float64(i)/steps)
+		}
+		v := s.evaluateColumn(block, column)
+		i := 1
+		for i <= steps && !(v[i-1]*v[i] <= 0) {
+			i++
+		}
+		if i > steps {
+			return at
+		}
+		at = block[i]
+		if math.Abs(v[i-1]) < math.Abs(v[i]) {
+			at = block[i-1]
+		}
+		width := (high - low) / steps
+		low, high = low+width*float64(i-1), low+width*float64(i)
+	}
+	return at
+}

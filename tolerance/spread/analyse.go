@@ -167,9 +167,12 @@ func (s *sample) trim(k int) TrimReport {
 // target gives the verdict on the k-th target: by share, or by its worst case.
 func (s *sample) target(k int, worst []*WorstCase) TargetReport {
 	r := s.shareOf(k)
-	if t := s.nodes.targets[k]; s.nodes.model.Build.Targets[t].WorstCase {
+	m, t := s.nodes.model, s.nodes.targets[k]
+	if m.Build.Targets[t].WorstCase {
 		r.Met, r.Why = false, ""
-		judgeWorst(&r, s.nodes.model, t, worst)
+		judgeWorst(&r, m, t, worst)
+	} else {
+		r.WorstCase, _ = worstOver(m, t, worst)
 	}
 	return r
 }
@@ -203,23 +206,32 @@ func judgeWorst(r *TargetReport, m *build.Model, t int, worst []*WorstCase) {
 		}
 		return
 	}
-	limits := Limits{Figure(math.Inf(1)), Figure(math.Inf(-1))}
+	r.WorstCase, r.Why = worstOver(m, t, worst)
 	for _, i := range m.Targets[t].Outputs {
-		w := worst[i]
-		if w.Why != "" {
-			r.Why = w.Why
-			return
-		}
-		limits.Low, limits.High = min(limits.Low, w.Low), max(limits.High, w.High)
-		switch {
+		switch w := worst[i]; {
 		case float64(w.Low) < target.Low:
 			r.Why = "too low at " + cornerText(w.AtLow)
 		case float64(w.High) > target.High:
 			r.Why = "too high at " + cornerText(w.AtHigh)
 		}
 	}
-	r.WorstCase = &limits
 	r.Met = r.Why == ""
+}
+
+// worstOver is the worst case over a target's conditions; nil, and why, where
+// none was found or there is no output.
+func worstOver(m *build.Model, t int, worst []*WorstCase) (*Limits, string) {
+	if len(m.Targets[t].Outputs) == 0 {
+		return nil, "a trim's reach has no worst case of its own"
+	}
+	limits := Limits{Figure(math.Inf(1)), Figure(math.Inf(-1))}
+	for _, i := range m.Targets[t].Outputs {
+		if worst[i].Why != "" {
+			return nil, worst[i].Why
+		}
+		limits.Low, limits.High = min(limits.Low, worst[i].Low), max(limits.High, worst[i].High)
+	}
+	return &limits, ""
 }
 
 // cornerText names the parameters that matter most in a corner.

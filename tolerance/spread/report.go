@@ -119,8 +119,6 @@ type TrimReport struct {
 	ShortLow     Figure      `json:"short_low"`  // share that ran out at setting 0
 	ShortHigh    Figure      `json:"short_high"` // share that ran out at setting 1
 	Setting      TrimSetting `json:"setting"`
-	WorstCase    *Limits     `json:"worst_case,omitempty"`
-	Why          string      `json:"why,omitempty"`
 }
 
 // TrimSetting is where the trimmer ends, 0..1 of its travel.
@@ -140,7 +138,7 @@ type TargetReport struct {
 	Met           bool      `json:"met"`
 	Share         Figure    `json:"share"`
 	ShareInterval [2]Figure `json:"share_interval"`
-	WorstCase     *Limits   `json:"worst_case"`
+	WorstCase     *Limits   `json:"worst_case"` // over the target's conditions; null for a trim's reach, and where none was found
 	Why           string    `json:"why,omitempty"`
 }
 

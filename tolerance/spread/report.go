@@ -119,6 +119,7 @@ type TrimReport struct {
 	ShortLow     Figure      `json:"short_low"`  // share that ran out at setting 0
 	ShortHigh    Figure      `json:"short_high"` // share that ran out at setting 1
 	Setting      TrimSetting `json:"setting"`
+	Why          string      `json:"why,omitempty"`
 }
 
 // TrimSetting is where the trimmer ends, 0..1 of its travel.

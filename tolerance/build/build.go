@@ -114,6 +114,7 @@ type Target struct {
 	Share      float64 // of the units that must comply
 	WorstCase  bool    // every corner must comply instead
 	Asked      string  // the demand in words
+	limits     string  // and its limits
 }
 
 // Opening is a buying line to be chosen: every position in it takes the same.

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"io/fs"
+	"math"
 	"strings"
 	"testing"
 
@@ -191,6 +192,19 @@ func TestAllFaults(t *testing.T) {
 		if !strings.Contains(err.Error(), fmt.Sprintf("lamp.yaml:%d:", line)) {
 			t.Errorf("nothing about line %d in:\n%v", line, err)
 		}
+	}
+}
+
+// TestCents has a limit in cents at a note: 20 cents about 440 Hz are
+// 440·(2^(±20/1200) − 1) Hz, 5.112 Hz above and 5.053 Hz below.
+func TestCents(t *testing.T) {
+	b, err := read(strings.Replace(good, "limit: 40 Hz", "limit: 20 cents, note: 440 Hz", 1))
+	if err != nil {
+		t.Fatal(err)
+	}
+	d := b.Targets[0]
+	if math.Abs(d.High-5.1124) > 1e-3 || math.Abs(d.Low+5.0537) > 1e-3 || !strings.Contains(d.Asked, "20 cents at 440 Hz") {
+		t.Errorf("%g to %g: %s", d.Low, d.High, d.Asked)
 	}
 }
 

@@ -180,6 +180,8 @@ func (r *reader) readLimit(n, limit *document.Node, t *Target) bool {
 		return false
 	}
 	t.Low, t.High = centsAbove(f, -c), centsAbove(f, c)
+	t.limits = fmt.Sprintf("at most ±%s at %s (%s to %s)", quantity.Format(c, quantity.Cent, 0),
+		quantity.Format(f, quantity.Hertz, 0), quantity.Format(t.Low, t.Unit, 4), quantity.Format(t.High, t.Unit, 4))
 	return true
 }
 
@@ -204,13 +206,16 @@ func (r *reader) asked(t *Target) string {
 	for _, i := range t.At {
 		at = append(at, r.build.Conditions[i].Name)
 	}
-	what, unit := t.Output.String(), t.Unit
+	what := t.Output.String()
+	if t.limits == "" {
+		t.limits = limitText(t.Low, t.High, t.Unit)
+	}
 	if t.ChangeFrom >= 0 {
 		what = "change of " + what + " from " + r.build.Conditions[t.ChangeFrom].Name + " to"
 	} else {
 		what += " at"
 	}
-	return fmt.Sprintf("%s %s %s on %s", what, strings.Join(at, ", "), limitText(t.Low, t.High, unit), t.shareText())
+	return fmt.Sprintf("%s %s %s on %s", what, strings.Join(at, ", "), t.limits, t.shareText())
 }
 
 // limitText puts two limits into words.

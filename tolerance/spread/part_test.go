@@ -51,7 +51,7 @@ func TestAgeingClocks(t *testing.T) {
 		per, age string
 		want     float64
 	}{
-		{"decade", "0.5 h", 1}, {"decade", "1 h", 1}, {"decade", "100 h", 1.02}, {"1000 h", "100 h", 1.001}, {"1000 h", "5000 h", 1.05},
+		{"decade", "0.5 h", 1}, {"decade", "1 h", 1}, {"decade", "1.5 h", 1 + 0.01*math.Log10(1.5)}, {"decade", "100 h", 1.02}, {"1000 h", "100 h", 1.001}, {"1000 h", "5000 h", 1.05},
 	} {
 		text := one("{ref: C1, value: 1 nF, ageing: {value: 1 %, per: "+c.per+"}}", "a: {temperature: 21 °C, age: "+c.age+"}")
 		y := find(t, analyse(t, strings.Replace(text, "UNIT", "F", 1), 100), "s.value", "a", "")

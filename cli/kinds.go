@@ -67,6 +67,7 @@ type kindText struct {
 	Settings  []settingText `json:"settings"`
 	Outputs   []outputText  `json:"outputs"`
 	Points    []pointText   `json:"points"`
+	Findings  []findingText `json:"findings"`
 	Equations []string      `json:"equations"`
 	Limits    string        `json:"limits"`
 	Source    string        `json:"source"`
@@ -105,12 +106,17 @@ type pointText struct {
 	At         string `json:"at"`
 }
 
+type findingText struct {
+	Finding string `json:"finding"`
+	Text    string `json:"text"`
+}
+
 // describeKind says of a kind what it says of itself.
 func describeKind(k *stage.Kind) kindText {
 	t := kindText{
 		named: named{k.Name, k.Summary}, Limits: k.Limits, Source: k.Source,
 		Roles: []roleText{}, Inputs: []inputText{}, Settings: []settingText{},
-		Outputs: []outputText{}, Points: []pointText{}, Equations: []string{},
+		Outputs: []outputText{}, Points: []pointText{}, Findings: []findingText{}, Equations: []string{},
 	}
 	for _, r := range k.Roles {
 		t.Roles = append(t.Roles, roleText{r.Name, string(r.Type), r.Optional, r.Summary})
@@ -126,6 +132,9 @@ func describeKind(k *stage.Kind) kindText {
 	}
 	for _, q := range k.Points {
 		t.Points = append(t.Points, pointText{q.Name, q.Reading, q.Instrument, q.At})
+	}
+	for _, f := range k.Findings {
+		t.Findings = append(t.Findings, findingText{f.Equation, f.Text})
 	}
 	for _, e := range k.EquationList() {
 		t.Equations = append(t.Equations, e.Name+" = "+e.Expression.Text)

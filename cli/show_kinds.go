@@ -51,6 +51,11 @@ func (p *program) showKind(k *stage.Kind) {
 		rows = append(rows, []string{q.Point, q.Reading, q.Instrument, q.At})
 	}
 	p.section("test points", []string{"point", "reading", "with", "where"}, rows)
+	rows = nil
+	for _, f := range t.Findings {
+		rows = append(rows, []string{f.Finding, f.Text})
+	}
+	p.section("reported where it is 1", []string{"equation", "what happens; what to do"}, rows)
 	p.paragraph("equations", strings.Join(t.Equations, "\n"))
 	p.paragraph("limits", k.Limits)
 	p.paragraph("source", k.Source)

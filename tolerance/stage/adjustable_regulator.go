@@ -29,8 +29,25 @@ adjust_drop = regulator.adjust_current*foot
 wanted = reference*(1 + foot/upper) + (reference < 0 ? -adjust_drop : adjust_drop)
 ` + regulating,
 	Outputs: regulatorOutputs,
-	Points:  regulatorPoints,
-	Limits:  "Steady state; line and load regulation neglected; the divider must draw the regulator's least load current.",
+	Points:  regulatorPoints, Findings: regulatorFindings,
+	Sketch: `
+ input ──[regulator]──┬── out
+              │    [upper]
+              └───────┤
+                   [lower]
+                   (trim)
+   0 V ───────────────┘
+`,
+	Fragment: `
+plus:
+  kind: adjustable-regulator
+  settings: {input: 18 V}
+  parts:
+    regulator: {ref: U1, family: adjustable-regulator}
+    upper:     {ref: R1, value: 240 Ω, family: metal-film-100, tolerance: 1 %}
+    lower:     {ref: R2, value: 2 kΩ, family: metal-film-100, tolerance: 1 %}
+`,
+	Limits: "Steady state; line and load regulation neglected; the divider must draw the regulator's least load current.",
 	Source: "M. S. Sivakumar, Linear Integrated Circuit, Ex. 14.1 " +
 		"(inputs and method read in an open archive of textbook examples); dropout behaviour is common practice, no source",
 }

@@ -59,6 +59,8 @@ dc = conducts > 0 ? held : 0
 tone_level = conducts > 0 ? weaker*(1 - depth^2/8) : 0
 ripple = in.frequency > 0 ? dc/(in.frequency*resistance*capacitance) : 0
 clip_frequency = sqrt(1 - depth^2)/(2*pi*resistance*capacitance*depth)
+silent = conducts < 1
+lags = conducts > 0 and in.tone_frequency > clip_frequency
 frequency = in.frequency
 level = ripple/2
 tone_frequency = in.tone_frequency
@@ -78,6 +80,24 @@ source_resistance = conducts > 0 ? parallel(resistance, thermal*resistance/held)
 		{Name: "tone_level", Reading: "peak voltage", Instrument: "scope",
 			At: "across load, AC coupled", Conductance: "meter", Capacitance: "probe"},
 	},
+	Findings: []Finding{
+		{"silent", "the carrier does not open the diode, and nothing comes out; raise the level that comes in, or take a diode with less drop"},
+		{"lags", "the output cannot fall as fast as the envelope and clips the note; make hold or load smaller, or the two carriers less equal"},
+	},
+	Sketch: `
+  in ──[diode]──┬─────────┬── out
+              [load]    [hold]
+ 0 V ───────────┴─────────┴──
+`,
+	Fragment: `
+detector:
+  kind: envelope-detector
+  in: amp
+  parts:
+    diode: {ref: D1, family: signal-diode}
+    load:  {ref: R1, value: 47 kΩ, family: metal-film-100, tolerance: 1 %}
+    hold:  {ref: C1, value: 470 pF, family: c0g, tolerance: 5 %}
+`,
 	Limits: "Carrier well above the diode's drop, ripple small, note below clip_frequency, weaker carrier at most as strong as the other; " +
 		"near the threshold a real diode turns on gradually.",
 	Source: "diagonal clipping: D. Chattopadhyay and P. C. Rakshit, Electronics Fundamentals and Applications, Ex. 12.9.6, " +

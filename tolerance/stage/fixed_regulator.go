@@ -20,6 +20,11 @@ var regulatorOutputs = []Output{
 var regulatorPoints = []Point{{Name: "voltage", Reading: "dc voltage", Instrument: "dmm",
 	At: "output of the regulator, to ground"}}
 
+// regulatorFindings: what a supply that is too low does.
+var regulatorFindings = []Finding{
+	{"drops_out", "the input is too low for the regulator to regulate; raise the input, or take a regulator that needs less over its output"},
+}
+
 // regulating takes `wanted`, the voltage the regulator aims at. Rails below
 // ground are counted by their size, so a negative regulator works alike. Where
 // the input is short, the output falls to the input less the dropout, and to
@@ -27,6 +32,7 @@ var regulatorPoints = []Point{{Name: "voltage", Reading: "dc voltage", Instrumen
 const regulating = `
 polarity = wanted < 0 ? -1 : 1
 headroom = polarity*(input - wanted) - regulator.dropout
+drops_out = headroom < 0
 voltage = polarity*max(0, min(polarity*wanted, polarity*input - regulator.dropout))
 dissipation = polarity*(input - voltage)*load_current
 dc = voltage
@@ -50,7 +56,21 @@ var fixedRegulator = Kind{
 wanted = regulator.output + regulator.output_slope*(temperature - zero_celsius - 25*kelvin)
 ` + regulating,
 	Outputs: regulatorOutputs,
-	Points:  regulatorPoints,
-	Limits:  "Steady state; line and load regulation neglected, its own supply current left out of the dissipation.",
-	Source:  "definition; dropout behaviour is common practice, no source",
+	Points:  regulatorPoints, Findings: regulatorFindings,
+	Sketch: `
+ input ──┬───[regulator]───┬── out
+     [input_c]     │   [output_c]
+   0 V ──┴─────────┴───────┴──
+`,
+	Fragment: `
+plus:
+  kind: fixed-regulator
+  settings: {input: 18 V}
+  parts:
+    regulator: {ref: U1, value: 12 V, family: fixed-regulator, tolerance: 4 %}
+    input_c:   {ref: C1, value: 330 nF, family: polyester, tolerance: 10 %}
+    output_c:  {ref: C2, value: 100 nF, family: polyester, tolerance: 10 %}
+`,
+	Limits: "Steady state; line and load regulation neglected, its own supply current left out of the dissipation.",
+	Source: "definition; dropout behaviour is common practice, no source",
 }

@@ -26,7 +26,9 @@ import (
 // The emitter resistor, not bypassed, stretches the exponential: x = v/(V_T +
 // I_C·R_E). Levels follow from e^(x·cos θ) = I₀(x) + 2·I₁(x)·cos θ + … .
 // `swing` is the downward peak of the whole waveform, e^(x1+x2)/(I₀(x1)·I₀(x2))
-// times the current less the mean, as far as the collector can go.
+// times the current less the mean, as far as the collector can go; it `clips`
+// where it would go further. A transistor that carries less than 1 µA is
+// `starved` (common practice, no source).
 //
 // Instruments. A meter on the collector divides with the load, a scope's
 // capacitance shunts it; a meter on the base joins the divider; the emitter is
@@ -69,6 +71,35 @@ var junctionMixer = Kind{
 		{Name: "swing", Reading: "peak voltage", Instrument: "scope",
 			At: "collector of the transistor, to ground, AC coupled", Conductance: "meter", Capacitance: "probe"},
 	},
+	Findings: []Finding{
+		{"saturated", "the transistor is saturated; lower the bias, or make load smaller"},
+		{"starved", "the base does not turn the transistor on: less than 1 µA flows; raise the bias"},
+		{"clips", "the waveform at the collector clips against the emitter; lower the levels that come in, or let the collector rest higher"},
+	},
+	Sketch: `
+ positive ─────────────────────┬─────────────┐
+                          [base_upper]     [load]
+                               │             ├── out
+ carrier ──[couple_carrier]────┼──────[transistor]
+ signal ───[couple_signal]─────┤             │
+                          [base_lower]       │
+                             (bias)      [emitter]
+ negative ─────────────────────┴─────────────┘
+`,
+	Fragment: `
+mixer:
+  kind: junction-mixer
+  in: {carrier: fixed, signal: moving}
+  settings: {positive: 12 V, negative: -12 V}
+  parts:
+    base_upper:     {ref: R1, value: 100 kΩ, family: metal-film-100, tolerance: 1 %}
+    base_lower:     {ref: R2, value: 39 kΩ, family: metal-film-100, tolerance: 1 %}
+    emitter:        {ref: R3, value: 4.7 kΩ, family: metal-film-100, tolerance: 1 %}
+    load:           {ref: R4, value: 10 kΩ, family: metal-film-100, tolerance: 1 %}
+    transistor:     {ref: Q1, family: small-signal-npn}
+    couple_carrier: {ref: C1, value: 22 pF, family: c0g, tolerance: 5 %}
+    couple_signal:  {ref: C2, same_as: mixer.couple_carrier}
+`,
 	Limits: "NPN, active region, base current by a constant beta; the carriers do not shift the bias; " +
 		"transistor capacitances and transit time neglected, so carriers up to about 1 MHz; levels mean nothing while saturated.",
 	Source: "harmonics of the exponential junction: K. K. Clarke and D. T. Hess, Communication Circuits, 1971 (from memory); " +
@@ -93,6 +124,7 @@ emitter_voltage = negative + current*(1 + 1/transistor.beta)*emitter
 resting = (positive - current*load)/(1 + load*meter)
 floor = emitter_voltage + 0.2*volt
 saturated = resting < floor
+starved = current < 1e-6*ampere
 collector = max(resting, floor)
 dc = collector
 source_resistance = load
@@ -116,5 +148,7 @@ signal_load = load/sqrt((1 + load*meter)^2 + (signal_rate*load*probe)^2)
 carrier_level = 2*current*carrier_ratio*carrier_load
 second_level = 2*current*signal_ratio*signal_load
 tone_level = 2*current*carrier_ratio*signal_ratio*load/(1 + load*meter)
-swing = min(current*(1/(carrier_mean*signal_mean) - 1)*carrier_load, collector - floor)
+swing_wanted = current*(1/(carrier_mean*signal_mean) - 1)*carrier_load
+swing = min(swing_wanted, collector - floor)
+clips = resting >= floor and swing_wanted > collector - floor
 `

@@ -27,8 +27,15 @@ type Kind struct {
 	Equations string
 	Outputs   []Output
 	Points    []Point
-	Limits    string // limits of validity
-	Source    string
+	Findings  []Finding
+	// Sketch is a small drawing of where the roles sit, [needed] or (optional),
+	// of at most 60 columns and 9 lines.
+	Sketch string
+	// Fragment is the stage's entry in a build file, with every role, input and
+	// setting that must be given; the stages named after `in` are others'.
+	Fragment string
+	Limits   string // limits of validity
+	Source   string
 	// Free says that roles, settings and outputs are the build file's own.
 	Free bool
 
@@ -74,6 +81,13 @@ type Point struct {
 	// Conductance and Capacitance name the equation variables (S, F; 0 but
 	// while this point is read) through which the instrument loads the node.
 	Conductance, Capacitance string
+}
+
+// Finding is something a stage does that its user must not miss: it clips, it
+// does not conduct.
+type Finding struct {
+	Equation string // worth 1 where it happens, 0 elsewhere
+	Text     string // what happens, and after a semicolon what to do
 }
 
 // Field is a quantity that a stage hands to the next: the equation of that

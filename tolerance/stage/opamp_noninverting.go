@@ -41,7 +41,8 @@ second_gain = low_gain/sqrt(1 + (in.second_frequency*low_gain/opamp.gbw)^2)
 tone_gain = low_gain/sqrt(1 + (in.tone_frequency*low_gain/opamp.gbw)^2)
 top = positive - opamp.headroom
 bottom = negative + opamp.headroom
-dc = max(bottom, min(top, (in.dc + opamp.offset)*low_gain))
+dc_wanted = (in.dc + opamp.offset)*low_gain
+dc = max(bottom, min(top, dc_wanted))
 room = max(0, min(top - dc, dc - bottom))
 carrier_wanted = in.level*gain
 second_wanted = in.second_level*second_gain
@@ -51,6 +52,8 @@ slope_wanted = 2*pi*(in.frequency*carrier_wanted + in.second_frequency*second_wa
 rail_share = peak_wanted > room ? room/peak_wanted : 1
 slew_share = slope_wanted > opamp.slew ? opamp.slew/slope_wanted : 1
 share = min(rail_share, slew_share)
+clips = peak_wanted > room or dc_wanted > top or dc_wanted < bottom
+slews = slope_wanted > opamp.slew
 slew_limit_level = opamp.slew/(2*pi*in.frequency)
 output_level = carrier_wanted*share
 swing = peak_wanted*share
@@ -73,6 +76,31 @@ tank_q = in.tank_q
 		{Name: "dc", Reading: "dc voltage", Instrument: "dmm", At: "output of the opamp, to 0 V"},
 		{Name: "swing", Reading: "peak voltage", Instrument: "scope", At: "output of the opamp, to 0 V, AC coupled"},
 	},
+	Findings: []Finding{
+		{"clips", "the output clips at its rails; lower the gain or the level that comes in, or raise the rails"},
+		{"slews", "the output is asked to move faster than the op-amp's slew rate; lower the gain or the level that comes in, or take a faster op-amp"},
+	},
+	Sketch: `
+                     ┌───────┐
+ in ─────────────────┤ +     │
+                     │ opamp ├──┬── out
+                 ┌───┤ -     │  │
+                 │   └───────┘  │
+                 ├──[feedback]──┘
+              [ground]
+             (gain_trim)
+                0 V
+`,
+	Fragment: `
+amp:
+  kind: opamp-noninverting
+  in: mixer
+  settings: {positive: 12 V, negative: -12 V}
+  parts:
+    feedback: {ref: R1, value: 10 kΩ, family: metal-film-100, tolerance: 1 %}
+    ground:   {ref: R2, value: 4.7 kΩ, family: metal-film-100, tolerance: 1 %}
+    opamp:    {ref: U1, family: jfet-opamp}
+`,
 	Limits: "One-pole op-amp, input currents neglected, no capacitor under ground (steady voltage is amplified too); " +
 		"levels of a stage that clips or slews are rough.",
 	Source: "gain: T. L. Floyd, Electronic Devices, Ex. 12.3; slew limit: M. S. Sivakumar, Linear Integrated Circuit, Ex. 5.31 " +

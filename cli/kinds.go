@@ -1,6 +1,8 @@
 package cli
 
 import (
+	"strings"
+
 	"github.com/urfave/cli/v2"
 
 	"batchwright/tolerance/stage"
@@ -11,8 +13,10 @@ func (p *program) kindsCommand() *cli.Command {
 		Name:      "kinds",
 		Usage:     "the kinds of stage a build file can name; with NAME, all about one",
 		ArgsUsage: "[NAME]",
-		Description: `Lists the kinds, or prints one kind's roles, inputs, settings, outputs, test
-points and equations. The equations printed are the ones that run.
+		Description: `Lists the kinds, or prints of one kind a drawing, its roles, inputs, settings,
+outputs, test points and equations, and what to write in a build file. In the
+drawing [roles] must be filled, (roles) may be; the equations printed are the
+ones that run.
 
   batchwright kinds
   batchwright kinds colpitts`,
@@ -62,6 +66,7 @@ func (p *program) kindList(asJSON bool) error {
 // kindText is a kind as `kinds NAME --json` prints it.
 type kindText struct {
 	named
+	Sketch    string        `json:"sketch"`
 	Roles     []roleText    `json:"roles"`
 	Inputs    []inputText   `json:"inputs"`
 	Settings  []settingText `json:"settings"`
@@ -69,6 +74,7 @@ type kindText struct {
 	Points    []pointText   `json:"points"`
 	Findings  []findingText `json:"findings"`
 	Equations []string      `json:"equations"`
+	Fragment  string        `json:"fragment"`
 	Limits    string        `json:"limits"`
 	Source    string        `json:"source"`
 }
@@ -115,6 +121,7 @@ type findingText struct {
 func describeKind(k *stage.Kind) kindText {
 	t := kindText{
 		named: named{k.Name, k.Summary}, Limits: k.Limits, Source: k.Source,
+		Sketch: strings.Trim(k.Sketch, "\n"), Fragment: strings.Trim(k.Fragment, "\n"),
 		Roles: []roleText{}, Inputs: []inputText{}, Settings: []settingText{},
 		Outputs: []outputText{}, Points: []pointText{}, Findings: []findingText{}, Equations: []string{},
 	}

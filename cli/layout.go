@@ -44,6 +44,17 @@ func (p *program) paragraph(title, body string) {
 	}
 }
 
+// verbatim prints lines as they stand under their title.
+func (p *program) verbatim(title, body string) {
+	if body == "" {
+		return
+	}
+	p.line("\n%s", title)
+	for line := range strings.Lines(body) {
+		p.line("  %s", strings.TrimRight(line, "\n"))
+	}
+}
+
 // section prints a table under its title, or nothing where it has no rows.
 func (p *program) section(title string, head []string, rows [][]string) {
 	if len(rows) == 0 {

@@ -22,6 +22,7 @@ func (p *program) showList(list []named) {
 func (p *program) showKind(k *stage.Kind) {
 	t := describeKind(k)
 	p.line("%s: %s", k.Name, k.Summary)
+	p.verbatim("where the parts sit", t.Sketch)
 	var rows [][]string
 	for _, r := range t.Roles {
 		rows = append(rows, []string{r.Role, r.Type + optional(r.Optional), r.Summary})
@@ -57,6 +58,7 @@ func (p *program) showKind(k *stage.Kind) {
 	}
 	p.section("reported where it is 1", []string{"equation", "what happens; what to do"}, rows)
 	p.paragraph("equations", strings.Join(t.Equations, "\n"))
+	p.verbatim("in a build file", t.Fragment)
 	p.paragraph("limits", k.Limits)
 	p.paragraph("source", k.Source)
 }

@@ -23,7 +23,23 @@ tank_q = q
 `,
 	Outputs: tankOutputs,
 	Points:  tankPoints,
-	Limits:  tankLimits,
+	Sketch: `
+ live end ──┬─────────┬─────────┬─────────┐
+            │      [upper]      │         │
+          [coil]      ├── tap (pad)    (tuner)
+            │      [lower]      │         │
+     0 V ───┴─────────┴─────────┴─────────┘
+`,
+	Fragment: `
+fixed:
+  kind: colpitts
+  settings: {stray: 8 pF, rise: 3 K}
+  parts:
+    coil:  {ref: L1, value: 1.8 mH, family: drum-choke, tolerance: 5 %}
+    upper: {ref: C1, value: 220 pF, family: c0g, tolerance: 5 %}
+    lower: {ref: C2, same_as: fixed.upper}
+`,
+	Limits: tankLimits,
 	Source: "D. Roddy and J. Coolen, Electronic Communications, Ex. 6.4.1, p. 205 " +
 		"(inputs and method read in an open archive of textbook examples)",
 }

@@ -54,6 +54,19 @@ tank_q = in.tank_q
 		{Name: "tone_level", Reading: "peak voltage", Instrument: "scope",
 			At: "output side of capacitor, to ground", Conductance: "meter", Capacitance: "probe"},
 	},
+	Sketch: `
+  in ──[capacitor]──┬── out
+                   load
+ 0 V ───────────────┴──
+`,
+	Fragment: `
+output:
+  kind: coupling
+  in: lowpass
+  settings: {load: 100 kΩ}
+  parts:
+    capacitor: {ref: C1, value: 470 nF, family: polyester, tolerance: 10 %}
+`,
 	Limits: "Resistive source and load; leakage of the capacitor neglected.",
 	Source: "definition: corner 1/(2π(Rs + Rl)C)",
 }

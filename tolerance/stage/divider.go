@@ -31,6 +31,21 @@ source_resistance = tap_resistance
 	},
 	Points: []Point{{Name: "voltage", Reading: "dc voltage", Instrument: "dmm",
 		At: "tap of upper and lower, to ground", Conductance: "meter"}},
+	Sketch: `
+ input ──┐
+      [upper]
+         ├── out
+      [lower]
+   0 V ──┘
+`,
+	Fragment: `
+half:
+  kind: divider
+  settings: {input: 12 V}
+  parts:
+    upper: {ref: R1, value: 10 kΩ, family: metal-film-100, tolerance: 1 %}
+    lower: {ref: R2, same_as: half.upper}
+`,
 	Limits: "Steady voltage, resistive load.",
 	Source: "Ohm's law",
 }

@@ -38,6 +38,18 @@ dc = carrier_dc*signal_dc/scale
 	Outputs: mixerOutputs,
 	Points: []Point{{Name: "tone_level", Reading: "peak voltage", Instrument: "scope",
 		At: "output of the multiplier, to ground"}},
+	Sketch: `
+                            ┌─────────┐
+ carrier ─(couple_carrier)──┤ product │
+                            │ over    ├── out
+ signal ──(couple_signal)───┤ scale   │
+                            └─────────┘
+`,
+	Fragment: `
+mixer:
+  kind: multiplier
+  in: {carrier: fixed, signal: moving}
+`,
 	Limits: "Levels within the multiplier's linear range; its output is stiff, so no instrument loads it.",
 	Source: "product of sines: R. Blake, Electronic Communication Systems, Ex. 2.7, p. 76 " +
 		"(inputs and method read in an open archive of textbook examples); " + mixingSource,

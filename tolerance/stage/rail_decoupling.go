@@ -35,6 +35,19 @@ source_resistance = in.source_resistance + series
 		{"drop", quantity.Volt, "steady voltage lost in series"},
 	},
 	Points: []Point{{Name: "drop", Reading: "dc voltage", Instrument: "dmm", At: "across series"}},
+	Sketch: `
+ rail ──[series]──┬── quiet rail
+             [capacitor]
+  0 V ────────────┴──
+`,
+	Fragment: `
+quiet_rail:
+  kind: rail-decoupling
+  in: plus
+  parts:
+    series:    {ref: R1, value: 100 Ω, family: metal-film-100, tolerance: 5 %}
+    capacitor: {ref: C1, value: 100 nF, family: polyester, tolerance: 10 %}
+`,
 	Limits: "Source small against series, capacitor without its own inductance and resistance.",
 	Source: "definition: |1 + jωRC|",
 }

@@ -51,6 +51,20 @@ tank_q = in.tank_q
 		{Name: "tone_level", Reading: "peak voltage", Instrument: "scope",
 			At: "across shunt, AC coupled", Conductance: "meter", Capacitance: "probe"},
 	},
+	Sketch: `
+  in ──[series]──┬── out
+              [shunt]
+ 0 V ────────────┴──
+`,
+	Fragment: `
+lowpass:
+  kind: rc-lowpass
+  in: detector
+  settings: {load: 100 kΩ}
+  parts:
+    series: {ref: R1, value: 22 kΩ, family: metal-film-100, tolerance: 1 %}
+    shunt:  {ref: C1, value: 2.2 nF, family: polyester, tolerance: 10 %}
+`,
 	Limits: "Resistive source and load.",
 	Source: "definition: |1/(1 + jωRC)| with Thévenin's source",
 }

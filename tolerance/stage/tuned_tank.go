@@ -58,7 +58,20 @@ tank_q = q
 `,
 	Outputs: tankOutputs,
 	Points:  tankPoints,
-	Limits:  tankLimits,
+	Sketch: `
+ live end ──┬─────────┬─────────┬─────────┐
+          [coil]    [tank]    (pad)    (tuner)
+     0 V ───┴─────────┴─────────┴─────────┘
+`,
+	Fragment: `
+moving:
+  kind: tuned-tank
+  settings: {stray: 8 pF, rise: 3 K}
+  parts:
+    coil: {ref: L1, value: 1.8 mH, family: drum-choke, tolerance: 5 %}
+    tank: {ref: C1, value: 120 pF, family: c0g, tolerance: 5 %}
+`,
+	Limits: tankLimits,
 	Source: "f = 1/(2π√(LC)): R. Blake, Electronic Communication Systems, Ex. 2.1, p. 50 " +
 		"(inputs and method read in an open archive of textbook examples)",
 }

@@ -37,7 +37,7 @@ func prices(w Work) workbook.Basis {
 var semantics = []workbook.Basis{
 	{Heading: "Value of a part", Text: "nominal · (1 + tolerance·z) · (1 + α·Δ) · (1 + η·(humidity − 50 %)) · (1 + a·g(age)); Δ is the part's temperature less 25 °C. α, η and a scatter about their own nominal values. Every z lies between −1 and 1."},
 	{Heading: "Shapes of z", Text: "Normal: standard deviation one third, cut off at ±1. Uniform. Triangular. Bimodal: uniform over one half to one on either side, the middle sorted out."},
-	{Heading: "Lots", Text: "Pieces bought on one line share a lot across the whole batch and resemble each other by the family's correlation (Gaussian copula)."},
+	{Heading: "Lots", Text: "Pieces bought on one line share a lot across the whole batch and resemble each other by the family's correlations (Gaussian copula): one for the value, one for what temperature, humidity and age do to it."},
 	{Heading: "Trims", Text: "Trims are solved in order on every unit, each left wrong by a uniform error of ±within in its output. A unit whose trim does not reach is a failed unit."},
 	{Heading: "Worst case", Text: "Every z anywhere in −1 to 1 independently, trims solved again at each point. What is given is the worst point that was found and how it was searched."},
 	{Heading: "Standard uncertainty", Text: "First-order propagation with the correlation within lots, trims included.", Source: "JCGM 100:2008, 5.2"},

@@ -123,7 +123,9 @@ func (c *compiler) onePlus(a, b tape.Ref) tape.Ref {
 	return c.Graph.Add(c.Graph.Constant(1), c.Graph.Mul(a, b))
 }
 
-// coefficient is an input such as α: its mean and its spread.
+// coefficient is an input such as α: its mean and its spread. What humidity and
+// age do to a part follows from its material as α does, so all three share the
+// family's correlation for temperature.
 func (c *compiler) coefficient(x source, name string, s part.Scatter, spread part.Spread) tape.Ref {
 	column := c.column(x, name, s.Shape, s.Correlation.Temperature)
 	column.Centre, column.HalfWidth = spread.Value, spread.Spread

@@ -181,8 +181,17 @@ func near(t testing.TB, what string, got, want, tolerance float64) {
 // examples are circuits of plausible values (invented), each in its working
 // range, for the tests that need any circuit at all.
 var examples = map[string]map[string]float64{
-	"tuned-tank": {"coil": 1e-3, "tank": 220e-12, "tuner": 12e-12, "stray": 8e-12},
-	"colpitts":   {"coil": 1.8e-3, "upper": 220e-12, "lower": 220e-12, "tuner": 15e-12, "stray": 8e-12},
+	"tuned-tank":    {"coil": 1e-3, "tank": 220e-12, "tuner": 12e-12, "stray": 8e-12},
+	"colpitts":      {"coil": 1.8e-3, "upper": 220e-12, "lower": 220e-12, "tuner": 15e-12, "stray": 8e-12},
+	"clapp":         {"coil": 1.8e-3, "upper": 1e-9, "lower": 1.5e-9, "series": 120e-12, "tuner": 15e-12, "stray": 8e-12},
+	"hartley":       {"coil_a": 1e-3, "coil_b": 220e-6, "tank": 150e-12, "tuner": 15e-12, "stray": 8e-12, "coupling": 0.3},
+	"wien-bridge":   {"series_r": 10e3, "series_c": 10e-9, "shunt_r": 12e3, "shunt_c": 8.2e-9, "stray": 15e-12},
+	"phase-shift":   {"r1": 10e3, "r2": 12e3, "r3": 15e3, "c1": 1.2e-9, "c2": 1e-9, "c3": 680e-12, "stray": 12e-12},
+	"schmitt-rc":    {"timing_r": 100e3, "timing_c": 1e-9, "stray": 10e-12, "supply": 5, "upper_threshold": 0.58, "lower_threshold": 0.37},
+	"timer-astable": {"charge_r": 2.2e3, "discharge_r": 4.7e3, "timing_c": 22e-9, "stray": 20e-12},
+	"crystal": {"crystal.frequency": 4e6, "crystal.motional_c": 15e-15, "crystal.shunt_c": 4e-12,
+		"crystal.cubic_a1": -0.2e-6, "crystal.cubic_a2": 0.4e-9, "crystal.cubic_a3": 0.11e-9,
+		"load_a": 33e-12, "load_b": 22e-12, "tuner": 15e-12, "stray": 3e-12, "temperature": 308.15},
 	"multiplier": {"carrier.level": 1, "carrier.frequency": 331e3, "carrier.tank_q": 80,
 		"signal.level": 0.8, "signal.frequency": 330.2e3, "couple_carrier": 10e-12, "couple_signal": 12e-12},
 	"junction-mixer": {"base_upper": 100e3, "base_lower": 39e3, "bias": 5e3, "emitter": 4.7e3, "load": 10e3,

@@ -17,7 +17,9 @@ func fixedKinds() []*Kind {
 }
 
 func TestTableOfKinds(t *testing.T) {
-	want := []string{"colpitts", "tuned-tank", "multiplier", "junction-mixer", "opamp-noninverting",
+	want := []string{"colpitts", "clapp", "hartley", "tuned-tank",
+		"wien-bridge", "phase-shift", "schmitt-rc", "timer-astable", "crystal",
+		"multiplier", "junction-mixer", "opamp-noninverting",
 		"envelope-detector", "rc-lowpass", "coupling", "divider", "fixed-regulator",
 		"adjustable-regulator", "rail-decoupling", "formula"}
 	if got := Names(); !slices.Equal(got, want) {
@@ -241,6 +243,13 @@ func TestFieldsHandedOn(t *testing.T) {
 	tests := map[string]string{ // the fields each kind hands on
 		"colpitts":             "frequency level tank_q",
 		"tuned-tank":           "frequency level tank_q",
+		"clapp":                "frequency level tank_q",
+		"hartley":              "frequency level tank_q",
+		"wien-bridge":          "frequency level",
+		"phase-shift":          "frequency level",
+		"schmitt-rc":           "frequency level",
+		"timer-astable":        "frequency level",
+		"crystal":              "frequency level tank_q",
 		"multiplier":           "frequency level second_frequency second_level tone_frequency tone_level dc",
 		"junction-mixer":       "frequency level second_frequency second_level tone_frequency tone_level dc source_resistance",
 		"opamp-noninverting":   "frequency level second_frequency second_level tone_frequency tone_level dc tank_q",

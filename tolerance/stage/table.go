@@ -10,11 +10,13 @@ import (
 
 // table holds every kind, oscillators first, in the order of a signal's way.
 var table = register(
-	&colpitts, &tunedTank,
-	&multiplier, &junctionMixer,
-	&opampNoninverting,
-	&envelopeDetector, &rcLowpass, &coupling,
-	&divider, &fixedRegulator, &adjustableRegulator, &railDecoupling,
+	&colpitts, &clapp, &hartley, &tunedTank,
+	&wienBridge, &phaseShift, &schmittRC, &timerAstable, &crystalOscillator,
+	&multiplier, &junctionMixer, &gateMixer, &diodeRing,
+	&opampNoninverting, &opampInverting, &commonEmitter, &emitterFollower, &powerAmp,
+	&envelopeDetector, &levelTank,
+	&rcLowpass, &rcHighpass, &sallenKeyLowpass, &lcLowpass, &coupling,
+	&divider, &shuntZener, &fixedRegulator, &adjustableRegulator, &railDecoupling,
 	&freeFormula,
 )
 

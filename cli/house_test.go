@@ -20,7 +20,7 @@ var floors = [][]string{
 	{"bom/marking"},
 	{"bom/offer"},
 	{"bom/order"},
-	{"tolerance/formula", "tolerance/pick/exact"},
+	{"tolerance/formula", "tolerance/geometry", "tolerance/pick/exact"},
 	{"tolerance/tape", "tolerance/stage", "tolerance/scatter"},
 	{"tolerance/build"},
 	{"tolerance/spread"},

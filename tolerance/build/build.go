@@ -72,6 +72,7 @@ type Wire struct{ Input, From string }
 type Setting struct {
 	Name      string
 	Reference string
+	Geometry  *Geometry // nil but for a figure given by a shape
 	part.Parameter
 }
 
@@ -81,10 +82,11 @@ type Place struct {
 	Type     part.Type
 	Fitted   bool
 	Part     part.Part
-	Quantity string  // the value as the file says it
-	SameAs   string  // the position whose buying line this shares; "" for its own
-	Position float64 // of a trimmer that no trim turns, 0..1
-	resolved bool    // SameAs has been followed to the deciding part
+	Geometry *Geometry // of a coil given by its winding, nil for others
+	Quantity string    // the value as the file says it
+	SameAs   string    // the position whose buying line this shares; "" for its own
+	Position float64   // of a trimmer that no trim turns, 0..1
+	resolved bool      // SameAs has been followed to the deciding part
 }
 
 // Trim is one adjustment: turn a trimmer until an output reads To.

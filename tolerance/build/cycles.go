@@ -90,7 +90,7 @@ func (r *reader) needs(s stageNode) []stageNode {
 		names = append(names, w.From)
 	}
 	for _, set := range s.Settings {
-		names = append(names, set.Reference)
+		names = append(names, set.references()...)
 	}
 	for _, f := range s.Formulas {
 		names = append(names, f.Expression.Names()...)

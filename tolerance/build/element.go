@@ -33,6 +33,9 @@ func (c *compiler) placed(e *environment, s *Stage, p *Place, parameter string) 
 	if p.Type.Trimmer() {
 		return c.trimmer(e, x, s, p)
 	}
+	if p.Geometry != nil {
+		return c.shaped(e, x, p.Geometry, p.Part.Parameters[0].Scatter)
+	}
 	if len(p.Part.Parameters) == 1 {
 		return c.element(e, x, p.Part.Parameters[0], "value")
 	}

@@ -178,14 +178,22 @@ func (c *compiler) absolute(e *environment, s *Stage) tape.Ref {
 func (c *compiler) settingValue(e *environment, s *Stage, set *Setting) tape.Ref {
 	if set.Reference == "" {
 		x := source{ref: s.Name + "." + set.Name, prefix: "", stage: s}
+		if set.Geometry != nil {
+			return c.shaped(e, x, set.Geometry, set.Scatter)
+		}
 		if set.Name == "rise" { // it makes the temperature, so it cannot feel it
 			return c.base(x, set.Parameter, "value")
 		}
 		return c.element(e, x, set.Parameter, "value")
 	}
-	if i := c.Build.variable(set.Reference); i >= 0 {
+	return c.referred(e, set.Reference)
+}
+
+// referred is a condition's variable or another stage's output.
+func (c *compiler) referred(e *environment, reference string) tape.Ref {
+	if i := c.Build.variable(reference); i >= 0 {
 		return c.variableValue(e, i)
 	}
-	stageName, output, _ := strings.Cut(set.Reference, ".")
+	stageName, output, _ := strings.Cut(reference, ".")
 	return c.equation(e, c.Build.Stage(stageName), output)
 }

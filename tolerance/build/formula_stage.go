@@ -52,6 +52,11 @@ func (r *reader) ownName(n *document.Node) bool {
 func (r *reader) readOwnSetting(p document.Pair) Setting {
 	out := Setting{Name: p.Key.Value, Parameter: part.Parameter{Name: p.Key.Value}}
 	n := p.Value
+	if shape := shapeIn(n); shape != nil {
+		out.Unit = shape.Unit
+		r.readShape(n, shape, &out)
+		return out
+	}
 	if n.Kind == document.Mapping {
 		n = p.Value.Get("value")
 	}
@@ -129,6 +134,9 @@ func (r *reader) ownType(n *document.Node) part.Type {
 		}
 		r.Add(at, "position", "STAGE.ROLE of a part further up")
 		return ""
+	}
+	if n.Get("winding") != nil {
+		return part.Coil
 	}
 	if at := n.Get("value"); at != nil {
 		for _, t := range []part.Type{part.Resistor, part.Capacitor, part.Coil} {

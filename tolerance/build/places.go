@@ -11,7 +11,7 @@ import (
 )
 
 // partKeys are the keys of a part, besides part.ScatterKeys.
-var partKeys = []string{"ref", "value", "family", "choose", "same_as", "lots", "parameters", "position"}
+var partKeys = []string{"ref", "value", "family", "choose", "same_as", "lots", "parameters", "position", "winding"}
 
 var reference = regexp.MustCompile(`^[A-Z]{1,4}[0-9]{1,4}[A-Z]?$`)
 
@@ -67,6 +67,10 @@ func (r *reader) readPlace(s stageNode, p *Place, n *document.Node, keys []strin
 		return
 	}
 	r.Keys(n, append(append([]string{}, keys...), part.ScatterKeys...)...)
+	if winding := n.Get("winding"); winding != nil {
+		r.readWound(p, n, winding)
+		return
+	}
 	family := r.readFamily(p, n)
 	opening := r.readOpening(s, p, n, family)
 	if opening != nil && family == nil {

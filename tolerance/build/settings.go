@@ -55,10 +55,14 @@ func (r *reader) readSetting(s stageNode, k stage.Setting, all *document.Node) S
 // reference.
 var name = regexp.MustCompile(`^[A-Za-z_][A-Za-z0-9_]*(\.[A-Za-z_][A-Za-z0-9_]*)?$`)
 
-// readFigure reads a setting given as a value, a reference or a mapping.
+// readFigure reads a setting given as a value, a reference, a shape or a mapping.
 func (r *reader) readFigure(n *document.Node, out *Setting) {
+	if shape := shapeIn(n); shape != nil {
+		r.readShape(n, shape, out)
+		return
+	}
 	if n.Kind == document.Mapping {
-		r.Keys(n, append([]string{"value"}, part.ScatterKeys...)...)
+		r.Keys(n, append(append([]string{"value"}, part.ScatterKeys...), shapeNames()...)...)
 		if v := r.Need(n, "value", "the setting's value"); v != nil {
 			r.read(v, out.Unit, &out.Value)
 		}

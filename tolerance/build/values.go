@@ -167,7 +167,7 @@ func (p *Place) take(root *Place, from string) {
 	p.Part = root.Part
 	p.Part.Ref = ref
 	p.Part.Parameters = append([]part.Parameter(nil), root.Part.Parameters...)
-	p.Quantity, p.Position = root.Quantity, root.Position
+	p.Geometry, p.Quantity, p.Position = root.Geometry, root.Quantity, root.Position
 	if !root.resolved {
 		p.SameAs = from
 	} else {

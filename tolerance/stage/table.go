@@ -12,11 +12,10 @@ import (
 var table = register(
 	&colpitts, &clapp, &hartley, &tunedTank,
 	&wienBridge, &phaseShift, &schmittRC, &timerAstable, &crystalOscillator,
-	&multiplier, &junctionMixer, &gateMixer, &diodeRing,
-	&opampNoninverting, &opampInverting, &commonEmitter, &emitterFollower, &powerAmp,
-	&envelopeDetector, &levelTank,
-	&rcLowpass, &rcHighpass, &sallenKeyLowpass, &lcLowpass, &coupling,
-	&divider, &shuntZener, &fixedRegulator, &adjustableRegulator, &railDecoupling,
+	&multiplier, &junctionMixer,
+	&opampNoninverting,
+	&envelopeDetector, &rcLowpass, &coupling,
+	&divider, &fixedRegulator, &adjustableRegulator, &railDecoupling,
 	&freeFormula,
 )
 

@@ -51,6 +51,8 @@ func TestFindingsAppearAtTheirThreshold(t *testing.T) {
 		"regulator": {"fixed-regulator", "drops_out", "input", 14, false},
 		// 1.25 V·(1 + 2050/240) + 50 µA·2050 Ω + 2 V
 		"adjustable": {"adjustable-regulator", "drops_out", "input", 1.25*(1+2050.0/240) + 50e-6*2050 + 2, false},
+		// knee 9.1 V + 5 K·5 mV/K − 12 Ω·5 mA, and 330 Ω·5 mA
+		"zener": {"shunt-zener", "unregulated", "input", 9.1 + 0.025 - 0.06 + 1.65, false},
 		// A₀ = 1 + 47/11; rests at (50 mV + 1 mV)·A₀; the tone alone, at 1 Hz
 		// next to no loss, may reach 12 V − 1.5 V less that
 		"amplifier clips": {"opamp-noninverting", "clips", "in.tone_level", (10.5 - 0.051*58/11) / (58.0 / 11), true},

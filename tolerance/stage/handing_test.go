@@ -17,6 +17,10 @@ func TestSignalsHandedOn(t *testing.T) {
 		"opamp-noninverting": {in, "frequency second_frequency tone_frequency tank_q", []float64{331e3, 330e3, 1e3, 70}},
 		"rc-lowpass":         {in, "frequency second_frequency tone_frequency tank_q", []float64{331e3, 330e3, 1e3, 70}},
 		"coupling":           {in, "frequency second_frequency tone_frequency tank_q", []float64{331e3, 330e3, 1e3, 70}},
+		"rc-highpass":        {in, "frequency second_frequency tone_frequency tank_q", []float64{331e3, 330e3, 1e3, 70}},
+		"sallen-key-lowpass": {in, "frequency second_frequency tone_frequency tank_q", []float64{331e3, 330e3, 1e3, 70}},
+		"lc-lowpass":         {in, "frequency second_frequency tone_frequency tank_q", []float64{331e3, 330e3, 1e3, 70}},
+		"level-tank":         {in, "frequency second_frequency tone_frequency tank_q", []float64{331e3, 330e3, 1e3, 70}},
 		"envelope-detector": {map[string]float64{"in.frequency": 331e3, "in.tone_frequency": 1e3},
 			"frequency tone_frequency", []float64{331e3, 1e3}},
 		"rail-decoupling": {map[string]float64{"in.frequency": 331e3, "in.source_resistance": 7},
@@ -49,6 +53,7 @@ func TestOutputsHandedOn(t *testing.T) {
 		{"junction-mixer", "dc", "collector"},
 		{"opamp-noninverting", "level", "output_level"},
 		{"divider", "dc", "voltage"},
+		{"shunt-zener", "dc", "voltage"},
 		{"fixed-regulator", "dc", "voltage"},
 		{"adjustable-regulator", "dc", "voltage"},
 	}
@@ -63,7 +68,7 @@ func TestOutputsHandedOn(t *testing.T) {
 // Thévenin's resistances, from the drawings: of the divider 12 kΩ, 4.7 kΩ and
 // the 100 kΩ load in parallel; of the filters what they come from in series
 // with their own, in parallel with the load; of the detector the load in
-// parallel with the diode's slope n·V_T/I.
+// parallel with the diode's slope n·V_T/I; of the Zener its own and series.
 func TestSourceResistances(t *testing.T) {
 	thermal := 1.8 * 0.02569257912 // n·kT/q at 25 °C
 	detector := evaluate(t, "envelope-detector", examples["envelope-detector"])
@@ -71,6 +76,9 @@ func TestSourceResistances(t *testing.T) {
 		"divider":           1 / (1/12e3 + 1/4.7e3 + 1/100e3),
 		"rc-lowpass":        1 / (1/13e3 + 1/220e3),
 		"coupling":          1 / (1/3e3 + 1/10e3),
+		"rc-highpass":       1 / (1/3e3 + 1/47e3 + 1/220e3),
+		"lc-lowpass":        1 / (1/50.0 + 1/1e3),
+		"shunt-zener":       1 / (1/330.0 + 1/12.0),
 		"envelope-detector": 1 / (1/100e3 + detector["dc"]/100e3/thermal),
 	}
 	for kind, want := range tests {

@@ -9,7 +9,7 @@ import (
 )
 
 // stepped are equations whose derivative is 0 or undefined where they step.
-var stepped = []string{"saturated", "conducts", "polarity"}
+var stepped = []string{"saturated", "conducts", "unregulated", "polarity"}
 
 // Every equation's derivative by every input agrees with a central difference,
 // and exists also where an input is 0 (an instrument not connected, a part not

@@ -98,3 +98,24 @@ func TestDefaults(t *testing.T) {
 		}
 	}
 }
+
+// TestTypesInFormulas asks what type a formula stage's part is taken for.
+func TestTypesInFormulas(t *testing.T) {
+	for text, want := range map[string]string{
+		"value: 4k7": "resistor", "value: 10 nF": "capacitor", "value: 1 mH": "coil",
+		"value: 0..10 kΩ": "trimmer-resistor", "value: 4..34 pF": "trimmer-capacitor",
+		"value: 1 nF, family: c0g": "capacitor", "family: signal-diode": "diode",
+		"value: 1 nF, choose: {families: [c0g, mica]}":           "capacitor",
+		"choose: {families: [film-trimmer], values: [4..34 pF]}": "trimmer-capacitor",
+		"value: 1 kΩ, part: resistor":                            "resistor",
+	} {
+		b, err := read(strings.Replace(good, "parts: {r: {ref: R1, value: 10 kΩ}}", "parts: {r: {ref: R1, value: 10 kΩ}, x: {ref: X9, "+text+"}}", 1))
+		if err != nil {
+			t.Errorf("%s: %v", text, err)
+			continue
+		}
+		if got := string(b.Place("ratio.x").Type); got != want {
+			t.Errorf("%s is taken for a %s, want a %s", text, got, want)
+		}
+	}
+}

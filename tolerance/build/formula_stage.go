@@ -121,7 +121,7 @@ func (r *reader) ownType(n *document.Node) part.Type {
 		word, _ := r.Word(at, "a type of part", typeNames()...)
 		return part.Type(word)
 	}
-	if at := n.Get("family"); at != nil {
+	if at := aFamily(n); at != nil {
 		if f, ok := r.build.Families.Family(at.Value); ok {
 			return f.Type
 		}
@@ -138,14 +138,39 @@ func (r *reader) ownType(n *document.Node) part.Type {
 	if n.Get("winding") != nil {
 		return part.Coil
 	}
-	if at := n.Get("value"); at != nil {
-		for _, t := range []part.Type{part.Resistor, part.Capacitor, part.Coil} {
-			if _, err := quantity.Parse(at.Value, t.Unit()); err == nil {
-				return t
-			}
-		}
+	if t := typeOfValue(n.Get("value")); t != "" {
+		return t
 	}
 	r.Add(n, "part of no known type", "part: and one of the types", typeNames()...)
+	return ""
+}
+
+// aFamily is the family of a part, or the first that it may be chosen from.
+func aFamily(n *document.Node) *document.Node {
+	if at := n.Get("family"); at != nil {
+		return at
+	}
+	if list := n.Get("choose").Get("families"); list != nil && len(list.Items) > 0 {
+		return list.Items[0]
+	}
+	return nil
+}
+
+// typeOfValue is the type that a value's unit tells; a range is a trimmer's.
+func typeOfValue(at *document.Node) part.Type {
+	if at == nil || at.Kind != document.Scalar {
+		return ""
+	}
+	for _, t := range []part.Type{part.Resistor, part.Capacitor, part.Coil} {
+		if _, err := quantity.Parse(at.Value, t.Unit()); err == nil {
+			return t
+		}
+	}
+	for _, t := range []part.Type{part.TrimmerResistor, part.TrimmerCapacitor} {
+		if _, _, err := quantity.ParseRange(at.Value, t.Unit()); err == nil {
+			return t
+		}
+	}
 	return ""
 }
 

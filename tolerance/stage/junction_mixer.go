@@ -52,7 +52,7 @@ var junctionMixer = Kind{
 		{Name: "negative", Unit: quantity.Volt, Default: "0 V", Summary: "negative rail, or ground"},
 		isolation,
 	},
-	Equations: junctionBias + junctionDrive + mixing,
+	Equations: junctionFoot + junctionBias + restingCollector + junctionDrive + mixing,
 	Outputs: slices.Concat(mixerOutputs, []Output{
 		{"collector", quantity.Volt, "steady collector voltage"},
 		{"saturated", quantity.One, "1 where the collector has come down to the emitter"},
@@ -106,28 +106,9 @@ mixer:
 		mixingSource,
 }
 
-const junctionBias = `
-warmth = temperature - zero_celsius - 25*kelvin
-thermal = boltzmann*temperature/charge
+// junctionFoot is the lower arm of the base divider.
+const junctionFoot = `
 base_foot = base_lower + bias
-base_resistance = 1/(1/base_upper + 1/base_foot + base_meter)
-base_open = (positive/base_upper + negative/base_foot)*base_resistance
-drive = base_open - negative
-junction = transistor.vbe + transistor.vbe_slope*warmth
-slope = base_resistance/transistor.beta + (1 + 1/transistor.beta)*emitter
-most = max(drive/slope, 1e-9*ampere)
-least = max((drive - junction - thermal*ln(most/(0.001*ampere)))/slope, 1e-12*ampere)
-more = min(max((drive - junction - thermal*ln(least/(0.001*ampere)))/slope, least), most)
-current = root(i, least, more, drive - i*slope - junction - thermal*ln(i/(0.001*ampere)))
-base_voltage = base_open - current/transistor.beta*base_resistance
-emitter_voltage = negative + current*(1 + 1/transistor.beta)*emitter
-resting = (positive - current*load)/(1 + load*meter)
-floor = emitter_voltage + 0.2*volt
-saturated = resting < floor
-starved = current < 1e-6*ampere
-collector = max(resting, floor)
-dc = collector
-source_resistance = load
 `
 
 const junctionDrive = `

@@ -1,9 +1,6 @@
 package stage
 
-import (
-	"batchwright/bom/part"
-	"batchwright/bom/quantity"
-)
+import "batchwright/bom/part"
 
 // opampNoninverting multiplies everything that comes in by the gain at its own
 // frequency, A₀/√(1 + (f·A₀/GBW)²).
@@ -29,57 +26,16 @@ var opampNoninverting = Kind{
 		{Name: "gain_trim", Type: part.TrimmerResistor, Optional: true, Summary: "trimmer in series with ground"},
 		{Name: "opamp", Type: part.OpAmp, Summary: "the amplifier"},
 	},
-	Inputs: []Input{{Name: "in", Summary: "what is amplified"}},
-	Settings: []Setting{
-		{Name: "positive", Unit: quantity.Volt, Summary: "positive rail"},
-		{Name: "negative", Unit: quantity.Volt, Default: "0 V", Summary: "negative rail, or ground"},
-	},
+	Inputs:   []Input{{Name: "in", Summary: "what is amplified"}},
+	Settings: rails,
 	Equations: `
-low_gain = 1 + feedback/(ground + gain_trim)
-gain = low_gain/sqrt(1 + (in.frequency*low_gain/opamp.gbw)^2)
-second_gain = low_gain/sqrt(1 + (in.second_frequency*low_gain/opamp.gbw)^2)
-tone_gain = low_gain/sqrt(1 + (in.tone_frequency*low_gain/opamp.gbw)^2)
-top = positive - opamp.headroom
-bottom = negative + opamp.headroom
-dc_wanted = (in.dc + opamp.offset)*low_gain
-dc = max(bottom, min(top, dc_wanted))
-room = max(0, min(top - dc, dc - bottom))
-carrier_wanted = in.level*gain
-second_wanted = in.second_level*second_gain
-tone_wanted = in.tone_level*tone_gain
-peak_wanted = carrier_wanted + second_wanted + tone_wanted
-slope_wanted = 2*pi*(in.frequency*carrier_wanted + in.second_frequency*second_wanted + in.tone_frequency*tone_wanted)
-rail_share = peak_wanted > room ? room/peak_wanted : 1
-slew_share = slope_wanted > opamp.slew ? opamp.slew/slope_wanted : 1
-share = min(rail_share, slew_share)
-clips = peak_wanted > room or dc_wanted > top or dc_wanted < bottom
-slews = slope_wanted > opamp.slew
-slew_limit_level = opamp.slew/(2*pi*in.frequency)
-output_level = carrier_wanted*share
-swing = peak_wanted*share
-frequency = in.frequency
-level = output_level
-second_frequency = in.second_frequency
-second_level = second_wanted*share
-tone_frequency = in.tone_frequency
-tone_level = tone_wanted*share
-tank_q = in.tank_q
-`,
-	Outputs: []Output{
-		{"gain", quantity.One, "gain at the carrier"},
-		{"output_level", quantity.Volt, "peak level of the carrier at the output"},
-		{"dc", quantity.Volt, "steady output voltage"},
-		{"slew_limit_level", quantity.Volt, "peak level the slew rate allows at the carrier"},
-		{"swing", quantity.Volt, "peak of the whole waveform at the output"},
-	},
-	Points: []Point{
-		{Name: "dc", Reading: "dc voltage", Instrument: "dmm", At: "output of the opamp, to 0 V"},
-		{Name: "swing", Reading: "peak voltage", Instrument: "scope", At: "output of the opamp, to 0 V, AC coupled"},
-	},
-	Findings: []Finding{
-		{"clips", "the output clips at its rails; lower the gain or the level that comes in, or raise the rails"},
-		{"slews", "the output is asked to move faster than the op-amp's slew rate; lower the gain or the level that comes in, or take a faster op-amp"},
-	},
+noise_gain = 1 + feedback/(ground + gain_trim)
+low_gain = noise_gain
+dc_wanted = (in.dc + opamp.offset)*noise_gain
+` + opampLimits + railShare + amplified,
+	Outputs:  opampOutputs,
+	Points:   opampPoints,
+	Findings: opampFindings,
 	Sketch: `
                      ┌───────┐
  in ─────────────────┤ +     │

@@ -12,10 +12,11 @@ import (
 var table = register(
 	&colpitts, &clapp, &hartley, &tunedTank,
 	&wienBridge, &phaseShift, &schmittRC, &timerAstable, &crystalOscillator,
-	&multiplier, &junctionMixer,
-	&opampNoninverting,
-	&envelopeDetector, &rcLowpass, &coupling,
-	&divider, &fixedRegulator, &adjustableRegulator, &railDecoupling,
+	&multiplier, &junctionMixer, &gateMixer, &diodeRing,
+	&opampNoninverting, &opampInverting, &commonEmitter, &emitterFollower, &powerAmp,
+	&envelopeDetector, &levelTank,
+	&rcLowpass, &rcHighpass, &sallenKeyLowpass, &lcLowpass, &coupling,
+	&divider, &shuntZener, &fixedRegulator, &adjustableRegulator, &railDecoupling,
 	&freeFormula,
 )
 

@@ -1,0 +1,88 @@
+package spread_test
+
+import (
+	"strings"
+	"testing"
+)
+
+// TestWorstCaseTargets judges a divider that runs from 4.95 V to 5.05 V.
+func TestWorstCaseTargets(t *testing.T) {
+	r := analyse(t, `
+build: divider
+units: 10
+conditions: {bench: {temperature: 25 °C}}
+stages:
+  d:
+    kind: divider
+    settings: {input: 10 V}
+    parts:
+      upper: {ref: R1, value: 10 kΩ, tolerance: 1 %}
+      lower: {ref: R2, value: 10 kΩ, tolerance: 1 %}
+targets:
+  - {name: wide, output: d.voltage, between: [4.94 V, 5.06 V], by: worst-case}
+  - {name: low,  output: d.voltage, between: [4.96 V, 5.06 V], by: worst-case}
+  - {name: high, output: d.voltage, between: [4.94 V, 5.04 V], by: worst-case}
+  - {name: most, output: d.voltage, between: [4.96 V, 5.04 V], share: 90 %}
+`, 2000)
+	for i, want := range []struct {
+		met bool
+		why string
+	}{{true, ""}, {false, "too low at R1 value +1, R2 value -1"}, {false, "too high at R1 value -1, R2 value +1"}, {true, ""}} {
+		got := r.Targets[i]
+		if got.Met != want.met || !strings.HasPrefix(got.Why, want.why) {
+			t.Errorf("%s: met %v, %q; want %v, %q", got.Name, got.Met, got.Why, want.met, want.why)
+		}
+		near(t, got.Name+", low", got.WorstCase.Low, 4.95, 1e-12)
+		near(t, got.Name+", high", got.WorstCase.High, 5.05, 1e-12)
+	}
+}
+
+// TestWorstCaseReach has a trimmer of 0..1 kΩ that must bring a resistor to
+// 2 kΩ: one of 1.5 kΩ ± 20 % always gets there, one of ± 40 % does not, either
+// end being out of reach at one corner or the other.
+func TestWorstCaseReach(t *testing.T) {
+	for tolerance, want := range map[string]bool{"20 %": true, "40 %": false} {
+		r := analyse(t, strings.Replace(`
+build: reach
+units: 10
+conditions: {bench: {temperature: 25 °C}}
+stages:
+  s:
+    kind: formula
+    parts:
+      r: {ref: R1, value: 1.5 kΩ, tolerance: TOLERANCE}
+      x: {ref: RV1, part: trimmer-resistor, value: 0..1 kΩ}
+    outputs: {sum: {expression: r + x, unit: Ω}}
+trims: [{turn: s.x, output: s.sum, to: 2 kΩ}]
+targets: [{name: reach, trim: s.x, by: worst-case}]
+`, "TOLERANCE", tolerance, 1), 2000)
+		if got := r.Targets[0]; got.Met != want || (got.Why == "") != want {
+			t.Errorf("± %s: met %v, %q", tolerance, got.Met, got.Why)
+		}
+	}
+}
+
+// TestTargetOverConditions asks each unit to comply at every condition: a
+// uniform resistor of 1 kΩ ± 10 % that loses 5 % in the heat, wanted above
+// 950 Ω, is so at 25 °C in three quarters of the units and in both in half.
+func TestTargetOverConditions(t *testing.T) {
+	r := analyse(t, `
+build: heat
+units: 10
+conditions: {cool: {temperature: 25 °C}, hot: {temperature: 75 °C}}
+stages:
+  s:
+    kind: formula
+    parts: {r: {ref: R1, value: 1 kΩ, tolerance: 10 %, shape: uniform, temperature_coefficient: -1000 ppm/K}}
+    outputs: {r1: {expression: r, unit: Ω}}
+targets:
+  - {name: cool, output: s.r1, at: [cool], between: [950 Ω, 2 kΩ], share: 70 %}
+  - {name: both, output: s.r1, at: [cool, hot], between: [950 Ω, 2 kΩ], share: 70 %}
+`, 40_000)
+	near(t, "cool", r.Targets[0].Share, 0.75, 0.01)
+	near(t, "both", r.Targets[1].Share, 0.5, 0.012)
+	near(t, "yield", r.Yield.UnitShare, 0.5, 0.012)
+	if !r.Targets[0].Met || r.Targets[1].Met {
+		t.Errorf("met %v and %v, want the first only", r.Targets[0].Met, r.Targets[1].Met)
+	}
+}

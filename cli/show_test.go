@@ -124,8 +124,10 @@ func TestExamples(t *testing.T) {
 		}
 		t.Run(line, func(t *testing.T) {
 			t.Chdir(t.TempDir())
-			if err := os.WriteFile("tone-box.yaml", small, 0o600); err != nil { // a build that is quickly planned
-				t.Fatal(err)
+			if args[0] != "new" { // which makes it itself
+				if err := os.WriteFile("tone-box.yaml", small, 0o600); err != nil { // a build that is quickly planned
+					t.Fatal(err)
+				}
 			}
 			if r := runHere(t, args...); r.code != exitDone || r.stdout == "" || r.stderr != "" {
 				t.Errorf("exit code %d, %d bytes on standard output, standard error %q", r.code, len(r.stdout), r.stderr)

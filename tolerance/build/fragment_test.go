@@ -10,13 +10,13 @@ import (
 )
 
 // TestFragments puts every kind's fragment into a build of its own, with an
-// oscillator for each stage that it takes in.
+// oscillator for each stage that it takes in. Its parts can be bought.
 func TestFragments(t *testing.T) {
 	for _, name := range stage.Names() {
 		t.Run(name, func(t *testing.T) {
 			k, _ := stage.Find(name)
 			if k.Fragment == "" {
-				t.Skip("no fragment")
+				t.Fatal("no fragment")
 			}
 			text := around(t, k)
 			b, err := read(text)
@@ -28,6 +28,11 @@ func TestFragments(t *testing.T) {
 			}
 			if _, err := b.Compile(); err != nil {
 				t.Errorf("%v\n%s", err, text)
+			}
+			for _, p := range b.Parts() {
+				if _, sold := b.Book.Offer(p); p.Family != "" && !sold {
+					t.Errorf("the demonstration book does not sell %s", p.Ref)
+				}
 			}
 		})
 	}

@@ -57,10 +57,10 @@ source_resistance = resistance/divided
 lowpass:
   kind: lc-lowpass
   in: amp
-  settings: {load: 600 Ω}
+  settings: {load: 330 Ω}
   parts:
     coil:  {ref: L1, value: 1 mH, family: drum-choke, tolerance: 5 %}
-    shunt: {ref: C1, value: 4.7 nF, family: polypropylene, tolerance: 2 %}
+    shunt: {ref: C1, value: 4.7 nF, family: polypropylene, tolerance: 2.5 %}
 `,
 	Limits: "Resistive source and load, well below the coil's own resonance. Above 0 Hz the source's resistance handed on leaves out the coil.",
 	Source: "definition: nodal equations of the drawing",

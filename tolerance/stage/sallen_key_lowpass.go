@@ -60,8 +60,8 @@ smooth:
   parts:
     r1: {ref: R1, value: 10 kΩ, family: metal-film-100, tolerance: 1 %}
     r2: {ref: R2, same_as: smooth.r1}
-    c1: {ref: C1, value: 4.4 nF, family: polypropylene, tolerance: 2 %}
-    c2: {ref: C2, value: 2.2 nF, family: polypropylene, tolerance: 2 %}
+    c1: {ref: C1, value: 4.7 nF, family: polypropylene, tolerance: 2.5 %}
+    c2: {ref: C2, value: 2.2 nF, family: polypropylene, tolerance: 2.5 %}
 `,
 	Limits: "Ideal buffer: its gain-bandwidth well above f0, its output resistance small against r1 at the carrier, its offset neglected.",
 	Source: "R. P. Sallen and E. L. Key, A practical method of designing RC active filters, IRE Trans. CT-2, 1955 (from memory); " +

@@ -178,9 +178,8 @@ func TestCostIsTheOrder(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	merging := strings.Replace(tanks("60 Hz"), "C2, same_as: a.tank", "C2, value: 220 pF, choose: {families: [c0g, polystyrene], tolerances: [1 %, 5 %]}", 1)
 	rng := rand.New(rand.NewPCG(1, 1))
-	for name, text := range map[string]string{"example": string(example), "merging": merging} {
+	for name, text := range map[string]string{"example": string(example), "merging": merging()} {
 		c, err := newChooser(read(t, text), Options{})
 		if err != nil {
 			t.Fatal(err)
@@ -208,7 +207,19 @@ func TestCostIsTheOrder(t *testing.T) {
 // TestPictureIsTheModel compares the linear picture that the search uses with
 // one made of the choice compiled afresh.
 func TestPictureIsTheModel(t *testing.T) {
-	c, err := newChooser(read(t, tanks("60 Hz")), Options{})
+	for name, text := range map[string]string{"two lines": tanks("60 Hz"), "lines that may merge": merging()} {
+		t.Run(name, func(t *testing.T) { comparePictures(t, text) })
+	}
+}
+
+// merging is the two tanks with an opening for each tank's capacitor: where
+// both take the same, they are one line and one lot.
+func merging() string {
+	return strings.Replace(tanks("60 Hz"), "C2, same_as: a.tank", "C2, value: 220 pF, choose: {families: [c0g, polystyrene], tolerances: [1 %, 5 %]}", 1)
+}
+
+func comparePictures(t *testing.T, text string) {
+	c, err := newChooser(read(t, text), Options{})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -227,6 +238,31 @@ func TestPictureIsTheModel(t *testing.T) {
 			if !ok || !near(got.Mean, want.Mean) || !near(got.Variance, want.Variance) || !near(got.Half, want.Half) || !near(got.slack, want.slack) {
 				t.Errorf("%v, demand %d: %+v, want %+v", choice, k, got, want)
 			}
+		}
+	}
+}
+
+// TestNextCheaper asks for the dearest of the options that are cheaper.
+func TestNextCheaper(t *testing.T) {
+	c, err := newChooser(read(t, tanks("60 Hz")), Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	choice := []int{0, 0}
+	var costs []int64
+	for j := range c.fittings[0] {
+		costs = append(costs, c.cost([]int{j, 0}))
+	}
+	for j := range c.fittings[0] {
+		choice[0] = j
+		want := -1
+		for k, cost := range costs {
+			if cost < costs[j] && (want < 0 || cost > costs[want]) {
+				want = k
+			}
+		}
+		if got, _ := c.nextCheaper(choice, 0, j); got != want {
+			t.Errorf("below option %d at %d comes %d, want %d of %v", j, costs[j], got, want, costs)
 		}
 	}
 }

@@ -89,6 +89,7 @@ type judged struct {
 type graph struct {
 	inputs []build.Input
 	slopes *spread.Differentiator
+	alone  bool // it stands for the choice it was compiled from only
 }
 
 func inputKey(x build.Input) string { return x.Ref + "|" + x.Parameter }
@@ -112,7 +113,7 @@ func newPictures(c *chooser) (*pictures, error) {
 			if err != nil {
 				return nil, err
 			}
-			list = append(list, ofLine(m, c.refs(i)))
+			list = append(list, ofLine(m, c.refs(i), i))
 			signs = append(signs, sign(c.fittings[i][j]))
 		}
 		p.options, p.signs = append(p.options, list), append(p.signs, signs)
@@ -150,13 +151,23 @@ func (p *pictures) linesOf(m *build.Model, node tape.Ref) []int {
 	return lines
 }
 
-// ofLine are the inputs of a model that belong to some references.
-func ofLine(m *build.Model, refs []string) map[string]build.Input {
+// ofLine are the inputs of a model that belong to an opening, in lots of its
+// own: in the base another opening may buy the same piece and share its lot,
+// where the choice that is judged has another there.
+func ofLine(m *build.Model, refs []string, line int) map[string]build.Input {
 	inputs := map[string]build.Input{}
+	lots := map[string]int{} // by parameter
 	for _, x := range m.Inputs {
-		if slices.Contains(refs, x.Ref) {
-			inputs[inputKey(x)] = x
+		if !slices.Contains(refs, x.Ref) {
+			continue
 		}
+		if x.Lot >= 0 {
+			if _, known := lots[x.Parameter]; !known {
+				lots[x.Parameter] = line<<16 + len(lots)
+			}
+			x.Lot = lots[x.Parameter]
+		}
+		inputs[inputKey(x)] = x
 	}
 	return inputs
 }
@@ -198,6 +209,9 @@ func (p *pictures) linear(g *group, choice []int) (*spread.Linear, error) {
 	if err != nil {
 		return nil, err
 	}
+	if made.alone {
+		return made.slopes.At(made.inputs), nil
+	}
 	inputs := slices.Clone(made.inputs)
 	for _, i := range g.lines {
 		own := p.options[i][choice[i]]
@@ -213,7 +227,7 @@ func (p *pictures) linear(g *group, choice []int) (*spread.Linear, error) {
 // graph is the compiled choice whose equations are those of a choice, as far
 // as a group depends on them.
 func (p *pictures) graph(g *group, choice []int) (*graph, error) {
-	key := p.equations(g, choice)
+	key, alone := p.equations(g, choice)
 	if made, ok := g.graphs[key]; ok {
 		return made, nil
 	}
@@ -225,7 +239,7 @@ func (p *pictures) graph(g *group, choice []int) (*graph, error) {
 	for _, k := range g.demands {
 		refs = append(refs, p.demands[k].node(m))
 	}
-	made := &graph{m.Inputs, spread.NewDifferentiator(m, refs...)}
+	made := &graph{m.Inputs, spread.NewDifferentiator(m, refs...), alone}
 	g.graphs[key] = made
 	return made, nil
 }

@@ -104,19 +104,19 @@ func (c *chooser) company(i, j int) map[int]bool {
 // equations name what a choice's graph follows from on a group's lines: the
 // nominal values and which terms the parts' scatter has. Where two lines buy the
 // same piece they share a lot, so such a choice stands for itself alone.
-func (p *pictures) equations(g *group, choice []int) string {
+func (p *pictures) equations(g *group, choice []int) (name string, alone bool) {
 	var b strings.Builder
 	bought := map[string]bool{}
 	for _, i := range g.lines {
 		j := choice[i]
 		key := p.keys[i][j]
 		if bought[key] || p.fixed[key] > 0 {
-			return "choice " + fmt.Sprint(choice)
+			return "choice " + fmt.Sprint(choice), true
 		}
 		bought[key] = true
 		b.WriteString(p.signs[i][j])
 	}
-	return b.String()
+	return b.String(), false
 }
 
 // sign names what a part's equations follow from.

@@ -43,11 +43,13 @@ var faults = []struct{ at, found, advice string }{
 	{"39:7", "", "missing part shunt"},                  // missing role
 	{"39:32", `"4,7 kΩ"`, "decimal mark is a dot"},      //
 	{"45:36", `"Ω"`, "do not go together"},              // volts and ohms added
-	{"47:12", `"half.upper"`, "not a trimmer"},          // trim on a resistor
-	{"49:23", `"half.voltge"`, "nearest: half.voltage"}, // unknown output
-	{"50:42", `"hal"`, "nearest: hall"},                 // unknown condition
-	{"51:65", "", "high above the low"},                 // limits the wrong way round
-	{"51:78", `"150 %"`, "at most 100 %"},               // share
+	{"48:56", `"1 Hz"`, "a length"},                     // dimension of the wrong unit
+	{"50:32", "", "at least 0.4 diameters"},             // winding out of reach
+	{"53:12", `"half.upper"`, "not a trimmer"},          // trim on a resistor
+	{"55:23", `"half.voltge"`, "nearest: half.voltage"}, // unknown output
+	{"56:42", `"hal"`, "nearest: hall"},                 // unknown condition
+	{"57:65", "", "high above the low"},                 // limits the wrong way round
+	{"57:78", `"150 %"`, "at most 100 %"},               // share
 }
 
 // Every fault of a bad build is reported in one run, each at its place, and

@@ -21,13 +21,18 @@ func positions(w Work) []workbook.Position {
 			if !place.Fitted {
 				continue
 			}
-			list = append(list, workbook.Position{
+			at := workbook.Position{
 				Stage: s.Name, Kind: s.Kind.Name, Ref: place.Part.Ref,
 				Role:  strings.ReplaceAll(place.Role, "_", " "),
 				Value: place.Part.ValueText(), Family: title(w.Build, place.Part.Family),
 				Tolerance: grade(place.Part), Marking: marking.Text(place.Part),
 				Note: note(w, s, place, lots),
-			})
+			}
+			if place.Geometry != nil {
+				at.Value, at.Tolerance, at.Marking = place.Quantity, "", ""
+				at.Family, at.Note = "wound, not bought", winding(place.Geometry)
+			}
+			list = append(list, at)
 		}
 	}
 	return list

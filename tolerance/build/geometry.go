@@ -2,6 +2,7 @@ package build
 
 import (
 	"fmt"
+	"math"
 	"strings"
 	"sync"
 
@@ -194,12 +195,16 @@ func (r *reader) readMeasure(n *document.Node, s *geometry.Shape, d geometry.Dim
 		r.Add(at, "a "+shape.Name+" as a dimension", "a value in "+d.Unit.Symbol)
 		return nil, false
 	}
+	m.Value = math.NaN() // until it has been read
 	r.readFigure(at, &m.Setting)
 	if m.Reference != "" && !refer {
 		r.Add(at, "reference", "a value in "+d.Unit.Symbol+": a coil is wound before it meets any condition")
 		return nil, false
 	}
-	return m, m.Reference != "" || r.checkSize(at, d, m.Value, "")
+	if m.Reference != "" {
+		return m, true
+	}
+	return m, !math.IsNaN(m.Value) && r.checkSize(at, d, m.Value, "")
 }
 
 // checkSize complains of a dimension that nothing has.

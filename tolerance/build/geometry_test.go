@@ -190,6 +190,11 @@ func TestShapeFaults(t *testing.T) {
 			if len(faults) > 2 {
 				t.Errorf("%d complaints of one fault:\n%v", len(faults), err)
 			}
+			for i, f := range faults[1:] {
+				if f.Line == faults[i].Line && f.Column == faults[i].Column {
+					t.Errorf("two complaints of one place:\n%v", err)
+				}
+			}
 			for _, f := range faults {
 				if strings.HasPrefix(f.Error(), fmt.Sprintf("lamp.yaml:%d:", c.line)) && containsAll(f.Error(), c.words) {
 					return

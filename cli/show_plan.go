@@ -19,7 +19,7 @@ func (p *program) showPlan(w plan.Work, path string) {
 	p.paragraph("yield", plan.YieldSentence(w.Report.Yield))
 	p.showPicks(w.Pick)
 	p.showOrder(w.Order)
-	p.paragraph("notes", strings.Join(w.Report.Notes, "\n"))
+	p.showFindings(w.Report)
 	p.paragraph("mind", strings.Join(plan.Cautions(), "\n"))
 	p.line("\nwrote %s", path)
 }

@@ -22,6 +22,14 @@ func (p *program) showSpread(b *build.Build, r *spread.Report) {
 	p.showTrims(r.Trims)
 	p.showTargets(r.Targets)
 	p.paragraph("yield", plan.YieldSentence(r.Yield))
+	p.showFindings(r)
+}
+
+// showFindings prints what happens in some unit and nobody may miss, how near
+// each mixer's oscillators come to pulling into step, and what else to know.
+func (p *program) showFindings(r *spread.Report) {
+	p.paragraph("findings", strings.Join(plan.FindingSentences(r), "\n"))
+	p.paragraph("lock range", strings.Join(plan.LockSentences(r), "\n"))
 	p.paragraph("notes", strings.Join(r.Notes, "\n"))
 }
 

@@ -50,6 +50,7 @@ func NewSpread(r *spread.Report, s bench.Sheet) Spread {
 		out.Outputs[i].Contributions = listed(out.Outputs[i].Contributions)
 	}
 	out.Trims, out.Targets = listed(r.Trims), listed(r.Targets)
+	out.Findings, out.LockRanges = listed(r.Findings), listed(r.LockRanges)
 	return out
 }
 

@@ -68,7 +68,8 @@ func findings(w Work) []string {
 		}
 		list = append(list, "Not offered by the price book, and in no total: "+strings.Join(refs, ", ")+".")
 	}
-	return append(list, w.Report.Notes...)
+	list = append(list, FindingSentences(w.Report)...)
+	return append(list, LockSentences(w.Report)...) // the workbook adds the report's notes
 }
 
 // YieldSentence says how many units come out good.

@@ -21,6 +21,8 @@ type Model struct {
 	Trims   []TrimNodes
 	Targets []TargetNodes // as Build.Targets
 	Points  []Point
+
+	Findings []Finding // by stage, finding and condition
 }
 
 // Input is one thing that scatters: a column of the program.
@@ -87,7 +89,9 @@ type likeness struct {
 func (b *Build) Compile() (*Model, error) {
 	c := b.newCompiler()
 	settings := c.compileTrims()
-	c.compileOutputs(settings)
+	environments := c.environments(settings)
+	c.compileOutputs(environments)
+	c.compileFindings(environments)
 	c.compilePoints(settings)
 	c.findTrims()
 	return c.Model, c.err
@@ -159,9 +163,8 @@ func (c *compiler) environments(settings []tape.Ref) []*environment {
 
 // compileOutputs makes a node for every output at every condition, and for
 // every change that a target asks about.
-func (c *compiler) compileOutputs(settings []tape.Ref) {
+func (c *compiler) compileOutputs(environments []*environment) {
 	at := map[string]int{}
-	environments := c.environments(settings)
 	for _, s := range c.Build.Stages {
 		for _, o := range s.Outputs {
 			for i := range environments {
@@ -266,6 +269,11 @@ func (c *compiler) findTrims() {
 		for i := range c.Points {
 			if depends[c.Points[i].Loaded] {
 				c.Points[i].Trims = append(c.Points[i].Trims, t)
+			}
+		}
+		for i := range c.Findings {
+			if depends[c.Findings[i].Node] {
+				c.Findings[i].Trims = append(c.Findings[i].Trims, t)
 			}
 		}
 		for i := range c.Trims {

@@ -48,6 +48,8 @@ func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
 	}
 	r.Yield = s.yield()
 	r.Readings = s.readings()
+	r.Findings = s.findings()
+	r.LockRanges = lockRanges(m, r.Outputs)
 	r.Notes = s.notes()
 	return r, nil
 }
@@ -296,7 +298,7 @@ func (s *sample) readings() []ReadingReport {
 	return list
 }
 
-// notes are findings that are no failures.
+// notes are what else should be known.
 func (s *sample) notes() []string {
 	var notes []string
 	m := s.nodes.model

@@ -24,12 +24,15 @@ type nodes struct {
 	outputs  []int       // the first of Model.Outputs in each column
 	columnOf map[int]int // from an index of Model.Outputs
 	trims    []int       // of Model.Trims; setting, at low, at high follow the outputs for each
-	points   int         // first column of the loaded readings
+	points   int         // first column of the loaded readings, up to happen
+	happen   int         // first column of the findings
+	findings []int       // the first of Model.Findings in each column from there
+	happenAt []int       // of Model.Findings, which of these it is
 	count    int
 }
 
 // newNodes compiles some outputs and what some targets judge, the trims that
-// either depends on and, with points, every trim and reading.
+// either depends on and, with points, every trim, reading and finding.
 func newNodes(m *build.Model, outputs, targets []int, points bool) *nodes {
 	n := &nodes{model: m, targets: targets, columnOf: map[int]int{}}
 	for _, t := range targets {
@@ -55,6 +58,10 @@ func newNodes(m *build.Model, outputs, targets []int, points bool) *nodes {
 		for _, p := range m.Points {
 			refs = append(refs, p.Loaded)
 		}
+	}
+	n.happen = len(refs)
+	if points {
+		refs = n.addFindings(refs)
 	}
 	n.count = len(refs)
 	n.program = m.Graph.Program(refs...)
@@ -82,6 +89,21 @@ func (n *nodes) findTrims(all bool) {
 			n.trims = append(n.trims, t)
 		}
 	}
+}
+
+// addFindings gives the findings their columns; those that are one node, such
+// as a regulator's at conditions that do not touch it, share one.
+func (n *nodes) addFindings(refs []tape.Ref) []tape.Ref {
+	column := map[tape.Ref]int{}
+	for i, f := range n.model.Findings {
+		if _, there := column[f.Node]; !there {
+			column[f.Node] = len(n.findings)
+			n.findings = append(n.findings, i)
+			refs = append(refs, f.Node)
+		}
+		n.happenAt = append(n.happenAt, column[f.Node])
+	}
+	return refs
 }
 
 // trimColumn is the first column of the k-th trim.

@@ -42,7 +42,9 @@ type Report struct {
 	Targets    []TargetReport `json:"targets"`
 	Yield      YieldReport    `json:"yield"`
 	Simulation Simulation     `json:"simulation"`
-	Notes      []string       `json:"notes,omitempty"` // findings that are not failures
+	Findings   []Finding      `json:"findings"`    // what happens in some unit and nobody may miss
+	LockRanges []LockRange    `json:"lock_ranges"` // of every mixer
+	Notes      []string       `json:"notes,omitempty"`
 
 	// Readings are what the bench will see, as the model's points; package
 	// bench makes windows of them.

@@ -27,16 +27,18 @@ func (o Options) batches(units int) int { return (o.Units + units - 1) / units }
 // sample is what a simulation leaves behind: no unit's values, but sums,
 // histograms and, for each target, which units comply.
 type sample struct {
-	nodes    *nodes
-	batches  int
-	units    int // in all
-	nominal  []float64
-	outputs  []summary // as nodes.outputs
-	settings []summary // as nodes.trims
-	points   []summary // over good units; as Model.Points
-	short    [][2]int  // of each trim: units that ran out at setting 0, at 1
-	comply   [][]bool  // [of nodes.targets][unit]
-	good     []bool    // units that meet every one of those
+	nodes     *nodes
+	batches   int
+	units     int // in all
+	nominal   []float64
+	outputs   []summary // as nodes.outputs
+	settings  []summary // as nodes.trims
+	points    []summary // over good units; as Model.Points
+	short     [][2]int  // of each trim: units that ran out at setting 0, at 1
+	happened  [][]int   // [of nodes.findings][batch] in how many units; nil: in none
+	untrimmed []int     // of nodes.findings: units in which a trim it depends on did not reach
+	comply    [][]bool  // [of nodes.targets][unit]
+	good      []bool    // units that meet every one of those
 }
 
 // summary is the distribution of one column.
@@ -50,6 +52,8 @@ type summary struct {
 type job struct {
 	outputs, settings, points []Moments
 	short                     [][2]int
+	happened                  [][]batchCount // of nodes.findings
+	untrimmed                 []int
 }
 
 // simulate runs whole batches through the program. It stops early, with the
@@ -101,10 +105,11 @@ func newSample(n *nodes, batches, units int) *sample {
 	for k := range n.trims {
 		s.settings = append(s.settings, newSummary(s.nominal[n.trimColumn(k)]))
 	}
-	for column := n.points; column < n.count; column++ {
+	for column := n.points; column < n.happen; column++ {
 		s.points = append(s.points, newSummary(s.nominal[column]))
 	}
 	s.short = make([][2]int, len(n.trims))
+	s.happened, s.untrimmed = make([][]int, len(n.findings)), make([]int, len(n.findings))
 	s.comply = make([][]bool, len(n.targets))
 	for i := range s.comply {
 		s.comply[i] = make([]bool, s.units)
@@ -131,6 +136,7 @@ func (s *sample) mergeJobs(jobs []job) {
 			s.short[i][0] += j.short[i][0]
 			s.short[i][1] += j.short[i][1]
 		}
+		s.mergeFindings(j)
 	}
 }
 

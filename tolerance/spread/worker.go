@@ -60,6 +60,7 @@ func (w *worker) job(first int) job {
 		settings: make([]Moments, len(w.settings)),
 		points:   make([]Moments, len(w.points)),
 		short:    make([][2]int, len(w.settings)),
+		happened: make([][]batchCount, len(w.nodes.findings)), untrimmed: make([]int, len(w.nodes.findings)),
 	}
 	for block := first; block < min(first+run, w.sample.units); block += lanes {
 		w.block(&j, block, min(lanes, w.sample.units-block))
@@ -84,6 +85,7 @@ func (w *worker) block(j *job, first, width int) {
 		copy(w.keep, w.good[:width])
 		w.add(&j.points[i], w.points[i], out[w.nodes.points+i], w.keep[:width])
 	}
+	w.addFindings(j, out, first, width)
 }
 
 // add adds the lanes kept to a column's sums. What is no number is left out.

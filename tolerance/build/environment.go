@@ -6,6 +6,7 @@ import (
 
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/formula"
+	"batchwright/tolerance/stage"
 	"batchwright/tolerance/tape"
 )
 
@@ -17,6 +18,8 @@ type environment struct {
 	loaded    string // stage that an instrument is connected to
 	loads     map[string]tape.Ref
 	values    map[string]tape.Ref // equations already lowered, by "stage.name"
+	heating   string              // stage whose own heat is being solved for
+	heat      tape.Ref            // and how far it warms that stage, K
 }
 
 func (c *compiler) newEnvironment(condition int, settings []tape.Ref) *environment {
@@ -162,10 +165,41 @@ func (c *compiler) variableNamed(e *environment, name string) float64 {
 	return c.Build.Conditions[e.condition].Values[c.Build.variable(name)]
 }
 
-// rise is the stage's temperature above ambient, K.
+// rise is the stage's temperature above ambient, K: what the file says, and
+// what the stage's own heat adds.
 func (c *compiler) rise(e *environment, s *Stage) tape.Ref {
-	full := c.settingValue(e, s, s.setting("rise"))
+	full := c.Graph.Add(c.settingValue(e, s, s.setting("rise")), c.ownHeat(e, s))
 	return c.Graph.Mul(c.Graph.Constant(c.variableNamed(e, Warmup)), full)
+}
+
+// hottest bounds the search for a stage's own warming, K.
+const hottest = 500
+
+// ownHeat is how far a stage's own heat warms it: the u at which
+//
+//	thermal_resistance·heat(u) = u,
+//
+// the heat being that of the stage as warm as that makes it. A stage that would
+// run away is held at the hottest.
+func (c *compiler) ownHeat(e *environment, s *Stage) tape.Ref {
+	set := s.setting(stage.ThermalResistance)
+	if set == nil || set.Reference == "" && set.Value == 0 && set.Tolerance == 0 {
+		return c.Graph.Constant(0)
+	}
+	if e.heating == s.Name {
+		return e.heat
+	}
+	k := s.Name + " own heat"
+	if v, ok := e.values[k]; ok {
+		return v
+	}
+	u := c.Graph.Unknown()
+	warm := *e
+	warm.values, warm.heating, warm.heat = map[string]tape.Ref{}, s.Name, u
+	heat := c.Graph.Mul(c.settingValue(&warm, s, set), c.equation(&warm, s, stage.Heat))
+	v := c.Graph.Root(u, c.Graph.Constant(0), c.Graph.Constant(hottest), c.Graph.Sub(heat, u))
+	e.values[k] = v
+	return v
 }
 
 // absolute is the stage's own temperature, K.

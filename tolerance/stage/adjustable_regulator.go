@@ -20,7 +20,7 @@ var adjustableRegulator = Kind{
 	},
 	Settings: []Setting{
 		{Name: "input", Unit: quantity.Volt, Summary: "voltage that comes in, from a certified supply"},
-		loadCurrent,
+		loadCurrent, thermalResistance,
 	},
 	Equations: `
 foot = lower + trim

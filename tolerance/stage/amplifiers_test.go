@@ -329,6 +329,10 @@ func TestPowerAmpExamples(t *testing.T) {
 	near(t, "swing", loud["swing"], 14, 1e-12)
 	near(t, "tone_power at clipping", loud["tone_power"], loud["clip_power"], 1e-7)
 	near(t, "clips", loud["clips"], 1, 0)
+	three := evaluate(t, "power-amp", with(given, "in.level", 1, "in.second_level", 0.5, "in.tone_level", 2,
+		"in.frequency", 1e6, "in.second_frequency", 1e6, "in.tone_frequency", 1e6))
+	near(t, "three that together reach the supply", three["level"]+three["second_level"]+three["tone_level"], 30, 1e-9)
+	near(t, "alike", three["second_level"], 30*0.5/3.5, 1e-9)
 }
 
 // Capacitor and speaker, driven stiffly.

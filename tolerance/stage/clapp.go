@@ -19,8 +19,8 @@ var clapp = Kind{
 		{Name: "tuner", Type: part.TrimmerCapacitor, Optional: true, Summary: "trimmer across the series capacitor"},
 	},
 	Settings: tankSettings,
-	Equations: `
-capacitance = 1/(1/upper + 1/lower + 1/(series + tuner)) + pad + stray + sensor + probe
+	Equations: tankLoad + `
+capacitance = 1/(1/upper + 1/lower + 1/(series + tuner)) + pad + across
 frequency = 1/(2*pi*sqrt(coil*capacitance))
 level = level
 tank_q = q

@@ -15,8 +15,8 @@ var colpitts = Kind{
 		{Name: "tuner", Type: part.TrimmerCapacitor, Optional: true, Summary: "trimmer across the coil"},
 	},
 	Settings: tankSettings,
-	Equations: `
-capacitance = upper*lower/(upper + lower) + pad + tuner + stray + sensor + probe
+	Equations: tankLoad + `
+capacitance = upper*lower/(upper + lower) + pad + tuner + across
 frequency = 1/(2*pi*sqrt(coil*capacitance))
 level = level
 tank_q = q

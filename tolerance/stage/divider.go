@@ -17,17 +17,21 @@ var divider = Kind{
 	Settings: []Setting{
 		{Name: "input", Unit: quantity.Volt, Summary: "voltage across both"},
 		{Name: "load", Unit: quantity.Ohm, Default: "0 ohm", Summary: "resistance from the tap to ground; 0 stands for none"},
+		thermalResistance,
 	},
-	Equations: `
+	Equations: warms + `
 tap_resistance = 1/(1/upper + 1/lower + (load > 0 ? 1/load : 0) + meter)
 voltage = input*tap_resistance/upper
 current = (input - voltage)/upper
+heat = (input - voltage)^2/upper + voltage^2/lower
 dc = voltage
 source_resistance = tap_resistance
 `,
 	Outputs: []Output{
 		{"voltage", quantity.Volt, "voltage at the tap"},
 		{"current", quantity.Ampere, "current that the input delivers"},
+		{"heat", quantity.Watt, "heat in both resistors"},
+		warmingOutput,
 	},
 	Points: []Point{{Name: "voltage", Reading: "dc voltage", Instrument: "dmm",
 		At: "tap of upper and lower, to ground", Conductance: "meter"}},

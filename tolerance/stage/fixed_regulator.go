@@ -14,6 +14,7 @@ var regulatorOutputs = []Output{
 	{"voltage", quantity.Volt, "output voltage"},
 	{"headroom", quantity.Volt, "what the input has to spare over output and dropout; negative where it no longer regulates"},
 	{"dissipation", quantity.Watt, "heat in the regulator"},
+	warmingOutput,
 }
 
 // regulatorPoints: a regulator is stiff, so no instrument changes its voltage.
@@ -35,8 +36,9 @@ headroom = polarity*(input - wanted) - regulator.dropout
 drops_out = headroom < 0
 voltage = polarity*max(0, min(polarity*wanted, polarity*input - regulator.dropout))
 dissipation = polarity*(input - voltage)*load_current
+heat = dissipation
 dc = voltage
-`
+` + warms
 
 // fixedRegulator is a three-terminal regulator with its two capacitors, which
 // are bought but change no steady voltage. output_slope counts from 25 °C.
@@ -50,7 +52,7 @@ var fixedRegulator = Kind{
 	},
 	Settings: []Setting{
 		{Name: "input", Unit: quantity.Volt, Summary: "voltage that comes in, from a certified supply"},
-		loadCurrent,
+		loadCurrent, thermalResistance,
 	},
 	Equations: `
 wanted = regulator.output + regulator.output_slope*(temperature - zero_celsius - 25*kelvin)

@@ -23,9 +23,9 @@ var hartley = Kind{
 	},
 	Settings: append(slices.Clip(tankSettings), Setting{Name: "coupling", Unit: quantity.One, Default: "0",
 		Summary: "coupling factor k of the coils, from -1 to 1"}),
-	Equations: `
+	Equations: tankLoad + `
 inductance = coil_a + coil_b + 2*coupling*sqrt(coil_a*coil_b)
-capacitance = tank + pad + tuner + stray + sensor + probe
+capacitance = tank + pad + tuner + across
 frequency = 1/(2*pi*sqrt(inductance*capacitance))
 level = level
 tank_q = q

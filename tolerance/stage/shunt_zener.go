@@ -23,11 +23,11 @@ var shuntZener = Kind{
 	},
 	Settings: []Setting{
 		{Name: "input", Unit: quantity.Volt, Summary: "voltage that comes in"},
-		loadCurrent,
+		loadCurrent, thermalResistance,
 		{Name: "test_current", Unit: quantity.Ampere, Default: "0 mA",
 			Summary: "current at which the diode's voltage is stated; 0: it is what is left without current"},
 	},
-	Equations: `
+	Equations: warms + `
 polarity = input < 0 ? -1 : 1
 supply = abs(input)
 warmth = temperature - zero_celsius - 25*kelvin
@@ -40,6 +40,7 @@ size = unregulated > 0 ? max(0, (supply - series*load_current)/metered) : knee +
 voltage = polarity*size
 zener_dissipation = size*zener_current
 series_dissipation = (supply - size)^2/series
+heat = zener_dissipation + series_dissipation
 dc = voltage
 source_resistance = unregulated > 0 ? series/metered : series*zener.resistance/(series + zener.resistance*metered)
 `,
@@ -48,6 +49,7 @@ source_resistance = unregulated > 0 ? series/metered : series*zener.resistance/(
 		{"zener_current", quantity.Ampere, "current through zener"},
 		{"zener_dissipation", quantity.Watt, "heat in zener"},
 		{"series_dissipation", quantity.Watt, "heat in series"},
+		warmingOutput,
 		{"unregulated", quantity.One, "1 where nothing is left for zener, and the voltage follows input and load"},
 	},
 	Points: []Point{{Name: "voltage", Reading: "dc voltage", Instrument: "dmm",

@@ -19,9 +19,24 @@ var tankSettings = []Setting{
 		Summary: "capacitance of wiring, coil and transistor across the tank"},
 	{Name: "sensor", Unit: quantity.Farad, Default: "0 pF",
 		Summary: "further capacitance across the tank, such as a hand near a plate"},
+	{Name: "loading", Unit: quantity.Farad, Default: "0 pF",
+		Summary: "capacitance of the transistor across the tank; its temperature_coefficient is its slope with temperature"},
+	{Name: "pushing", Unit: perVolt, Default: "0 %/V",
+		Summary: "relative change of loading for each volt of supply over supply_rest"},
+	{Name: "supply", Unit: quantity.Volt, Default: "0 V", Summary: "the oscillator's supply, such as a regulator's voltage"},
+	{Name: "supply_rest", Unit: quantity.Volt, Default: "0 V", Summary: "supply at which loading is stated"},
 	{Name: "q", Unit: quantity.One, Default: "80",
 		Summary: "loaded Q of the tank; counts for the lock range only"},
 }
+
+// perVolt is the unit of supply pushing.
+var perVolt = quantity.Unit{Symbol: "1/V", Scale: 1, Dimension: quantity.One.Dimension.Div(quantity.Volt.Dimension)}
+
+// tankLoad is what lies across every tank besides its own parts. A junction's
+// capacitance falls with the voltage across it, so pushing is negative as a rule.
+const tankLoad = `
+across = stray + sensor + probe + loading*(1 + pushing*(supply - supply_rest))
+`
 
 // tankOutputs are those of every oscillator.
 var tankOutputs = []Output{
@@ -50,8 +65,8 @@ var tunedTank = Kind{
 		{Name: "tuner", Type: part.TrimmerCapacitor, Optional: true, Summary: "trimmer across the coil"},
 	},
 	Settings: tankSettings,
-	Equations: `
-capacitance = tank + pad + tuner + stray + sensor + probe
+	Equations: tankLoad + `
+capacitance = tank + pad + tuner + across
 frequency = 1/(2*pi*sqrt(coil*capacitance))
 level = level
 tank_q = q

@@ -16,10 +16,12 @@ func (p *program) kindsCommand() *cli.Command {
 		Description: `Lists the kinds, or prints of one kind a drawing, its roles, inputs, settings,
 outputs, test points and equations, and what to write in a build file. In the
 drawing [roles] must be filled, (roles) may be; the equations printed are the
-ones that run.
+ones that run. The shapes, by which settings and coils can be given, are listed
+below and printed likewise.
 
   batchwright kinds
-  batchwright kinds colpitts`,
+  batchwright kinds colpitts
+  batchwright kinds rod`,
 		Flags:  []cli.Flag{jsonFlag()},
 		Action: p.kinds,
 	}
@@ -35,7 +37,7 @@ func (p *program) kinds(c *cli.Context) error {
 	}
 	k, ok := stage.Find(name)
 	if !ok {
-		return unknownWord("kind", name, stage.Names())
+		return p.shape(name, c.Bool("json"))
 	}
 	if c.Bool("json") {
 		return p.json(describeKind(k))
@@ -57,9 +59,10 @@ func (p *program) kindList(asJSON bool) error {
 		list = append(list, named{k.Name, k.Summary})
 	}
 	if asJSON {
-		return p.json(map[string][]named{"kinds": list})
+		return p.json(map[string][]named{"kinds": list, "shapes": shapeList()})
 	}
 	p.showList(list)
+	p.showShapeList()
 	return nil
 }
 

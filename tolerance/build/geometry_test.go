@@ -27,7 +27,7 @@ stages:
       stray: {rod: {length: 450 mm, diameter: 10 mm, gap: {value: 5 cm, tolerance: 5 mm}}}
       sensor: {plate: {distance: hand, area: 120 cm2}, tolerance: 10 %}
     parts:
-      coil: {ref: L1, winding: {turns: 150, diameter: {value: 30 mm, tolerance: 1 %, shape: uniform}, length: 60 mm}, temperature_coefficient: 20 ppm/K}
+      coil: {ref: L1, winding: {turns: 150, diameter: {value: 30 mm, tolerance: 1 %, shape: uniform, temperature_coefficient: {value: 17 ppm/K, spread: 2 ppm/K}}, length: 60 mm}, temperature_coefficient: 20 ppm/K}
       tank: {ref: C1, value: 100 pF}
   other:
     kind: tuned-tank
@@ -84,7 +84,8 @@ func TestShapedValues(t *testing.T) {
 	plate := func(d float64) float64 {
 		return 8.8541878188e-12 * r * (math.Pi*r/d + math.Log(16*math.Pi*r/d+math.Exp(5)) - 1)
 	}
-	coil := 1e-6 / 0.0254 * 150 * 150 * 0.015 * 0.015 / (9*0.015 + 10*0.06)
+	radius := 0.015 * (1 - 2*17e-6) // copper that grows, at 23 °C
+	coil := 1e-6 / 0.0254 * 150 * 150 * radius * radius / (9*radius + 10*0.06)
 	tank := func(c float64) float64 { return 1 / (2 * math.Pi * math.Sqrt(coil*(1-2*20e-6)*c)) } // at 23 °C
 	for name, want := range map[string]float64{
 		"own.capacitance rest":  1.02 * 10.79599905e-12,
@@ -115,7 +116,8 @@ func TestShapedInputs(t *testing.T) {
 	}
 	want := map[string]float64{
 		"moving.stray model": 0.02, "moving.stray gap": 0.005, "moving.sensor model": 0.1,
-		"L1 model": 0.01, "L1 diameter": 0.01, "L2 model": 0.01, "L2 diameter": 0.01, "L3 model": 0.01,
+		"L1 model": 0.01, "L1 diameter": 0.01, "L2 model": 0.01, "L2 diameter": 0.01,
+		"L1 diameter temperature": 2e-6, "L2 diameter temperature": 2e-6, "L3 model": 0.01,
 		"other.stray model": 0.02, "other.stray palm": 0.2, "own.antenna model": 0.02,
 		"moving.level value": 0.1, "other.level value": 0.1, // of the kind
 	}

@@ -41,15 +41,15 @@ source_resistance = load
 //
 //	r_π = β·V_T/I_C,  emitter to ground: Z_E = emitter_ac ∥ 1/(jω·emitter_shunt)
 //
-// which presents r_π + (β+1)·Z_E beside the divider to a source of resistance
-// R behind the capacitor. Both sides multiplied by r_π + (β+1)·emitter_ac + jω·…,
-// no step divides by the frequency, so a note of 0 Hz has gain 0 and a finite
-// slope. With x = ω·emitter_ac·emitter_shunt, c = ω·couple, A = r_π + (β+1)·emitter_ac
-// and G the divider's conductance, the base current for 1 V is
+// which presents r_π + (β+1)·Z_E, beside the divider, to a source of resistance
+// R behind the capacitor. With x = ω·emitter_ac·emitter_shunt, c = ω·couple,
+// D = r_π + (β+1)·emitter_ac + j·r_π·x and G the divider's conductance, the base
+// current for 1 V from the source is
 //
-//	jc·(1 + jx)/((jc·(A + j·r_π·x) + (1 + jcR)·(G·(A + j·r_π·x) + 1 + jx)))
+//	jc·(1 + jx) / (jc·D + (1 + jcR)·(G·D + 1 + jx))
 //
-// and `denominator` the size of what stands below the stroke.
+// and `denominator` the size of what stands below the stroke. Nothing in it is
+// divided by the frequency, so a note of 0 Hz has gain 0 and a finite slope.
 var smallSignal = `
 base_drop = transistor.beta*thermal/current
 base_series = base_drop + (transistor.beta + 1)*emitter_ac

@@ -18,7 +18,9 @@ import (
 //
 //	A·(1 − 4·beat·τ·ln(2/(1 + e^(−1/(2·beat·τ)))))
 //
-// which is `swing`, what a scope shows.
+// which is `swing`, what a scope shows. `cycle`, beat·τ, is held above a
+// millionth only so that bounds about a beat of 0 Hz stay finite; the exponential
+// is nothing there.
 //
 // Carriers of half duty do not come through a gate at all. What is left of
 // them is the sum of the two frequencies, as strong as the difference before
@@ -51,7 +53,7 @@ second_level = 0*volt
 tone_level = fundamental/(divided*sqrt(1 + (beat/corner)^2))
 ripple = fundamental/(divided*sqrt(1 + ((carrier.frequency + signal.frequency)/corner)^2))
 cycle = max(beat*time_constant, 1e-6)
-swing = triangle/(2*divided)*(1 - 4*beat*time_constant*ln(2/(1 + exp(-1/(2*cycle)))))
+swing = triangle/(2*divided)*max(0, 1 - 4*beat*time_constant*ln(2/(1 + exp(-1/(2*cycle)))))
 dc = supply/(2*divided)
 source_resistance = filter_r/divided
 `,

@@ -61,6 +61,8 @@ func TestFindingsAppearAtTheirThreshold(t *testing.T) {
 		// A₀·level/√(1 + (f·A₀/GBW)²)·2πf = 13 V/µs
 		"amplifier slews": {"opamp-noninverting", "slews", "in.level",
 			13e6 / (2 * math.Pi * 331e3) / (58.0 / 11) * math.Sqrt(1+math.Pow(331e3*58/11/3e6, 2)), true},
+		// the coupling's high-pass of 10 pF and 1 MΩ lets x/√(1+x²) of 10 V in, x = 2πf·10 µs
+		"multiplier": {"multiplier", "overdriven", "carrier.level", 10 * math.Sqrt(1+1/math.Pow(2*math.Pi*331e3*1e-5, 2)), true},
 		// √(1−m²)/(2πRCm), m = 0.4, R = 100 kΩ, C = 330 pF
 		"detector lags": {"envelope-detector", "lags", "in.tone_frequency", math.Sqrt(1-0.16) / (2 * math.Pi * 33e-6 * 0.4), true},
 	}

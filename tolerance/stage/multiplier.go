@@ -10,6 +10,8 @@ import (
 // difference, so the carriers are suppressed unless a steady voltage comes in.
 // A capacitor that is not fitted is a wire, and lets steady voltage through; one
 // that is fitted blocks it and makes a high-pass with the input's resistance.
+// An input's range is taken to be the scale voltage, beyond which it is
+// `overdriven` (common practice, no source).
 var multiplier = Kind{
 	Name:    "multiplier",
 	Summary: "ideal product of two carriers, divided by a scale voltage",
@@ -34,10 +36,14 @@ carrier_level = carrier_in*abs(signal_dc)/scale
 second_level = signal_in*abs(carrier_dc)/scale
 tone_level = carrier_in*signal_in/(2*scale)
 dc = carrier_dc*signal_dc/scale
+overdriven = carrier_in + abs(carrier_dc) > scale or signal_in + abs(signal_dc) > scale
 `,
 	Outputs: mixerOutputs,
 	Points: []Point{{Name: "tone_level", Reading: "peak voltage", Instrument: "scope",
 		At: "output of the multiplier, to ground"}},
+	Findings: []Finding{
+		{"overdriven", "an input goes beyond the multiplier's range, its scale voltage; lower the levels that come in"},
+	},
 	Sketch: `
                             ┌─────────┐
  carrier ─(couple_carrier)──┤ product │

@@ -7,18 +7,20 @@ import (
 )
 
 // ascend goes to the corner that the slopes at a start point to, as far as the
-// trims reach, looks at the slopes there, and so on.
+// trims reach, or to one short of a kink where that is better, looks at the
+// slopes there, and so on.
 func (s *search) ascend(start int, direction float64) extreme {
 	best := extreme{}
 	from := s.starts[start]
 	for range 6 { // slopes that keep changing their signs are left to climb
-		corner := s.corner(from, 0, direction)
-		if slices.ContainsFunc(s.visited, func(p point) bool { return slices.Equal(p, corner) }) {
-			break
+		next := best
+		for _, aim := range s.aims(from, direction) {
+			if !slices.ContainsFunc(s.visited, func(p point) bool { return slices.Equal(p, aim) }) {
+				s.visited = append(s.visited, aim)
+				next = next.take(s.line(from.at, aim, direction), direction)
+			}
 		}
-		s.visited = append(s.visited, corner)
-		next := s.line(from.at, corner, direction)
-		if next.at == nil || !best.better(next.value, direction) {
+		if next.at == nil || best.at != nil && !best.better(next.value, direction) {
 			break
 		}
 		best = next

@@ -20,8 +20,8 @@ type search struct {
 	program *tape.Program
 	slopes  *Differentiator // of the node, and of each trim's ends
 	trims   int             // whose ends follow the node in the program's outputs
-	kinks   int             // whose values follow those
-	free    []int           // inputs that scatter
+	kinks   []kink
+	free    []int // inputs that scatter
 	columns *columns
 	starts  []picture
 	visited []point // corners gone to in this direction
@@ -37,10 +37,18 @@ func newSearch(m *build.Model, node tape.Ref, trims []int) *search {
 	for _, t := range trims {
 		refs = append(refs, m.Trims[t].AtLow, m.Trims[t].AtHigh)
 	}
-	kinks := m.Graph.Kinks(node)
-	refs = append(refs, kinks...)
+	var kinks []kink
+	for _, k := range m.Graph.Kinks(node) {
+		bend := kink{len(refs), -1}
+		refs = append(refs, k.A)
+		if k.B != tape.NoRef {
+			bend.b = len(refs)
+			refs = append(refs, k.B)
+		}
+		kinks = append(kinks, bend)
+	}
 	n := &nodes{model: m, program: m.Graph.Program(refs...), count: len(refs)}
-	s := &search{model: m, program: n.program, slopes: differentiator(n.program, len(m.Inputs), len(refs)), trims: len(trims), kinks: len(kinks), columns: n.newColumns(lanes)}
+	s := &search{model: m, program: n.program, slopes: differentiator(n.program, len(m.Inputs), len(refs)), trims: len(trims), kinks: kinks, columns: n.newColumns(lanes)}
 	for _, i := range n.program.Inputs() {
 		if m.Inputs[i].HalfWidth > 0 {
 			s.free = append(s.free, i)
@@ -52,10 +60,20 @@ func newSearch(m *build.Model, node tape.Ref, trims []int) *search {
 
 // evaluate computes the node at some points, at most lanes of them; NaN where
 // a trim does not reach.
-func (s *search) evaluate(points []point) []float64 { return s.evaluateColumn(points, 0) }
+func (s *search) evaluate(points []point) []float64 {
+	out := s.values(points)
+	for t := range s.trims {
+		for lane := range points {
+			if !reached(out[1+2*t][lane], out[2+2*t][lane]) {
+				out[0][lane] = math.NaN()
+			}
+		}
+	}
+	return slices.Clone(out[0])
+}
 
-// evaluateColumn computes one of the program's outputs at some points.
-func (s *search) evaluateColumn(points []point, column int) []float64 {
+// values computes the program's outputs at some points.
+func (s *search) values(points []point) [][]float64 {
 	in, out := s.columns.cut(len(points))
 	for _, i := range s.program.Inputs() {
 		for lane := range points {
@@ -70,14 +88,7 @@ func (s *search) evaluateColumn(points []point, column int) []float64 {
 	}
 	s.program.Values(out, in, s.columns.frame)
 	s.evals += len(points)
-	for t := range s.trims {
-		for lane := range points {
-			if !reached(out[1+2*t][lane], out[2+2*t][lane]) {
-				out[column][lane] = math.NaN()
-			}
-		}
-	}
-	return slices.Clone(out[column])
+	return out
 }
 
 // extreme is the best point found in one direction.
@@ -112,8 +123,11 @@ func (s *search) run(direction float64) extreme {
 	for i := range s.starts {
 		best = best.take(s.ascend(i, direction), direction)
 	}
-	for k := range s.kinks {
-		if at := s.zero(1 + 2*s.trims + k); at != nil {
+	for k, kink := range s.kinks {
+		if kink.b >= 0 {
+			continue // ascents stop short of it by themselves
+		}
+		if at := s.bend(k); at != nil {
 			best = best.take(s.best([]point{at}, direction), direction)
 		}
 	}

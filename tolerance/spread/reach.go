@@ -36,10 +36,58 @@ func (s *search) picture(at point) picture {
 	return picture{at, s.slopes.At(inputs)}
 }
 
-// corner is the place where the linear picture of an output is greatest in the
-// direction, while every trim reaches to first order.
-func (s *search) corner(l picture, column int, direction float64) point {
-	c := s.byZ(l.Linear, column)
+// kink is two of the program's outputs at whose equality the node bends; b is
+// -1 for zero.
+type kink struct{ a, b int }
+
+// constraint is value + sign·slopes·(z − at) <= 0, to first order about a place.
+type constraint struct {
+	slopes      []float64
+	sign, value float64
+}
+
+// bends are the constraints that keep a place on its side of each kink that
+// the box may cross; on a kink, to either side.
+func (s *search) bends(l picture) []constraint {
+	var list []constraint
+	for _, k := range s.kinks {
+		v, g := l.Values[k.a], s.byZ(l.Linear, k.a)
+		if k.b >= 0 {
+			v -= l.Values[k.b]
+			for i, slope := range s.byZ(l.Linear, k.b) {
+				g[i] -= slope
+			}
+		}
+		var reach float64
+		for i := range g {
+			reach += math.Abs(g[i]) * (1 + math.Abs(l.at[i]))
+		}
+		if !(math.Abs(v) <= 1.1*reach) {
+			continue
+		}
+		if v > -1e-6*reach {
+			list = append(list, constraint{g, -1, -v})
+		}
+		if v < 1e-6*reach {
+			list = append(list, constraint{g, 1, v})
+		}
+	}
+	return list
+}
+
+// aims are the corners to go for from a place: the one its slopes point to and,
+// for each kink on the way, the one on this side of it.
+func (s *search) aims(l picture, direction float64) []point {
+	list := []point{s.corner(l, s.byZ(l.Linear, 0), direction)}
+	for _, c := range s.bends(l) {
+		list = append(list, s.corner(l, s.byZ(l.Linear, 0), direction, c))
+	}
+	return list
+}
+
+// corner is the place where the linear picture c is greatest in the direction,
+// while every trim reaches to first order and some more constraints hold.
+func (s *search) corner(l picture, c []float64, direction float64, more ...constraint) point {
 	z := make(point, len(c))
 	for k := range z {
 		z[k] = l.at[k]
@@ -47,12 +95,15 @@ func (s *search) corner(l picture, column int, direction float64) point {
 			z[k] = math.Copysign(1, g)
 		}
 	}
-	for range 2 { // mending one trim may spoil another
-		for t := range s.trims {
-			low, high := l.Values[1+2*t], l.Values[2+2*t]
-			rising := math.Copysign(1, high-low)
-			mend(z, l.at, c, s.byZ(l.Linear, 1+2*t), rising, rising*low)
-			mend(z, l.at, c, s.byZ(l.Linear, 2+2*t), -rising, -rising*high)
+	for t := range s.trims {
+		low, high := l.Values[1+2*t], l.Values[2+2*t]
+		rising := math.Copysign(1, high-low)
+		more = append(more, constraint{s.byZ(l.Linear, 1+2*t), rising, rising * low},
+			constraint{s.byZ(l.Linear, 2+2*t), -rising, -rising * high})
+	}
+	for range 2 { // mending one may spoil another
+		for _, m := range more {
+			mend(z, l.at, c, m.slopes, m.sign, m.value)
 		}
 	}
 	return z
@@ -100,11 +151,11 @@ func mend(z, at point, c, g []float64, sign, value float64) {
 	}
 }
 
-// zero looks for a place where one of the program's outputs is zero, on the
-// way from the centre to the corner that the output's own slopes point to.
-func (s *search) zero(column int) point {
-	centre := s.starts[0]
-	target := s.corner(centre, column, -math.Copysign(1, centre.Values[column]))
+// bend looks for a zero of an absolute value's argument, on the way from the
+// centre to the corner where its own slopes say that it is passed.
+func (s *search) bend(k int) point {
+	column, centre := s.kinks[k].a, s.starts[0]
+	target := s.corner(centre, s.byZ(centre.Linear, column), -math.Copysign(1, centre.Values[column]))
 	const steps = 32
 	low, high := 0.0, 1.0
 	var at point
@@ -113,16 +164,16 @@ func (s *search) zero(column int) point {
 		for i := range block {
 			block[i] = mix(centre.at, target, low+(high-low)*float64(i)/steps)
 		}
-		v := s.evaluateColumn(block, column)
+		d := s.values(block)[column]
 		i := 1
-		for i <= steps && !(v[i-1]*v[i] <= 0) {
+		for i <= steps && !(d[i-1]*d[i] <= 0) {
 			i++
 		}
 		if i > steps {
 			return at
 		}
 		at = block[i]
-		if math.Abs(v[i-1]) < math.Abs(v[i]) {
+		if math.Abs(d[i-1]) < math.Abs(d[i]) {
 			at = block[i-1]
 		}
 		width := (high - low) / steps

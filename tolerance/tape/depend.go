@@ -1,10 +1,18 @@
 package tape
 
-// Kinks lists the arguments of every absolute value that a value depends on,
-// but for those inside a root's loop: where one is zero, the value may have an
-// extreme to which no slope points.
-func (g *Graph) Kinks(r Ref) []Ref {
-	var kinks []Ref
+// Kink is where a value bends: where A equals B, or where A is zero if B is
+// NoRef.
+type Kink struct{ A, B Ref }
+
+// NoRef is no value of any graph.
+const NoRef Ref = -1
+
+// Kinks lists where a value may bend: at the zero of an absolute value's
+// argument, where the two sides of a min or max are equal, and where a
+// comparison turns over; but for those inside a root's loop. There the value may
+// have an extreme to which no slope points.
+func (g *Graph) Kinks(r Ref) []Kink {
+	var kinks []Kink
 	seen := map[Ref]bool{}
 	var visit func(r Ref)
 	visit = func(r Ref) {
@@ -13,8 +21,12 @@ func (g *Graph) Kinks(r Ref) []Ref {
 		}
 		seen[r] = true
 		n := g.nodes[r]
-		if n.op == abs && g.free[n.a] == 0 {
-			kinks = append(kinks, n.a)
+		switch {
+		case g.free[r] != 0:
+		case n.op == abs:
+			kinks = append(kinks, Kink{n.a, NoRef})
+		case n.op == minimum || n.op == maximum || n.op == less || n.op == lessEqual:
+			kinks = append(kinks, Kink{n.a, n.b})
 		}
 		for _, a := range n.arguments() {
 			visit(a)

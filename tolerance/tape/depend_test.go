@@ -1,6 +1,7 @@
 package tape
 
 import (
+	"cmp"
 	"slices"
 	"testing"
 )
@@ -14,17 +15,20 @@ func TestKinks(t *testing.T) {
 	for _, c := range []struct {
 		name string
 		of   Ref
-		want []Ref
+		want []Kink
 	}{
 		{"none", g.Mul(x, y), nil},
-		{"itself", g.Abs(d), []Ref{d}},
-		{"deep", g.Add(g.Sqrt(g.Abs(d)), g.Abs(x)), []Ref{d, x}},
+		{"itself", g.Abs(d), []Kink{{d, NoRef}}},
+		{"deep", g.Add(g.Sqrt(g.Abs(d)), g.Abs(x)), []Kink{{d, NoRef}, {x, NoRef}}},
+		{"min", g.Mul(g.Min(x, y), d), []Kink{{x, y}}},
+		{"choice", g.Select(g.Less(x, d), x, y), []Kink{{x, d}}},
 		{"in a loop", inside, nil},
-		{"behind a loop", g.Add(inside, g.Abs(d)), []Ref{d}},
+		{"behind a loop", g.Add(inside, g.Abs(d)), []Kink{{d, NoRef}}},
 	} {
 		got := g.Kinks(c.of)
-		slices.Sort(got)
-		slices.Sort(c.want)
+		order := func(a, b Kink) int { return cmp.Or(cmp.Compare(a.A, b.A), cmp.Compare(a.B, b.B)) }
+		slices.SortFunc(got, order)
+		slices.SortFunc(c.want, order)
 		if !slices.Equal(got, c.want) {
 			t.Errorf("%s: got %v, want %v", c.name, got, c.want)
 		}

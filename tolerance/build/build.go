@@ -86,6 +86,7 @@ type Place struct {
 	Quantity string    // the value as the file says it
 	SameAs   string    // the position whose buying line this shares; "" for its own
 	Position float64   // of a trimmer that no trim turns, 0..1
+	Across   *Setting  // the steady voltage across a capacitor; nil for none
 	resolved bool      // SameAs has been followed to the deciding part
 }
 

@@ -23,6 +23,9 @@ func (r *reader) checkOutputCycles(s stageNode) {
 	state := map[string]int{}
 	var walk func(name string, path []string)
 	walk = func(name string, path []string) {
+		if s.place(s.Name) == nil {
+			name = strings.TrimPrefix(name, s.Name+".") // an output may be named in full
+		}
 		x := s.Stage.find(name)
 		if x == nil || !s.Kind.Free || s.place(name) != nil || s.setting(name) != nil || state[name] == 2 {
 			return
@@ -83,23 +86,39 @@ func (r *reader) checkCycles() {
 	}
 }
 
+// head is the stage in a name such as "fixed.frequency".
+func head(name string) string {
+	first, _, _ := strings.Cut(name, ".")
+	return first
+}
+
 // needs lists the other stages a stage takes something from.
 func (r *reader) needs(s stageNode) []stageNode {
-	var names []string
+	var heads []string
 	for _, w := range s.Wires {
-		names = append(names, w.From)
+		heads = append(heads, w.From)
 	}
 	for _, set := range s.Settings {
-		names = append(names, set.references()...)
+		for _, name := range set.references() {
+			heads = append(heads, head(name))
+		}
+	}
+	for _, p := range s.Places {
+		if p.Across != nil && head(p.Across.Reference) != s.Name { // its own is complained of elsewhere
+			heads = append(heads, head(p.Across.Reference))
+		}
 	}
 	for _, f := range s.Formulas {
-		names = append(names, f.Expression.Names()...)
+		for _, name := range f.Expression.Names() { // its own are walked by checkOutputCycles
+			if h := head(name); h != s.Name && s.place(h) == nil && s.setting(h) == nil {
+				heads = append(heads, h)
+			}
+		}
 	}
 	var out []stageNode
-	for _, name := range names {
-		head, _, _ := strings.Cut(name, ".")
+	for _, h := range heads {
 		for _, other := range r.stages {
-			if other.Name == head && s.place(head) == nil && s.setting(head) == nil && (other.Name != s.Name || s.Name == name) {
+			if other.Name == h {
 				out = append(out, other)
 			}
 		}

@@ -37,7 +37,7 @@ func (c *compiler) placed(e *environment, s *Stage, p *Place, parameter string) 
 		return c.shaped(e, x, p.Geometry, p.Part.Parameters[0].Scatter)
 	}
 	if len(p.Part.Parameters) == 1 {
-		return c.element(e, x, p.Part.Parameters[0], "value")
+		return c.Graph.Mul(c.element(e, x, p.Part.Parameters[0], "value"), c.biased(e, x, p))
 	}
 	for _, q := range p.Part.Parameters {
 		if q.Name == parameter {
@@ -116,8 +116,9 @@ func (c *compiler) thermal(e *environment, x source, s part.Scatter) tape.Ref {
 	}
 	z := c.coefficient(x, "temperature", s, part.Spread{Spread: 1})
 	celsius := g.Add(delta, g.Constant(reference25))
-	middle := c.interpolate(s.Law, celsius, func(p part.LawPoint) float64 { return (p.Low + p.High) / 2 })
-	half := c.interpolate(s.Law, celsius, func(p part.LawPoint) float64 { return (p.High - p.Low) / 2 })
+	at := func(p part.LawPoint) float64 { return p.Celsius }
+	middle := interpolate(g, s.Law, celsius, at, func(p part.LawPoint) float64 { return (p.Low + p.High) / 2 })
+	half := interpolate(g, s.Law, celsius, at, func(p part.LawPoint) float64 { return (p.High - p.Low) / 2 })
 	return g.Add(g.Constant(1), g.Add(middle, g.Mul(z, half)))
 }
 
@@ -139,14 +140,13 @@ func (c *compiler) coefficient(x source, name string, s part.Scatter, spread par
 // the first and the last:
 //
 //	y = y0 + Σ slope_i·(clamp(t, t_i, t_i+1) − t_i)
-func (c *compiler) interpolate(law []part.LawPoint, t tape.Ref, y func(part.LawPoint) float64) tape.Ref {
-	g := c.Graph
+func interpolate[P any](g *tape.Graph, law []P, t tape.Ref, at, y func(P) float64) tape.Ref {
 	sum := g.Constant(y(law[0]))
 	for i := 1; i < len(law); i++ {
 		a, b := law[i-1], law[i]
-		slope := (y(b) - y(a)) / (b.Celsius - a.Celsius)
-		within := g.Max(g.Constant(a.Celsius), g.Min(g.Constant(b.Celsius), t))
-		sum = g.Add(sum, g.Mul(g.Constant(slope), g.Sub(within, g.Constant(a.Celsius))))
+		slope := (y(b) - y(a)) / (at(b) - at(a))
+		within := g.Max(g.Constant(at(a)), g.Min(g.Constant(at(b)), t))
+		sum = g.Add(sum, g.Mul(g.Constant(slope), g.Sub(within, g.Constant(at(a)))))
 	}
 	return sum
 }

@@ -75,12 +75,21 @@ func (b *Build) place(o Opening, f *part.Family, w Worth, tolerance float64) (pa
 		return part.Part{}, err
 	}
 	p.LotsMixed = written.Part.LotsMixed
+	if o.node.Get("rated") != nil {
+		p.Rated = written.Part.Rated
+	}
+	for _, position := range o.Positions {
+		if b.Place(position).strained(p.Rated) {
+			return part.Part{}, fmt.Errorf("%s is above the rated voltage of %s", position, f.Name)
+		}
+	}
 	var faults document.Faults // none: the node was checked when it was read
 	for i := range p.Parameters {
 		q := &p.Parameters[i]
 		grade, absolute := q.Tolerance, q.Absolute
 		part.ReadScatter(&faults, o.node, q.Unit, &q.Scatter)
 		q.Tolerance, q.Absolute = grade, absolute
+		part.ReadBias(&faults, o.node, &q.Scatter)
 	}
 	return p, nil
 }

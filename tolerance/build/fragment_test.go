@@ -40,7 +40,7 @@ func TestFragments(t *testing.T) {
 
 // around is a build with the stages that a kind's fragment takes in, and the
 // fragment last.
-func around(t *testing.T, k *stage.Kind) string {
+func around(t testing.TB, k *stage.Kind) string {
 	t.Helper()
 	root, faults := document.Parse("fragment.yaml", []byte(k.Fragment))
 	if len(faults) > 0 || root.Kind != document.Mapping || len(root.Pairs) != 1 {

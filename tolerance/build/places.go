@@ -11,7 +11,8 @@ import (
 )
 
 // partKeys are the keys of a part, besides part.ScatterKeys.
-var partKeys = []string{"ref", "value", "family", "choose", "same_as", "lots", "parameters", "position", "winding"}
+var partKeys = []string{"ref", "value", "family", "choose", "same_as", "lots", "parameters", "position", "winding",
+	"across", "rated", "bias_law"}
 
 var reference = regexp.MustCompile(`^[A-Z]{1,4}[0-9]{1,4}[A-Z]?$`)
 
@@ -61,8 +62,9 @@ func (r *reader) readPlace(s stageNode, p *Place, n *document.Node, keys []strin
 	}
 	p.Part.Type = p.Type
 	r.readRef(p, n)
+	r.readAcross(p, n)
 	if same := n.Get("same_as"); same != nil {
-		r.Keys(n, "ref", "same_as")
+		r.Keys(n, "ref", "same_as", "across")
 		p.SameAs = same.Value // resolved once every part is known
 		return
 	}
@@ -142,6 +144,7 @@ func (r *reader) readFitted(s stageNode, p *Place, n *document.Node, family *par
 		r.refuseScatter(n)
 	}
 	r.readParameters(p, n.Get("parameters"))
+	r.readRated(p, n, family, o)
 	r.readHandling(p, n)
 	r.checkParameters(s, p, n)
 }

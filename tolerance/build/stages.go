@@ -34,6 +34,7 @@ func (r *reader) readStages(n *document.Node) {
 	r.resolveShared()
 	r.settleUnits()
 	r.checkReferences()
+	r.checkAcross()
 	r.checkGeometries()
 	r.checkFormulas()
 	r.checkCycles()

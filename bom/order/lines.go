@@ -12,11 +12,11 @@ import (
 )
 
 // Key is the same for two parts that are bought on one line, and so come from
-// one lot: family, type, and every figure with how it scatters. Correlations
+// one lot: family, type, rated voltage, and every figure with how it scatters. Correlations
 // are left out, for they describe the lot and not the piece.
 func Key(p part.Part) string {
 	var b strings.Builder
-	b.WriteString(p.Family + "|" + string(p.Type))
+	b.WriteString(p.Family + "|" + string(p.Type) + "|" + figure(p.Rated))
 	for _, q := range p.Parameters {
 		b.WriteString("|" + q.Name + "|" + string(shape(q.Shape)) + "|" + strconv.FormatBool(q.Absolute))
 		for _, x := range []float64{
@@ -28,6 +28,9 @@ func Key(p part.Part) string {
 		b.WriteString("|" + string(q.Ageing.Per))
 		for _, l := range q.Law {
 			b.WriteString("|" + figure(l.Celsius) + "|" + figure(l.Low) + "|" + figure(l.High))
+		}
+		for _, l := range q.Bias {
+			b.WriteString("|bias " + figure(l.Share) + "|" + figure(l.Low) + "|" + figure(l.High))
 		}
 	}
 	return b.String()
@@ -106,15 +109,16 @@ func group(parts []part.Part) [][]part.Part {
 // describe says what a line is: its references and the piece that goes there.
 func describe(g []part.Part, families *part.Catalogue) Line {
 	p := g[0]
+	f, known := families.Family(p.Family)
 	l := Line{
-		Family: p.Family, Title: string(p.Type), Text: p.ValueText(),
+		Family: p.Family, Title: string(p.Type), Text: p.Bought(f),
 		Tolerance: p.Grade(), Marking: marking.Text(p),
 		PerUnit: len(g), Multiple: 1,
 	}
 	if l.Text != "" {
 		l.Value = p.Main().Value
 	}
-	if f, ok := families.Family(p.Family); ok {
+	if known {
 		l.Title = f.Title
 	}
 	for _, q := range g {

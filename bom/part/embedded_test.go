@@ -108,6 +108,7 @@ func checkValued(t *testing.T, f *Family) {
 	}
 	mentions(t, f, "temperature coefficient", s.Temperature != Spread{})
 	mentions(t, f, "temperature law", len(s.Law) > 0)
+	mentions(t, f, "bias law", len(s.Bias) > 0)
 	mentions(t, f, "humidity", s.Humidity != Spread{})
 	for _, figure := range []string{"tolerances", "ageing", "correlation", "values"} {
 		mentions(t, f, figure, true)

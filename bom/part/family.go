@@ -82,7 +82,7 @@ func (f *Family) fit(ref string, low, high, tolerance float64) (Part, error) {
 	if err != nil {
 		return Part{}, err
 	}
-	p := Part{Ref: ref, Type: f.Type, Family: f.Name}
+	p := Part{Ref: ref, Type: f.Type, Family: f.Name, Rated: f.Voltage}
 	for i, q := range f.Type.Parameters() {
 		if f.valueFigure(i) {
 			q.Value, q.Scatter = high, f.Scatter
@@ -191,6 +191,16 @@ func Text(v float64, u quantity.Unit) string {
 		symbol = ""
 	}
 	return strings.TrimSpace(fmt.Sprintf("%.7g %s", v/scale, symbol))
+}
+
+// Bought is ValueText with the rated voltage where that is not the family's:
+// "100 nF, 16 V". The family may be nil.
+func (p *Part) Bought(f *Family) string {
+	text := p.ValueText()
+	if text == "" || p.Rated == 0 || f != nil && p.Rated == f.Voltage {
+		return text
+	}
+	return text + ", " + Text(p.Rated, quantity.Volt)
 }
 
 // ValueText is what the part is bought as, beside its family and grade:

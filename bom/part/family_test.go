@@ -23,7 +23,7 @@ func TestFitResistor(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	want := Part{Ref: "R1", Type: Resistor, Family: "metal-film-50", Parameters: []Parameter{{
+	want := Part{Ref: "R1", Type: Resistor, Family: "metal-film-50", Rated: 250, Parameters: []Parameter{{
 		Name: "value", Unit: quantity.Ohm, Value: 4700, Scatter: Scatter{
 			Tolerance: 0.005, Temperature: Spread{0, 50e-6},
 			Ageing:      Ageing{Spread{0, 0.0004}, PerDecade},
@@ -59,7 +59,7 @@ func TestFitTrimmer(t *testing.T) {
 	}
 	low, high := s, s
 	low.Tolerance, high.Tolerance = 0.2, 0.1
-	want := Part{Ref: "CT1", Type: TrimmerCapacitor, Family: "film-trimmer", Parameters: []Parameter{
+	want := Part{Ref: "CT1", Type: TrimmerCapacitor, Family: "film-trimmer", Rated: 100, Parameters: []Parameter{
 		{"low", quantity.Farad, 4e-12, low}, {"high", quantity.Farad, 34e-12, high},
 	}}
 	if d := cmp.Diff(want, got, floats); d != "" {

@@ -31,20 +31,28 @@ func (s Scatter) Change(celsius, z float64) float64 {
 	return (low+high)/2 + z*(high-low)/2
 }
 
-// between interpolates a law's limits.
-func between(law []LawPoint, celsius float64) (low, high float64) {
-	if celsius <= law[0].Celsius {
-		return law[0].Low, law[0].High
-	}
-	for i := 1; i < len(law); i++ {
-		a, b := law[i-1], law[i]
-		if celsius <= b.Celsius {
-			w := (celsius - a.Celsius) / (b.Celsius - a.Celsius)
-			return a.Low + w*(b.Low-a.Low), a.High + w*(b.High-a.High)
+// point is a point of a law of straight lines: where it is, and the limits there.
+type point interface {
+	limits() (at, low, high float64)
+}
+
+func (p LawPoint) limits() (at, low, high float64) { return p.Celsius, p.Low, p.High }
+
+// between interpolates a law's limits, which hold beyond its ends.
+func between[P point](law []P, x float64) (low, high float64) {
+	at, low, high := law[0].limits()
+	for _, p := range law[1:] {
+		if x <= at {
+			return low, high
 		}
+		next, nextLow, nextHigh := p.limits()
+		if x <= next {
+			w := (x - at) / (next - at)
+			return low + w*(nextLow-low), high + w*(nextHigh-high)
+		}
+		at, low, high = next, nextLow, nextHigh
 	}
-	last := law[len(law)-1]
-	return last.Low, last.High
+	return low, high
 }
 
 // Clock is g(h), by which an ageing coefficient is multiplied after h hours:

@@ -62,10 +62,11 @@ type LawPoint struct{ Celsius, Low, High float64 }
 // Scatter is how one parameter varies from piece to piece and with its
 // surroundings. Zero is an ideal parameter.
 //
-//	value = nominal·(1 + Tolerance·z1)·(1 + α·Δ)·(1 + η·ΔH)·(1 + a·g(age))
+//	value = nominal·(1 + Tolerance·z1)·(1 + α·Δ)·(1 + η·ΔH)·(1 + a·g(age))·(1 + b(|U|/rated))
 //
 // with α = Temperature.Value + Temperature.Spread·z2 and likewise η and a;
-// Δ is the part's temperature less 25 °C. With Absolute the first factor is
+// Δ is the part's temperature less 25 °C, b the change by the bias law under
+// the steady voltage U. With Absolute the first factor is
 // nominal + Tolerance·z1 instead.
 type Scatter struct {
 	Tolerance   float64 // half width: a fraction of nominal, or in the parameter's unit if Absolute
@@ -75,7 +76,8 @@ type Scatter struct {
 	Humidity    Spread // per unit of relative humidity (1 ppm per % is 1e-4)
 	Ageing      Ageing
 	Correlation Correlation
-	Law         []LawPoint // replaces Temperature where not empty
+	Law         []LawPoint  // replaces Temperature where not empty
+	Bias        []BiasPoint // of a capacitor; empty: no voltage changes it
 }
 
 // Parameter is one named figure of a part.
@@ -93,5 +95,6 @@ type Part struct {
 	Type       Type
 	Family     string // "" is ideal but for what is written on it
 	Parameters []Parameter
-	LotsMixed  bool // pieces deliberately drawn from different lots
+	Rated      float64 // voltage, V; 0 unsaid
+	LotsMixed  bool    // pieces deliberately drawn from different lots
 }

@@ -13,7 +13,7 @@ import (
 // familyKeys are what an entry of a family file may say.
 var familyKeys = append([]string{
 	"part", "title", "tolerances", "values", "series", "parameters",
-	"voltage", "temperatures", "source", "note",
+	"voltage", "temperatures", "source", "note", "bias_law",
 }, ScatterKeys[1:]...) // the grades bring the tolerance
 
 // seriesNames are the preferred series of IEC 60063.
@@ -34,6 +34,7 @@ func (r *reader) read() bool {
 	r.readGrades()
 	r.readValues()
 	ReadScatter(r.faults, r.node, r.family.Type.Unit(), &r.family.Scatter)
+	r.readBias()
 	r.readParameters()
 	r.readRating()
 	r.checkWhole()
@@ -290,6 +291,9 @@ func (r *reader) checkWhole() {
 		if g.need && !has {
 			r.complain(r.node, "family without "+g.name, "parameters: with a value for "+g.name)
 		}
+	}
+	if len(f.Scatter.Bias) > 0 && f.Voltage == 0 {
+		r.complain(r.node, "bias law without a rated voltage", "voltage: with the rated voltage, such as 50 V")
 	}
 	reference := slices.ContainsFunc(f.Parameters, func(p Parameter) bool { return p.Name == "reference" })
 	if f.Type == Regulator && f.HasValue() == reference {

@@ -124,6 +124,18 @@ func TestReadComplains(t *testing.T) {
 		{"law beyond all limits", "families: {x7r: {temperature_law: [[-55, 120 %], [25, 0 %]]}}", "own.yaml:1:42"},
 		{"law upside down", "families: {x7r: {temperature_law: [[-55, 15 %, -15 %], [25, 0 %]]}}", "own.yaml:1:42"},
 		{"law and slope", "families: {x7r: {temperature_law: [[-55, 15 %], [25, 0 %]], temperature_coefficient: 1 ppm/K}}", "own.yaml:1:35"},
+		{"bias law of a resistor", "families: {carbon-film: {bias_law: [[0 %, 0 %], [50 %, -25 %]]}}", "own.yaml:1:36"},
+		{"bias law of a trimmer", "families: {film-trimmer: {bias_law: [[0 %, 0 %], [50 %, -25 %]]}}", "own.yaml:1:37"},
+		{"bias law of one point", "families: {x7r: {bias_law: [[0 %, 0 %]]}}", "own.yaml:1:28"},
+		{"bias law that starts late", "families: {x7r: {bias_law: [[50 %, -25 %], [100 %, -50 %]]}}", "own.yaml:1:29"},
+		{"bias law that starts with a change", "families: {x7r: {bias_law: [[0 %, -5 %], [100 %, -50 %]]}}", "own.yaml:1:29"},
+		{"bias law out of order", "families: {x7r: {bias_law: [[0 %, 0 %], [50 %, -25 %], [50 %, -50 %]]}}", "own.yaml:1:57"},
+		{"bias law of a share below nothing", "families: {x7r: {bias_law: [[0 %, 0 %], [-50 %, -25 %]]}}", "own.yaml:1:42"},
+		{"bias law in volts", "families: {x7r: {bias_law: [[0 %, 0 %], [5 V, -25 %]]}}", "own.yaml:1:42"},
+		{"bias law that leaves nothing", "families: {x7r: {bias_law: [[0 %, 0 %], [100 %, -100 %, -5 %]]}}", "own.yaml:1:49"},
+		{"bias law upside down", "families: {x7r: {bias_law: [[0 %, 0 %], [100 %, -5 %, -50 %]]}}", "own.yaml:1:49"},
+		{"bias law of four", "families: {x7r: {bias_law: [[0 %, 0 %], [100 %, -5 %, -4 %, -3 %]]}}", "own.yaml:1:41"},
+		{"bias law without a voltage", "families: {a: {part: capacitor, values: 1 nF..1 uF, tolerances: 5 %, bias_law: [[0 %, 0 %], [50 %, -5 %]]}}", "own.yaml:1:15"},
 		{"unknown parameter", "families: {jfet-opamp: {parameters: {slow: {value: 1 V/s}}}}", "own.yaml:1:38 slew"},
 		{"values of an op-amp", "families: {jfet-opamp: {values: 1 V..2 V}}", "own.yaml:1:33"},
 		{"values missing", "families: {a: {part: resistor}}", "own.yaml:1:15"},
@@ -285,6 +297,7 @@ func TestReadTrimmerEndWithoutTolerance(t *testing.T) {
 func FuzzRead(f *testing.F) {
 	f.Add("families: {polyester: {part: capacitor, tolerances: [5 %, 10 %], values: 1 nF..10 uF, series: E12}}")
 	f.Add("families: {x7r: {temperature_law: [[-55, -15 %], [25, 0 %]]}, jfet-opamp: {parameters: {offset: {tolerance: 1 mV}}}}")
+	f.Add("families: {x7r: {bias_law: [[0 %, 0 %], [50 %, -40 %, -10 %]], voltage: 16 V}}")
 	f.Add("families: {fixed-regulator: {parameters: {reference: {value: 1 V}}}}")
 	f.Add("families: {a: {part: trimmer-resistor, tolerances: 10 %, values: 1 Ω..1 kΩ, parameters: {low: {tolerance: 2 Ω}}}}")
 	f.Fuzz(func(t *testing.T, text string) {

@@ -192,17 +192,8 @@ func readLawPoint(f *document.Faults, n *document.Node, expected string) (LawPoi
 		return LawPoint{}, false
 	}
 	celsius, ok := readCelsius(f, n.Items[0])
-	var limits [2]float64
-	for i, item := range n.Items[1:] {
-		q, good := f.Quantity(item, quantity.Percent)
-		if good && !(q.Value >= -1 && q.Value <= 1) {
-			f.Add(item, "limit out of range", "-100 % to 100 %")
-			good = false
-		}
-		limits[i] = q.Value
-		ok = ok && good
-	}
-	if !ok {
+	limits, good := readChanges(f, n.Items[1:])
+	if !ok || !good {
 		return LawPoint{}, false
 	}
 	if len(n.Items) == 2 {
@@ -214,6 +205,21 @@ func readLawPoint(f *document.Faults, n *document.Node, expected string) (LawPoi
 		return LawPoint{}, false
 	}
 	return LawPoint{Celsius: celsius, Low: limits[0], High: limits[1]}, true
+}
+
+// readChanges reads one or two relative changes.
+func readChanges(f *document.Faults, items []*document.Node) (changes [2]float64, ok bool) {
+	ok = true
+	for i, item := range items {
+		q, good := f.Quantity(item, quantity.Percent)
+		if good && !(q.Value >= -1 && q.Value <= 1) {
+			f.Add(item, "limit out of range", "-100 % to 100 %")
+			good = false
+		}
+		changes[i] = q.Value
+		ok = ok && good
+	}
+	return changes, ok
 }
 
 // readCelsius reads a temperature with its unit, or the bare number of degrees

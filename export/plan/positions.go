@@ -24,7 +24,7 @@ func positions(w Work) []workbook.Position {
 			at := workbook.Position{
 				Stage: s.Name, Kind: s.Kind.Name, Ref: place.Part.Ref,
 				Role:  strings.ReplaceAll(place.Role, "_", " "),
-				Value: place.Part.ValueText(), Family: title(w.Build, place.Part.Family),
+				Value: bought(w.Build, place.Part), Family: title(w.Build, place.Part.Family),
 				Tolerance: grade(place.Part), Marking: marking.Text(place.Part),
 				Note: note(w, s, place, lots),
 			}
@@ -36,6 +36,12 @@ func positions(w Work) []workbook.Position {
 		}
 	}
 	return list
+}
+
+// bought is what a part is bought as.
+func bought(b *build.Build, p part.Part) string {
+	f, _ := b.Families.Family(p.Family)
+	return p.Bought(f)
 }
 
 // title is how shops call a family; a part of none is only what its value says.

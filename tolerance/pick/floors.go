@@ -124,6 +124,9 @@ func sign(f build.Fitting) string {
 	var none part.Spread
 	var b strings.Builder
 	for _, q := range f.Part.Parameters {
+		if len(q.Bias) > 0 {
+			fmt.Fprintf(&b, "%v of %g;", q.Bias, f.Part.Rated)
+		}
 		fmt.Fprintf(&b, "%g %v %v %v %v %v %v;", q.Value, q.Absolute, q.Law, q.Temperature == none,
 			q.Humidity == none, q.Ageing.Spread == none, q.Ageing.Per)
 	}

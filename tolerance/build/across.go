@@ -1,0 +1,127 @@
+package build
+
+import (
+	"math"
+	"slices"
+	"strings"
+
+	"batchwright/bom/document"
+	"batchwright/bom/part"
+	"batchwright/bom/quantity"
+	"batchwright/tolerance/tape"
+)
+
+// acrossKeys are the keys of a part that a steady voltage across it is about.
+var acrossKeys = []string{"across", "rated", "bias_law"}
+
+// readAcross reads the steady voltage across a capacitor, which each position
+// has of its own: a value, a condition's variable or another stage's output.
+func (r *reader) readAcross(p *Place, n *document.Node) {
+	if p.Type != part.Capacitor {
+		for _, key := range acrossKeys {
+			if at := n.Get(key); at != nil {
+				r.Add(at, key+" of a "+string(p.Type), "none: a capacitor's voltage is meant")
+			}
+		}
+		return
+	}
+	at := n.Get("across")
+	if at == nil {
+		return
+	}
+	across := Setting{Name: "across", Parameter: part.Parameter{Name: "across", Unit: quantity.Volt}}
+	if r.isReference(at) {
+		across.Reference = at.Value // checked once every stage is known
+	} else if !r.read(at, quantity.Volt, &across.Value) {
+		return
+	}
+	p.Across = &across
+}
+
+// readRated reads a capacitor's rated voltage and bias law over its family's.
+func (r *reader) readRated(p *Place, n *document.Node, family *part.Family, o *Opening) {
+	if p.Type != part.Capacitor {
+		return // complained of
+	}
+	if at := n.Get("rated"); at != nil && r.read(at, quantity.Volt, &p.Part.Rated) && !(p.Part.Rated > 0) {
+		r.Add(at, "rated voltage", "more than zero, such as 16 V")
+	}
+	part.ReadBias(&r.Faults, n, &p.Part.Parameters[0].Scatter)
+	if at := n.Get("bias_law"); at != nil && n.Get("rated") == nil && !r.allRated(family, o) {
+		r.Add(at, "bias law without a rated voltage", "rated: beside it, such as 16 V")
+	}
+}
+
+// allRated says whether every family that a part may be of has a rated voltage.
+func (r *reader) allRated(family *part.Family, o *Opening) bool {
+	if o != nil {
+		for _, name := range o.Families {
+			if f, ok := r.build.Families.Family(name); !ok || f.Voltage == 0 {
+				return false
+			}
+		}
+		return true
+	}
+	return family != nil && family.Voltage != 0
+}
+
+// checkAcross checks the voltages across capacitors: that what they refer to
+// exists and is a voltage, and that a plain one is not above the rated voltage.
+func (r *reader) checkAcross() {
+	for _, s := range r.stages {
+		for i := range s.Places {
+			p := &s.Places[i]
+			if p.Across == nil {
+				continue
+			}
+			n := s.node.Get("parts").Get(p.Role).Get("across")
+			switch head, _, _ := strings.Cut(p.Across.Reference, "."); {
+			case p.Across.Reference == "" && p.strained(p.Part.Rated):
+				r.Add(n, "capacitor above its rated voltage",
+					"at most "+part.Text(p.Part.Rated, quantity.Volt)+", or rated: with what it is made for")
+			case p.Across.Reference == "":
+			case head == s.Name:
+				r.Add(n, "voltage from the capacitor's own stage", "a value, a condition's variable or another stage's output")
+			default:
+				r.checkReference(n, *p.Across)
+			}
+		}
+	}
+}
+
+// strained says whether a voltage that is written as a plain value is above
+// the rated one; a millionth is rounding.
+func (p *Place) strained(rated float64) bool {
+	return p.Across != nil && p.Across.Reference == "" && rated > 0 && math.Abs(p.Across.Value) > rated*(1+1e-6)
+}
+
+// biased is the factor that a steady voltage across a capacitor changes it by:
+//
+//	1 + middle(u) + z·half(u),  u = |across|/rated
+//
+// of the bias law's limits at u. A piece keeps to one place z between them, and
+// pieces of a lot resemble each other in it as they do over temperature. It is
+// 1 for parts without a law or a voltage.
+func (c *compiler) biased(e *environment, x source, p *Place) tape.Ref {
+	g := c.Graph
+	s := p.Part.Parameters[0].Scatter
+	if len(s.Bias) == 0 || p.Across == nil {
+		return g.Constant(1)
+	}
+	across := g.Constant(p.Across.Value)
+	if p.Across.Reference != "" {
+		across = c.referred(e, p.Across.Reference)
+	}
+	u := g.Div(g.Abs(across), g.Constant(p.Part.Rated))
+	share := func(p part.BiasPoint) float64 { return p.Share }
+	middle := interpolate(g, s.Bias, u, share, func(p part.BiasPoint) float64 { return (p.Low + p.High) / 2 })
+	factor := g.Add(g.Constant(1), middle)
+	if !slices.ContainsFunc(s.Bias, func(p part.BiasPoint) bool { return p.High > p.Low }) {
+		return factor // an exact law scatters nothing
+	}
+	half := interpolate(g, s.Bias, u, share, func(p part.BiasPoint) float64 { return (p.High - p.Low) / 2 })
+	if v, constant := g.Value(half); constant && v == 0 {
+		return factor
+	}
+	return g.Add(factor, g.Mul(c.coefficient(x, "bias", s, part.Spread{Spread: 1}), half))
+}

@@ -100,6 +100,7 @@ type figureText struct {
 	Ageing      ageingText   `json:"ageing"`
 	Correlation lotText      `json:"correlation"`
 	Law         [][3]float64 `json:"temperature_law,omitempty"` // °C, lowest, highest change
+	Bias        [][3]float64 `json:"bias_law,omitempty"`        // share of the rated voltage, lowest, highest change
 }
 
 type spreadText struct {
@@ -166,6 +167,9 @@ func describeFigure(name string, unit quantity.Unit, value *float64, s part.Scat
 	}
 	for _, l := range s.Law {
 		t.Law = append(t.Law, [3]float64{l.Celsius, l.Low, l.High})
+	}
+	for _, l := range s.Bias {
+		t.Bias = append(t.Bias, [3]float64{l.Share, l.Low, l.High})
 	}
 	return t
 }

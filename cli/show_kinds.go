@@ -142,16 +142,21 @@ func figureRow(q figureText) []string {
 	}
 }
 
-// laws prints the temperature laws that are no slope.
+// laws prints the temperature laws that are no slope, and the bias laws.
 func (p *program) laws(figures []figureText) {
 	for _, q := range figures {
-		var rows [][]string
-		for _, l := range q.Law {
-			rows = append(rows, []string{
-				fmt.Sprintf("%g °C", l[0]),
-				fmt.Sprintf("%+.4g %%", 100*l[1]), fmt.Sprintf("%+.4g %%", 100*l[2]),
-			})
-		}
-		p.section("change of "+q.Figure+" with temperature", []string{"at", "lowest", "highest"}, rows)
+		p.section("change of "+q.Figure+" with temperature", []string{"at", "lowest", "highest"},
+			lawRows(q.Law, func(celsius float64) string { return fmt.Sprintf("%g °C", celsius) }))
+		p.section("change of "+q.Figure+" with steady voltage", []string{"of rated", "lowest", "highest"},
+			lawRows(q.Bias, func(share float64) string { return fmt.Sprintf("%g %%", 100*share) }))
 	}
+}
+
+// lawRows are the points of a law.
+func lawRows(law [][3]float64, at func(float64) string) [][]string {
+	var rows [][]string
+	for _, l := range law {
+		rows = append(rows, []string{at(l[0]), fmt.Sprintf("%+.4g %%", 100*l[1]), fmt.Sprintf("%+.4g %%", 100*l[2])})
+	}
+	return rows
 }

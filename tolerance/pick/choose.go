@@ -9,7 +9,6 @@ import (
 	"batchwright/bom/part"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick/exact"
-	"batchwright/tolerance/spread"
 )
 
 // Options say how a build's openings are chosen.
@@ -185,78 +184,4 @@ func (c *chooser) price(p part.Part, key string, perUnit int) int64 {
 type lineCount struct {
 	key   string
 	count int
-}
-
-// confirm simulates a choice: first a few batches and the targets that are
-// cheap to simulate, which refuse what is far off, then every target on as many
-// units as the report will show. Worst cases, which cost most, are searched
-// last.
-func (c *chooser) confirm(choice []int) (bool, error) {
-	m, err := c.compile(choice)
-	if err != nil {
-		return false, err
-	}
-	cheap, rest := spread.CheapFirst(m)
-	for _, targets := range [][]int{cheap, rest} {
-		if refused, err := c.refusedBySome(choice, m, targets); refused || err != nil {
-			return false, err
-		}
-	}
-	for _, t := range spread.JudgeWorstCases(m) {
-		if !t.Met {
-			return c.refuse(choice, t), nil
-		}
-	}
-	return true, nil
-}
-
-// refusedBySome says whether one of some targets is not met: by more and more
-// units as long as it may still be, at last by those of the report.
-func (c *chooser) refusedBySome(choice []int, m *build.Model, targets []int) (bool, error) {
-	if len(targets) == 0 {
-		return false, nil
-	}
-	for _, units := range []int{240, 960, 3840} {
-		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, units)}
-		refused, err := c.refusedBy(choice, m, targets, o, func(t spread.TargetReport) bool {
-			return float64(t.ShareInterval[1]) >= t.Demand // it may still do
-		})
-		if refused || err != nil {
-			return refused, err
-		}
-	}
-	o := spread.Options{Seed: c.Seed, Units: c.Units}
-	return c.refusedBy(choice, m, targets, o, func(t spread.TargetReport) bool { return t.Met })
-}
-
-// refusedBy says whether a simulation finds a target that is not met.
-func (c *chooser) refusedBy(choice []int, m *build.Model, targets []int, o spread.Options, met func(spread.TargetReport) bool) (bool, error) {
-	reports, err := spread.JudgeShares(c.context, m, targets, o)
-	if err != nil {
-		return false, err
-	}
-	for _, t := range reports {
-		if !met(t) {
-			c.refuse(choice, t)
-			return true, nil
-		}
-	}
-	return false, nil
-}
-
-// quickSeed keeps the draws of the quick simulations apart from those that
-// confirm.
-const quickSeed = 0x9e3779b97f4a7c15
-
-// refuse notes why a choice was refused.
-func (c *chooser) refuse(choice []int, t spread.TargetReport) bool {
-	text := fmt.Sprintf("%s on %.4g %% of the simulated units", t.Name, 100*float64(t.Share))
-	if t.WorstCase != nil {
-		text = t.Name + " in the worst case"
-	}
-	c.refused[fmt.Sprint(choice)] = text
-	if c.Progress != nil {
-		c.Progress(fmt.Sprintf("refused %d choices", len(c.refused)))
-	}
-	return false
 }

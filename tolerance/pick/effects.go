@@ -67,6 +67,7 @@ type pictures struct {
 	*chooser
 	demands []demandNode
 	groups  []*group
+	trials  []*trial
 	options [][]map[string]build.Input // of each line and option: its inputs, by reference and parameter
 	signs   [][]string                 // and what its equations follow from
 }
@@ -119,6 +120,7 @@ func newPictures(c *chooser) (*pictures, error) {
 		p.options, p.signs = append(p.options, list), append(p.signs, signs)
 	}
 	p.makeGroups(m)
+	p.makeTrials(m)
 	return p, nil
 }
 
@@ -183,11 +185,7 @@ func (c *chooser) compile(choice []int) (*build.Model, error) {
 
 // of is what each of a group's demands is judged by, for a choice.
 func (p *pictures) of(g *group, choice []int) ([]judged, error) {
-	own := make([]int, len(g.lines)) // what the group's lines hold, the others as in the base
-	for k, i := range g.lines {
-		own[k] = choice[i]
-	}
-	key := fmt.Sprint(own)
+	key := on(g.lines, choice)
 	if seen, ok := g.seen[key]; ok {
 		return seen, nil
 	}

@@ -6,27 +6,39 @@ import (
 	"slices"
 )
 
-// ascend goes to the corner that the slopes at a start point to, as far as the
+// ascend goes to the corner that the slopes at a place point to, as far as the
 // trims reach, or to one short of a kink where that is better, looks at the
-// slopes there, and so on.
-func (s *search) ascend(start int, direction float64) extreme {
-	best := extreme{}
-	from := s.starts[start]
+// slopes there, and so on. Bent says whether slopes met on the way disagree in
+// sign with those at the start.
+func (s *search) ascend(start picture, direction float64) (best extreme, bent bool) {
+	from := start
 	for range 6 { // slopes that keep changing their signs are left to climb
-		next := best
+		var aims []point
 		for _, aim := range s.aims(from, direction) {
 			if !slices.ContainsFunc(s.visited, func(p point) bool { return slices.Equal(p, aim) }) {
 				s.visited = append(s.visited, aim)
-				next = next.take(s.line(from.at, aim, direction), direction)
+				aims = append(aims, aim)
 			}
 		}
+		next := best.take(s.lines(from.at, aims, direction), direction)
 		if next.at == nil || best.at != nil && !best.better(next.value, direction) {
 			break
 		}
 		best = next
 		from = s.picture(best.at)
+		bent = bent || s.disagree(start, from)
 	}
-	return best
+	return best, bent
+}
+
+// disagree says whether the node's slopes at two places have other signs.
+func (s *search) disagree(a, b picture) bool {
+	for k, slope := range s.byZ(a.Linear, 0) {
+		if slope*s.byZ(b.Linear, 0)[k] < 0 {
+			return true
+		}
+	}
+	return false
 }
 
 // climb moves single coordinates to their ends as long as that helps.
@@ -44,16 +56,34 @@ func (s *search) climb(best extreme, direction float64) extreme {
 	return best
 }
 
-// line looks along the way from one place to another, the other end first.
-// Where something on the way is better than the end, it looks closer about
+// lines looks along the ways from one place to others, the other ends first.
+// Where something on the way is better than every end, it looks closer about
 // that: an extreme such as a beat of zero lies inside, where the output bends.
-func (s *search) line(from, to point, direction float64) extreme {
-	const steps = 16
-	coarse := []point{to, mix(from, to, 0.9), mix(from, to, 0.6), mix(from, to, 0.3), mix(from, to, 0.1)}
-	best := s.best(coarse, direction)
-	if best.at == nil || &best.at[0] == &to[0] {
+func (s *search) lines(from point, aims []point, direction float64) extreme {
+	ways := []float64{1, 0.9, 0.6, 0.3, 0.1}
+	best, on := extreme{}, -1
+	for first := 0; first < len(aims); first += lanes / len(ways) {
+		var block []point
+		for _, to := range aims[first:min(first+lanes/len(ways), len(aims))] {
+			for _, t := range ways {
+				block = append(block, mix(from, to, t))
+			}
+		}
+		for i, v := range s.evaluate(block) {
+			if best.better(v, direction) {
+				best, on = extreme{v, block[i]}, first*len(ways)+i
+			}
+		}
+	}
+	if on < 0 || on%len(ways) == 0 {
 		return best
 	}
+	return s.zoom(best, from, aims[on/len(ways)], direction)
+}
+
+// zoom looks closer and closer about the best place on a way.
+func (s *search) zoom(best extreme, from, to point, direction float64) extreme {
+	const steps = 16
 	low, high := 0.0, 1.0
 	for range 10 {
 		block := make([]point, steps+1)

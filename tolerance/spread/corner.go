@@ -23,8 +23,10 @@ type search struct {
 	kinks   []kink
 	free    []int // inputs that scatter
 	columns *columns
-	starts  []picture
-	visited []point // corners gone to in this direction
+	centre  picture
+	other   *picture // a second start, made when it is wanted
+	bent    []point  // where an absolute value's argument is zero; nil: not looked for yet
+	visited []point  // corners gone to in this direction
 	evals   int
 }
 
@@ -54,7 +56,7 @@ func newSearch(m *build.Model, node tape.Ref, trims []int) *search {
 			s.free = append(s.free, i)
 		}
 	}
-	s.starts = s.newStarts()
+	s.centre = s.picture(make(point, len(s.free)))
 	return s
 }
 
@@ -120,16 +122,14 @@ func (s *search) run(direction float64) extreme {
 	if len(s.free) == 0 {
 		return s.best([]point{{}}, direction)
 	}
-	for i := range s.starts {
-		best = best.take(s.ascend(i, direction), direction)
+	top, bent := s.ascend(s.centre, direction)
+	best = best.take(top, direction)
+	if bent || top.at == nil {
+		top, _ = s.ascend(s.elsewhere(), direction)
+		best = best.take(top, direction)
 	}
-	for k, kink := range s.kinks {
-		if kink.b >= 0 {
-			continue // ascents stop short of it by themselves
-		}
-		if at := s.bend(k); at != nil {
-			best = best.take(s.best([]point{at}, direction), direction)
-		}
+	for _, at := range s.zeros() {
+		best = best.take(s.best([]point{at}, direction), direction)
 	}
 	return s.climb(best, direction)
 }
@@ -167,13 +167,13 @@ func (s *search) searched() string {
 	if len(s.free) <= everyCorner {
 		return fmt.Sprintf("every one of %d corners, then along coordinates; attained, %d evaluations", 1<<len(s.free), s.evals)
 	}
-	return fmt.Sprintf("%d inputs: corners that the slopes point to from several starts, within the trims' reach, then coordinate moves; attained, not proved extreme, %d evaluations",
+	return fmt.Sprintf("%d inputs: corners that the slopes point to, from several starts where the slopes disagree, within the trims' reach and along kinks, then coordinate moves; attained, not proved extreme, %d evaluations",
 		len(s.free), s.evals)
 }
 
 // named names the inputs of a point, those that move the node most first.
 func (s *search) named(p point) []Corner {
-	slopes := s.byZ(s.starts[0].Linear, 0)
+	slopes := s.byZ(s.centre.Linear, 0)
 	list := make([]Corner, 0, len(p))
 	for _, k := range byMagnitude(slopes) {
 		x := s.model.Inputs[s.free[k]]

@@ -12,18 +12,17 @@ type picture struct {
 	*Linear
 }
 
-// newStarts are the places whose slopes point to the first corners: the
-// centre, and a place halfway to a corner.
-func (s *search) newStarts() []picture {
-	list := make([]picture, 2)
-	for i, z := range []float64{0, 0.5} {
+// elsewhere is a second start: a place halfway to a corner.
+func (s *search) elsewhere() picture {
+	if s.other == nil {
 		at := make(point, len(s.free))
 		for k := range at {
-			at[k] = z * (1 - 2*float64(k%2))
+			at[k] = 0.5 - float64(k%2)
 		}
-		list[i] = s.picture(at)
+		p := s.picture(at)
+		s.other = &p
 	}
-	return list
+	return *s.other
 }
 
 // picture differentiates at a place.
@@ -151,10 +150,27 @@ func mend(z, at point, c, g []float64, sign, value float64) {
 	}
 }
 
+// zeros are places where the arguments of absolute values are zero. Ascents
+// stop short of other kinks by themselves.
+func (s *search) zeros() []point {
+	if s.bent == nil {
+		s.bent = []point{}
+		for k, kink := range s.kinks {
+			if kink.b >= 0 {
+				continue
+			}
+			if at := s.bend(k); at != nil {
+				s.bent = append(s.bent, at)
+			}
+		}
+	}
+	return s.bent
+}
+
 // bend looks for a zero of an absolute value's argument, on the way from the
 // centre to the corner where its own slopes say that it is passed.
 func (s *search) bend(k int) point {
-	column, centre := s.kinks[k].a, s.starts[0]
+	column, centre := s.kinks[k].a, s.centre
 	target := s.corner(centre, s.byZ(centre.Linear, column), -math.Copysign(1, centre.Values[column]))
 	const steps = 32
 	low, high := 0.0, 1.0

@@ -145,6 +145,16 @@ func TestOrderDemonstration(t *testing.T) {
 	}
 }
 
+// A rated voltage that is not the family's makes a line of its own, and says so.
+func TestOrderSaysRating(t *testing.T) {
+	high := fit(t, "C2", "c0g", 220e-12, 0.05)
+	high.Rated = 100
+	o := New([]part.Part{fit(t, "C1", "c0g", 220e-12, 0.05), high}, 24, 0, prices(t), part.Embedded())
+	if len(o.Lines) != 2 || o.Lines[0].Text != "220 pF" || o.Lines[1].Text != "220 pF, 100 V" {
+		t.Errorf("%+v", o.Lines)
+	}
+}
+
 // More than any line can hold is offered by nobody.
 func TestOrderOfTooMany(t *testing.T) {
 	o := New([]part.Part{fit(t, "C1", "c0g", 220e-12, 0.05)}, 1_000_000_000, 0, prices(t), part.Embedded())
@@ -186,6 +196,11 @@ func TestKey(t *testing.T) {
 	law := func(low float64) part.Part {
 		return change(func(q *part.Parameter) { q.Law = []part.LawPoint{{Celsius: -55, Low: low, High: 0}} })
 	}
+	bias := func(low float64) part.Part {
+		return change(func(q *part.Parameter) { q.Bias = []part.BiasPoint{{}, {Share: 1, Low: low}} })
+	}
+	rated := base
+	rated.Rated = 16
 	for _, c := range []struct {
 		name string
 		a, b part.Part
@@ -203,6 +218,8 @@ func TestKey(t *testing.T) {
 		{"humidity", base, change(func(q *part.Parameter) { q.Humidity.Spread = 1e-6 }), false},
 		{"ageing", base, change(func(q *part.Parameter) { q.Ageing.Value = 1e-6 }), false},
 		{"ageing clock", base, change(func(q *part.Parameter) { q.Ageing.Per = part.PerThousandHours }), false},
+		{"rated voltage", base, rated, false},
+		{"bias law", bias(-0.5), bias(-0.4), false},
 		{"law", law(-0.15), law(-0.2), false},
 		{"absolute", base, change(func(q *part.Parameter) { q.Absolute = true }), false},
 	} {

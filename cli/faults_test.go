@@ -45,6 +45,7 @@ var faults = []struct{ at, found, advice string }{
 	{"45:36", `"Ω"`, "do not go together"},              // volts and ohms added
 	{"48:56", `"1 Hz"`, "a length"},                     // dimension of the wrong unit
 	{"50:32", "", "at least 0.4 diameters"},             // winding out of reach
+	{"51:75", `"600 V"`, "at most 50 V"},                // above the rated voltage
 	{"53:12", `"half.upper"`, "not a trimmer"},          // trim on a resistor
 	{"55:23", `"half.voltge"`, "nearest: half.voltage"}, // unknown output
 	{"56:42", `"hal"`, "nearest: hall"},                 // unknown condition

@@ -15,7 +15,7 @@ import (
 var acrossKeys = []string{"across", "rated", "bias_law"}
 
 // readAcross reads the steady voltage across a capacitor, which each position
-// has of its own: a value, a condition's variable or another stage's output.
+// has of its own: a value, a condition's variable or an output.
 func (r *reader) readAcross(p *Place, n *document.Node) {
 	if p.Type != part.Capacitor {
 		for _, key := range acrossKeys {
@@ -66,7 +66,8 @@ func (r *reader) allRated(family *part.Family, o *Opening) bool {
 }
 
 // checkAcross checks the voltages across capacitors: that what they refer to
-// exists and is a voltage, and that a plain one is not above the rated voltage.
+// exists, is a voltage and does not need the capacitor itself, and that a plain
+// one is not above the rated voltage.
 func (r *reader) checkAcross() {
 	for _, s := range r.stages {
 		for i := range s.Places {
@@ -75,18 +76,44 @@ func (r *reader) checkAcross() {
 				continue
 			}
 			n := s.node.Get("parts").Get(p.Role).Get("across")
-			switch head, _, _ := strings.Cut(p.Across.Reference, "."); {
+			switch from, output, _ := strings.Cut(p.Across.Reference, "."); {
 			case p.Across.Reference == "" && p.strained(p.Part.Rated):
 				r.Add(n, "capacitor above its rated voltage",
 					"at most "+part.Text(p.Part.Rated, quantity.Volt)+", or rated: with what it is made for")
 			case p.Across.Reference == "":
-			case head == s.Name:
-				r.Add(n, "voltage from the capacitor's own stage", "a value, a condition's variable or another stage's output")
+			case from == s.Name && s.needsPart(output, p.Role, map[string]bool{}):
+				r.Add(n, "voltage that needs the capacitor itself", "a value, a condition's variable or an output that does not need it")
 			default:
 				r.checkReference(n, *p.Across)
 			}
 		}
 	}
+}
+
+// needsPart says whether an equation of the stage needs the part in a role, by
+// what other capacitors of the stage stand under too.
+func (s *Stage) needsPart(name, role string, seen map[string]bool) bool {
+	if seen[name] || strings.HasSuffix(name, ".fitted") {
+		return false
+	}
+	seen[name] = true
+	if p := s.place(head(name)); p != nil {
+		from, output, _ := strings.Cut(p.acrossFrom(), ".")
+		return p.Role == role || from == s.Name && s.needsPart(output, role, seen)
+	}
+	x := s.find(strings.TrimPrefix(name, s.Name+"."))
+	if x == nil {
+		return false
+	}
+	return slices.ContainsFunc(x.Names(), func(next string) bool { return s.needsPart(next, role, seen) })
+}
+
+// acrossFrom is what the voltage across a part is taken from; "" for nothing.
+func (p *Place) acrossFrom() string {
+	if p.Across == nil {
+		return ""
+	}
+	return p.Across.Reference
 }
 
 // strained says whether a voltage that is written as a plain value is above

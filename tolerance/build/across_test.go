@@ -178,7 +178,7 @@ func TestAcrossFaults(t *testing.T) {
 		{"wrong unit", "across: -12 V", "across: 5 mA", "16:52", []string{"5 mA"}},
 		{"bare number", "across: -12 V", "across: 5", "16:52", []string{"without a unit"}},
 		{"a mapping", "across: -12 V", "across: {value: 5 V}", "16:52", nil},
-		{"its own stage", "across: -12 V", "across: own.c", "16:52", []string{"own stage"}},
+		{"what needs it", "across: -12 V", "across: own.b", "16:52", []string{"own.b", "the capacitor itself"}},
 		{"rated nothing", "rated: 16 V", "rated: 0 V", "15:79", []string{"more than zero"}},
 		{"a law without a rating", ", rated: 16 V", "", "15:82", []string{"without a rated voltage"}},
 		{"of a resistor", "R1, value: 1 kΩ", "R1, across: 5 V, value: 1 kΩ", "11:38", []string{"across of a resistor"}},
@@ -209,6 +209,23 @@ func TestAcrossInACircle(t *testing.T) {
 		"kind: formula\n    outputs: {voltage: {expression: own.d*volt/(1e-9*farad), unit: V}}", 1)
 	_, err = read(text)
 	if err == nil || !containsAll(err.Error(), []string{"lamp.yaml:9:11:", "rail -> own -> rail"}) {
+		t.Errorf("got %v", err)
+	}
+}
+
+// TestAcrossOwnStage takes the voltage of the capacitor's own stage, where that
+// does not need it: 12 V of 16 V, twice, leaves 60 nF; and where two capacitors
+// need each other by it.
+func TestAcrossOwnStage(t *testing.T) {
+	text := strings.Replace(biased, "across: -12 V", "across: own.v", 1)
+	text += `      v: {expression: "same.fitted*none/(1e-7*farad)*12*volt", unit: V}
+      w: {expression: "same/(1e-7*farad)*volt", unit: V}
+`
+	if got, want := nominals(t, compiled(t, text))["own.b low"], 60e-9; !(math.Abs(got-want) <= 1e-12*want) {
+		t.Errorf("%g, want %g", got, want)
+	}
+	_, err := read(strings.Replace(text, "same_as: own.exact}", "same_as: own.exact, across: own.w}", 1))
+	if err == nil || !containsAll(err.Error(), []string{"lamp.yaml:16:52:", "lamp.yaml:17:52:", "the capacitor itself"}) {
 		t.Errorf("got %v", err)
 	}
 }

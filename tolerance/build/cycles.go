@@ -104,8 +104,8 @@ func (r *reader) needs(s stageNode) []stageNode {
 		}
 	}
 	for _, p := range s.Places {
-		if p.Across != nil && head(p.Across.Reference) != s.Name { // its own is complained of elsewhere
-			heads = append(heads, head(p.Across.Reference))
+		if h := head(p.acrossFrom()); h != s.Name { // its own is for checkAcross
+			heads = append(heads, h)
 		}
 	}
 	for _, f := range s.Formulas {

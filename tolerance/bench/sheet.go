@@ -1,9 +1,11 @@
 package bench
 
 import (
+	"fmt"
 	"math"
 	"strings"
 
+	"batchwright/bom/quantity"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/spread"
 )
@@ -85,25 +87,35 @@ func (s *sheet) turn(i int) Turn {
 	l := spread.Linearise(s.model, s.model.Trims[i].AtLow, s.model.Trims[i].AtHigh)
 	return Turn{
 		Step: s.step, Turn: t.Stage + "." + t.Role, Ref: b.Place(t.Stage + "." + t.Role).Part.Ref,
-		Watch: t.Output.String(), At: s.where(t.Output), Unit: t.Unit.Symbol, To: t.To, Within: t.Within,
+		Watch: t.Output.String(), At: s.where(t), Unit: t.Unit.Symbol, To: t.To, Within: t.Within,
 		Condition: b.Conditions[t.Condition].Name, Rises: l.Values[1] > l.Values[0],
 	}
 }
 
-// where is the place to hold the probe for an output, if one of its stage's
-// test points reads it; otherwise what the output is.
-func (s *sheet) where(n build.OutputName) string {
-	for _, p := range s.model.Points {
-		if q := p.Stage.Kind.Points[p.Index]; p.Stage.Name == n.Stage && q.Name == n.Output {
-			return withReferences(q.At, p.Stage)
+// where is the place to hold the probe for a trim, if one of the watched
+// stage's test points reads the output; otherwise what the output is. Where the
+// probe itself moves the reading by more than the trim may be off, that is said:
+// the trim is on what is there without it.
+func (s *sheet) where(t build.Trim) string {
+	for i, p := range s.model.Points {
+		q := p.Stage.Kind.Points[p.Index]
+		if p.Stage.Name != t.Output.Stage || q.Name != t.Output.Output {
+			continue
+		}
+		at := withReferences(q.At, p.Stage)
+		shown, there := s.report.Readings[i].Nominal, s.report.Readings[i].Unloaded
+		if math.Abs(float64(shown-there)) > t.Within {
+			at += fmt.Sprintf("; with its probe there the %s shows %s on a nominal unit set to %s",
+				p.Instrument.Name, quantity.Format(float64(shown), p.Unit, 6), quantity.Format(float64(there), p.Unit, 6))
+		}
+		return at
+	}
+	for _, o := range s.model.Build.Stage(t.Output.Stage).Outputs {
+		if o.Name == t.Output.Output {
+			return t.Output.Stage + ": " + o.Summary
 		}
 	}
-	for _, o := range s.model.Build.Stage(n.Stage).Outputs {
-		if o.Name == n.Output {
-			return n.Stage + ": " + o.Summary
-		}
-	}
-	return n.Stage
+	return t.Output.Stage
 }
 
 // withReferences puts each part's reference before its role: "collector of the

@@ -150,3 +150,26 @@ func TestOrder(t *testing.T) {
 		t.Errorf("got %+v", turn)
 	}
 }
+
+// TestLoadedTrim warns where the probe that a trim is watched by moves what it
+// watches: 15 pF across 170 pF take 386 kHz to 370 kHz.
+func TestLoadedTrim(t *testing.T) {
+	text := strings.Replace(box, "output: mix.offset, to: 0 Hz", "output: a.frequency, to: 386 kHz, within: 100 Hz", 1)
+	b, err := build.Read("box.yaml", []byte(text), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	m, err := b.Compile()
+	if err != nil {
+		t.Fatal(err)
+	}
+	r, err := spread.Analyse(context.Background(), m, spread.Options{Seed: 1, Units: 1000})
+	if err != nil {
+		t.Fatal(err)
+	}
+	// 1/(2π·√(1 mH·C)) = 386 kHz is C = 170.006 pF; with 15 pF more, 370.02 kHz.
+	at := bench.NewSheet(m, r).Turns[0].At
+	if !strings.Contains(at, "the counter shows 370.02") || !strings.Contains(at, "set to 386") {
+		t.Errorf("got %q", at)
+	}
+}

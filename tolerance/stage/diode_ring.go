@@ -40,12 +40,14 @@ path = signal.source_resistance + ring_resistance
 load_conductance = 1/load + meter
 divided = 1 + path*load_conductance
 lag = path*(filter_c + probe)
+turn = 2*pi*lag/divided
 corner = divided/(2*pi*max(path, 0.001*ohm)*(filter_c + probe))
+strength = conversion*signal.level
 conversion = 2/(pi*divided)
 carrier_level = 0*volt
 second_level = 0*volt
-tone_level = conversion*signal.level/sqrt(1 + (2*pi*beat*lag/divided)^2)
-ripple = conversion*signal.level/sqrt(1 + (2*pi*(carrier.frequency + signal.frequency)*lag/divided)^2)
+tone_level = strength/sqrt(1 + (beat*turn)^2)
+ripple = strength/sqrt(1 + ((carrier.frequency + signal.frequency)*turn)^2)
 overrun = signal.level >= carrier.level
 dc = 0*volt
 source_resistance = path/divided

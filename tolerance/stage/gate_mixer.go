@@ -45,15 +45,16 @@ var gateMixer = Kind{
 	Equations: mixing + `
 divided = 1 + filter_r*meter
 time_constant = filter_r*(filter_c + probe)/divided
-corner = 1/(2*pi*time_constant)
+turn = 2*pi*time_constant
+corner = 1/turn
 triangle = supply
 fundamental = 4*triangle/pi^2
 carrier_level = 0*volt
 second_level = 0*volt
-tone_level = fundamental/(divided*sqrt(1 + (beat/corner)^2))
-ripple = fundamental/(divided*sqrt(1 + ((carrier.frequency + signal.frequency)/corner)^2))
+tone_level = fundamental/(divided*sqrt(1 + (beat*turn)^2))
+ripple = fundamental/(divided*sqrt(1 + ((carrier.frequency + signal.frequency)*turn)^2))
 cycle = max(beat*time_constant, 1e-6)
-swing = triangle/(2*divided)*max(0, 1 - 4*beat*time_constant*ln(2/(1 + exp(-1/(2*cycle)))))
+swing = triangle/(2*divided)*max(0, 1 + 4*beat*time_constant*ln(0.5 + 0.5*exp(-0.5/cycle)))
 dc = supply/(2*divided)
 source_resistance = filter_r/divided
 `,

@@ -304,7 +304,11 @@ func (s *sample) notes() []string {
 	m := s.nodes.model
 	for i, o := range m.Outputs {
 		if v := s.nominal[s.nodes.columnOf[i]]; math.IsNaN(v) || math.IsInf(v, 0) {
-			notes = append(notes, fmt.Sprintf("%s at %s has no value on a nominal unit", o.Name, m.Build.Conditions[o.Condition].Name))
+			notes = append(notes, fmt.Sprintf("%s at %s has no finite value on a nominal unit", o.Name, m.Build.Conditions[o.Condition].Name))
+		}
+		if n := s.outputs[s.nodes.columnOf[i]].moments.NonFinite(); n > 0 {
+			notes = append(notes, fmt.Sprintf("%s at %s has no finite value on %.3g %% of the units; its figures are those of the others",
+				o.Name, m.Build.Conditions[o.Condition].Name, 100*float64(n)/float64(s.units)))
 		}
 	}
 	for _, o := range m.Build.Openings {

@@ -1,6 +1,7 @@
 package spread_test
 
 import (
+	"math"
 	"strings"
 	"testing"
 )
@@ -85,4 +86,26 @@ targets:
 	if !r.Targets[0].Met || r.Targets[1].Met {
 		t.Errorf("met %v and %v, want the first only", r.Targets[0].Met, r.Targets[1].Met)
 	}
+}
+
+// TestNoValue has an output that is the root of a uniform figure from -1 to 3:
+// it has no value on a quarter of the units, which is said, and the mean is
+// that of √x over 0..3, ⅔·√3.
+func TestNoValue(t *testing.T) {
+	r := analyse(t, `
+build: root
+units: 10
+conditions: {bench: {}}
+stages:
+  s:
+    kind: formula
+    settings: {x: {value: 1, tolerance: 2, shape: uniform}}
+    outputs: {y: {expression: sqrt(x)}}
+`, 40_000)
+	if len(r.Notes) != 1 || !strings.Contains(r.Notes[0], "s.y at bench has no finite value on 2") {
+		t.Errorf("notes are %q", r.Notes)
+	}
+	y := find(t, r, "s.y", "bench", "")
+	near(t, "mean", y.Simulated.Mean, 2.0/3*math.Sqrt(3), 0.01)
+	near(t, "share with a value", y.Simulated.ReachedShare, 0.75, 0.01)
 }

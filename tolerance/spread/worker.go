@@ -1,8 +1,6 @@
 package spread
 
 import (
-	"math"
-
 	"batchwright/tolerance/scatter"
 )
 
@@ -88,11 +86,9 @@ func (w *worker) block(j *job, first, width int) {
 	w.addFindings(j, out, first, width)
 }
 
-// add adds the lanes kept to a column's sums. What is no number is left out.
+// add adds the lanes kept to a column's sums, which count what is not finite
+// apart.
 func (w *worker) add(m *Moments, h *Histogram, x []float64, keep []bool) {
-	for i, v := range x {
-		keep[i] = keep[i] && !math.IsNaN(v)
-	}
 	m.AddColumn(x, keep)
 	h.AddColumn(x, keep)
 }

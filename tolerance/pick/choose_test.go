@@ -172,14 +172,15 @@ func TestSameAsIsDecidedOnce(t *testing.T) {
 }
 
 // TestCostIsTheOrder compares the search's money with the order's, for random
-// choices of the embedded example and of a build whose lines can merge.
+// choices of the embedded example, of a build whose lines can merge, and of one
+// whose options may join a line that is bought anyway.
 func TestCostIsTheOrder(t *testing.T) {
 	example, err := data.Examples.ReadFile("examples/lantern.yaml")
 	if err != nil {
 		t.Fatal(err)
 	}
 	rng := rand.New(rand.NewPCG(1, 1))
-	for name, text := range map[string]string{"example": string(example), "merging": merging()} {
+	for name, text := range map[string]string{"example": string(example), "merging": merging(), "joining": joining()} {
 		c, err := newChooser(read(t, text), Options{})
 		if err != nil {
 			t.Fatal(err)
@@ -216,6 +217,16 @@ func TestPictureIsTheModel(t *testing.T) {
 // both take the same, they are one line and one lot.
 func merging() string {
 	return strings.Replace(tanks("60 Hz"), "C2, same_as: a.tank", "C2, value: 220 pF, choose: {families: [c0g, polystyrene], tolerances: [1 %, 5 %]}", 1)
+}
+
+// joining is the two tanks with a fixed capacitor that some of the options are
+// bought together with.
+func joining() string {
+	return strings.Replace(tanks("60 Hz"), "  mix: {", `  spare:
+    kind: formula
+    parts: {c: {ref: C9, value: 220 pF, family: c0g, tolerance: 5 %}}
+    outputs: {c9: {expression: c, unit: F}}
+  mix: {`, 1)
 }
 
 func comparePictures(t *testing.T, text string) {

@@ -247,9 +247,20 @@ func cornerText(corner []Corner) string {
 		if i > 0 {
 			text += ", "
 		}
-		text += fmt.Sprintf("%s %s %+.2g", c.Ref, c.Parameter, float64(c.Z))
+		text += fmt.Sprintf("%s %s %s", c.Ref, c.Parameter, placeText(float64(c.Z)))
 	}
 	return text
+}
+
+// placeText says where between its limits a parameter is.
+func placeText(z float64) string {
+	switch z {
+	case -1:
+		return "low"
+	case 1:
+		return "high"
+	}
+	return fmt.Sprintf("at %+.2g of its limit", z)
 }
 
 // perBatch counts, in each batch, the units marked.

@@ -28,7 +28,7 @@ targets:
 	for i, want := range []struct {
 		met bool
 		why string
-	}{{true, ""}, {false, "too low at R1 value +1, R2 value -1"}, {false, "too high at R1 value -1, R2 value +1"}, {true, ""}} {
+	}{{true, ""}, {false, "too low at R1 value high, R2 value low"}, {false, "too high at R1 value low, R2 value high"}, {true, ""}} {
 		got := r.Targets[i]
 		if got.Met != want.met || !strings.HasPrefix(got.Why, want.why) {
 			t.Errorf("%s: met %v, %q; want %v, %q", got.Name, got.Met, got.Why, want.met, want.why)
@@ -39,11 +39,17 @@ targets:
 }
 
 // TestWorstCaseReach has a trimmer of 0..1 kΩ that must bring a resistor to
-// 2 kΩ: one of 1.5 kΩ ± 20 % always gets there, one of ± 40 % does not, either
-// end being out of reach at one corner or the other.
+// 2 kΩ, in a sum and in what a sum leaves of 5 kΩ: what is from 1 to 2 kΩ at
+// both of its limits always gets there, and what is not is named with the
+// limit that is out of reach.
 func TestWorstCaseReach(t *testing.T) {
-	for tolerance, want := range map[string]bool{"20 %": true, "40 %": false} {
-		r := analyse(t, strings.Replace(`
+	for _, c := range []struct{ resistor, why string }{
+		{"1.5 kΩ, tolerance: 20 %", ""},
+		{"1.3 kΩ, tolerance: 40 %", "R1 value low"},
+		{"1.9 kΩ, tolerance: 20 %", "R1 value high"},
+	} {
+		for expression, to := range map[string]string{"r + x": "2 kΩ", "5000*ohm - r - x": "3 kΩ"} {
+			r := analyse(t, strings.NewReplacer("RESISTOR", c.resistor, "EXPRESSION", expression, "TO", to).Replace(`
 build: reach
 units: 10
 conditions: {bench: {temperature: 25 °C}}
@@ -51,14 +57,15 @@ stages:
   s:
     kind: formula
     parts:
-      r: {ref: R1, value: 1.5 kΩ, tolerance: TOLERANCE}
+      r: {ref: R1, value: RESISTOR}
       x: {ref: RV1, part: trimmer-resistor, value: 0..1 kΩ}
-    outputs: {sum: {expression: r + x, unit: Ω}}
-trims: [{turn: s.x, output: s.sum, to: 2 kΩ}]
+    outputs: {sum: {expression: EXPRESSION, unit: Ω}}
+trims: [{turn: s.x, output: s.sum, to: TO}]
 targets: [{name: reach, trim: s.x, by: worst-case}]
-`, "TOLERANCE", tolerance, 1), 2000)
-		if got := r.Targets[0]; got.Met != want || (got.Why == "") != want {
-			t.Errorf("± %s: met %v, %q", tolerance, got.Met, got.Why)
+`), 2000)
+			if got := r.Targets[0]; got.Met != (c.why == "") || !strings.Contains(got.Why, c.why) {
+				t.Errorf("%s of %s: met %v, %q, want %q", expression, c.resistor, got.Met, got.Why, c.why)
+			}
 		}
 	}
 }

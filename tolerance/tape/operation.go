@@ -80,11 +80,11 @@ var operations = [codes]operation{
 
 	neg:  {name: "neg", arity: 1, value: negValue, tangent: negTangent, bounds: negBounds},
 	sqrt: {name: "sqrt", arity: 1, value: sqrtValue, tangent: sqrtTangent, bounds: sqrtBounds},
-	exp:  {name: "exp", arity: 1, value: expValue, tangent: expTangent, bounds: expBounds},
-	ln:   {name: "ln", arity: 1, value: lnValue, tangent: lnTangent, bounds: lnBounds},
-	sin:  {name: "sin", arity: 1, value: sinValue, tangent: sinTangent, bounds: sinBounds},
-	cos:  {name: "cos", arity: 1, value: cosValue, tangent: cosTangent, bounds: cosBounds},
-	atan: {name: "atan", arity: 1, value: atanValue, tangent: atanTangent, bounds: atanBounds},
+	exp:  {name: "exp", arity: 1, value: each(math.Exp), tangent: expTangent, bounds: expBounds},
+	ln:   {name: "ln", arity: 1, value: each(math.Log), tangent: lnTangent, bounds: lnBounds},
+	sin:  {name: "sin", arity: 1, value: each(math.Sin), tangent: sinTangent, bounds: sinBounds},
+	cos:  {name: "cos", arity: 1, value: each(math.Cos), tangent: cosTangent, bounds: cosBounds},
+	atan: {name: "atan", arity: 1, value: each(math.Atan), tangent: atanTangent, bounds: atanBounds},
 	abs:  {name: "abs", arity: 1, value: absValue, tangent: absTangent, bounds: absBounds},
 
 	minimum: {name: "min", arity: 2, commutes: true, value: minValue, tangent: minTangent, bounds: minBounds},
@@ -213,38 +213,14 @@ func sqrtValue(dst, a, _, _ []float64) {
 	}
 }
 
-func expValue(dst, a, _, _ []float64) {
-	a = a[:len(dst)]
-	for i := range dst {
-		dst[i] = math.Exp(a[i])
-	}
-}
-
-func lnValue(dst, a, _, _ []float64) {
-	a = a[:len(dst)]
-	for i := range dst {
-		dst[i] = math.Log(a[i])
-	}
-}
-
-func sinValue(dst, a, _, _ []float64) {
-	a = a[:len(dst)]
-	for i := range dst {
-		dst[i] = math.Sin(a[i])
-	}
-}
-
-func cosValue(dst, a, _, _ []float64) {
-	a = a[:len(dst)]
-	for i := range dst {
-		dst[i] = math.Cos(a[i])
-	}
-}
-
-func atanValue(dst, a, _, _ []float64) {
-	a = a[:len(dst)]
-	for i := range dst {
-		dst[i] = math.Atan(a[i])
+// each applies a function so dear that calling it through a pointer costs
+// nothing by comparison.
+func each(f func(float64) float64) func(dst, a, _, _ []float64) {
+	return func(dst, a, _, _ []float64) {
+		a = a[:len(dst)]
+		for i := range dst {
+			dst[i] = f(a[i])
+		}
 	}
 }
 

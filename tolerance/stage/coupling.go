@@ -66,13 +66,7 @@ shunting = source_total*passing_c*probe
 gain_at_carrier = carrier_rate*passing_c/sqrt((carrier_rate*passing)^2 + (load_conductance - carrier_rate^2*shunting)^2)
 gain_at_second = second_rate*passing_c/sqrt((second_rate*passing)^2 + (load_conductance - second_rate^2*shunting)^2)
 gain_at_tone = tone_rate*passing_c/sqrt((tone_rate*passing)^2 + (load_conductance - tone_rate^2*shunting)^2)
-frequency = in.frequency
-level = in.level*gain_at_carrier
-second_frequency = in.second_frequency
-second_level = in.second_level*gain_at_second
-tone_frequency = in.tone_frequency
-tone_level = in.tone_level*gain_at_tone
-dc = 0*volt
+` + filtered + `dc = 0*volt
 source_resistance = parallel(source_total, load_total)
 tank_q = in.tank_q
 `

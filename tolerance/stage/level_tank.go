@@ -42,13 +42,7 @@ q = resistance/divided*sqrt(capacitance/coil)
 gain_at_carrier = in.frequency*f0/(divided*sqrt((in.frequency*f0)^2 + (q*(in.frequency^2 - f0^2))^2))
 gain_at_second = in.second_frequency*f0/(divided*sqrt((in.second_frequency*f0)^2 + (q*(in.second_frequency^2 - f0^2))^2))
 gain_at_tone = in.tone_frequency*f0/(divided*sqrt((in.tone_frequency*f0)^2 + (q*(in.tone_frequency^2 - f0^2))^2))
-frequency = in.frequency
-level = in.level*gain_at_carrier
-second_frequency = in.second_frequency
-second_level = in.second_level*gain_at_second
-tone_frequency = in.tone_frequency
-tone_level = in.tone_level*gain_at_tone
-dc = 0*volt
+` + filtered + `dc = 0*volt
 source_resistance = resistance*gain_at_carrier
 tank_q = in.tank_q
 `,

@@ -29,13 +29,7 @@ corner = divided/(2*pi*resistance*(shunt + probe))
 gain_at_carrier = 1/(divided*sqrt(1 + (in.frequency/corner)^2))
 gain_at_second = 1/(divided*sqrt(1 + (in.second_frequency/corner)^2))
 gain_at_tone = 1/(divided*sqrt(1 + (in.tone_frequency/corner)^2))
-frequency = in.frequency
-level = in.level*gain_at_carrier
-second_frequency = in.second_frequency
-second_level = in.second_level*gain_at_second
-tone_frequency = in.tone_frequency
-tone_level = in.tone_level*gain_at_tone
-dc = in.dc/divided
+` + filtered + `dc = in.dc/divided
 source_resistance = resistance/divided
 tank_q = in.tank_q
 `,

@@ -14,12 +14,6 @@ corner = f0/sqrt(sqrt(breadth^2 + 1) - breadth)
 gain_at_carrier = passed/sqrt((1 - (in.frequency/f0)^2)^2 + (in.frequency/(f0*q))^2)
 gain_at_second = passed/sqrt((1 - (in.second_frequency/f0)^2)^2 + (in.second_frequency/(f0*q))^2)
 gain_at_tone = passed/sqrt((1 - (in.tone_frequency/f0)^2)^2 + (in.tone_frequency/(f0*q))^2)
-frequency = in.frequency
-level = in.level*gain_at_carrier
-second_frequency = in.second_frequency
-second_level = in.second_level*gain_at_second
-tone_frequency = in.tone_frequency
-tone_level = in.tone_level*gain_at_tone
-dc = in.dc*passed
+` + filtered + `dc = in.dc*passed
 tank_q = in.tank_q
 `

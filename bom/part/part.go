@@ -3,7 +3,11 @@
 // shape by name, a half width, correlations); package scatter gives it meaning.
 package part
 
-import "batchwright/bom/quantity"
+import (
+	"math"
+
+	"batchwright/bom/quantity"
+)
 
 // Type is what kind of component a role in a stage asks for.
 type Type string
@@ -86,6 +90,15 @@ type Parameter struct {
 	Unit  quantity.Unit
 	Value float64 // SI
 	Scatter
+}
+
+// HalfWidth is the tolerance as a figure: so far from Value a piece may be. A
+// relative tolerance of nothing is nothing.
+func (p *Parameter) HalfWidth() float64 {
+	if p.Absolute {
+		return p.Tolerance
+	}
+	return math.Abs(p.Value) * p.Tolerance
 }
 
 // Part is a piece placed in a stage: every figure resolved, family and

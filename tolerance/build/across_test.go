@@ -128,7 +128,8 @@ func TestAcrossLimits(t *testing.T) {
 	// middles 70 at half, 55 at the whole, so −30 nF a share. R1 larger by a
 	// hundredth lowers 12 V/(2.01) to 5.97 V: below the point, where the middle
 	// falls by 60 nF a share.
-	in[bias][0], in[upper][0] = 0, 0.01
+	nominal := m.Inputs[upper].Centre
+	in[bias][0], in[upper][0] = 0, 1.01*nominal
 	want := 100e-9 - 60e-9*12/2.01/12
 	if got := value(); !(math.Abs(got-want) <= 1e-12*want) {
 		t.Errorf("off the point: %.12g, want %.12g", got, want)
@@ -137,7 +138,7 @@ func TestAcrossLimits(t *testing.T) {
 	for i := range direction {
 		direction[i] = []float64{0}
 	}
-	direction[upper][0] = 1
+	direction[upper][0] = nominal
 	dst, ddst := [][]float64{{0}}, [][]float64{{0}}
 	p.Tangents(dst, ddst, in, direction, p.NewFrame(1))
 	if want := 60e-9 / (2.01 * 2.01); !(math.Abs(ddst[0][0]-want) <= 1e-12*want) {

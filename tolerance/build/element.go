@@ -76,16 +76,13 @@ func (c *compiler) element(e *environment, x source, p part.Parameter, name stri
 	return c.Graph.Mul(c.base(x, p, name), c.surround(e, x, p.Scatter))
 }
 
-// base is a parameter as it is delivered, at 25 °C, 50 % humidity and new.
+// base is a parameter as it is delivered, at 25 °C, 50 % humidity and new:
+// nominal·(1 + tolerance·z). The nominal value is the input's centre and not
+// part of the equation, so that parts of other values leave the equation as it is.
 func (c *compiler) base(x source, p part.Parameter, name string) tape.Ref {
-	g := c.Graph
 	column := c.column(x, name, p.Shape, p.Correlation.Value)
-	column.HalfWidth = p.Tolerance
-	nominal := g.Constant(p.Value)
-	if p.Absolute || p.Value == 0 {
-		return g.Add(nominal, c.input(x.ref, name, column, 1))
-	}
-	return g.Mul(nominal, g.Add(g.Constant(1), c.input(x.ref, name, column, 1/p.Value)))
+	column.Centre, column.HalfWidth = p.Value, p.HalfWidth()
+	return c.input(x.ref, name, column)
 }
 
 // surround is the factor by which temperature, humidity and age change a part.
@@ -133,7 +130,7 @@ func (c *compiler) onePlus(a, b tape.Ref) tape.Ref {
 func (c *compiler) coefficient(x source, name string, s part.Scatter, spread part.Spread) tape.Ref {
 	column := c.column(x, name, s.Shape, s.Correlation.Temperature)
 	column.Centre, column.HalfWidth = spread.Value, spread.Spread
-	return c.input(x.ref, x.prefix+name, column, 1)
+	return c.input(x.ref, x.prefix+name, column)
 }
 
 // interpolate is the piecewise linear law through the points, level beyond
@@ -174,7 +171,7 @@ func (c *compiler) column(x source, name string, shape part.Shape, rho float64) 
 }
 
 // input is the graph's input for a parameter of a piece, made on first use.
-func (c *compiler) input(ref, parameter string, column scatter.Column, perUnit float64) tape.Ref {
+func (c *compiler) input(ref, parameter string, column scatter.Column) tape.Ref {
 	k := ref + "|" + parameter
 	if v, ok := c.inputs[k]; ok {
 		return v
@@ -182,7 +179,7 @@ func (c *compiler) input(ref, parameter string, column scatter.Column, perUnit f
 	v := c.Graph.Input()
 	c.inputs[k] = v
 	c.Inputs = append(c.Inputs, Input{
-		Ref: ref, Parameter: parameter, Column: column, PerUnit: perUnit, Common: c.commonness(column),
+		Ref: ref, Parameter: parameter, Column: column, Common: c.commonness(column),
 	})
 	return v
 }

@@ -116,12 +116,13 @@ func TestShapedInputs(t *testing.T) {
 	}
 	want := map[string]float64{
 		"moving.stray model": 0.02, "moving.stray gap": 0.005, "moving.sensor model": 0.1,
-		"L1 model": 0.01, "L1 diameter": 0.01, "L2 model": 0.01, "L2 diameter": 0.01,
+		"L1 model": 0.01, "L1 diameter": 0.01 * 0.03, "L2 model": 0.01, "L2 diameter": 0.01 * 0.03,
 		"L1 diameter temperature": 2e-6, "L2 diameter temperature": 2e-6, "L3 model": 0.01,
-		"other.stray model": 0.02, "other.stray palm": 0.2, "own.antenna model": 0.02,
+		"other.stray model": 0.02, "other.stray palm": 0.2 * 0.1, "own.antenna model": 0.02,
 		"moving.level value": 0.1, "other.level value": 0.1, // of the kind
 	}
-	if d := cmp.Diff(want, got); d != "" {
+	nearly := cmp.Comparer(func(a, b float64) bool { return math.Abs(a-b) <= 1e-12*math.Abs(b) })
+	if d := cmp.Diff(want, got, nearly); d != "" {
 		t.Errorf("(-want +got)\n%s", d)
 	}
 	if lots["L1 model"] < 0 || lots["L1 model"] != lots["L2 model"] || lots["L1 model"] == lots["L3 model"] {

@@ -30,8 +30,7 @@ type Input struct {
 	Ref       string // the part's reference, "stage.setting", or the trimmer's reference
 	Parameter string // "value", "temperature", "ageing", "beta", "setting error", …
 	scatter.Column
-	PerUnit float64 // change of the column for one SI unit of the parameter
-	Common  float64 // product-moment correlation with another piece of its lot
+	Common float64 // product-moment correlation with another piece of its lot
 }
 
 // Output is an output at a condition, or its change from another.
@@ -142,7 +141,7 @@ func (c *compiler) compileTrims() []tape.Ref {
 		column := len(c.Inputs)
 		wrong := c.input(place.Part.Ref, "setting error", scatter.Column{
 			Shape: "uniform", Lot: -1, HalfWidth: t.Within, Stream: stream(place.Part.Ref, "setting error"),
-		}, 1)
+		})
 		u := g.Unknown()
 		n := TrimNodes{AtLow: with(g.Constant(0)), AtHigh: with(g.Constant(1)), ErrorInput: column}
 		n.Setting = g.Root(u, g.Constant(0), g.Constant(1), g.Sub(with(u), wrong))

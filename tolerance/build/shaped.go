@@ -24,7 +24,7 @@ func (c *compiler) shaped(e *environment, x source, shape *Geometry, s part.Scat
 	}
 	model := c.input(x.ref, "model", scatter.Column{
 		Shape: s.Shape, Lot: lot(first, "model"), Rho: 1, HalfWidth: s.Tolerance, Stream: stream(x.ref, "model"),
-	}, 1)
+	})
 	g := c.Graph
 	return g.Mul(g.Mul(figure, g.Add(g.Constant(1), model)), c.surround(e, x, s))
 }

@@ -153,7 +153,7 @@ func (l *Linear) rootSumSquare(node int, o *OutputReport) {
 		x := l.Inputs[t.Input]
 		o.Contributions = append(o.Contributions, Contribution{
 			Ref: x.Ref, Parameter: x.Parameter,
-			Sensitivity: Figure(l.Slopes[node][t.Input] * x.PerUnit),
+			Sensitivity: Figure(l.Slopes[node][t.Input]),
 			Share:       Figure(t.Variance / variance),
 		})
 	}

@@ -4,6 +4,7 @@ package offer
 
 import (
 	"math"
+	"slices"
 	"sort"
 
 	"batchwright/bom/part"
@@ -149,4 +150,26 @@ func (o *Offer) Most() int {
 		}
 	}
 	return most
+}
+
+// Limited reports whether any price of a part holds only while a stock lasts.
+func (b *Book) Limited(p part.Part) bool {
+	o, _ := b.Offer(p)
+	for _, r := range o.Rows {
+		if r.Stock != NoLimit {
+			return true
+		}
+	}
+	return false
+}
+
+// After is the same offer once so many pieces are taken from its stock.
+func (o *Offer) After(taken int) *Offer {
+	left := &Offer{Family: o.Family, Rows: slices.Clone(o.Rows)}
+	for i := range left.Rows {
+		if r := &left.Rows[i]; r.Stock != NoLimit {
+			r.Stock = max(0, r.Stock-taken)
+		}
+	}
+	return left
 }

@@ -36,6 +36,16 @@ func Key(p part.Part) string {
 	return b.String()
 }
 
+// Shelf is the same for two parts that the price book knows as one thing, and
+// so draw on one stock, whatever else a build file says of each.
+func Shelf(p part.Part) string {
+	text := p.Family + "|" + figure(p.Grade()) + "|" + figure(p.Main().Value)
+	if low := p.Parameter("low"); low != nil {
+		text += "|" + figure(low.Value)
+	}
+	return text
+}
+
 // shape reads the zero value as what it stands for.
 func shape(s part.Shape) part.Shape {
 	if s == "" {
@@ -70,11 +80,15 @@ func New(parts []part.Part, units, sparesPercent int, book *offer.Book, families
 		Currency: book.Currency, Units: units, SparesPercent: sparesPercent,
 		Book: book.Name, Demonstration: book.Demonstration,
 	}
+	taken := map[string]int{} // of each shelf
 	for _, g := range group(parts) {
 		l := describe(g, families)
 		l.Needed = l.PerUnit * units
 		l.Spares = Spares(l.Needed, sparesPercent)
-		l.buy(g[0], book)
+		shelf := Shelf(g[0])
+		if l.buy(g[0], book, taken[shelf]); l.Why == "" {
+			taken[shelf] += l.Buy
+		}
 		if l.Why != "" {
 			o.Unoffered = append(o.Unoffered, l)
 			continue
@@ -128,8 +142,9 @@ func describe(g []part.Part, families *part.Catalogue) Line {
 	return l
 }
 
-// buy fills in quantity and price, or why there is none.
-func (l *Line) buy(p part.Part, book *offer.Book) {
+// buy fills in quantity and price, or why there is none. Other lines have taken
+// some pieces already.
+func (l *Line) buy(p part.Part, book *offer.Book, taken int) {
 	l.Buy = l.Needed + l.Spares
 	if p.Family == "" {
 		l.Why = "no family is given"
@@ -140,6 +155,9 @@ func (l *Line) buy(p part.Part, book *offer.Book) {
 		l.Why = fmt.Sprintf("%s does not offer it", book.Name)
 		return
 	}
+	if taken > 0 {
+		o = o.After(taken)
+	}
 	buy, each, price, ok := o.Buy(l.Buy)
 	switch most := o.Most(); {
 	case !ok && most == offer.NoLimit:
@@ -147,6 +165,9 @@ func (l *Line) buy(p part.Part, book *offer.Book) {
 		return
 	case !ok:
 		l.Why = fmt.Sprintf("%s has %d, %d are needed", book.Name, most, l.Buy)
+		if taken > 0 {
+			l.Why = fmt.Sprintf("%s has %d left beside the %d of another line, %d are needed", book.Name, most, taken, l.Buy)
+		}
 		return
 	}
 	l.Multiple = o.Multiple(l.Buy)

@@ -5,6 +5,7 @@ package part
 
 import (
 	"math"
+	"slices"
 
 	"batchwright/bom/quantity"
 )
@@ -110,4 +111,11 @@ type Part struct {
 	Parameters []Parameter
 	Rated      float64 // voltage, V; 0 unsaid
 	LotsMixed  bool    // pieces deliberately drawn from different lots
+}
+
+// Named is the same part under another reference, with parameters of its own.
+func (p Part) Named(ref string) Part {
+	p.Ref = ref
+	p.Parameters = slices.Clone(p.Parameters)
+	return p
 }

@@ -129,9 +129,9 @@ func (p *Place) strained(rated float64) bool {
 // of the bias law's limits at u. A piece keeps to one place z between them, and
 // pieces of a lot resemble each other in it as they do over temperature. It is
 // 1 for parts without a law or a voltage.
-func (c *compiler) biased(e *environment, x source, p *Place) tape.Ref {
+func (c *compiler) biased(e *environment, x source, p *Place, piece part.Part) tape.Ref {
 	g := c.Graph
-	s := p.Part.Parameters[0].Scatter
+	s := piece.Parameters[0].Scatter
 	if len(s.Bias) == 0 || p.Across == nil {
 		return g.Constant(1)
 	}
@@ -139,7 +139,7 @@ func (c *compiler) biased(e *environment, x source, p *Place) tape.Ref {
 	if p.Across.Reference != "" {
 		across = c.referred(e, p.Across.Reference)
 	}
-	u := g.Div(g.Abs(across), g.Constant(p.Part.Rated))
+	u := g.Div(g.Abs(across), g.Constant(piece.Rated))
 	share := func(p part.BiasPoint) float64 { return p.Share }
 	middle := interpolate(g, s.Bias, u, share, func(p part.BiasPoint) float64 { return (p.Low + p.High) / 2 })
 	factor := g.Add(g.Constant(1), middle)
@@ -150,5 +150,5 @@ func (c *compiler) biased(e *environment, x source, p *Place) tape.Ref {
 	if v, constant := g.Value(half); constant && v == 0 {
 		return factor
 	}
-	return g.Add(factor, g.Mul(c.coefficient(x, "bias", s, part.Spread{Spread: 1}), half))
+	return g.Add(factor, g.Mul(c.coefficient(x, "bias", s, whole), half))
 }

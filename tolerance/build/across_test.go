@@ -263,7 +263,7 @@ func TestAcrossOpen(t *testing.T) {
 		list := b.Fittings(b.Openings[0])
 		var names []string
 		for _, f := range list {
-			names = append(names, f.Family)
+			names = append(names, f.Pieces[0].Family)
 		}
 		return strings.Join(names, " "), b, list
 	}

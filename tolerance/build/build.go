@@ -81,7 +81,9 @@ type Place struct {
 	Role     string
 	Type     part.Type
 	Fitted   bool
-	Part     part.Part
+	Part     part.Part // the first of two where Combine says so
+	Second   part.Part // the other
+	Combine  Combine
 	Geometry *Geometry // of a coil given by its winding, nil for others
 	Quantity string    // the value as the file says it
 	SameAs   string    // the position whose buying line this shares; "" for its own
@@ -125,8 +127,11 @@ type Opening struct {
 	Positions  []string // "fixed.upper"; the first holds the `choose`
 	Type       part.Type
 	Families   []string
-	Tolerances []float64      // empty: every grade its family sells
-	Values     []Worth        // empty: as written
+	Tolerances []float64 // empty: every grade its family sells
+	Values     []Worth   // empty: as written
+	Combines   []Combine // how pieces may make up the value; empty: one piece
+	Lots       []bool    // whether pieces may come from mixed lots; empty: as written
+	pairs      pairValues
 	node       *document.Node // the first position's part
 }
 
@@ -163,9 +168,7 @@ func (b *Build) Parts() []part.Part {
 	var parts []part.Part
 	for _, s := range b.Stages {
 		for _, p := range s.Places {
-			if p.Fitted {
-				parts = append(parts, p.Part)
-			}
+			parts = append(parts, p.Pieces()...)
 		}
 	}
 	return parts

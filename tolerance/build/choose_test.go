@@ -37,9 +37,9 @@ func TestFittings(t *testing.T) {
 			}
 			var got []string
 			for _, f := range b.Fittings(b.Openings[0]) {
-				got = append(got, fmt.Sprintf("%s %g %s", f.Family, f.Tolerance, f.Text))
-				if f.Part.Grade() != f.Tolerance {
-					t.Errorf("%s is placed with a tolerance of %g", got[len(got)-1], f.Part.Grade())
+				got = append(got, fmt.Sprintf("%s %g %s", f.Pieces[0].Family, f.Pieces[0].Tolerance, f.Text))
+				if f.Pieces[0].Part.Grade() != f.Pieces[0].Tolerance {
+					t.Errorf("%s is placed with a tolerance of %g", got[len(got)-1], f.Pieces[0].Part.Grade())
 				}
 			}
 			if strings.Join(got, ", ") != strings.Join(c.want, ", ") {

@@ -29,7 +29,10 @@ func (c *compiler) placed(e *environment, s *Stage, p *Place, parameter string) 
 	if !p.Fitted {
 		return c.Graph.Constant(0)
 	}
-	x := source{ref: p.Part.Ref, line: c.lines[p.Part.Ref], mixed: p.Part.LotsMixed, stage: s}
+	if p.Paired() {
+		return c.joined(p, c.single(e, s, p, p.Part), c.single(e, s, p, p.Second))
+	}
+	x := c.source(s, p.Part)
 	if p.Type.Trimmer() {
 		return c.trimmer(e, x, s, p)
 	}
@@ -37,7 +40,7 @@ func (c *compiler) placed(e *environment, s *Stage, p *Place, parameter string) 
 		return c.shaped(e, x, p.Geometry, p.Part.Parameters[0].Scatter)
 	}
 	if len(p.Part.Parameters) == 1 {
-		return c.Graph.Mul(c.element(e, x, p.Part.Parameters[0], "value"), c.biased(e, x, p))
+		return c.single(e, s, p, p.Part)
 	}
 	for _, q := range p.Part.Parameters {
 		if q.Name == parameter {
@@ -46,6 +49,17 @@ func (c *compiler) placed(e *environment, s *Stage, p *Place, parameter string) 
 		}
 	}
 	return c.Graph.Constant(math.NaN())
+}
+
+// source is where a part's figures belong.
+func (c *compiler) source(s *Stage, p part.Part) source {
+	return source{ref: p.Ref, line: c.lines[p.Ref], mixed: p.LotsMixed, stage: s}
+}
+
+// single is the value of a piece that has no other figure.
+func (c *compiler) single(e *environment, s *Stage, p *Place, piece part.Part) tape.Ref {
+	x := c.source(s, piece)
+	return c.Graph.Mul(c.element(e, x, piece.Parameters[0], "value"), c.biased(e, x, p, piece))
 }
 
 func boolean(b bool) float64 {
@@ -76,24 +90,20 @@ func (c *compiler) element(e *environment, x source, p part.Parameter, name stri
 	return c.Graph.Mul(c.base(x, p, name), c.surround(e, x, p.Scatter))
 }
 
-// base is a parameter as it is delivered, at 25 °C, 50 % humidity and new:
-// nominal·(1 + tolerance·z). The nominal value is the input's centre and not
-// part of the equation, so that parts of other values leave the equation as it is.
+// base is a parameter as it is delivered, at 25 °C, 50 % humidity and new.
 func (c *compiler) base(x source, p part.Parameter, name string) tape.Ref {
-	column := c.column(x, name, p.Shape, p.Correlation.Value)
-	column.Centre, column.HalfWidth = p.Value, p.HalfWidth()
-	return c.input(x.ref, name, column)
+	return c.input(x.ref, name, c.column(x, name, baseFigure(p)))
 }
 
 // surround is the factor by which temperature, humidity and age change a part.
 func (c *compiler) surround(e *environment, x source, s part.Scatter) tape.Ref {
 	g := c.Graph
 	factor := c.thermal(e, x, s)
-	if s.Humidity != (part.Spread{}) {
+	if s.Humidity != (part.Spread{}) || c.open[x.ref] {
 		eta := c.coefficient(x, "humidity", s, s.Humidity)
 		factor = g.Mul(factor, c.onePlus(eta, g.Constant(c.variableNamed(e, Humidity)-0.5)))
 	}
-	if s.Ageing.Spread != (part.Spread{}) {
+	if s.Ageing.Spread != (part.Spread{}) || c.open[x.ref] {
 		a := c.coefficient(x, "ageing", s, s.Ageing.Spread)
 		factor = g.Mul(factor, c.onePlus(a, g.Constant(elapsed(s.Ageing.Per, c.variableNamed(e, Age)))))
 	}
@@ -104,14 +114,14 @@ func (c *compiler) surround(e *environment, x source, s part.Scatter) tape.Ref {
 func (c *compiler) thermal(e *environment, x source, s part.Scatter) tape.Ref {
 	g := c.Graph
 	single := x.line != "" && x.prefix == "" // its derivative by α is always wanted
-	if !single && len(s.Law) == 0 && s.Temperature == (part.Spread{}) {
+	if !single && !c.open[x.ref] && len(s.Law) == 0 && s.Temperature == (part.Spread{}) {
 		return g.Constant(1)
 	}
 	delta := g.Add(g.Constant(c.variableNamed(e, Temperature)-reference25), c.rise(e, x.stage))
 	if len(s.Law) == 0 {
 		return c.onePlus(c.coefficient(x, "temperature", s, s.Temperature), delta)
 	}
-	z := c.coefficient(x, "temperature", s, part.Spread{Spread: 1})
+	z := c.coefficient(x, "temperature", s, whole)
 	celsius := g.Add(delta, g.Constant(reference25))
 	at := func(p part.LawPoint) float64 { return p.Celsius }
 	middle := interpolate(g, s.Law, celsius, at, func(p part.LawPoint) float64 { return (p.Low + p.High) / 2 })
@@ -124,13 +134,9 @@ func (c *compiler) onePlus(a, b tape.Ref) tape.Ref {
 	return c.Graph.Add(c.Graph.Constant(1), c.Graph.Mul(a, b))
 }
 
-// coefficient is an input such as α: its mean and its spread. What humidity and
-// age do to a part follows from its material as α does, so all three share the
-// family's correlation for temperature.
+// coefficient is an input such as α.
 func (c *compiler) coefficient(x source, name string, s part.Scatter, spread part.Spread) tape.Ref {
-	column := c.column(x, name, s.Shape, s.Correlation.Temperature)
-	column.Centre, column.HalfWidth = spread.Value, spread.Spread
-	return c.input(x.ref, x.prefix+name, column)
+	return c.input(x.ref, x.prefix+name, c.column(x, name, coefficientFigure(s, spread)))
 }
 
 // interpolate is the piecewise linear law through the points, level beyond
@@ -160,12 +166,14 @@ func elapsed(per part.Clock, seconds float64) float64 {
 	return math.Log10(hours)
 }
 
-// column is the scatter of one parameter of a piece. Pieces on one buying line
-// share a lot, one draw a batch for each parameter.
-func (c *compiler) column(x source, name string, shape part.Shape, rho float64) scatter.Column {
-	out := scatter.Column{Shape: shape, Lot: -1, Stream: stream(x.ref, x.prefix+name)}
-	if x.line != "" && !x.mixed && rho > 0 {
-		out.Lot, out.Rho = lot(c.lots[x.line], x.prefix+name), rho
+// column is how one input of a piece is drawn. Pieces on one buying line share
+// a lot, one draw a batch for each parameter.
+func (c *compiler) column(x source, name string, f figure) scatter.Column {
+	out := scatter.Column{
+		Shape: f.shape, Lot: -1, Stream: stream(x.ref, x.prefix+name), Centre: f.centre, HalfWidth: f.half,
+	}
+	if x.line != "" && !x.mixed && f.rho > 0 {
+		out.Lot, out.Rho = lot(c.lots[x.line], x.prefix+name), f.rho
 	}
 	return out
 }
@@ -178,22 +186,12 @@ func (c *compiler) input(ref, parameter string, column scatter.Column) tape.Ref 
 	}
 	v := c.Graph.Input()
 	c.inputs[k] = v
-	c.Inputs = append(c.Inputs, Input{
-		Ref: ref, Parameter: parameter, Column: column, Common: c.commonness(column),
-	})
+	in := Input{Ref: ref, Parameter: parameter, Column: column}
+	if column.Lot >= 0 {
+		in.Common = commonness(column.Shape, column.Rho)
+	}
+	c.Inputs = append(c.Inputs, in)
 	return v
-}
-
-// commonness is the correlation of two pieces' z that share a lot.
-func (c *compiler) commonness(column scatter.Column) float64 {
-	if column.Lot < 0 {
-		return 0
-	}
-	k := likeness{column.Shape, column.Rho}
-	if _, known := c.common[k]; !known {
-		c.common[k] = scatter.Correlation(column.Shape, column.Rho)
-	}
-	return c.common[k]
 }
 
 // stream numbers the draws of a parameter of a piece. It follows from the

@@ -6,30 +6,91 @@ import (
 
 	"batchwright/bom/document"
 	"batchwright/bom/part"
+	"batchwright/bom/series"
 )
 
-// Fitting is what an opening is filled with.
+// Fitting is what an opening is filled with: one piece, or two joined.
 type Fitting struct {
+	Combine Combine
+	Pieces  []Piece
+	Worth        // of the whole
+	Mixed   bool // pieces come from mixed lots
+}
+
+// Piece is one thing that is bought for an opening.
+type Piece struct {
 	Family    string
 	Tolerance float64 // 0 where the family is not sold by tolerance
 	Worth
 	Part part.Part
 }
 
-// Fittings lists everything an opening may be filled with, in the order in
-// which the build file names families, values and tolerances.
+// Fittings lists everything an opening may be filled with: combinations and
+// lots in the order in which the build file names them, and within those
+// families, values and tolerances likewise.
 func (b *Build) Fittings(o Opening) []Fitting {
 	var list []Fitting
+	lots := o.Lots
+	if len(lots) == 0 {
+		lots = []bool{b.Place(o.Positions[0]).Part.LotsMixed}
+	}
+	for _, combine := range o.combines() {
+		var plain []Fitting
+		if combine == Single {
+			plain = b.singles(o)
+		} else {
+			plain = b.pairs(o, combine)
+		}
+		for _, mixed := range lots {
+			list = append(list, inLots(plain, mixed)...)
+		}
+	}
+	return list
+}
+
+// combines are the combinations an opening allows.
+func (o Opening) combines() []Combine {
+	if len(o.Combines) == 0 {
+		return []Combine{Single}
+	}
+	return o.Combines
+}
+
+// inLots are fittings of pieces that come from one lot, or from mixed ones.
+func inLots(list []Fitting, mixed bool) []Fitting {
+	out := make([]Fitting, len(list))
+	for i, f := range list {
+		f.Mixed, f.Pieces = mixed, slices.Clone(f.Pieces)
+		for k := range f.Pieces {
+			f.Pieces[k].Part.LotsMixed = mixed
+		}
+		out[i] = f
+	}
+	return out
+}
+
+// singles are the fittings of one piece.
+func (b *Build) singles(o Opening) []Fitting {
 	values := o.Values
 	if len(values) == 0 {
 		values = []Worth{b.written(o)}
 	}
+	var list []Fitting
+	for _, p := range b.pieces(o, values) {
+		list = append(list, Fitting{Combine: Single, Pieces: []Piece{p}, Worth: p.Worth})
+	}
+	return list
+}
+
+// pieces are what the families of an opening sell of some values.
+func (b *Build) pieces(o Opening, values []Worth) []Piece {
+	var list []Piece
 	for _, name := range o.Families {
 		family, _ := b.Families.Family(name)
 		for _, value := range values {
 			for _, tolerance := range o.grades(family) {
 				if p, err := b.place(o, family, value, tolerance); err == nil {
-					list = append(list, Fitting{name, tolerance, value, p})
+					list = append(list, Piece{name, tolerance, value, p})
 				}
 			}
 		}
@@ -74,7 +135,6 @@ func (b *Build) place(o Opening, f *part.Family, w Worth, tolerance float64) (pa
 	if err != nil {
 		return part.Part{}, err
 	}
-	p.LotsMixed = written.Part.LotsMixed
 	if o.node.Get("rated") != nil {
 		p.Rated = written.Part.Rated
 	}
@@ -111,12 +171,45 @@ func (b *Build) Fit(choice []Fitting) (*Build, error) {
 	for i, o := range b.Openings {
 		for _, position := range o.Positions {
 			p := out.Place(position)
-			ref := p.Part.Ref
-			p.Part = choice[i].Part
-			p.Part.Parameters = slices.Clone(choice[i].Part.Parameters)
-			p.Part.Ref = ref
+			p.fill(p.Part.Ref, choice[i].Combine, choice[i].parts())
 			p.Quantity = choice[i].Text
 		}
 	}
 	return &out, nil
+}
+
+// parts are the pieces' parts.
+func (f Fitting) parts() []part.Part {
+	var parts []part.Part
+	for _, p := range f.Pieces {
+		parts = append(parts, p.Part)
+	}
+	return parts
+}
+
+// fill puts one piece, or two, into a place, under the place's reference.
+func (p *Place) fill(ref string, combine Combine, pieces []part.Part) {
+	p.Combine = combine
+	if len(pieces) == 1 {
+		p.Part = pieces[0].Named(ref)
+		return
+	}
+	first, second := pieceRefs(ref)
+	p.Part, p.Second = pieces[0].Named(first), pieces[1].Named(second)
+}
+
+// Grade is the tolerance of the whole: that of the only piece, or of two by
+// how much of the whole each makes up, both at their limits.
+//
+//	Σ |∂v/∂v_i|·v_i·t_i / v
+func (f Fitting) Grade(t part.Type) float64 {
+	if len(f.Pieces) == 1 {
+		return f.Pieces[0].Tolerance
+	}
+	a, b := f.Pieces[0], f.Pieces[1]
+	first := a.High / (a.High + b.High) // of a sum
+	if f.Combine.Join(t) == series.Reciprocal {
+		first = 1 - first
+	}
+	return first*a.Tolerance + (1-first)*b.Tolerance
 }

@@ -4,7 +4,6 @@ import (
 	"fmt"
 
 	"batchwright/bom/order"
-	"batchwright/bom/part"
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/scatter"
 	"batchwright/tolerance/tape"
@@ -73,14 +72,8 @@ type compiler struct {
 	inputs map[string]tape.Ref // by reference and parameter
 	lines  map[string]string   // buying line of each reference
 	lots   map[string]string   // buying line -> the first reference on it
-	common map[likeness]float64
+	open   map[string]bool     // pieces that may be others: given every term a part may have
 	err    error
-}
-
-// likeness is what the correlation of two pieces follows from.
-type likeness struct {
-	shape part.Shape
-	rho   float64
 }
 
 // Compile builds the model. Errors are faults of this program, not of the
@@ -98,7 +91,15 @@ func (b *Build) Compile() (*Model, error) {
 
 // CompileTargets builds the model of what the targets judge, and no more.
 func (b *Build) CompileTargets() (*Model, error) {
+	return b.CompileOpen(nil)
+}
+
+// CompileOpen is CompileTargets with every term that a part may have for the
+// pieces with some references, so that other parts in their places need other
+// inputs only, and not other equations: see PieceInputs.
+func (b *Build) CompileOpen(refs map[string]bool) (*Model, error) {
 	c := b.newCompiler()
+	c.open = refs
 	c.compileTargets(c.environments(c.compileTrims()), map[string]int{})
 	c.findTrims()
 	return c.Model, c.err
@@ -110,7 +111,6 @@ func (b *Build) newCompiler() *compiler {
 		inputs: map[string]tape.Ref{},
 		lines:  map[string]string{},
 		lots:   map[string]string{},
-		common: map[likeness]float64{},
 	}
 	for _, p := range b.Parts() {
 		key := order.Key(p)

@@ -13,7 +13,7 @@ import (
 )
 
 // chooseKeys are the keys of an open position.
-var chooseKeys = []string{"families", "tolerances", "values", "around", "within", "series", "combine"}
+var chooseKeys = []string{"families", "tolerances", "values", "around", "within", "series", "combine", "lots"}
 
 // readOpening reads what may be chosen for a part; nil where nothing is open.
 func (r *reader) readOpening(s stageNode, p *Place, n *document.Node, family *part.Family) *Opening {
@@ -27,8 +27,13 @@ func (r *reader) readOpening(s stageNode, p *Place, n *document.Node, family *pa
 	o := Opening{Positions: []string{s.Name + "." + p.Role}, Type: p.Type, node: n}
 	o.Families = r.readOpenFamilies(at, p.Type, family)
 	o.Tolerances = r.readOpenTolerances(at, o.Families)
-	o.Values = r.readOpenValues(at, p)
-	r.readCombine(at.Get("combine"))
+	o.Combines = r.readCombine(at.Get("combine"), p)
+	o.Values = r.readOpenValues(at, p, &o)
+	o.Lots = r.readOpenLots(at.Get("lots"))
+	if o.paired() {
+		r.reserve(n, p.Part.Ref)
+		r.readPairValues(at, p, n, &o)
+	}
 	if len(o.Families) == 0 {
 		return nil // complained of
 	}
@@ -103,9 +108,12 @@ func (r *reader) soldInAny(families []string, tolerance float64) bool {
 
 // readOpenValues reads the values to choose from, listed or around one; of a
 // trimmer, the ranges.
-func (r *reader) readOpenValues(at *document.Node, p *Place) []Worth {
+func (r *reader) readOpenValues(at *document.Node, p *Place, o *Opening) []Worth {
 	list, around := at.Get("values"), at.Get("around")
 	switch {
+	case list == nil && around == nil && !o.paired() && (at.Get("within") != nil || at.Get("series") != nil):
+		r.Add(at, "within or series without around", "around: the value to stay near, or values: a list")
+		return nil
 	case list == nil && around == nil:
 		return nil
 	case !p.Single():
@@ -118,7 +126,7 @@ func (r *reader) readOpenValues(at *document.Node, p *Place) []Worth {
 		r.Add(around, "around a trimmer's range", "values: a list of ranges")
 		return nil
 	case list == nil:
-		return r.readAround(at, around, p)
+		return r.readAround(at, around, p, o)
 	}
 	var values []Worth
 	for _, n := range r.items(list, "values") {
@@ -153,7 +161,7 @@ func (r *reader) readWorth(n *document.Node, t part.Type) (Worth, bool) {
 }
 
 // readAround reads `around: 220 pF, within: 10 %, series: E24`.
-func (r *reader) readAround(at, around *document.Node, p *Place) []Worth {
+func (r *reader) readAround(at, around *document.Node, p *Place, o *Opening) []Worth {
 	var centre, within float64
 	name := "E24"
 	ok := r.read(around, p.Type.Unit(), &centre)
@@ -167,6 +175,9 @@ func (r *reader) readAround(at, around *document.Node, p *Place) []Worth {
 		return nil
 	}
 	values := series.Between(name, centre*(1-within), centre*(1+within))
+	if len(values) == 0 && o.paired() && !slices.Contains(o.Combines, Single) {
+		values = []float64{centre} // what two pieces are to come to
+	}
 	if len(values) == 0 {
 		r.Add(around, "around", "a value with "+name+" values within "+quantity.Format(within, quantity.Percent, 3)+" of it")
 		return nil
@@ -187,12 +198,49 @@ func sortByDistance(values []float64, centre float64) {
 	})
 }
 
-// readCombine reads how many pieces may make up the part.
-func (r *reader) readCombine(n *document.Node) {
+// readCombine reads how pieces may make up the part.
+func (r *reader) readCombine(n *document.Node, p *Place) []Combine {
 	if n == nil {
-		return
+		return nil
 	}
+	var list []Combine
 	for _, item := range r.items(n, "combine") {
-		r.Word(item, "a combination", "single")
+		word, ok := r.Word(item, "a combination", combines...)
+		switch c := Combine(word); {
+		case !ok:
+		case c != Single && !joinable(p.Type):
+			r.Add(item, word+" of a "+string(p.Type), "single: only resistors, capacitors and coils make up pairs")
+		case c == InSeries && p.Type == part.Capacitor && p.Across != nil:
+			r.Add(item, "series pair under a steady voltage", unshared)
+		case slices.Contains(list, c):
+			r.Add(item, "combination named twice", "each once")
+		default:
+			list = append(list, c)
+		}
 	}
+	return list
+}
+
+// paired says whether two pieces may fill an opening.
+func (o Opening) paired() bool {
+	return slices.Contains(o.Combines, Parallel) || slices.Contains(o.Combines, InSeries)
+}
+
+// readOpenLots reads whether pieces may come from one lot or from mixed ones.
+func (r *reader) readOpenLots(n *document.Node) []bool {
+	if n == nil {
+		return nil
+	}
+	var list []bool
+	for _, item := range r.items(n, "lots") {
+		word, ok := r.Word(item, "lots: mixed or one", "mixed", "one")
+		switch mixed := word == "mixed"; {
+		case !ok:
+		case slices.Contains(list, mixed):
+			r.Add(item, "lots named twice", "each once")
+		default:
+			list = append(list, mixed)
+		}
+	}
+	return list
 }

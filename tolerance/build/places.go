@@ -12,7 +12,7 @@ import (
 
 // partKeys are the keys of a part, besides part.ScatterKeys.
 var partKeys = []string{"ref", "value", "family", "choose", "same_as", "lots", "parameters", "position", "winding",
-	"across", "rated", "bias_law"}
+	"across", "rated", "bias_law", "parallel", "series"}
 
 var reference = regexp.MustCompile(`^[A-Z]{1,4}[0-9]{1,4}[A-Z]?$`)
 
@@ -66,6 +66,9 @@ func (r *reader) readPlace(s stageNode, p *Place, n *document.Node, keys []strin
 	if same := n.Get("same_as"); same != nil {
 		r.Keys(n, "ref", "same_as", "across")
 		p.SameAs = same.Value // resolved once every part is known
+		return
+	}
+	if r.readPair(s, p, n) {
 		return
 	}
 	r.Keys(n, append(append([]string{}, keys...), part.ScatterKeys...)...)

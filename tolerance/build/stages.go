@@ -35,6 +35,7 @@ func (r *reader) readStages(n *document.Node) {
 	r.settleUnits()
 	r.checkReferences()
 	r.checkAcross()
+	r.checkFittings()
 	r.checkGeometries()
 	r.checkFormulas()
 	r.checkCycles()

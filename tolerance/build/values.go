@@ -128,6 +128,9 @@ func (r *reader) joinOpening(decider, position string) {
 	for i := range r.build.Openings {
 		if o := &r.build.Openings[i]; o.Positions[0] == decider {
 			o.Positions = append(o.Positions, position)
+			if p := r.build.Place(position); o.paired() {
+				r.reserve(r.refs[p.Part.Ref], p.Part.Ref)
+			}
 		}
 	}
 }
@@ -154,6 +157,9 @@ func (r *reader) resolve(s stageNode, p *Place) {
 			return
 		}
 		if root.SameAs == "" || root.resolved {
+			if root.Paired() {
+				r.reserve(at, p.Part.Ref)
+			}
 			p.take(root, next)
 			return
 		}
@@ -163,10 +169,7 @@ func (r *reader) resolve(s stageNode, p *Place) {
 
 // take copies what the deciding part is, keeping the reference.
 func (p *Place) take(root *Place, from string) {
-	ref := p.Part.Ref
-	p.Part = root.Part
-	p.Part.Ref = ref
-	p.Part.Parameters = append([]part.Parameter(nil), root.Part.Parameters...)
+	p.fill(p.Part.Ref, root.Combine, root.Pieces())
 	p.Geometry, p.Quantity, p.Position = root.Geometry, root.Quantity, root.Position
 	if !root.resolved {
 		p.SameAs = from

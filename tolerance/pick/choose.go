@@ -2,21 +2,22 @@ package pick
 
 import (
 	"context"
-	"fmt"
+	"slices"
+	"time"
 
-	"batchwright/bom/offer"
-	"batchwright/bom/order"
-	"batchwright/bom/part"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick/exact"
 )
 
 // Options say how a build's openings are chosen.
 type Options struct {
-	Seed     uint64 // of the simulation that confirms
-	Units    int    // that it simulates at least
-	Limits   exact.Limits
-	Progress func(text string) // nil: not called
+	Seed       uint64            // of the simulation that confirms
+	Units      int               // that it simulates at least
+	SearchFor  time.Duration     // after which the best found so far is taken; 0: as long as it takes
+	Alternates int               // of each line that are looked for at most
+	Progress   func(text string) // nil: not called
+
+	limits exact.Limits // smaller ones, for tests
 }
 
 // Choose fills a build's openings with the cheapest parts by its price book
@@ -28,160 +29,175 @@ type Options struct {
 // Where nothing meets the targets, Result.Choices is what comes nearest, and
 // Result.Why says that.
 func Choose(ctx context.Context, b *build.Build, o Options) (*Result, *build.Build, error) {
-	c, err := newChooser(b, o)
+	c, err := newChooser(ctx, b, o)
 	if err != nil {
 		return nil, nil, err
 	}
-	c.context = ctx
-	if len(b.Openings) == 0 {
-		return &Result{Choices: []Choice{}, ProvedCheapest: true, Candidates: 1, CostPerUnit: c.order(b.Parts()).PerUnit}, b, nil
-	}
-	if r := c.unsold(); r != nil {
-		fitted, err := b.Fit(c.base)
+	if r, fitted, err := c.withoutSearch(); r != nil || err != nil {
 		return r, fitted, err
 	}
-	problem, err := c.problem()
+	found, err := c.cheapest()
 	if err != nil {
 		return nil, nil, err
 	}
-	found, err := problem.Cheapest(ctx, o.Limits)
-	if err != nil {
+	r, fitted, err := c.result(found)
+	if err != nil || found.Choice == nil {
+		return r, fitted, err
+	}
+	if err := c.addAlternates(r, found.Choice); err != nil {
 		return nil, nil, err
 	}
-	if found.Choice == nil && len(c.refused) == 0 { // what comes nearest needs every demand
-		problem.Judge = c.pictures.wholly
-		if found, err = problem.Cheapest(ctx, o.Limits); err != nil {
-			return nil, nil, err
-		}
-	}
-	return c.result(found)
+	return r, fitted, c.addBinding(r, found.Choice)
 }
 
 // chooser turns a build's openings into a problem.
 type chooser struct {
 	Options
+	*pictures
 	context  context.Context
-	build    *build.Build
-	fittings [][]build.Fitting // sold ones, of each opening
-	keys     [][]string        // their buying lines
-	base     []build.Fitting   // the first of each
-	fixed    map[string]int    // parts that are not open, by buying line
-	rest     int64             // the money for those
-	prices   map[lineCount]int64
-	pictures *pictures
-	refused  map[string]string // choices that the simulation refused, and why
+	end      time.Time // of the search; zero: none
+	trials   []*trial
+	answers  map[string]string // of choices simulated: "" where confirmed, else why not
+	refusals int
 }
 
-// newChooser lists what may fill each opening and is offered.
-func newChooser(b *build.Build, o Options) (*chooser, error) {
-	c := &chooser{Options: o, build: b, refused: map[string]string{}, prices: map[lineCount]int64{}}
-	for _, opening := range b.Openings {
-		var sold []build.Fitting
-		all := b.Fittings(opening)
-		for _, f := range all {
-			if c.offered(f.Part, len(opening.Positions)) {
-				sold = append(sold, f)
-			}
-		}
-		if len(all) == 0 {
-			return nil, fmt.Errorf("pick: nothing can fill %s", opening.Positions[0])
-		}
-		c.fittings = append(c.fittings, sold)
-		keys := make([]string, len(sold))
-		for j, f := range sold {
-			keys[j] = order.Key(f.Part)
-		}
-		c.keys = append(c.keys, keys)
-		if len(sold) > 0 {
-			all = sold
-		}
-		c.base = append(c.base, all[0])
+func newChooser(ctx context.Context, b *build.Build, o Options) (*chooser, error) {
+	c := &chooser{Options: o, context: ctx, answers: map[string]string{}}
+	if o.SearchFor > 0 {
+		c.end = time.Now().Add(o.SearchFor)
 	}
-	c.countFixed()
-	c.rest = int64(c.order(c.fixedParts()).Total)
+	m, err := newMarket(b)
+	if err != nil {
+		return nil, err
+	}
+	if m.unsold() >= 0 || len(b.Openings) == 0 {
+		c.pictures = &pictures{market: m}
+		return c, nil
+	}
+	if c.pictures, err = newPictures(m); err != nil {
+		return nil, err
+	}
+	base, err := b.CompileTargets()
+	if err != nil {
+		return nil, err
+	}
+	c.makeTrials(base)
 	return c, nil
 }
 
-// offered says whether the price book sells enough of a part.
-func (c *chooser) offered(p part.Part, perUnit int) bool {
-	_, ok := c.buying(p, perUnit)
-	return ok
-}
-
-// buying is the money for a part in every unit, spares included.
-func (c *chooser) buying(p part.Part, perUnit int) (offer.Money, bool) {
-	parts := make([]part.Part, perUnit)
-	for i := range parts {
-		parts[i] = p
-		parts[i].Ref = fmt.Sprintf("X%d", i+1)
+// withoutSearch is the result where there is nothing to search: no opening, or
+// one that nothing offered may fill. The build is then fitted with what stands
+// first.
+func (c *chooser) withoutSearch() (*Result, *build.Build, error) {
+	if len(c.build.Openings) == 0 {
+		return &Result{Choices: []Choice{}, ProvedCheapest: true, Candidates: 1, CostPerUnit: c.order(c.build.Parts()).PerUnit}, c.build, nil
 	}
-	o := c.order(parts)
-	return o.Total, len(o.Unoffered) == 0
-}
-
-func (c *chooser) order(parts []part.Part) order.Order {
-	return order.New(parts, c.build.Units, c.build.Spares, c.build.Book, c.build.Families)
-}
-
-// unsold is the result where an opening has nothing that is offered.
-func (c *chooser) unsold() *Result {
-	for i, sold := range c.fittings {
-		if len(sold) == 0 {
-			return &Result{Choices: []Choice{}, Why: fmt.Sprintf(
-				"the price book offers nothing that may fill %s", c.build.Openings[i].Positions[0])}
+	i := c.unsold()
+	if i < 0 {
+		return nil, nil, nil
+	}
+	var first []build.Fitting
+	for k, o := range c.build.Openings {
+		if len(c.fittings[k]) > 0 {
+			first = append(first, c.fittings[k][0])
+			continue
 		}
+		first = append(first, c.build.Fittings(o)[0])
 	}
-	return nil
+	fitted, err := c.build.Fit(first)
+	r := &Result{Choices: []Choice{}, Why: "the price book offers nothing that may fill " + c.build.Openings[i].Positions[0]}
+	return r, fitted, err
 }
 
-// fit is the build fitted with a choice.
-func (c *chooser) fit(choice []int) (*build.Build, error) {
-	fittings := make([]build.Fitting, len(choice))
-	for i, j := range choice {
-		fittings[i] = c.fittings[i][j]
+// cheapest searches for the cheapest choice that meets the targets, or else for
+// the one that comes nearest.
+func (c *chooser) cheapest() (exact.Outcome, error) {
+	found, err := c.search(c.asked(), nil)
+	if err != nil || found.Choice != nil || c.refusals > 0 {
+		return found, err
 	}
-	return c.build.Fit(fittings)
+	// What comes nearest needs every demand.
+	s := c.newSearch(c.asked(), nil)
+	s.problem.Judge = func(choice []int) exact.Verdict { return s.ask.wholly(s.full(choice)) }
+	return s.cheapest()
 }
 
-// cost is the exact money of a choice: what is bought on each of its lines
-// together with whatever else is bought there, and the rest of the order.
-func (c *chooser) cost(choice []int) int64 {
-	counts := make(map[string]int, len(choice))
-	total := c.rest
-	for i, j := range choice {
-		key := c.keys[i][j]
-		if _, there := counts[key]; !there {
-			counts[key] = c.fixed[key]
-			total -= c.price(c.fittings[i][j].Part, key, c.fixed[key])
+// search looks for the cheapest choice that meets what is asked, without the
+// buying lines that are out of stock.
+func (c *chooser) search(ask asking, out map[string]bool) (exact.Outcome, error) {
+	return c.newSearch(ask, out).cheapest()
+}
+
+// limit is the time and work left for a search.
+func (c *chooser) limit() exact.Limits {
+	l := c.limits
+	if !c.end.IsZero() {
+		l.For = max(time.Until(c.end), time.Millisecond)
+	}
+	return l
+}
+
+// A searching is one search over some of the fittings.
+type searching struct {
+	*chooser
+	ask     asking
+	kept    [][]int // of each opening: its fittings that may be taken
+	problem *exact.Problem
+}
+
+// newSearch sets a search up over all fittings that take nothing from the
+// lines that are out of stock.
+func (c *chooser) newSearch(ask asking, out map[string]bool) *searching {
+	s := &searching{chooser: c, ask: ask}
+	s.problem = &exact.Problem{
+		Base:    c.rest,
+		Cost:    func(choice []int) int64 { return c.money(s.full(choice)) },
+		Judge:   func(choice []int) exact.Verdict { return ask.quickly(s.full(choice)) },
+		Confirm: func(choice []int) (bool, error) { return c.confirm(s.full(choice)) },
+	}
+	for i := range c.fittings {
+		var kept []int
+		var l exact.Line
+		for j := range c.fittings[i] {
+			if !slices.ContainsFunc(c.buys[i][j], func(p purchase) bool { return out[p.key] }) {
+				kept = append(kept, j)
+				l.Options = append(l.Options, exact.Option{Floor: c.floor(i, j)})
+			}
 		}
-		counts[key] += len(c.build.Openings[i].Positions)
+		s.kept = append(s.kept, kept)
+		s.problem.Lines = append(s.problem.Lines, l)
 	}
+	return s
+}
+
+// full is a choice among the fittings kept, as one among all.
+func (s *searching) full(choice []int) []int {
+	all := make([]int, len(choice))
 	for i, j := range choice {
-		if key := c.keys[i][j]; counts[key] > 0 {
-			total += c.price(c.fittings[i][j].Part, key, counts[key])
-			counts[key] = 0
-		}
+		all[i] = s.kept[i][j]
 	}
-	return total
+	return all
 }
 
-// price is the money for some pieces a unit on one line.
-func (c *chooser) price(p part.Part, key string, perUnit int) int64 {
-	if perUnit == 0 {
-		return 0
+// cheapest runs the search.
+func (s *searching) cheapest() (exact.Outcome, error) {
+	if slices.ContainsFunc(s.kept, func(kept []int) bool { return len(kept) == 0 }) {
+		return exact.Outcome{Proved: true}, nil // an opening has nothing left
 	}
-	k := lineCount{key, perUnit}
-	money, known := c.prices[k]
-	if !known {
-		bought, _ := c.buying(p, perUnit)
-		money = int64(bought)
-		c.prices[k] = money
+	found, err := s.problem.Cheapest(s.context, s.limit())
+	if found.Choice != nil {
+		found.Choice = s.full(found.Choice)
 	}
-	return money
+	if found.Nearest != nil {
+		found.Nearest = s.full(found.Nearest)
+	}
+	return found, err
 }
 
-// lineCount is a buying line and how many of its pieces a unit takes.
-type lineCount struct {
-	key   string
-	count int
+// money is what a choice costs.
+func (c *chooser) money(choice []int) int64 {
+	if cost, ok := c.cost(choice); ok {
+		return cost
+	}
+	return exact.Unavailable
 }

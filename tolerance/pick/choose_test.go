@@ -79,13 +79,13 @@ func TestCheapestByBruteForce(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			c, err := newChooser(b, o)
+			c, err := newChooser(context.Background(), b, o)
 			if err != nil {
 				t.Fatal(err)
 			}
 			best, cost := "", int64(-1)
 			for _, choice := range everyChoice(c) {
-				if money := c.cost(choice); (cost < 0 || money < cost) && meets(t, c, choice, o) {
+				if money := c.money(choice); (cost < 0 || money < cost) && meets(t, c, choice, o) {
 					best, cost = fmt.Sprint(c.name(0, choice[0]), ", ", c.name(1, choice[1])), money
 				}
 			}
@@ -105,7 +105,11 @@ func text(c Choice) string { return fmt.Sprintf("%s %g", c.Family, c.Tolerance) 
 // meets simulates a choice in full.
 func meets(t *testing.T, c *chooser, choice []int, o Options) bool {
 	t.Helper()
-	m, err := c.compile(choice)
+	b, err := c.fit(choice)
+	if err != nil {
+		t.Fatal(err)
+	}
+	m, err := b.CompileTargets()
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -181,7 +185,7 @@ func TestCostIsTheOrder(t *testing.T) {
 	}
 	rng := rand.New(rand.NewPCG(1, 1))
 	for name, text := range map[string]string{"example": string(example), "merging": merging(), "joining": joining()} {
-		c, err := newChooser(read(t, text), Options{})
+		c, err := newChooser(context.Background(), read(t, text), Options{})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -198,7 +202,7 @@ func TestCostIsTheOrder(t *testing.T) {
 				t.Fatal(err)
 			}
 			want := int64(c.order(b.Parts()).Total)
-			if got := c.cost(choice); got != want || floor > want {
+			if got := c.money(choice); got != want || floor > want {
 				t.Errorf("%s %v: cost %d and floor %d, the order is %d", name, choice, got, floor, want)
 			}
 		}
@@ -230,16 +234,17 @@ func joining() string {
 }
 
 func comparePictures(t *testing.T, text string) {
-	c, err := newChooser(read(t, text), Options{})
+	c, err := newChooser(context.Background(), read(t, text), Options{})
 	if err != nil {
 		t.Fatal(err)
 	}
-	p, err := newPictures(c)
-	if err != nil {
-		t.Fatal(err)
-	}
+	p := c.pictures
 	for _, choice := range everyChoice(c) {
-		m, err := c.compile(choice)
+		b, err := c.fit(choice)
+		if err != nil {
+			t.Fatal(err)
+		}
+		m, err := b.CompileTargets()
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -255,14 +260,14 @@ func comparePictures(t *testing.T, text string) {
 
 // TestNextCheaper asks for the dearest of the options that are cheaper.
 func TestNextCheaper(t *testing.T) {
-	c, err := newChooser(read(t, tanks("60 Hz")), Options{})
+	c, err := newChooser(context.Background(), read(t, tanks("60 Hz")), Options{})
 	if err != nil {
 		t.Fatal(err)
 	}
 	choice := []int{0, 0}
 	var costs []int64
 	for j := range c.fittings[0] {
-		costs = append(costs, c.cost([]int{j, 0}))
+		costs = append(costs, c.money([]int{j, 0}))
 	}
 	for j := range c.fittings[0] {
 		choice[0] = j

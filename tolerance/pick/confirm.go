@@ -8,27 +8,35 @@ import (
 	"batchwright/tolerance/spread"
 )
 
-// trial is some targets that are simulated together, and what came of it for
-// the choices on the lines that they depend on.
+// trial is some targets that are put to the test together, by share or by
+// worst case, and what came of it for the choices on the lines that they depend
+// on.
 type trial struct {
 	targets []int
+	worst   bool
 	lines   []int
 	seen    map[string]outcome
 }
 
-// outcome of a trial: the target that is not met, if one is not.
+// outcome of a trial: the reports on its targets, and which is not met, or -1.
 type outcome struct {
-	failed bool
-	by     spread.TargetReport
+	reports []spread.TargetReport
+	failed  int
 }
 
-// makeTrials divides the targets by share into those that are cheap to simulate
-// and the rest.
-func (p *pictures) makeTrials(m *build.Model) {
+// makeTrials divides the targets into those by share that are cheap to
+// simulate, the rest of those, and the worst cases, which cost most.
+func (c *chooser) makeTrials(m *build.Model) {
 	cheap, rest := spread.CheapFirst(m)
-	for _, targets := range [][]int{cheap, rest} {
+	var worst []int
+	for t, target := range m.Build.Targets {
+		if target.WorstCase {
+			worst = append(worst, t)
+		}
+	}
+	for k, targets := range [][]int{cheap, rest, worst} {
 		if len(targets) > 0 {
-			p.trials = append(p.trials, &trial{targets, p.linesOfTargets(targets), map[string]outcome{}})
+			c.trials = append(c.trials, &trial{targets, k == 2, c.linesOfTargets(targets), map[string]outcome{}})
 		}
 	}
 }
@@ -47,59 +55,61 @@ func (p *pictures) linesOfTargets(targets []int) []int {
 	return slices.Compact(lines)
 }
 
-// on names a choice's options on some lines.
-func on(lines, choice []int) string {
-	own := make([]int, len(lines))
-	for k, i := range lines {
-		own[k] = choice[i]
+// confirm puts a choice to every trial. Choices that differ only where a trial
+// does not look share its outcome: every draw follows from seed and reference,
+// so it would be the same to the bit.
+func (c *chooser) confirm(choice []int) (bool, error) {
+	name := fmt.Sprint(choice)
+	if why, known := c.answers[name]; known {
+		return why == "", nil
 	}
-	return fmt.Sprint(own)
+	for _, t := range c.trials {
+		came, err := c.outcome(t, choice)
+		if err != nil {
+			return false, err
+		}
+		if came.failed >= 0 {
+			c.refuse(name, came.reports[came.failed], t.worst)
+			return false, nil
+		}
+	}
+	c.answers[name] = ""
+	return true, nil
 }
 
-// confirm simulates a choice: the targets that are cheap to simulate, then the
-// others. Worst cases, which cost most, are searched last. Choices that differ
-// only where a trial does not look share its outcome: every draw follows from
-// seed and reference, so it would be the same to the bit.
-func (c *chooser) confirm(choice []int) (bool, error) {
-	for _, t := range c.pictures.trials {
-		key := on(t.lines, choice)
-		came, known := t.seen[key]
-		if !known {
-			var err error
-			if came, err = c.try(choice, t.targets); err != nil {
-				return false, err
-			}
-			t.seen[key] = came
-		}
-		if came.failed {
-			return c.refuse(choice, came.by), nil
-		}
+// outcome is what a trial says of a choice.
+func (c *chooser) outcome(t *trial, choice []int) (outcome, error) {
+	key := on(t.lines, choice)
+	if came, known := t.seen[key]; known {
+		return came, nil
 	}
-	m, err := c.compile(choice)
+	b, err := c.fit(choice)
 	if err != nil {
-		return false, err
+		return outcome{}, err
 	}
-	for _, t := range spread.JudgeWorstCases(m) {
-		if !t.Met {
-			return c.refuse(choice, t), nil
-		}
+	m, err := b.CompileTargets()
+	if err != nil {
+		return outcome{}, err
 	}
-	return true, nil
+	var came outcome
+	if t.worst {
+		came = judgedBy(spread.JudgeWorstCases(m), func(t spread.TargetReport) bool { return t.Met })
+	} else if came, err = c.try(m, t.targets); err != nil {
+		return outcome{}, err
+	}
+	t.seen[key] = came
+	return came, nil
 }
 
 // try simulates some targets on more and more units as long as they may still
 // be met, at last on those of the report.
-func (c *chooser) try(choice, targets []int) (outcome, error) {
-	m, err := c.compile(choice)
-	if err != nil {
-		return outcome{}, err
-	}
+func (c *chooser) try(m *build.Model, targets []int) (outcome, error) {
 	for _, units := range []int{240, 960, 3840} {
 		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, units)}
 		came, err := c.simulate(m, targets, o, func(t spread.TargetReport) bool {
 			return float64(t.ShareInterval[1]) >= t.Demand // it may still do
 		})
-		if came.failed || err != nil {
+		if err != nil || came.failed >= 0 {
 			return came, err
 		}
 	}
@@ -117,23 +127,22 @@ func (c *chooser) simulate(m *build.Model, targets []int, o spread.Options, met 
 	if err != nil {
 		return outcome{}, err
 	}
-	for _, t := range reports {
-		if !met(t) {
-			return outcome{true, t}, nil
-		}
-	}
-	return outcome{}, nil
+	return judgedBy(reports, met), nil
+}
+
+// judgedBy is the outcome by the first report that is not met.
+func judgedBy(reports []spread.TargetReport, met func(spread.TargetReport) bool) outcome {
+	return outcome{reports, slices.IndexFunc(reports, func(t spread.TargetReport) bool { return !met(t) })}
 }
 
 // refuse notes why a choice was refused.
-func (c *chooser) refuse(choice []int, t spread.TargetReport) bool {
-	text := fmt.Sprintf("%s on %.4g %% of the simulated units", t.Name, 100*float64(t.Share))
-	if t.WorstCase != nil {
-		text = t.Name + " in the worst case"
+func (c *chooser) refuse(name string, t spread.TargetReport, worst bool) {
+	c.answers[name] = fmt.Sprintf("%s on %.4g %% of the simulated units", t.Name, 100*float64(t.Share))
+	if worst {
+		c.answers[name] = t.Name + " in the worst case"
 	}
-	c.refused[fmt.Sprint(choice)] = text
+	c.refusals++
 	if c.Progress != nil {
-		c.Progress(fmt.Sprintf("refused %d choices", len(c.refused)))
+		c.Progress(fmt.Sprintf("refused %d choices", c.refusals))
 	}
-	return false
 }

@@ -3,7 +3,7 @@ package pick
 import (
 	"fmt"
 	"math"
-	"slices"
+	"strings"
 
 	"batchwright/bom/offer"
 	"batchwright/bom/part"
@@ -15,8 +15,10 @@ import (
 // result puts what the search found into the build's terms.
 func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 	r := &Result{
-		Choices: []Choice{}, ProvedCheapest: found.Proved && found.Choice != nil,
+		Choices: []Choice{}, Checks: []Check{}, Alternates: []Alternate{},
+		ProvedCheapest: found.Proved && found.Choice != nil, Bound: offer.Money(found.Bound),
 		Candidates: found.Candidates, Examined: found.Examined, Simulated: found.Simulated,
+		CutByDominance: found.Dominated, CutByBound: found.CutByBound,
 	}
 	choice := found.Choice
 	switch {
@@ -34,9 +36,15 @@ func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 		return nil, nil, err
 	}
 	for i, j := range choice {
-		r.Choices = append(r.Choices, c.choice(choice, i, j))
+		picked := c.describe(i, j)
+		picked.Why = c.why(choice, i, j)
+		r.Choices = append(r.Choices, picked)
 	}
-	r.CostPerUnit = c.order(fitted.Parts()).PerUnit
+	if found.Choice != nil {
+		r.Checks = c.checks(choice)
+	}
+	o := c.order(fitted.Parts())
+	r.CostPerUnit, r.Total = o.PerUnit, o.Total
 	return r, fitted, nil
 }
 
@@ -45,11 +53,11 @@ func (c *chooser) outOfReach(found exact.Outcome) string {
 	if found.Nearest == nil {
 		return "the search ended before any choice was judged"
 	}
-	if text, ok := c.refused[fmt.Sprint(found.Nearest)]; ok {
+	if text := c.answers[fmt.Sprint(found.Nearest)]; text != "" {
 		return "no choice meets every target in simulation; the one nearest meets " + text
 	}
 	worst := found.NearestVerdict.Worst
-	t := c.build.Targets[c.pictures.demands[worst].target]
+	t := c.build.Targets[c.demands[worst].target]
 	text := fmt.Sprintf("no choice meets the target %q (%s)", t.Name, t.Asked)
 	if !found.NearestVerdict.Meets {
 		text += "; the nearest, to first order, " + c.predicted(found.Nearest, worst)
@@ -59,11 +67,11 @@ func (c *chooser) outOfReach(found exact.Outcome) string {
 
 // predicted says what the linear picture makes of a demand.
 func (c *chooser) predicted(choice []int, k int) string {
-	j, ok := c.pictures.demand(choice, k)
+	j, ok := c.demand(choice, k)
 	if !ok {
 		return "cannot be compiled"
 	}
-	d := c.pictures.demands[k]
+	d := c.demands[k]
 	if d.WorstCase {
 		unit := c.build.Targets[d.target].Unit
 		full := j.Half / halfSlack
@@ -72,41 +80,89 @@ func (c *chooser) predicted(choice []int, k int) string {
 	return fmt.Sprintf("meets it on some %.3g %% of the units", 100*exact.ShareOfNormal(j.Mean, j.Variance, d.Low, d.High))
 }
 
-// demand is what one demand is judged by.
-func (p *pictures) demand(choice []int, k int) (judged, bool) {
-	for _, g := range p.groups {
-		if n := slices.Index(g.demands, k); n >= 0 {
-			list, err := p.of(g, choice)
-			if err != nil {
-				return judged{}, false
+// checks compares, for every target by share, what the picture says of a
+// choice with what its simulation did: of several conditions the worst.
+func (c *chooser) checks(choice []int) []Check {
+	list := []Check{}
+	for _, t := range c.trials {
+		came := t.seen[on(t.lines, choice)]
+		for n, target := range t.targets {
+			if t.worst || c.build.Targets[target].Trim >= 0 || n >= len(came.reports) {
+				continue
 			}
-			return list[n], true
+			list = append(list, Check{c.build.Targets[target].Name, c.shareOf(choice, target), float64(came.reports[n].Share)})
 		}
 	}
-	return judged{}, false
+	return list
 }
 
-// choice describes what was picked for one opening, and why.
-func (c *chooser) choice(choice []int, i, j int) Choice {
-	o, f := c.build.Openings[i], c.fittings[i][j]
-	cost := c.unitCost(f.Part, len(o.Positions))
-	out := Choice{
-		Positions: o.Positions, Refs: c.refs(i), Family: f.Family, Tolerance: f.Tolerance, Value: f.High,
-		Text: f.Text, Combine: "single", UnitCost: cost,
-		Parts: []Piece{{f.Family, f.High, f.Tolerance}},
+// shareOf is the share of the units that meet a target, to first order.
+func (c *chooser) shareOf(choice []int, target int) float64 {
+	least := 1.0
+	for k, d := range c.demands {
+		if j, ok := c.demand(choice, k); ok && d.target == target {
+			least = math.Min(least, exact.ShareOfNormal(j.Mean, j.Variance, d.Low, d.High))
+		}
 	}
-	out.Why = c.why(choice, i, j)
+	return least
+}
+
+// describe is a fitting of an opening in words and figures.
+func (c *chooser) describe(i, j int) Choice {
+	o, f := c.build.Openings[i], c.fittings[i][j]
+	out := Choice{
+		Positions: o.Positions, Refs: c.refs(i), Value: f.High, Tolerance: f.Grade(o.Type),
+		Text: f.Text, Combine: string(f.Combine), Lots: "one", UnitCost: c.unitCost(i, j), Parts: []Piece{},
+	}
+	if f.Mixed {
+		out.Lots = "mixed"
+	}
+	var families []string
+	for _, p := range f.Pieces {
+		families = append(families, p.Family)
+		out.Parts = append(out.Parts, Piece{p.Family, p.High, p.Tolerance, p.Text})
+	}
+	out.Family = strings.Join(families, " + ")
 	return out
 }
 
-// unitCost is what one unit's pieces cost at the batch's price.
-func (c *chooser) unitCost(p part.Part, perUnit int) offer.Money {
-	parts := make([]part.Part, perUnit)
-	for i := range parts {
-		parts[i] = p
-		parts[i].Ref = fmt.Sprintf("X%d", i+1)
+// refs are the references at an opening's positions.
+func (m *market) refs(i int) []string {
+	var refs []string
+	for _, position := range m.build.Openings[i].Positions {
+		refs = append(refs, m.build.Place(position).Part.Ref)
 	}
-	return c.order(parts).PerUnit
+	return refs
+}
+
+// refsOn are the references of an opening that a choice buys on a line.
+func (m *market) refsOn(i, j int, key string) []string {
+	var refs []string
+	for k, piece := range m.keys(i, j) {
+		if piece != key {
+			continue
+		}
+		for _, ref := range m.refs(i) {
+			if m.fittings[i][j].Combine != build.Single {
+				ref += string(rune('A' + k))
+			}
+			refs = append(refs, ref)
+		}
+	}
+	return refs
+}
+
+// bought is a buying line as one would ask for it.
+func (m *market) bought(key string) string {
+	p := m.lines[key].part
+	words := []string{p.Family}
+	if text := p.ValueText(); text != "" {
+		words = append(words, text)
+	}
+	if g := p.Grade(); g > 0 {
+		words = append(words, "±"+quantity.Format(g, quantity.Percent, 0))
+	}
+	return strings.Join(words, " ")
 }
 
 // why says what the next cheaper option fails, the others being as chosen.
@@ -118,12 +174,12 @@ func (c *chooser) why(choice []int, i, j int) string {
 	other := append([]int(nil), choice...)
 	other[i] = next
 	name := c.name(i, next)
-	saving := offer.Money(c.cost(choice) - cost)
-	if text, ok := c.refused[fmt.Sprint(other)]; ok {
+	saving := offer.Money(c.money(choice) - cost)
+	if text := c.answers[fmt.Sprint(other)]; text != "" {
 		return fmt.Sprintf("%s would save %v, but meets %s", name, saving, text)
 	}
-	if v := c.pictures.wholly(other); !v.Meets {
-		t := c.build.Targets[c.pictures.demands[v.Worst].target]
+	if v := c.asked().wholly(other); !v.Meets {
+		t := c.build.Targets[c.demands[v.Worst].target]
 		return fmt.Sprintf("%s would save %v, but on %q, to first order, %s", name, saving, t.Name, c.predicted(other, v.Worst))
 	}
 	return fmt.Sprintf("%s would save %v here, but not with the other choices", name, saving)
@@ -133,11 +189,11 @@ func (c *chooser) why(choice []int, i, j int) string {
 // order's money with it; -1 where there is none.
 func (c *chooser) nextCheaper(choice []int, i, j int) (int, int64) {
 	best, money := -1, int64(math.MinInt64)
-	own := c.cost(choice)
+	own := c.money(choice)
 	other := append([]int(nil), choice...)
 	for k := range c.fittings[i] {
 		other[i] = k
-		if cost := c.cost(other); k != j && cost < own && cost > money {
+		if cost := c.money(other); k != j && cost < own && cost > money {
 			best, money = k, cost
 		}
 	}
@@ -146,13 +202,24 @@ func (c *chooser) nextCheaper(choice []int, i, j int) (int, int64) {
 
 // name is an option as people call it.
 func (c *chooser) name(i, j int) string {
-	f := c.fittings[i][j]
-	text := f.Family
-	if f.Tolerance > 0 {
-		text += " " + quantity.Format(f.Tolerance, quantity.Percent, 0)
+	f, o := c.fittings[i][j], c.build.Openings[i]
+	var words []string
+	for _, p := range f.Pieces {
+		text := p.Family
+		if p.Tolerance > 0 {
+			text += " " + quantity.Format(p.Tolerance, quantity.Percent, 0)
+		}
+		if len(o.Values) > 0 || len(f.Pieces) > 1 {
+			text += " " + p.Text
+		}
+		words = append(words, text)
 	}
-	if o := c.build.Openings[i]; len(o.Values) > 0 {
-		text += " " + f.Text
+	text := strings.Join(words, " and ")
+	if f.Combine != build.Single {
+		text += " in " + string(f.Combine)
+	}
+	if len(o.Lots) > 1 && f.Mixed {
+		text += " from mixed lots"
 	}
 	return text
 }

@@ -4,15 +4,16 @@ package pick
 
 import "batchwright/bom/offer"
 
-// Choice is what was picked for one buying line.
+// Choice is what was picked for one opening.
 type Choice struct {
 	Positions []string    `json:"positions"` // "fixed.upper"
 	Refs      []string    `json:"refs"`
-	Family    string      `json:"family"`
-	Tolerance float64     `json:"tolerance"`
-	Value     float64     `json:"value"`
-	Text      string      `json:"-"` // value as people write it
+	Family    string      `json:"family"`    // of two pieces both: "c0g + polystyrene"
+	Tolerance float64     `json:"tolerance"` // of the whole
+	Value     float64     `json:"value"`     // of the whole
+	Text      string      `json:"-"`         // value as people write it
 	Combine   string      `json:"combine"`
+	Lots      string      `json:"lots"`      // "one" or "mixed"
 	Parts     []Piece     `json:"parts"`     // what is combined; one piece where Combine is "single"
 	UnitCost  offer.Money `json:"unit_cost"` // of this line in one unit, spares not counted
 	Why       string      `json:"why"`       // from the numbers, one sentence
@@ -23,6 +24,7 @@ type Piece struct {
 	Family    string  `json:"family"`
 	Value     float64 `json:"value"`
 	Tolerance float64 `json:"tolerance"`
+	Text      string  `json:"-"` // value as people write it
 }
 
 // Result is the outcome of a search.
@@ -30,8 +32,51 @@ type Result struct {
 	Choices        []Choice    `json:"picks"`
 	ProvedCheapest bool        `json:"proved_cheapest"`
 	CostPerUnit    offer.Money `json:"cost_per_unit"`
-	Candidates     int         `json:"candidates"` // combinations that exist
-	Examined       int         `json:"examined"`   // combinations judged against the targets
-	Simulated      int         `json:"simulated"`  // of those, put through a simulation
+	Total          offer.Money `json:"total"`            // of the order, spares included
+	Bound          offer.Money `json:"bound"`            // nothing cheaper meets the targets
+	Candidates     int         `json:"candidates"`       // combinations that exist
+	Examined       int         `json:"examined"`         // combinations judged against the targets
+	Simulated      int         `json:"simulated"`        // of those, put through a simulation
+	CutByDominance int         `json:"cut_by_dominance"` // options that another one stands in for
+	CutByBound     int         `json:"cut_by_bound"`     // partial combinations and options that no good one can hold
+	Checks         []Check     `json:"checks"`           // picture against simulation
+	Binding        *Binding    `json:"binding"`          // nil: none
+	Alternates     []Alternate `json:"alternates"`
 	Why            string      `json:"why,omitempty"`
+	Provided       string      `json:"provided,omitempty"` // what the proof rests on beside the picture
+}
+
+// Check is a target by share as the search saw it and as the simulation did.
+type Check struct {
+	Target    string  `json:"target"`
+	Predicted float64 `json:"predicted"` // share of the units, to first order
+	Simulated float64 `json:"simulated"`
+}
+
+// Binding is the target that costs most, and what a tighter one would.
+type Binding struct {
+	Target  string      `json:"target"`
+	Saving  offer.Money `json:"saving"`       // of the order, to first order, if it were not asked
+	Tighter string      `json:"tighter"`      // the target with its limits a tenth closer
+	Total   offer.Money `json:"total"`        // of the order that meets this
+	Out     bool        `json:"out_of_reach"` // no choice meets it; Total is then 0
+}
+
+// Alternate is the next-best choice where one of the buying lines is out of
+// stock. It meets every target and is simulated as the choice itself is.
+type Alternate struct {
+	Refs    []string    `json:"refs"`  // of the line that is out of stock
+	Line    string      `json:"line"`  // what it is
+	Instead []Choice    `json:"picks"` // the openings that are then filled otherwise
+	More    offer.Money `json:"more"`  // money of the order above the choice's
+	Drifts  []Moved     `json:"drifts"`
+}
+
+// Moved is how much wider or narrower a change becomes, to first order: the
+// half width that the target's share of the units stays within.
+type Moved struct {
+	Target string  `json:"target"`
+	Unit   string  `json:"unit"`
+	From   float64 `json:"from"`
+	To     float64 `json:"to"`
 }

@@ -23,7 +23,7 @@ func fitted(t testing.TB) *build.Model {
 	var choice []build.Fitting
 	for i, o := range b.Openings {
 		for _, f := range b.Fittings(o) {
-			if f.Family == want[i].family && f.Tolerance == want[i].tolerance && f.Text == want[i].text {
+			if f.Pieces[0].Family == want[i].family && f.Pieces[0].Tolerance == want[i].tolerance && f.Text == want[i].text {
 				choice = append(choice, f)
 			}
 		}

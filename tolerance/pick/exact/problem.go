@@ -6,6 +6,7 @@ package exact
 import (
 	"fmt"
 	"math"
+	"time"
 )
 
 // A Problem is the choice of one option for every line so that the money is
@@ -53,6 +54,8 @@ type Option struct {
 	Alone bool
 }
 
+const Unavailable = int64(1) << 60
+
 // An Effect is what an option adds to a demand's quantity N, in N's unit (the
 // variance in its square). The mean must be exact for every choice. Variance
 // and Half must be at most what Judge will count: where lots may merge and
@@ -85,6 +88,7 @@ type Limits struct {
 	Nodes       int // partial choices kept in memory, 28 bytes each; 0: DefaultNodes
 	Steps       int // partial choices looked at; 0: DefaultSteps
 	Simulations int // calls of Confirm; 0: no limit
+	For         time.Duration
 
 	piece int // steps of a dive between splits, for tests; 0: pieceSteps
 }
@@ -114,6 +118,7 @@ type Outcome struct {
 	Examined   int // full choices put to Judge
 	Simulated  int // full choices put to Confirm
 	CutByBound int // partial choices cut: dearer than a known one, or beyond every demand's reach
+	Dominated  int
 	Dropped    int // options left out before the search: dominated, or in no choice cheap enough
 
 	// Nearest is set when there is no Choice: least shortfall, then least

@@ -12,14 +12,14 @@ import (
 // cheapest choices that do without it, and notes those that meet every target.
 func (c *chooser) addAlternates(r *Result, choice []int) error {
 	r.Alternates = []Alternate{}
-	seen := map[string]bool{}
+	seen := map[int]bool{}
 	for i, j := range choice {
 		for _, p := range c.buys[i][j] {
-			if seen[p.key] {
+			if seen[p.line] {
 				continue
 			}
-			seen[p.key] = true
-			if err := c.addAlternatesOf(r, choice, p.key); err != nil {
+			seen[p.line] = true
+			if err := c.addAlternatesOf(r, choice, p.line); err != nil {
 				return err
 			}
 		}
@@ -29,8 +29,8 @@ func (c *chooser) addAlternates(r *Result, choice []int) error {
 
 // addAlternatesOf finds the choices that do without one line: the cheapest, and
 // then the cheapest without what that one takes in its place either.
-func (c *chooser) addAlternatesOf(r *Result, choice []int, key string) error {
-	out := map[string]bool{key: true}
+func (c *chooser) addAlternatesOf(r *Result, choice []int, id int) error {
+	out := map[int]bool{id: true}
 	for range c.Alternates {
 		found, err := c.search(c.asked(), out)
 		if err != nil {
@@ -39,11 +39,11 @@ func (c *chooser) addAlternatesOf(r *Result, choice []int, key string) error {
 		if found.Choice == nil {
 			return nil
 		}
-		r.Alternates = append(r.Alternates, c.alternate(choice, found.Choice, key, found.Cost))
+		r.Alternates = append(r.Alternates, c.alternate(choice, found.Choice, id, found.Cost))
 		for i, j := range found.Choice {
 			for _, p := range c.buys[i][j] {
-				if !c.takesFrom(choice, p.key) {
-					out[p.key] = true
+				if !c.takesFrom(choice, p.line) {
+					out[p.line] = true
 				}
 			}
 		}
@@ -52,9 +52,9 @@ func (c *chooser) addAlternatesOf(r *Result, choice []int, key string) error {
 }
 
 // takesFrom says whether a choice buys on a line.
-func (c *chooser) takesFrom(choice []int, key string) bool {
+func (c *chooser) takesFrom(choice []int, id int) bool {
 	for i, j := range choice {
-		if slices.ContainsFunc(c.buys[i][j], func(p purchase) bool { return p.key == key }) {
+		if slices.ContainsFunc(c.buys[i][j], func(p purchase) bool { return p.line == id }) {
 			return true
 		}
 	}
@@ -62,10 +62,10 @@ func (c *chooser) takesFrom(choice []int, key string) bool {
 }
 
 // alternate compares another choice with the one made.
-func (c *chooser) alternate(choice, other []int, key string, cost int64) Alternate {
-	a := Alternate{More: offer.Money(cost - c.money(choice)), Line: c.bought(key), Instead: []Choice{}, Drifts: []Moved{}}
+func (c *chooser) alternate(choice, other []int, id int, cost int64) Alternate {
+	a := Alternate{More: offer.Money(cost - c.money(choice)), Line: c.bought(id), Instead: []Choice{}, Drifts: []Moved{}}
 	for i, j := range choice {
-		a.Refs = append(a.Refs, c.refsOn(i, j, key)...)
+		a.Refs = append(a.Refs, c.refsOn(i, j, id)...)
 		if other[i] != j {
 			a.Instead = append(a.Instead, c.describe(i, other[i]))
 		}

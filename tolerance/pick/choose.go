@@ -124,7 +124,7 @@ func (c *chooser) cheapest() (exact.Outcome, error) {
 
 // search looks for the cheapest choice that meets what is asked, without the
 // buying lines that are out of stock.
-func (c *chooser) search(ask asking, out map[string]bool) (exact.Outcome, error) {
+func (c *chooser) search(ask asking, out map[int]bool) (exact.Outcome, error) {
 	return c.newSearch(ask, out).cheapest()
 }
 
@@ -147,7 +147,7 @@ type searching struct {
 
 // newSearch sets a search up over all fittings that take nothing from the
 // lines that are out of stock.
-func (c *chooser) newSearch(ask asking, out map[string]bool) *searching {
+func (c *chooser) newSearch(ask asking, out map[int]bool) *searching {
 	s := &searching{chooser: c, ask: ask}
 	s.problem = &exact.Problem{
 		Base:    c.rest,
@@ -159,7 +159,7 @@ func (c *chooser) newSearch(ask asking, out map[string]bool) *searching {
 		var kept []int
 		var l exact.Line
 		for j := range c.fittings[i] {
-			if !slices.ContainsFunc(c.buys[i][j], func(p purchase) bool { return out[p.key] }) {
+			if !slices.ContainsFunc(c.buys[i][j], func(p purchase) bool { return out[p.line] }) {
 				kept = append(kept, j)
 				l.Options = append(l.Options, exact.Option{Floor: c.floor(i, j)})
 			}
@@ -184,7 +184,7 @@ func (s *searching) cheapest() (exact.Outcome, error) {
 	if slices.ContainsFunc(s.kept, func(kept []int) bool { return len(kept) == 0 }) {
 		return exact.Outcome{Proved: true}, nil // an opening has nothing left
 	}
-	found, err := s.problem.Cheapest(s.context, s.limit())
+	found, err := s.run()
 	if found.Choice != nil {
 		found.Choice = s.full(found.Choice)
 	}
@@ -192,6 +192,30 @@ func (s *searching) cheapest() (exact.Outcome, error) {
 		found.Nearest = s.full(found.Nearest)
 	}
 	return found, err
+}
+
+// run searches by the choices' own pictures alone, or, where there are too many
+// of them, with effects that add up to bound by.
+func (s *searching) run() (exact.Outcome, error) {
+	if s.few() {
+		return s.problem.Cheapest(s.context, s.limit())
+	}
+	a, err := s.addEffects()
+	if err != nil {
+		return exact.Outcome{}, err
+	}
+	return a.cheapest()
+}
+
+// few says whether every combination could be judged by its own picture.
+func (s *searching) few() bool {
+	n := 1
+	for _, kept := range s.kept {
+		if n *= len(kept); n > manyChoices {
+			return false
+		}
+	}
+	return true
 }
 
 // money is what a choice costs.

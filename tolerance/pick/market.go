@@ -16,45 +16,36 @@ import (
 type market struct {
 	build    *build.Build
 	fittings [][]build.Fitting // of each opening: those whose pieces are all on sale
-	buys     [][][]purchase    // [opening][fitting]: its buying lines
-	lines    map[string]line   // that may be bought, by key
-	fixed    map[string]int    // parts that are not open, by key
-	rest     int64             // the money for those
-	prices   map[lineCount]price
-	takes    []map[string]map[int]bool // of each opening: how many of a line's pieces it may take
-	crowded  bool                      // some lines of different keys draw on one stock
+	buys     [][][]purchase    // [opening][fitting]: what it takes of each of its lines
+	lines    []line            // that may be bought
+	lineIDs  map[string]int    // by order.Key
+	takes    []map[int][]int   // of each opening, by line: how many pieces its fittings may take
+	rest     int64             // the money for parts that are not open
+	crowded  bool              // some lines draw on one stock
 }
 
 // purchase is how many pieces of a buying line one unit takes.
-type purchase struct {
-	key   string
-	count int
-}
+type purchase struct{ line, count int }
 
 // line is a buying line.
 type line struct {
-	part  part.Part
-	shelf string // what the price book knows it by: lines on one shelf share its stock
-}
-
-// lineCount is a buying line and how many of its pieces a unit takes.
-type lineCount struct {
-	key   string
-	count int
+	part   part.Part
+	fixed  int     // pieces a unit takes that are not open
+	prices []price // by the pieces a unit takes, as far as they were asked for
 }
 
 // price is what so many pieces cost; not ok where the book has not as many.
 type price struct {
-	money int64
-	ok    bool
+	money     int64
+	ok, known bool
 }
 
 // newMarket lists what may fill each opening and is offered.
 func newMarket(b *build.Build) (*market, error) {
-	m := &market{build: b, lines: map[string]line{}, fixed: map[string]int{}, prices: map[lineCount]price{}}
+	m := &market{build: b, lineIDs: map[string]int{}}
 	fixed := m.fixedParts()
 	for _, p := range fixed {
-		m.fixed[m.know(p)]++
+		m.lines[m.know(p)].fixed++
 	}
 	m.rest = int64(m.order(fixed).Total)
 	for _, o := range b.Openings {
@@ -64,7 +55,7 @@ func newMarket(b *build.Build) (*market, error) {
 		}
 		var sold []build.Fitting
 		var buys [][]purchase
-		takes := map[string]map[int]bool{}
+		takes := map[int][]int{}
 		for _, f := range all {
 			if list := m.purchases(f, len(o.Positions)); m.offered(list) {
 				sold, buys = append(sold, f), append(buys, list)
@@ -77,43 +68,62 @@ func newMarket(b *build.Build) (*market, error) {
 	return m, nil
 }
 
-// know notes a part's buying line and gives its key.
-func (m *market) know(p part.Part) string {
-	key := order.Key(p)
-	if _, known := m.lines[key]; !known {
-		m.lines[key] = line{p, order.Shelf(p)}
+// note adds what a fitting takes of each line.
+func note(takes map[int][]int, list []purchase) {
+	for _, p := range list {
+		if !slices.Contains(takes[p.line], p.count) {
+			takes[p.line] = append(takes[p.line], p.count)
+		}
 	}
-	return key
+}
+
+// know gives a part's buying line its number.
+func (m *market) know(p part.Part) int {
+	key := order.Key(p)
+	id, known := m.lineIDs[key]
+	if !known {
+		id = len(m.lines)
+		m.lineIDs[key] = id
+		m.lines = append(m.lines, line{part: p})
+	}
+	return id
 }
 
 // purchases are the buying lines of a fitting at so many positions.
 func (m *market) purchases(f build.Fitting, positions int) []purchase {
 	var list []purchase
 	for _, p := range f.Pieces {
-		key := m.know(p.Part)
-		if i := slices.IndexFunc(list, func(q purchase) bool { return q.key == key }); i >= 0 {
-			list[i].count += positions
-			continue
-		}
-		list = append(list, purchase{key, positions})
+		list = add(list, purchase{m.know(p.Part), positions})
 	}
 	return list
 }
 
+// add adds a purchase to those of its line.
+func add(list []purchase, p purchase) []purchase {
+	for k := range list {
+		if list[k].line == p.line {
+			list[k].count += p.count
+			return list
+		}
+	}
+	return append(list, p)
+}
+
 // offered says whether the price book sells enough of every piece.
 func (m *market) offered(list []purchase) bool {
-	return !slices.ContainsFunc(list, func(p purchase) bool { return !m.price(p.key, p.count).ok })
+	return !slices.ContainsFunc(list, func(p purchase) bool { return !m.price(p.line, p.count).ok })
 }
 
 // shareShelves says whether any two lines that are not the same draw on one
 // stock.
 func (m *market) shareShelves() bool {
-	shelves := map[string]string{}
-	for key, l := range m.lines {
-		if other, taken := shelves[l.shelf]; taken && other != key && m.build.Book.Limited(l.part) {
+	shelves := map[string]bool{}
+	for _, l := range m.lines {
+		shelf := order.Shelf(l.part)
+		if shelves[shelf] && m.build.Book.Limited(l.part) {
 			return true
 		}
-		shelves[l.shelf] = key
+		shelves[shelf] = true
 	}
 	return false
 }
@@ -157,23 +167,20 @@ func (m *market) cost(choice []int) (int64, bool) {
 	if m.crowded {
 		return m.orderCost(choice)
 	}
-	counts := make(map[string]int, 2*len(choice))
-	total := m.rest
+	list := make([]purchase, 0, 32)
 	for i, j := range choice {
 		for _, p := range m.buys[i][j] {
-			if _, there := counts[p.key]; !there {
-				counts[p.key] = m.fixed[p.key]
-				total -= m.price(p.key, m.fixed[p.key]).money
-			}
-			counts[p.key] += p.count
+			list = add(list, p)
 		}
 	}
-	for key, count := range counts { // a sum of whole numbers, in any order the same
-		bought := m.price(key, count)
+	total := m.rest
+	for _, p := range list {
+		fixed := m.lines[p.line].fixed
+		bought := m.price(p.line, fixed+p.count)
 		if !bought.ok {
 			return 0, false
 		}
-		total += bought.money
+		total += bought.money - m.price(p.line, fixed).money
 	}
 	return total, true
 }
@@ -185,44 +192,39 @@ func (m *market) orderCost(choice []int) (int64, bool) {
 		return 0, false
 	}
 	o := m.order(b.Parts())
-	for _, l := range o.Unoffered {
-		if !m.unofferedAnyway(l) {
-			return 0, false
-		}
-	}
-	return int64(o.Total), true
+	return int64(o.Total), !slices.ContainsFunc(o.Unoffered, m.open)
 }
 
-// unofferedAnyway says whether nothing on an order's line that is not offered
-// is open: the build has it whatever is chosen.
-func (m *market) unofferedAnyway(l order.Line) bool {
+// open says whether anything on a line of the order is open. A line of which
+// nothing is, and which nobody offers, is in no total whatever is chosen.
+func (m *market) open(l order.Line) bool {
 	for _, o := range m.build.Openings {
 		for _, position := range o.Positions {
-			if base := m.build.Place(position).Part.Ref; slices.ContainsFunc(l.Refs, func(ref string) bool {
-				return ref == base || ref == base+"A" || ref == base+"B"
-			}) {
-				return false
+			ref := m.build.Place(position).Part.Ref
+			if slices.ContainsFunc(l.Refs, func(r string) bool { return r == ref || r == ref+"A" || r == ref+"B" }) {
+				return true
 			}
 		}
 	}
-	return true
+	return false
 }
 
 // price is the money for some pieces a unit on one line, spares included. A
-// line that is not bought from costs nothing; a fixed one that nobody offers
-// is in no total.
-func (m *market) price(key string, perUnit int) price {
+// line that is not bought from costs nothing.
+func (m *market) price(id, perUnit int) price {
 	if perUnit == 0 {
-		return price{0, true}
+		return price{0, true, true}
 	}
-	k := lineCount{key, perUnit}
-	known, ok := m.prices[k]
-	if !ok {
-		o := m.order(pieces(m.lines[key].part, perUnit))
-		known = price{int64(o.Total), len(o.Unoffered) == 0}
-		m.prices[k] = known
+	l := &m.lines[id]
+	for len(l.prices) <= perUnit {
+		l.prices = append(l.prices, price{})
 	}
-	return known
+	p := &l.prices[perUnit]
+	if !p.known {
+		o := m.order(pieces(l.part, perUnit))
+		*p = price{int64(o.Total), len(o.Unoffered) == 0, true}
+	}
+	return *p
 }
 
 // pieces is the same part so many times.
@@ -239,21 +241,27 @@ func pieces(p part.Part, n int) []part.Part {
 func (m *market) unitCost(i, j int) offer.Money {
 	var sum offer.Money
 	for _, p := range m.buys[i][j] {
-		sum += m.order(pieces(m.lines[p.key].part, p.count)).PerUnit
+		sum += m.order(pieces(m.lines[p.line].part, p.count)).PerUnit
 	}
 	return sum
 }
 
-// floor is the least that an option can add to the money: over every number of
-// pieces that others may put on its lines, what its own make dearer.
+// floor is the least that an option can add to the money. On a line that
+// others may buy from too, n pieces in all make the order dearer by at least n
+// times the least that one of n can come to; of this, each takes its share.
+//
+//	count · min over n of (price(fixed+n) − price(fixed))/n
 func (m *market) floor(i, j int) int64 {
 	var sum int64
 	for _, p := range m.buys[i][j] {
+		fixed := m.lines[p.line].fixed
+		without := m.price(p.line, fixed).money
 		least := int64(-1)
-		for others := range m.company(i, p.key) {
-			with, without := m.price(p.key, others+p.count), m.price(p.key, others)
-			if more := with.money - without.money; with.ok && (least < 0 || more < least) {
-				least = more
+		for others := range m.company(i, p.line) {
+			n := others + p.count
+			with := m.price(p.line, fixed+n)
+			if own := (with.money - without) * int64(p.count) / int64(n); with.ok && (least < 0 || own < least) {
+				least = own
 			}
 		}
 		sum += max(least, 0)
@@ -261,29 +269,19 @@ func (m *market) floor(i, j int) int64 {
 	return sum
 }
 
-// company is every number of pieces a unit that what is fixed and the openings
-// other than i may put on a line.
-func (m *market) company(i int, key string) map[int]bool {
-	counts := map[int]bool{m.fixed[key]: true}
+// company is every number of pieces a unit that openings other than i may put
+// on a line.
+func (m *market) company(i, id int) map[int]bool {
+	counts := map[int]bool{0: true}
 	for k, takes := range m.takes {
 		if k == i {
 			continue
 		}
 		for _, n := range slices.Collect(maps.Keys(counts)) {
-			for more := range takes[key] {
+			for _, more := range takes[id] {
 				counts[n+more] = true
 			}
 		}
 	}
 	return counts
-}
-
-// note adds what a fitting takes of each line.
-func note(takes map[string]map[int]bool, list []purchase) {
-	for _, p := range list {
-		if takes[p.key] == nil {
-			takes[p.key] = map[int]bool{}
-		}
-		takes[p.key][p.count] = true
-	}
 }

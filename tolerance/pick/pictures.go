@@ -6,7 +6,6 @@ import (
 	"slices"
 	"strings"
 
-	"batchwright/bom/order"
 	"batchwright/bom/part"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick/exact"
@@ -207,9 +206,33 @@ func (p *pictures) of(g *group, choice []int) ([]judged, error) {
 
 // linear is the linear picture of a group's demands.
 func (p *pictures) linear(g *group, choice []int) (*spread.Linear, error) {
-	made, err := p.graph(g, choice)
+	made, inputs, err := p.inputs(g, choice)
 	if err != nil {
 		return nil, err
+	}
+	return made.slopes.At(inputs), nil
+}
+
+// apart is linear with a lot of its own for each opening, whatever else is
+// bought on its lines.
+func (p *pictures) apart(g *group, choice []int) (*spread.Linear, error) {
+	made, inputs, err := p.inputs(g, choice)
+	if err != nil {
+		return nil, err
+	}
+	for k, at := range made.from {
+		if at.line >= 0 && inputs[k].Lot >= 0 {
+			inputs[k].Lot ^= (at.line + 1) << 40
+		}
+	}
+	return made.slopes.At(inputs), nil
+}
+
+// inputs are a choice's graph and what it brings to it.
+func (p *pictures) inputs(g *group, choice []int) (*graph, []build.Input, error) {
+	made, err := p.graph(g, choice)
+	if err != nil {
+		return nil, nil, err
 	}
 	inputs := slices.Clone(made.inputs)
 	for k, at := range made.from {
@@ -218,12 +241,12 @@ func (p *pictures) linear(g *group, choice []int) (*spread.Linear, error) {
 		}
 		x, ok := p.options[at.line][choice[at.line]][at.piece][inputs[k].Parameter]
 		if !ok {
-			return nil, fmt.Errorf("pick: %s has no %s", inputs[k].Ref, inputs[k].Parameter)
+			return nil, nil, fmt.Errorf("pick: %s has no %s", inputs[k].Ref, inputs[k].Parameter)
 		}
 		x.Ref = inputs[k].Ref
 		inputs[k] = x
 	}
-	return made.slopes.At(inputs), nil
+	return made, inputs, nil
 }
 
 // graph is the compiled choice whose equations are those of a choice, as far
@@ -286,13 +309,4 @@ func (p *pictures) demand(choice []int, k int) (judged, bool) {
 		}
 	}
 	return judged{}, false
-}
-
-// keys are the buying lines that a choice takes from for an opening.
-func (m *market) keys(i, j int) []string {
-	var keys []string
-	for _, p := range m.fittings[i][j].Pieces {
-		keys = append(keys, order.Key(p.Part))
-	}
-	return keys
 }

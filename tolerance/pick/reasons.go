@@ -136,10 +136,10 @@ func (m *market) refs(i int) []string {
 }
 
 // refsOn are the references of an opening that a choice buys on a line.
-func (m *market) refsOn(i, j int, key string) []string {
+func (m *market) refsOn(i, j, id int) []string {
 	var refs []string
-	for k, piece := range m.keys(i, j) {
-		if piece != key {
+	for k, piece := range m.fittings[i][j].Pieces {
+		if m.know(piece.Part) != id {
 			continue
 		}
 		for _, ref := range m.refs(i) {
@@ -153,8 +153,8 @@ func (m *market) refsOn(i, j int, key string) []string {
 }
 
 // bought is a buying line as one would ask for it.
-func (m *market) bought(key string) string {
-	p := m.lines[key].part
+func (m *market) bought(id int) string {
+	p := m.lines[id].part
 	words := []string{p.Family}
 	if text := p.ValueText(); text != "" {
 		words = append(words, text)

@@ -95,10 +95,12 @@ func (d *dive) ceiling() int64 {
 
 // over says whether the search must end here.
 func (d *dive) over() bool {
-	if d.err == nil {
-		d.err = d.ctx.Err()
+	if d.err != nil {
+		return true
 	}
-	return d.err != nil || d.s.steps >= d.s.limits.Steps
+	over := false
+	over, d.err = d.s.spent(d.ctx)
+	return over
 }
 
 // enter makes room for a search of a bank's options.

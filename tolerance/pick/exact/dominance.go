@@ -11,7 +11,10 @@ func (p *Problem) undominated() (kept [][]int, dropped int) {
 	kept = make([][]int, len(p.Lines))
 	most := p.mostVariance()
 	for i, l := range p.Lines {
-		for j := range l.Options {
+		for j, o := range l.Options {
+			if o.Floor >= Unavailable {
+				continue
+			}
 			if p.replaceable(i, j, most) {
 				dropped++
 				continue
@@ -24,15 +27,19 @@ func (p *Problem) undominated() (kept [][]int, dropped int) {
 
 // replaceable says whether some option stands in for option j of line i.
 // Standing in is transitive and never mutual (the order of cost and index is
-// strict), so a chain of replacements ends at a kept option.
+// strict), so a chain of replacements ends at a kept option: one that is not
+// marked as dominated.
 func (p *Problem) replaceable(i, j int, variance []float64) bool {
 	b := &p.Lines[i].Options[j]
+	if b.Dominated {
+		return true
+	}
 	if !b.Alone {
 		return false
 	}
 	for k := range p.Lines[i].Options {
 		a := &p.Lines[i].Options[k]
-		if !a.Alone || a.Floor > b.Floor || a.Floor == b.Floor && k >= j {
+		if !a.Alone || a.Dominated || a.Floor > b.Floor || a.Floor == b.Floor && k >= j {
 			continue
 		}
 		if p.noWorse(a, b, variance) {

@@ -47,12 +47,12 @@ func (s *search) look(ctx context.Context) error {
 	}
 	choice := make([]int, len(s.p.Lines))
 	for {
-		if err := ctx.Err(); err != nil {
+		if err := ctx.Err(); err != nil || s.hurried() {
 			return err
 		}
-		if !s.answers[name(choice)].judged {
+		if cost := s.p.cost(choice); cost < Unavailable && !s.answers[name(choice)].judged {
 			s.out.Examined++
-			s.see(choice, s.p.cost(choice), s.p.judge(choice))
+			s.see(choice, cost, s.p.judge(choice))
 		}
 		if !s.p.next(choice) {
 			s.out.NearestExact = true
@@ -60,6 +60,9 @@ func (s *search) look(ctx context.Context) error {
 		}
 	}
 }
+
+// hurried says that time is over and something near is known.
+func (s *search) hurried() bool { return s.nearest.choice != nil && s.expired() }
 
 // next steps to the choice that follows in lexicographic order.
 func (p *Problem) next(choice []int) bool {
@@ -77,23 +80,42 @@ func (p *Problem) next(choice []int) bool {
 // time, until no single change helps.
 func (s *search) improve(ctx context.Context) error {
 	if s.nearest.choice == nil {
-		first := make([]int, len(s.p.Lines))
-		s.judge(first, s.p.cost(first))
+		s.begin()
 	}
 	for {
 		from := s.nearest
 		for i := range from.choice {
 			choice := slices.Clone(from.choice)
 			for j := range s.p.Lines[i].Options {
-				if err := ctx.Err(); err != nil {
+				if err := ctx.Err(); err != nil || s.hurried() {
 					return err
 				}
 				choice[i] = j
-				s.judge(choice, s.p.cost(choice))
+				if cost := s.p.cost(choice); cost < Unavailable {
+					s.judge(choice, cost)
+				}
 			}
 		}
 		if from.compare(s.nearest) == 0 {
 			return nil
+		}
+	}
+}
+
+// beginnings is how many choices are looked at to find one that can be bought.
+const beginnings = 4096
+
+// begin judges the first choice that can be bought, of those whose options
+// step evenly from line to line.
+func (s *search) begin() {
+	choice := make([]int, len(s.p.Lines))
+	for n := range beginnings {
+		for i, l := range s.p.Lines {
+			choice[i] = (n + n/len(l.Options)*i) % len(l.Options)
+		}
+		if cost := s.p.cost(choice); cost < Unavailable {
+			s.judge(choice, cost)
+			return
 		}
 	}
 }

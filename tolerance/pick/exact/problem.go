@@ -6,6 +6,7 @@ package exact
 import (
 	"fmt"
 	"math"
+	"slices"
 	"time"
 )
 
@@ -22,8 +23,9 @@ type Problem struct {
 	// Base is money owed whatever is chosen, a lower bound: for every choice
 	// Cost >= Base + the sum of the chosen options' floors.
 	Base int64
-	// Cost is the exact money of a full choice. Price breaks and lines that
-	// buy the same thing make it more than a sum. nil: Base plus the floors.
+	// Cost is the exact money of a full choice, Unavailable when it cannot be
+	// bought. Price breaks and lines that buy the same thing make it more than
+	// a sum. nil: Base plus the floors.
 	Cost func(choice []int) int64
 	// Judge is the exact linear judgement of a full choice; lots that merge
 	// make it more than a sum. nil: the demands with the effects added up.
@@ -33,6 +35,16 @@ type Problem struct {
 	// nil: no confirmation is needed.
 	Confirm func(choice []int) (bool, error)
 }
+
+// Unavailable is the cost of a choice that cannot be bought, as where lines
+// together ask for more of an offer than is in stock. Such a choice is never
+// judged, chosen or nearest. Costs at or above it mean the same, and so does a
+// floor for every choice with that option. Base and floors may be its lower
+// bounds as ever: what they come to must stay below it.
+//
+// A stock can be a demand besides, so that the search cuts early: worst case,
+// the pieces bought as means, the stock as High.
+const Unavailable int64 = 1 << 60
 
 // A Line is one open buying line.
 type Line struct {
@@ -52,9 +64,12 @@ type Option struct {
 	// money or demands: it adds exactly Floor to the cost and exactly Effects
 	// to what Judge judges. Only such options are compared for dominance.
 	Alone bool
+	// Dominated promises that an option of its line without this mark stands in
+	// for it, whatever else is chosen: the choice with that one is judged to
+	// meet and can be bought wherever the choice with this one is, and costs
+	// less, or the same and comes before it in order.
+	Dominated bool
 }
-
-const Unavailable = int64(1) << 60
 
 // An Effect is what an option adds to a demand's quantity N, in N's unit (the
 // variance in its square). The mean must be exact for every choice. Variance
@@ -88,7 +103,10 @@ type Limits struct {
 	Nodes       int // partial choices kept in memory, 28 bytes each; 0: DefaultNodes
 	Steps       int // partial choices looked at; 0: DefaultSteps
 	Simulations int // calls of Confirm; 0: no limit
-	For         time.Duration
+	// For is the time from the start of the search, 0: no limit. It is looked
+	// at now and then and before each call of Confirm, which it does not
+	// interrupt. Where it stops a search, the outcome depends on the machine.
+	For time.Duration
 
 	piece int // steps of a dive between splits, for tests; 0: pieceSteps
 }
@@ -97,6 +115,15 @@ type Limits struct {
 const (
 	DefaultNodes = 1 << 17
 	DefaultSteps = 1 << 27
+)
+
+// A Stop is the limit that ended a search.
+type Stop string
+
+const (
+	OutOfTime        Stop = "time"
+	OutOfSteps       Stop = "steps"
+	OutOfSimulations Stop = "simulations"
 )
 
 // An Outcome is what the search found out.
@@ -113,16 +140,18 @@ type Outcome struct {
 	Cost   int64
 	Bound  int64 // no cheaper choice exists; equals Cost when proved
 	Proved bool
+	// Stopped says which limit ended a search that proved nothing.
+	Stopped Stop
 
 	Candidates int // combinations that exist; math.MaxInt when more than that
 	Examined   int // full choices put to Judge
 	Simulated  int // full choices put to Confirm
-	CutByBound int // partial choices cut: dearer than a known one, or beyond every demand's reach
-	Dominated  int
-	Dropped    int // options left out before the search: dominated, or in no choice cheap enough
+	CutByBound int // partial choices cut: dearer than a known one, beyond a demand's reach, or not to be bought
+	Dominated  int // options left out before the search because another one stands in for them
+	Pegged     int // options left out before the search because no choice cheap enough can hold them
 
-	// Nearest is set when there is no Choice: least shortfall, then least
-	// cost, then first in order. Where Judge passed choices that Confirm
+	// Nearest is set when there is no Choice, and one can be bought: least
+	// shortfall, then least cost, then first in order. Where Judge passed choices that Confirm
 	// refused, it is the cheapest of those.
 	Nearest        []int
 	NearestVerdict Verdict
@@ -160,11 +189,41 @@ func (p *Problem) check() error {
 				return fmt.Errorf("line %d, option %d: %w", i, j, err)
 			}
 		}
+		if !slices.ContainsFunc(l.Options, func(o Option) bool { return !o.Dominated }) {
+			return fmt.Errorf("line %d: every option is dominated, expected one that stands in for the others", i)
+		}
+	}
+	if !p.addable() {
+		return fmt.Errorf("base and floors come to %d or more in size, expected less", Unavailable)
 	}
 	if len(p.Lines) >= math.MaxUint16 {
 		return fmt.Errorf("%d lines, expected fewer than %d", len(p.Lines), math.MaxUint16)
 	}
 	return nil
+}
+
+// addable says that no sum of base and floors comes near an overflow. Floors of
+// options that cannot be bought are in no sum.
+func (p *Problem) addable() bool {
+	size := func(x int64) int64 {
+		if x <= -Unavailable {
+			return Unavailable
+		}
+		return min(max(x, -x), Unavailable)
+	}
+	sum := size(p.Base)
+	for _, l := range p.Lines {
+		most := int64(0)
+		for _, o := range l.Options {
+			if o.Floor < Unavailable {
+				most = max(most, size(o.Floor))
+			}
+		}
+		if sum += most; sum >= Unavailable {
+			return false
+		}
+	}
+	return sum < Unavailable
 }
 
 func (o *Option) check(demands int) error {
@@ -207,14 +266,20 @@ func (p *Problem) candidates() int {
 	return n
 }
 
-// cost is Cost, or its stand-in.
+// cost is Cost, or its stand-in, and never more than Unavailable.
 func (p *Problem) cost(choice []int) int64 {
+	for i, j := range choice {
+		if p.Lines[i].Options[j].Floor >= Unavailable {
+			return Unavailable
+		}
+	}
 	if p.Cost != nil {
-		return p.Cost(choice)
+		return min(p.Cost(choice), Unavailable)
 	}
 	return p.floor(choice)
 }
 
+// floor is the sum of floors of a choice whose options can all be bought.
 func (p *Problem) floor(choice []int) int64 {
 	sum := p.Base
 	for i, j := range choice {

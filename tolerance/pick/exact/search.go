@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"time"
 )
 
 // none is the ceiling that cuts nothing.
@@ -42,6 +43,9 @@ func (p *Problem) Cheapest(ctx context.Context, limits Limits) (Outcome, error) 
 		limits.piece = pieceSteps
 	}
 	s := &search{p: p, limits: limits, answers: map[string]answer{}}
+	if limits.For > 0 {
+		s.deadline = time.Now().Add(limits.For)
+	}
 	s.out.Candidates = p.candidates()
 	err := s.run(ctx)
 	if err == nil {
@@ -73,6 +77,36 @@ type search struct {
 	steps   int   // partial choices looked at
 	want    int   // how many choices the pool has room for, at least poolSize
 	nearest known // the nearest seen so far, with its verdict in out
+
+	deadline time.Time // zero: none
+	late     bool      // it has passed
+}
+
+// expired looks at the clock.
+func (s *search) expired() bool {
+	if !s.late && !s.deadline.IsZero() {
+		s.late = !time.Now().Before(s.deadline)
+	}
+	return s.late
+}
+
+// spent says that the search must end because of the context, the time or the
+// steps, and which.
+func (s *search) spent(ctx context.Context) (bool, error) {
+	switch {
+	case ctx.Err() != nil:
+		return true, ctx.Err()
+	case s.expired():
+		s.out.Stopped = OutOfTime
+	case s.steps >= s.limits.Steps:
+		s.out.Stopped = OutOfSteps
+	}
+	return s.out.Stopped != "", nil
+}
+
+// simulated says that no call of Confirm is left.
+func (s *search) simulated() bool {
+	return s.limits.Simulations > 0 && s.out.Simulated >= s.limits.Simulations
 }
 
 // An ending is why a pass over the choices came to its end.
@@ -89,6 +123,10 @@ const (
 // run makes passes, each with fewer things left out, until one is conclusive.
 func (s *search) run(ctx context.Context) error {
 	all := s.p.all()
+	if slices.ContainsFunc(all, func(o []int) bool { return len(o) == 0 }) {
+		s.out.Proved, s.out.Bound = true, Unavailable
+		return nil
+	}
 	kept, dominated := s.p.undominated()
 	s.out.Bound = s.p.leastFloor()
 	if err := cmp.Or(s.start(ctx, kept), s.aim(ctx, kept)); err != nil {
@@ -97,7 +135,7 @@ func (s *search) run(ctx context.Context) error {
 	ceiling := s.ceiling()
 	for raised := 0; ; {
 		b, pegged := s.prepare(kept, ceiling)
-		s.out.Dropped = dominated + pegged
+		s.out.Dominated, s.out.Pegged = dominated, pegged
 		end, err := exhausted, error(nil)
 		if b != nil {
 			end, err = s.pass(ctx, b, ceiling, dominated > 0)
@@ -133,11 +171,11 @@ func (s *search) raise(ceiling int64, raised int) int64 {
 	if next := s.ceiling(); next != none {
 		return max(next, ceiling)
 	}
-	step := 4 * max(ceiling-s.p.leastFloor(), 1)
-	if raised > 2 || ceiling > none/2-step {
+	above := max(ceiling-s.p.leastFloor(), 1)
+	if raised > 2 || above > Unavailable/8 {
 		return none
 	}
-	return ceiling + step
+	return ceiling + 4*above
 }
 
 // mostWanted is how many choices a dive looks for at most.
@@ -161,8 +199,11 @@ func (s *search) deep(ctx context.Context, kept [][]int, wary bool) error {
 				return err
 			}
 			end, err = s.ask(s.pool[0].choice, s.pool[0].cost)
-			if err != nil || end == stopped {
+			if err != nil {
 				return err
+			}
+			if end == stopped {
+				return s.settle(ctx)
 			}
 			if end == confirmed {
 				s.out.Proved = true
@@ -194,8 +235,8 @@ func (s *search) pass(ctx context.Context, b *bank, ceiling int64, wary bool) (e
 		}
 		switch {
 		case int(n.depth) < f.lines:
-			if s.steps >= s.limits.Steps {
-				return stopped, nil
+			if over, err := s.spent(ctx); over {
+				return stopped, err
 			}
 			if !f.room(len(b.kept[b.order[n.depth]]), s.limits.Nodes) {
 				return crowded, nil
@@ -209,7 +250,7 @@ func (s *search) pass(ctx context.Context, b *bank, ceiling int64, wary bool) (e
 			if err != nil {
 				return stopped, err
 			}
-			if cost > ceiling {
+			if cost > ceiling || cost >= Unavailable {
 				s.out.CutByBound++
 			} else {
 				f.push(f.priced(i, max(cost, n.key)))
@@ -255,7 +296,12 @@ func (s *search) ask(choice []int, cost int64) (ending, error) {
 	if !s.judge(choice, cost) || s.answers[name(choice)].refused {
 		return exhausted, nil
 	}
-	if s.limits.Simulations > 0 && s.out.Simulated >= s.limits.Simulations {
+	switch {
+	case s.expired():
+		s.out.Stopped = OutOfTime
+		return stopped, nil
+	case s.simulated():
+		s.out.Stopped = OutOfSimulations
 		return stopped, nil
 	}
 	ok, err := s.confirm(choice)
@@ -305,15 +351,18 @@ func (s *search) confirm(choice []int) (bool, error) {
 	return ok, nil
 }
 
+// lateAnswers is how many choices are put to Confirm after the time is over.
+const lateAnswers = 4
+
 // settle makes the best of a search that was stopped: the cheapest of the
-// local search's choices that Confirm confirms.
+// choices known that Confirm confirms, of a few only when time is over.
 func (s *search) settle(ctx context.Context) error {
-	for len(s.pool) > 0 {
+	for asked := 0; len(s.pool) > 0; asked++ {
 		k := s.pool[0]
 		if err := ctx.Err(); err != nil {
 			return err
 		}
-		if s.limits.Simulations > 0 && s.out.Simulated >= s.limits.Simulations {
+		if s.simulated() || s.expired() && asked >= lateAnswers {
 			return nil
 		}
 		ok, err := s.confirm(k.choice)
@@ -337,12 +386,14 @@ func name(choice []int) string {
 	return string(b)
 }
 
-// all keeps every option of every line.
+// all keeps every option of every line that can be bought.
 func (p *Problem) all() [][]int {
 	kept := make([][]int, len(p.Lines))
 	for i, l := range p.Lines {
-		for j := range l.Options {
-			kept[i] = append(kept[i], j)
+		for j, o := range l.Options {
+			if o.Floor < Unavailable {
+				kept[i] = append(kept[i], j)
+			}
 		}
 	}
 	return kept
@@ -352,7 +403,7 @@ func (p *Problem) all() [][]int {
 func (p *Problem) leastFloor() int64 {
 	sum := p.Base
 	for _, l := range p.Lines {
-		least := l.Options[0].Floor
+		least := Unavailable
 		for _, o := range l.Options {
 			least = min(least, o.Floor)
 		}

@@ -14,7 +14,7 @@ const poolSize = 16
 func (s *search) start(ctx context.Context, kept [][]int) error {
 	l := newLocal(s.p, kept)
 	for _, choice := range l.seeds() {
-		if err := ctx.Err(); err != nil {
+		if err := ctx.Err(); err != nil || s.expired() {
 			return err
 		}
 		if !l.mend(choice) {
@@ -31,7 +31,7 @@ func (s *search) start(ctx context.Context, kept [][]int) error {
 // keep judges a choice and, where Judge passes it, puts it in the pool, which
 // holds the cheapest, none of them refused.
 func (s *search) keep(k known) {
-	if !s.judge(k.choice, k.cost) {
+	if k.cost >= Unavailable || !s.judge(k.choice, k.cost) {
 		return
 	}
 	at, found := slices.BinarySearchFunc(s.pool, k, known.compare)
@@ -49,7 +49,7 @@ func (s *search) forget(choice []int) {
 // aim improves the pool with beams over ever fewer options.
 func (s *search) aim(ctx context.Context, kept [][]int) error {
 	for _, width := range beamWidths {
-		if err := ctx.Err(); err != nil {
+		if err := ctx.Err(); err != nil || s.expired() {
 			return err
 		}
 		b, _ := s.prepare(kept, s.ceiling())

@@ -37,13 +37,14 @@ type margin struct {
 	mean           float64 // that far to either side
 	variance, half float64 // the picture's is at least that share of the sum's
 	slack          float64 // of the share, at most
+	over           float64 // the picture's variance is at most that many times the sum's
 }
 
 // addEffects gives a search's problem effects to bound by.
 func (s *searching) addEffects() (*additive, error) {
 	a := &additive{searching: s, base: make([]int, len(s.kept)), margins: make([]margin, len(s.pictures.demands))}
 	for q := range a.margins {
-		a.margins[q] = margin{variance: 1, half: 1, slack: shareSlack}
+		a.margins[q] = margin{variance: 1, half: 1, slack: shareSlack, over: 1}
 	}
 	if err := a.takeApart(); err != nil {
 		return nil, err
@@ -57,13 +58,22 @@ func (s *searching) addEffects() (*additive, error) {
 		a.learn(choice)
 	}
 	a.beyond = false
-	a.widen()
 	judge := s.problem.Judge
 	s.problem.Judge = func(choice []int) exact.Verdict {
 		a.learn(choice)
 		return judge(choice)
 	}
 	return a, nil
+}
+
+// safely gives the problem demands that a choice meets with room to spare: as
+// asked, with the variance that lots in common may bring.
+func (a *additive) safely() {
+	var safe []margin
+	for _, m := range a.margins {
+		safe = append(safe, margin{variance: m.over, half: 1})
+	}
+	a.demand(safe)
 }
 
 // takeApart finds each fitting's effects, the others being as in the base and
@@ -152,6 +162,7 @@ func (a *additive) learn(choice []int) {
 		}
 		for n, j := range list {
 			m, sum := &a.margins[g.demands[n]], a.sum(choice, g.demands[n])
+			m.over = math.Max(m.over, 1/share(sum.Variance, j.Variance))
 			before := *m
 			m.mean = math.Max(m.mean, math.Abs(j.Mean-sum.Mean))
 			m.variance = math.Min(m.variance, share(j.Variance, sum.Variance))
@@ -179,9 +190,14 @@ func (a *additive) widen() {
 		m.variance, m.half = math.Max(0, 1-widening*(1-m.variance)), math.Max(0, 1-widening*(1-m.half))
 		m.slack = math.Min(1, shareSlack+widening*(m.slack-shareSlack))
 	}
+	a.demand(a.margins)
+}
+
+// demand gives the problem the demands and effects that follow from margins.
+func (a *additive) demand(margins []margin) {
 	a.problem.Demands = nil
 	for q, d := range a.ask.demands {
-		m := a.margins[q]
+		m := margins[q]
 		d.Low, d.High = d.Low-m.mean, d.High+m.mean
 		d.Share = math.Max(0, d.Share-m.slack)
 		d.BaseMean, d.BaseVariance, d.BaseHalf = a.rest[q].Mean, a.rest[q].Variance*m.variance, a.rest[q].Half*m.half
@@ -191,24 +207,58 @@ func (a *additive) widen() {
 		for j := range a.problem.Lines[i].Options {
 			effects := slices.Clone(a.effects[i][j])
 			for q := range effects {
-				effects[q].Variance *= a.margins[q].variance
-				effects[q].Half *= a.margins[q].half
+				effects[q].Variance *= margins[q].variance
+				effects[q].Half *= margins[q].half
 			}
 			a.problem.Lines[i].Options[j].Effects = effects
 		}
 	}
 }
 
-// cheapest searches, and again with wider margins as long as a choice was met
-// outside them.
+// A quick look for a good choice takes so many steps and no more than this part
+// of the time there is.
+const (
+	quickSteps = 1 << 22
+	quickPart  = 4
+)
+
+// cheapest looks for a choice that meets the demands with room to spare, which
+// is soon found, and then for the cheapest of all; that again, with wider
+// margins, as long as a choice was met outside them. Where this ends without a
+// choice or with a dearer one, the first stands, with the bound that was proved.
 func (a *additive) cheapest() (exact.Outcome, error) {
+	first, err := a.first()
+	if err != nil {
+		return first, err
+	}
+	a.widen()
 	for n := 0; ; n++ {
 		a.beyond = false
 		found, err := a.problem.Cheapest(a.context, a.limit())
 		if err != nil || !a.beyond || n == widenings {
 			found.Proved = found.Proved && !a.beyond
-			return found, err
+			return better(found, first), err
 		}
 		a.widen()
 	}
+}
+
+// first is a choice that is soon found.
+func (a *additive) first() (exact.Outcome, error) {
+	a.safely()
+	limit := a.limit()
+	limit.Steps, limit.For = quickSteps, limit.For/quickPart
+	return a.problem.Cheapest(a.context, limit)
+}
+
+// better is what a search found, or, where another found something cheaper,
+// that, with what the search proved.
+func better(found, other exact.Outcome) exact.Outcome {
+	found.Examined += other.Examined
+	found.Simulated += other.Simulated
+	if other.Choice != nil && (found.Choice == nil && !found.Proved || found.Choice != nil && other.Cost < found.Cost) {
+		found.Choice, found.Cost, found.Nearest = other.Choice, other.Cost, nil
+		found.Proved = false
+	}
+	return found
 }

@@ -56,6 +56,8 @@ type chooser struct {
 	*pictures
 	context  context.Context
 	end      time.Time // of the search; zero: none
+	floors   [][]int64 // of each opening's fittings
+	worse    [][]bool  // those that another one stands in for
 	trials   []*trial
 	answers  map[string]string // of choices simulated: "" where confirmed, else why not
 	refusals int
@@ -82,6 +84,14 @@ func newChooser(ctx context.Context, b *build.Build, o Options) (*chooser, error
 		return nil, err
 	}
 	c.makeTrials(base)
+	c.worse = c.dominated()
+	for i := range c.fittings {
+		var floors []int64
+		for j := range c.fittings[i] {
+			floors = append(floors, c.floor(i, j))
+		}
+		c.floors = append(c.floors, floors)
+	}
 	return c, nil
 }
 
@@ -155,19 +165,32 @@ func (c *chooser) newSearch(ask asking, out map[int]bool) *searching {
 		Judge:   func(choice []int) exact.Verdict { return ask.quickly(s.full(choice)) },
 		Confirm: func(choice []int) (bool, error) { return c.confirm(s.full(choice)) },
 	}
+	worse := c.worse
+	if len(out) > 0 { // what stands in for another may be out itself
+		worse = none(c.worse)
+	}
 	for i := range c.fittings {
 		var kept []int
 		var l exact.Line
 		for j := range c.fittings[i] {
 			if !slices.ContainsFunc(c.buys[i][j], func(p purchase) bool { return out[p.line] }) {
 				kept = append(kept, j)
-				l.Options = append(l.Options, exact.Option{Floor: c.floor(i, j)})
+				l.Options = append(l.Options, exact.Option{Floor: c.floors[i][j], Dominated: worse[i][j]})
 			}
 		}
 		s.kept = append(s.kept, kept)
 		s.problem.Lines = append(s.problem.Lines, l)
 	}
 	return s
+}
+
+// none marks nothing.
+func none(marks [][]bool) [][]bool {
+	var list [][]bool
+	for _, m := range marks {
+		list = append(list, make([]bool, len(m)))
+	}
+	return list
 }
 
 // full is a choice among the fittings kept, as one among all.

@@ -1,0 +1,149 @@
+package build
+
+import (
+	"fmt"
+	"slices"
+
+	"batchwright/bom/part"
+)
+
+// Refitting is what buying lines are given in place of what a build has there.
+// What is left zero stays as it is.
+type Refitting struct {
+	Family    string
+	Tolerance float64 // a grade the family is sold in; 0: see ClosestGrade
+	Worth     Worth
+	Lots      Lots
+}
+
+// Lots says how pieces of a buying line are drawn.
+type Lots string
+
+// The words a build file has for it; "" is as it is.
+const (
+	OneLot    Lots = "one"
+	MixedLots Lots = "mixed"
+)
+
+// Line lists the positions of the buying line that a position is on by
+// `same_as`, first the one that decides; nil where nothing is fitted.
+func (b *Build) Line(position string) []string {
+	p := b.Place(position)
+	if p == nil || !p.Fitted {
+		return nil
+	}
+	line := []string{position}
+	if p.SameAs != "" {
+		line[0] = p.SameAs
+	}
+	for _, s := range b.Stages {
+		for _, q := range s.Places {
+			if q.SameAs == line[0] {
+				line = append(line, s.Name+"."+q.Role)
+			}
+		}
+	}
+	return line
+}
+
+// Refit is the build with the lines of some positions fitted anew, open or not.
+// What else the file writes on their parts holds for the new ones. The other
+// openings stay open; the original is left as it was.
+func (b *Build) Refit(positions []string, r Refitting) (*Build, error) {
+	lines := *b
+	lines.Openings = nil
+	var choice []Fitting
+	for _, position := range positions {
+		line := b.Line(position)
+		if line == nil {
+			return nil, fmt.Errorf("build: nothing is fitted at %q", position)
+		}
+		if slices.ContainsFunc(lines.Openings, func(o Opening) bool { return o.Positions[0] == line[0] }) {
+			continue
+		}
+		decides := b.Place(line[0])
+		if decides.Geometry != nil {
+			return nil, fmt.Errorf("%s is wound, not bought", line[0])
+		}
+		o := Opening{Positions: line, Type: decides.Type, node: decides.node}
+		f, err := b.refitting(o, r)
+		if err != nil {
+			return nil, err
+		}
+		lines.Openings = append(lines.Openings, o)
+		choice = append(choice, f)
+	}
+	out, err := lines.Fit(choice)
+	if err != nil {
+		return nil, err
+	}
+	for _, o := range b.Openings {
+		if !slices.ContainsFunc(lines.Openings, func(done Opening) bool { return done.Positions[0] == o.Positions[0] }) {
+			out.Openings = append(out.Openings, o)
+		}
+	}
+	return out, nil
+}
+
+// refitting makes the part that a line is given.
+func (b *Build) refitting(o Opening, r Refitting) (Fitting, error) {
+	now := b.Place(o.Positions[0])
+	f := Fitting{Family: now.Part.Family, Tolerance: now.Part.Grade(), Worth: b.written(o), Part: now.Part}
+	if r.Family != "" || r.Tolerance != 0 || r.Worth != (Worth{}) {
+		if err := b.replace(&f, o, r); err != nil {
+			return f, err
+		}
+	}
+	if r.Lots != "" {
+		f.Part.LotsMixed = r.Lots == MixedLots
+	}
+	return f, nil
+}
+
+// replace puts another part in a fitting.
+func (b *Build) replace(f *Fitting, o Opening, r Refitting) error {
+	if r.Family != "" {
+		f.Family = r.Family
+	}
+	if r.Worth != (Worth{}) {
+		f.Worth = r.Worth
+	}
+	family, known := b.Families.Family(f.Family)
+	if !known || family.Type != o.Type {
+		return fmt.Errorf("%s is of no family that sells a %s", o.Positions[0], o.Type)
+	}
+	now := f.Part
+	if f.Tolerance = r.Tolerance; f.Tolerance == 0 {
+		f.Tolerance = ClosestGrade(family, now.Grade())
+	}
+	p, err := b.place(o, family, f.Worth, f.Tolerance)
+	if err != nil {
+		return err
+	}
+	var none reader // nothing to complain of: the node was checked when it was read
+	as := Place{Part: p}
+	none.readParameters(&as, o.node.Get("parameters"))
+	f.Part = as.Part
+	if r.Family == "" && r.Tolerance == 0 { // one may be written that is no grade
+		for i := range f.Part.Parameters {
+			q, was := &f.Part.Parameters[i], now.Parameters[i]
+			q.Tolerance, q.Absolute = was.Tolerance, was.Absolute
+		}
+	}
+	return nil
+}
+
+// ClosestGrade is the grade of a family that stands in for a tolerance without
+// flattering the family: the tolerance itself where it is sold, else the next
+// wider one, else the widest. It is 0 for a family that is sold without.
+func ClosestGrade(f *part.Family, tolerance float64) float64 {
+	if len(f.Grades) == 0 {
+		return 0
+	}
+	for _, g := range f.Grades { // tightest first
+		if g.Tolerance >= tolerance*(1-1e-9) {
+			return g.Tolerance
+		}
+	}
+	return f.Grades[len(f.Grades)-1].Tolerance
+}

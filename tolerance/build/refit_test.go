@@ -179,7 +179,7 @@ func TestDrifting(t *testing.T) {
 	)
 	for name, c := range map[string]struct{ old, now, want string }{
 		"a change's":      {"output: mixer.offset, change_from", "output: fixed.frequency, change_from", "[fixed.frequency]"},
-		"the last trim's": {targets, "", "[mixer.offset]"},
+		"the last trim's": {targets, "targets:\n  - {name: at the bench, output: fixed.frequency, between: [1 Hz, 1 MHz]}\n", "[mixer.offset]"},
 		"neither":         {trims + targets, "", "[]"},
 	} {
 		b, err := read(strings.Replace(good, c.old, c.now, 1))

@@ -5,6 +5,7 @@ import (
 	"slices"
 
 	"batchwright/bom/part"
+	"batchwright/bom/quantity"
 )
 
 // Refitting is what buying lines are given in place of what a build has there.
@@ -146,4 +147,46 @@ func ClosestGrade(f *part.Family, tolerance float64) float64 {
 		}
 	}
 	return f.Grades[len(f.Grades)-1].Tolerance
+}
+
+// Overrides are the keys written on a position's part that stand over its
+// family's figures, whatever the family.
+func (b *Build) Overrides(position string) []string {
+	line := b.Line(position)
+	if line == nil || b.Place(line[0]).node == nil {
+		return nil
+	}
+	var list []string
+	for _, key := range append(slices.Clone(part.ScatterKeys[1:]), "bias_law", "rated", "parameters") { // the first is the tolerance
+		if b.Place(line[0]).node.Get(key) != nil {
+			list = append(list, key)
+		}
+	}
+	return list
+}
+
+// ParseWorth reads what a part of a type is bought by: a value above zero, or
+// a trimmer's range.
+func ParseWorth(text string, t part.Type) (Worth, error) {
+	if !(&Place{Type: t}).Single() {
+		return Worth{}, fmt.Errorf("a %s has no value to choose", t)
+	}
+	w := Worth{Text: text}
+	if t.Trimmer() {
+		low, high, err := quantity.ParseRange(text, t.Unit())
+		if err != nil || !(low.Value >= 0 && low.Value < high.Value) {
+			return w, fmt.Errorf("%q is no trimmer's range: two values with a unit, low..high, such as 4..34 pF or 0..10 kΩ", text)
+		}
+		w.Low, w.High = low.Value, high.Value
+		return w, nil
+	}
+	q, err := quantity.Parse(text, t.Unit())
+	if err != nil {
+		return w, err
+	}
+	if !(q.Value > 0) {
+		return w, fmt.Errorf("%q is no value of a %s: more than zero", text, t)
+	}
+	w.Low, w.High = q.Value, q.Value
+	return w, nil
 }

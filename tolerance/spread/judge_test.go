@@ -58,10 +58,10 @@ func TestJudge(t *testing.T) {
 	corner := j.Targets[1]
 	near(t, "worst half width at cold", corner.Changes[1].HalfWidth, 22, 1e-6)
 	if corner.Met || corner.Changes[1].Met || !corner.Changes[0].Met || corner.WorstCase == nil {
-		t.Errorf("%+v", corner)
+		t.Errorf("%+v %+v", corner.TargetReport, corner.Changes)
 	}
 	if len(j.Targets[2].Changes) != 0 || j.Targets[2].Met {
-		t.Errorf("%+v", j.Targets[2])
+		t.Errorf("%+v", j.Targets[2].TargetReport)
 	}
 	rest := j.Targets[3].Changes[0] // r − 2r moves by −r·0.01
 	near(t, "half width of the rest", rest.HalfWidth, 10*(1+0.1*0.2), 0.02)

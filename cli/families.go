@@ -72,6 +72,7 @@ type familyText struct {
 	Figures      []figureText `json:"figures"`
 	Voltage      *float64     `json:"voltage"` // null where nothing is said
 	Temperatures *rangeText   `json:"temperatures"`
+	Size         string       `json:"size,omitempty"` // of the body, in words
 	Source       string       `json:"source"`
 	Note         string       `json:"note,omitempty"`
 }
@@ -122,7 +123,7 @@ type lotText struct {
 func describeFamily(f *part.Family) familyText {
 	t := familyText{
 		familyEntry: familyEntry{f.Name, string(f.Type), f.Title},
-		Grades:      []gradeText{}, Figures: []figureText{}, Source: f.Source, Note: f.Note,
+		Grades:      []gradeText{}, Figures: []figureText{}, Size: f.Size, Source: f.Source, Note: f.Note,
 	}
 	for _, g := range f.Grades {
 		t.Grades = append(t.Grades, gradeText(g))

@@ -24,7 +24,7 @@ var floors = [][]string{
 	{"tolerance/tape", "tolerance/stage", "tolerance/scatter"},
 	{"tolerance/build"},
 	{"tolerance/spread"},
-	{"tolerance/pick", "tolerance/bench"},
+	{"tolerance/pick", "tolerance/compare", "tolerance/bench"},
 	{"export/table", "export/workbook"},
 	{"export/plan"},
 	{"cli"},

@@ -110,6 +110,7 @@ func (p *program) showFamily(t familyText, f *part.Family) {
 	if t.Temperatures != nil {
 		p.paragraph("rated temperatures", fmt.Sprintf("%g °C to %g °C", t.Temperatures.Low, t.Temperatures.High))
 	}
+	p.paragraph("size", t.Size)
 	p.paragraph("source", t.Source)
 	p.paragraph("note", t.Note)
 	p.line("\nFigures are typical of their class, not anyone's guarantee.")

@@ -42,6 +42,9 @@ func TestEmbeddedHasNoFault(t *testing.T) {
 	}
 }
 
+// sized are the types whose families say how large their parts are.
+var sized = map[Type]bool{Resistor: true, Capacitor: true, Coil: true, TrimmerResistor: true, TrimmerCapacitor: true}
+
 // Every family is whole, and its source speaks of every figure that it gives.
 func TestEmbeddedIsWholeAndSourced(t *testing.T) {
 	c := Embedded()
@@ -56,6 +59,10 @@ func TestEmbeddedIsWholeAndSourced(t *testing.T) {
 			}
 			mentions(t, f, "temperatures", true)
 			mentions(t, f, "voltage", f.Voltage != 0)
+			mentions(t, f, "size: from memory", f.Size != "")
+			if f.Size == "" && sized[f.Type] {
+				t.Error("no size")
+			}
 			if f.HasValue() {
 				checkValued(t, f)
 			}

@@ -26,6 +26,7 @@ type Family struct {
 	Parameters             []Parameter
 	Voltage                float64 // V, 0 unsaid
 	MinCelsius, MaxCelsius float64 // both 0 unsaid
+	Size                   string  // of the body at usual values, in words: "5 × 3 mm disc"; "" unsaid
 	Source, Note           string
 }
 

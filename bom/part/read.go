@@ -13,7 +13,7 @@ import (
 // familyKeys are what an entry of a family file may say.
 var familyKeys = append([]string{
 	"part", "title", "tolerances", "values", "series", "parameters",
-	"voltage", "temperatures", "source", "note", "bias_law",
+	"voltage", "temperatures", "size", "source", "note", "bias_law",
 }, ScatterKeys[1:]...) // the grades bring the tolerance
 
 // seriesNames are the preferred series of IEC 60063.
@@ -47,12 +47,12 @@ func (r *reader) complain(n *document.Node, message, expected string, known ...s
 	r.failed = true
 }
 
-// readTexts reads title, source and note.
+// readTexts reads title, size, source and note.
 func (r *reader) readTexts() {
 	for _, k := range []struct {
 		key string
 		to  *string
-	}{{"title", &r.family.Title}, {"source", &r.family.Source}, {"note", &r.family.Note}} {
+	}{{"title", &r.family.Title}, {"size", &r.family.Size}, {"source", &r.family.Source}, {"note", &r.family.Note}} {
 		n := r.node.Get(k.key)
 		if n == nil {
 			continue

@@ -25,7 +25,7 @@ func Drifts(ctx context.Context, b *build.Build, o spread.Options) ([]workbook.D
 	o.Units = min(o.Units, driftUnits)
 	o.Progress = nil // it counts from the start for every output
 	var list []workbook.Drift
-	for _, output := range driftOutputs(b) {
+	for _, output := range b.Drifting() {
 		rows, err := spread.Drift(ctx, b, output, from, to, driftSteps, o)
 		if err != nil {
 			return nil, err
@@ -54,25 +54,6 @@ func temperatures(b *build.Build) (from, to float64) {
 		from, to = min(from, c.Values[at]), max(to, c.Values[at])
 	}
 	return from, to
-}
-
-// driftOutputs are the outputs worth a chart.
-func driftOutputs(b *build.Build) []build.OutputName {
-	var list []build.OutputName
-	add := func(n build.OutputName) {
-		if !slices.Contains(list, n) {
-			list = append(list, n)
-		}
-	}
-	for _, t := range b.Targets {
-		if t.Trim < 0 && t.ChangeFrom >= 0 {
-			add(t.Output)
-		}
-	}
-	if len(list) == 0 && len(b.Trims) > 0 {
-		add(b.Trims[len(b.Trims)-1].Output)
-	}
-	return list
 }
 
 // driftLimits are the limits of the target that is about temperature: its

@@ -84,12 +84,13 @@ type Place struct {
 	Part     part.Part // the first of two where Combine says so
 	Second   part.Part // the other
 	Combine  Combine
-	Geometry *Geometry // of a coil given by its winding, nil for others
-	Quantity string    // the value as the file says it
-	SameAs   string    // the position whose buying line this shares; "" for its own
-	Position float64   // of a trimmer that no trim turns, 0..1
-	Across   *Setting  // the steady voltage across a capacitor; nil for none
-	resolved bool      // SameAs has been followed to the deciding part
+	Geometry *Geometry      // of a coil given by its winding, nil for others
+	Quantity string         // the value as the file says it
+	SameAs   string         // the position whose buying line this shares; "" for its own
+	Position float64        // of a trimmer that no trim turns, 0..1
+	Across   *Setting       // the steady voltage across a capacitor; nil for none
+	resolved bool           // SameAs has been followed to the deciding part
+	node     *document.Node // where it is written
 }
 
 // Trim is one adjustment: turn a trimmer until an output reads To.

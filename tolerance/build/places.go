@@ -60,7 +60,7 @@ func (r *reader) readPlace(s stageNode, p *Place, n *document.Node, keys []strin
 		r.Add(n, "part", "a mapping such as {ref: R1, value: 10 kΩ, family: metal-film-50, tolerance: 1 %}")
 		return
 	}
-	p.Part.Type = p.Type
+	p.Part.Type, p.node = p.Type, n
 	r.readRef(p, n)
 	r.readAcross(p, n)
 	if same := n.Get("same_as"); same != nil {

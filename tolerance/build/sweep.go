@@ -5,6 +5,21 @@ import (
 	"slices"
 )
 
+// Drifting are the outputs whose drift matters: those whose change a target
+// limits, or that the last trim sets where no target does.
+func (b *Build) Drifting() []OutputName {
+	var list []OutputName
+	for _, t := range b.Targets {
+		if t.Trim < 0 && t.ChangeFrom >= 0 && !slices.Contains(list, t.Output) {
+			list = append(list, t.Output)
+		}
+	}
+	if n := len(b.Trims); len(list) == 0 && n > 0 {
+		list = append(list, b.Trims[n-1].Output)
+	}
+	return list
+}
+
 // Sweep is the build with a condition added for each value of a variable, the
 // rest as in the reference, and one target that asks how an output changes
 // from the reference to them. The values are as conditions hold them: degrees

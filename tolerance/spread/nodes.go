@@ -28,6 +28,7 @@ type nodes struct {
 	happen   int         // first column of the findings
 	findings []int       // the first of Model.Findings in each column from there
 	happenAt []int       // of Model.Findings, which of these it is
+	kept     []int       // columns of outputs whose values a simulation keeps
 	count    int
 }
 

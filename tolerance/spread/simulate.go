@@ -24,21 +24,22 @@ type Options struct {
 // batches is how many whole batches hold the units asked for.
 func (o Options) batches(units int) int { return (o.Units + units - 1) / units }
 
-// sample is what a simulation leaves behind: no unit's values, but sums,
-// histograms and, for each target, which units comply.
+// sample is what a simulation leaves behind: sums, histograms and, for each
+// target, which units comply; no unit's values but where they are asked for.
 type sample struct {
 	nodes     *nodes
 	batches   int
 	units     int // in all
 	nominal   []float64
-	outputs   []summary // as nodes.outputs
-	settings  []summary // as nodes.trims
-	points    []summary // over good units; as Model.Points
-	short     [][2]int  // of each trim: units that ran out at setting 0, at 1
-	happened  [][]int   // [of nodes.findings][batch] in how many units; nil: in none
-	untrimmed []int     // of nodes.findings: units in which a trim it depends on did not reach
-	comply    [][]bool  // [of nodes.targets][unit]
-	good      []bool    // units that meet every one of those
+	outputs   []summary   // as nodes.outputs
+	settings  []summary   // as nodes.trims
+	points    []summary   // over good units; as Model.Points
+	short     [][2]int    // of each trim: units that ran out at setting 0, at 1
+	happened  [][]int     // [of nodes.findings][batch] in how many units; nil: in none
+	untrimmed []int       // of nodes.findings: units in which a trim it depends on did not reach
+	comply    [][]bool    // [of nodes.targets][unit]
+	good      []bool      // units that meet every one of those
+	values    [][]float64 // [column][unit] of nodes.kept; NaN where a trim did not reach
 }
 
 // summary is the distribution of one column.
@@ -115,6 +116,10 @@ func newSample(n *nodes, batches, units int) *sample {
 		s.comply[i] = make([]bool, s.units)
 	}
 	s.good = make([]bool, s.units)
+	s.values = make([][]float64, len(n.outputs))
+	for _, column := range n.kept {
+		s.values[column] = make([]float64, s.units)
+	}
 	return s
 }
 

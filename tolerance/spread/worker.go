@@ -1,6 +1,8 @@
 package spread
 
 import (
+	"math"
+
 	"batchwright/tolerance/scatter"
 )
 
@@ -77,13 +79,27 @@ func (w *worker) block(j *job, first, width int) {
 	w.judge(out, first, width)
 	for i := range w.outputs {
 		trims := w.nodes.model.Outputs[w.nodes.outputs[i]].Trims
-		w.add(&j.outputs[i], w.outputs[i], out[i], w.keepReached(trims, width))
+		keep := w.keepReached(trims, width)
+		w.add(&j.outputs[i], w.outputs[i], out[i], keep)
+		if values := w.values[i]; values != nil {
+			keepValues(values[first:first+width], out[i], keep)
+		}
 	}
 	for i := range w.points {
 		copy(w.keep, w.good[:width])
 		w.add(&j.points[i], w.points[i], out[w.nodes.points+i], w.keep[:width])
 	}
 	w.addFindings(j, out, first, width)
+}
+
+// keepValues copies the lanes kept; the others become NaN.
+func keepValues(dst, x []float64, keep []bool) {
+	for i := range dst {
+		dst[i] = math.NaN()
+		if keep[i] {
+			dst[i] = x[i]
+		}
+	}
 }
 
 // add adds the lanes kept to a column's sums, which count what is not finite

@@ -1,0 +1,105 @@
+package plan
+
+import (
+	"batchwright/bom/offer"
+	"batchwright/tolerance/build"
+	"batchwright/tolerance/compare"
+	"batchwright/tolerance/spread"
+)
+
+// Comparison is what `compare --json` prints.
+type Comparison struct {
+	Build      string            `json:"build"`
+	Seed       uint64            `json:"seed"`
+	Simulation spread.Simulation `json:"simulation"` // of each case
+	Lines      []ComparedLine    `json:"lines"`
+	Currency   string            `json:"currency"`
+	Invented   bool              `json:"demonstration"` // prices are those of the embedded book
+	Cases      []ComparedCase    `json:"cases"`
+	LeftOut    []LeftOutCase     `json:"left_out"`
+	Notes      []string          `json:"notes"`
+}
+
+// ComparedLine is a buying line whose parts are exchanged.
+type ComparedLine struct {
+	Positions []string `json:"positions"`
+	Refs      []string `json:"refs"`
+}
+
+// LeftOutCase is a combination that cannot be had.
+type LeftOutCase struct {
+	Label string `json:"label"`
+	Why   string `json:"why"`
+}
+
+// ComparedCase is one choice of parts. Lists of families, tolerances and values
+// have one entry where all lines take the same.
+type ComparedCase struct {
+	Label        string              `json:"label"`
+	Base         bool                `json:"base"`
+	Families     []string            `json:"families"`
+	Tolerances   []float64           `json:"tolerances"`
+	Values       []string            `json:"values"`
+	Lots         build.Lots          `json:"lots"`
+	Sizes        []string            `json:"sizes"`
+	Temperatures *spread.Limits      `json:"temperatures"` // rated, °C
+	Beyond       []string            `json:"beyond"`       // conditions outside of those
+	Drift        []spread.PerKelvin  `json:"drift_per_kelvin"`
+	Targets      []ComparedTarget    `json:"targets"`
+	Trims        []spread.TrimReport `json:"trims"`
+	Yield        ComparedYield       `json:"yield"`
+	UnitCost     *offer.Money        `json:"unit_cost"`  // of all parts of a unit; null where the parts are not offered
+	BatchCost    *offer.Money        `json:"batch_cost"` // with spares
+	NotOffered   string              `json:"not_offered,omitempty"`
+	Verdict      compare.Verdict     `json:"verdict"`
+	Why          string              `json:"why"`
+}
+
+// ComparedTarget is a target's verdict and how its share differs from the base's.
+type ComparedTarget struct {
+	spread.TargetReport
+	Changes    []spread.Change    `json:"changes,omitempty"`
+	Difference compare.Difference `json:"difference"`
+}
+
+// ComparedYield is a yield and how it differs from the base's.
+type ComparedYield struct {
+	spread.YieldReport
+	Difference compare.Difference `json:"difference"`
+}
+
+// NewComparison is a comparison for programs.
+func NewComparison(r *compare.Result) *Comparison {
+	o := r.Base().Order
+	c := &Comparison{
+		Build: r.Build.Title, Seed: r.Seed, Simulation: r.Simulation, Currency: o.Currency, Invented: o.Demonstration,
+		LeftOut: []LeftOutCase{}, Notes: listed(r.Notes),
+	}
+	for _, l := range r.Lines {
+		c.Lines = append(c.Lines, ComparedLine(l))
+	}
+	for _, l := range r.LeftOut {
+		c.LeftOut = append(c.LeftOut, LeftOutCase(l))
+	}
+	for _, x := range r.Cases {
+		c.Cases = append(c.Cases, newComparedCase(x))
+	}
+	return c
+}
+
+func newComparedCase(x compare.Case) ComparedCase {
+	c := ComparedCase{
+		Label: x.Label, Base: x.Base, Families: listed(x.Families), Tolerances: listed(x.Tolerances), Values: listed(x.Values),
+		Lots: x.Lots, Sizes: listed(x.Sizes), Temperatures: x.Temperatures, Beyond: listed(x.Beyond),
+		Drift: listed(x.Drifts), Targets: []ComparedTarget{}, Trims: listed(x.Judgement.Trims),
+		Yield: ComparedYield{x.Judgement.Yield, x.Yield}, NotOffered: x.NotOffered, Verdict: x.Verdict, Why: x.Why,
+	}
+	if x.NotOffered == "" {
+		unit, batch := x.Order.PerUnit, x.Order.Total
+		c.UnitCost, c.BatchCost = &unit, &batch
+	}
+	for i, t := range x.Judgement.Targets {
+		c.Targets = append(c.Targets, ComparedTarget{t.TargetReport, t.Changes, x.Targets[i]})
+	}
+	return c
+}

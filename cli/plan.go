@@ -35,7 +35,7 @@ reads the build from standard input.
   batchwright plan tone-box.yaml --units 12 --out plans`,
 		Flags: []cli.Flag{
 			&cli.StringFlag{Name: "out", Usage: "write the workbook into folder `DIR`", Value: "."},
-			unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
+			searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
 		},
 		Action: p.plan,
 	}
@@ -46,7 +46,7 @@ func (p *program) plan(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
-	s, err := readSizes(c)
+	o, s, err := readPickOptions(c, planAlternates)
 	if err != nil {
 		return err
 	}
@@ -60,7 +60,7 @@ func (p *program) plan(c *cli.Context) error {
 	if file == "" {
 		fmt.Fprintf(p.stderr, "batchwright: no build file named; planning the embedded example, %s\n", src.Title)
 	}
-	work, err := p.work(c.Context, src, s)
+	work, err := p.work(c.Context, src, o)
 	if err != nil {
 		return err
 	}
@@ -80,13 +80,14 @@ func (p *program) plan(c *cli.Context) error {
 }
 
 // work does the whole job but for the writing.
-func (p *program) work(ctx context.Context, src *source, s sizes) (*plan.Work, error) {
+func (p *program) work(ctx context.Context, src *source, o pick.Options) (*plan.Work, error) {
 	g := p.newProgress()
 	defer g.stop()
-	w := &plan.Work{File: src.File, Text: src.text, Seed: s.seed, Simulate: s.simulate, Version: Version}
+	w := &plan.Work{File: src.File, Text: src.text, Seed: o.Seed, Simulate: o.Units, Version: Version}
 	g.start("picking parts")
+	o.Progress = g.say
 	var err error
-	w.Pick, w.Build, err = pick.Choose(ctx, src.Build, pick.Options{Seed: s.seed, Units: s.simulate, Progress: g.say})
+	w.Pick, w.Build, err = pick.Choose(ctx, src.Build, o)
 	if err != nil {
 		return nil, err
 	}
@@ -94,12 +95,12 @@ func (p *program) work(ctx context.Context, src *source, s sizes) (*plan.Work, e
 		return nil, err
 	}
 	g.start("simulating")
-	o := spread.Options{Seed: s.seed, Units: s.simulate, Progress: g.at}
-	if w.Report, err = spread.Analyse(ctx, w.Model, o); err != nil {
+	simulated := spread.Options{Seed: o.Seed, Units: o.Units, Progress: g.at}
+	if w.Report, err = spread.Analyse(ctx, w.Model, simulated); err != nil {
 		return nil, err
 	}
 	g.start("drifting")
-	if w.Drifts, err = plan.Drifts(ctx, w.Build, o); err != nil {
+	if w.Drifts, err = plan.Drifts(ctx, w.Build, simulated); err != nil {
 		return nil, err
 	}
 	w.Sheet = bench.NewSheet(w.Model, w.Report)
@@ -109,7 +110,7 @@ func (p *program) work(ctx context.Context, src *source, s sizes) (*plan.Work, e
 
 // verdict is nil where everything was picked and every target is met.
 func verdict(w *plan.Work) error {
-	if err := missedTargets(w.Report); err != nil {
+	if err := missedTargets(w.Report.Targets); err != nil {
 		return err
 	}
 	if len(w.Pick.Choices) == 0 && w.Pick.Why != "" {
@@ -120,9 +121,9 @@ func verdict(w *plan.Work) error {
 
 // missedTargets is nil where every target is met; otherwise it names those
 // that are not.
-func missedTargets(r *spread.Report) error {
+func missedTargets(targets []spread.TargetReport) error {
 	var names []string
-	for _, t := range r.Targets {
+	for _, t := range targets {
 		if !t.Met {
 			names = append(names, t.Name)
 		}
@@ -130,7 +131,7 @@ func missedTargets(r *spread.Report) error {
 	if len(names) == 0 {
 		return nil
 	}
-	return missed("%d of %s missed: %s", len(names), count(len(r.Targets), "target"), strings.Join(names, ", "))
+	return missed("%d of %s missed: %s", len(names), count(len(targets), "target"), strings.Join(names, ", "))
 }
 
 // usableFolder refuses an output folder that cannot become one, before any

@@ -2,13 +2,10 @@ package cli
 
 import (
 	"fmt"
-	"math"
 	"strings"
 
 	"batchwright/bom/order"
-	"batchwright/bom/quantity"
 	"batchwright/export/plan"
-	"batchwright/tolerance/pick"
 )
 
 // showPlan prints what a plan comes to, and where the workbook is.
@@ -17,51 +14,11 @@ func (p *program) showPlan(w plan.Work, path string) {
 		count(w.Build.Units, "unit"), w.Seed, w.Report.Simulation.Batches, w.Report.Simulation.Units)
 	p.showTargets(w.Report.Targets)
 	p.paragraph("yield", plan.YieldSentence(w.Report.Yield))
-	p.showPicks(w.Pick)
+	p.showPicks(w.Pick, w.Order)
 	p.showOrder(w.Order)
 	p.showFindings(w.Report)
 	p.paragraph("mind", strings.Join(plan.Cautions(), "\n"))
 	p.line("\nwrote %s", path)
-}
-
-// showPicks prints the choices and how sure it is that nothing is cheaper.
-func (p *program) showPicks(r *pick.Result) {
-	var rows [][]string
-	for _, c := range r.Choices {
-		rows = append(rows, []string{order.Runs(c.Refs), choiceText(c), c.UnitCost.String(), c.Why})
-	}
-	p.section("picked", []string{"for", "part", "a unit", "because"}, rows)
-	if len(rows) > 0 || r.Why != "" {
-		p.paragraph("proof", proofText(r))
-	}
-}
-
-// choiceText is what was picked: "polystyrene 220 pF ±2.5 %".
-func choiceText(c pick.Choice) string {
-	text := c.Family
-	if c.Text != "" {
-		text += " " + c.Text
-	}
-	if c.Tolerance > 0 {
-		text += " ±" + quantity.Format(c.Tolerance, quantity.Percent, 0)
-	}
-	return text
-}
-
-// proofText says how the picks were found.
-func proofText(r *pick.Result) string {
-	how := "Not proved to be the cheapest"
-	if r.ProvedCheapest {
-		how = "Proved: nothing cheaper meets the targets; every cheaper choice misses one, to first order with room to spare or in simulation"
-	}
-	if r.Why != "" {
-		how = strings.ToUpper(r.Why[:1]) + r.Why[1:]
-	}
-	candidates := fmt.Sprint(r.Candidates)
-	if r.Candidates == math.MaxInt {
-		candidates = "countless"
-	}
-	return fmt.Sprintf("%s. %s combinations, %d judged, %d simulated.", how, candidates, r.Examined, r.Simulated)
 }
 
 // showOrder prints what is to be bought and what it costs.

@@ -58,5 +58,5 @@ func (p *program) spread(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
-	return missedTargets(r)
+	return missedTargets(r.Targets)
 }

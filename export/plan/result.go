@@ -1,9 +1,9 @@
 package plan
 
 import (
-	"batchwright/bom/offer"
 	"batchwright/bom/order"
 	"batchwright/tolerance/bench"
+	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick"
 	"batchwright/tolerance/spread"
 )
@@ -18,28 +18,20 @@ type Spread struct {
 type Result struct {
 	Spread
 	Picks []pick.Choice `json:"picks"`
-	Pick  Proof         `json:"pick"`
+	Pick  pick.Result   `json:"pick"`
 	Order order.Order   `json:"order"`
 	Files []string      `json:"files"` // written
 }
 
-// Proof is how the parts were chosen.
-type Proof struct {
-	ProvedCheapest bool        `json:"proved_cheapest"`
-	CostPerUnit    offer.Money `json:"cost_per_unit"`
-	Candidates     int         `json:"candidates"`
-	Examined       int         `json:"examined"`
-	Simulated      int         `json:"simulated"`
-	Alternates     []Alternate `json:"alternates"`
-	Why            string      `json:"why,omitempty"`
-}
-
-// Alternate is another choice for a position that meets the targets too.
-type Alternate struct {
-	Positions []string    `json:"positions"`
-	Family    string      `json:"family"`
-	Tolerance float64     `json:"tolerance"`
-	UnitCost  offer.Money `json:"unit_cost"`
+// Pick is what `pick --json` prints.
+type Pick struct {
+	Build   string                `json:"build"`
+	Seed    uint64                `json:"seed"`
+	Picks   []pick.Choice         `json:"picks"`
+	Pick    pick.Result           `json:"pick"`
+	Targets []spread.TargetReport `json:"targets"`
+	Order   order.Order           `json:"order"`
+	Files   []string              `json:"files"` // written
 }
 
 // NewSpread joins a report and the bench's readings.
@@ -56,14 +48,8 @@ func NewSpread(r *spread.Report, s bench.Sheet) Spread {
 
 // NewResult joins everything known about a batch and the files written.
 func NewResult(w Work, files ...string) Result {
-	p := w.Pick
 	return Result{
-		Spread: NewSpread(w.Report, w.Sheet),
-		Picks:  listed(p.Choices),
-		Pick: Proof{
-			ProvedCheapest: p.ProvedCheapest, CostPerUnit: p.CostPerUnit, Candidates: p.Candidates,
-			Examined: p.Examined, Simulated: p.Simulated, Alternates: []Alternate{}, Why: p.Why,
-		},
+		Spread: NewSpread(w.Report, w.Sheet), Picks: listed(w.Pick.Choices), Pick: *w.Pick,
 		Order: w.Order, Files: listed(files),
 	}
 }
@@ -71,3 +57,8 @@ func NewResult(w Work, files ...string) Result {
 // listed copies a list; none at all becomes an empty one, which JSON writes as
 // [] and not as null.
 func listed[T any](list []T) []T { return append([]T{}, list...) }
+
+// NewPick joins what was picked and what it costs.
+func NewPick(b *build.Build, seed uint64, r *pick.Result, o order.Order) Pick {
+	return Pick{Build: b.Title, Seed: seed, Picks: listed(r.Choices), Pick: *r, Targets: listed(r.Targets), Order: o, Files: []string{}}
+}

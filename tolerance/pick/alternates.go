@@ -6,6 +6,7 @@ import (
 
 	"batchwright/bom/offer"
 	"batchwright/bom/order"
+	"batchwright/tolerance/spread"
 )
 
 // addAlternates finds, for every buying line of a choice that was open, the
@@ -73,7 +74,7 @@ func (c *chooser) alternate(choice, other []int, id int, cost int64) Alternate {
 	sort.Slice(a.Refs, func(x, y int) bool { return order.Less(a.Refs[x], a.Refs[y]) })
 	for _, t := range c.changes() {
 		target := c.build.Targets[t]
-		a.Drifts = append(a.Drifts, Moved{target.Name, target.Unit.Symbol, c.steadiness(choice, t), c.steadiness(other, t)})
+		a.Drifts = append(a.Drifts, Moved{target.Name, target.Unit.Symbol, spread.Figure(c.steadiness(choice, t)), spread.Figure(c.steadiness(other, t))})
 	}
 	return a
 }

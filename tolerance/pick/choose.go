@@ -100,7 +100,9 @@ func newChooser(ctx context.Context, b *build.Build, o Options) (*chooser, error
 // first.
 func (c *chooser) withoutSearch() (*Result, *build.Build, error) {
 	if len(c.build.Openings) == 0 {
-		return &Result{Choices: []Choice{}, ProvedCheapest: true, Candidates: 1, CostPerUnit: c.order(c.build.Parts()).PerUnit}, c.build, nil
+		r, o := emptyResult(), c.order(c.build.Parts())
+		r.ProvedCheapest, r.Candidates, r.CostPerUnit, r.Total, r.Bound = true, 1, o.PerUnit, o.Total, o.Total
+		return r, c.build, nil
 	}
 	i := c.unsold()
 	if i < 0 {
@@ -115,7 +117,8 @@ func (c *chooser) withoutSearch() (*Result, *build.Build, error) {
 		first = append(first, c.build.Fittings(o)[0])
 	}
 	fitted, err := c.build.Fit(first)
-	r := &Result{Choices: []Choice{}, Why: "the price book offers nothing that may fill " + c.build.Openings[i].Positions[0]}
+	r := emptyResult()
+	r.Why = "the price book offers nothing that may fill " + c.build.Openings[i].Positions[0]
 	return r, fitted, err
 }
 

@@ -101,6 +101,24 @@ func (c *chooser) outcome(t *trial, choice []int) (outcome, error) {
 	return came, nil
 }
 
+// reports are a trial's reports on a choice, on as many units as the report is
+// to have even where fewer were enough to refuse it.
+func (c *chooser) reports(t *trial, choice []int) ([]spread.TargetReport, error) {
+	came, err := c.outcome(t, choice)
+	if err != nil || t.worst || came.failed < 0 {
+		return came.reports, err
+	}
+	b, err := c.fit(choice)
+	if err != nil {
+		return nil, err
+	}
+	m, err := b.CompileTargets()
+	if err != nil {
+		return nil, err
+	}
+	return spread.JudgeShares(c.context, m, t.targets, spread.Options{Seed: c.Seed, Units: c.Units})
+}
+
 // try simulates some targets on more and more units as long as they may still
 // be met, at last on those of the report.
 func (c *chooser) try(m *build.Model, targets []int) (outcome, error) {

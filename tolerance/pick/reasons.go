@@ -10,16 +10,15 @@ import (
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick/exact"
+	"batchwright/tolerance/spread"
 )
 
 // result puts what the search found into the build's terms.
 func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
-	r := &Result{
-		Choices: []Choice{}, Checks: []Check{}, Alternates: []Alternate{},
-		ProvedCheapest: found.Proved && found.Choice != nil, Bound: offer.Money(found.Bound),
-		Candidates: found.Candidates, Examined: found.Examined, Simulated: found.Simulated,
-		CutByDominance: found.Dominated, CutByBound: found.CutByBound,
-	}
+	r := emptyResult()
+	r.ProvedCheapest, r.Bound = found.Proved && found.Choice != nil, offer.Money(found.Bound)
+	r.Candidates, r.Examined, r.Simulated = found.Candidates, found.Examined, found.Simulated
+	r.CutByDominance, r.CutByBound = found.Dominated, found.CutByBound
 	choice := found.Choice
 	switch {
 	case choice == nil:
@@ -40,12 +39,33 @@ func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 		picked.Why = c.why(choice, i, j)
 		r.Choices = append(r.Choices, picked)
 	}
-	if found.Choice != nil {
-		r.Checks = c.checks(choice)
+	if err := c.report(r, choice); err != nil {
+		return nil, nil, err
 	}
 	o := c.order(fitted.Parts())
 	r.CostPerUnit, r.Total = o.PerUnit, o.Total
 	return r, fitted, nil
+}
+
+// report says what the simulation makes of a choice, target by target, and what
+// remains of the changes.
+func (c *chooser) report(r *Result, choice []int) error {
+	r.Targets = make([]spread.TargetReport, len(c.build.Targets))
+	for _, t := range c.trials {
+		reports, err := c.reports(t, choice)
+		if err != nil {
+			return err
+		}
+		for n, target := range t.targets {
+			r.Targets[target] = reports[n]
+			if !t.worst && c.build.Targets[target].Trim < 0 {
+				r.Checks = append(r.Checks, Check{reports[n].Name, spread.Figure(c.shareOf(choice, target)), reports[n].Share})
+			}
+		}
+	}
+	var err error
+	r.Remains, err = c.remains(choice)
+	return err
 }
 
 // outOfReach says which target no choice meets, and how near the best comes.
@@ -80,23 +100,8 @@ func (c *chooser) predicted(choice []int, k int) string {
 	return fmt.Sprintf("meets it on some %.3g %% of the units", 100*exact.ShareOfNormal(j.Mean, j.Variance, d.Low, d.High))
 }
 
-// checks compares, for every target by share, what the picture says of a
-// choice with what its simulation did: of several conditions the worst.
-func (c *chooser) checks(choice []int) []Check {
-	list := []Check{}
-	for _, t := range c.trials {
-		came := t.seen[on(t.lines, choice)]
-		for n, target := range t.targets {
-			if t.worst || c.build.Targets[target].Trim >= 0 || n >= len(came.reports) {
-				continue
-			}
-			list = append(list, Check{c.build.Targets[target].Name, c.shareOf(choice, target), float64(came.reports[n].Share)})
-		}
-	}
-	return list
-}
-
-// shareOf is the share of the units that meet a target, to first order.
+// shareOf is the share of the units that meet a target, to first order; of
+// several conditions the least.
 func (c *chooser) shareOf(choice []int, target int) float64 {
 	least := 1.0
 	for k, d := range c.demands {

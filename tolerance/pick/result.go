@@ -2,7 +2,10 @@
 // the targets, with proof.
 package pick
 
-import "batchwright/bom/offer"
+import (
+	"batchwright/bom/offer"
+	"batchwright/tolerance/spread"
+)
 
 // Choice is what was picked for one opening.
 type Choice struct {
@@ -29,28 +32,35 @@ type Piece struct {
 
 // Result is the outcome of a search.
 type Result struct {
-	Choices        []Choice    `json:"picks"`
-	ProvedCheapest bool        `json:"proved_cheapest"`
-	CostPerUnit    offer.Money `json:"cost_per_unit"`
-	Total          offer.Money `json:"total"`            // of the order, spares included
-	Bound          offer.Money `json:"bound"`            // nothing cheaper meets the targets
-	Candidates     int         `json:"candidates"`       // combinations that exist
-	Examined       int         `json:"examined"`         // combinations judged against the targets
-	Simulated      int         `json:"simulated"`        // of those, put through a simulation
-	CutByDominance int         `json:"cut_by_dominance"` // options that another one stands in for
-	CutByBound     int         `json:"cut_by_bound"`     // partial combinations and options that no good one can hold
-	Checks         []Check     `json:"checks"`           // picture against simulation
-	Binding        *Binding    `json:"binding"`          // nil: none
-	Alternates     []Alternate `json:"alternates"`
-	Why            string      `json:"why,omitempty"`
-	Provided       string      `json:"provided,omitempty"` // what the proof rests on beside the picture
+	Choices        []Choice              `json:"-"`
+	ProvedCheapest bool                  `json:"proved_cheapest"`
+	CostPerUnit    offer.Money           `json:"cost_per_unit"`
+	Total          offer.Money           `json:"total"`            // of the order, spares included
+	Bound          offer.Money           `json:"bound"`            // nothing cheaper meets the targets
+	Candidates     int                   `json:"candidates"`       // combinations that exist
+	Examined       int                   `json:"examined"`         // combinations judged against the targets
+	Simulated      int                   `json:"simulated"`        // of those, put through a simulation
+	CutByDominance int                   `json:"cut_by_dominance"` // options that another one stands in for
+	CutByBound     int                   `json:"cut_by_bound"`     // partial combinations and options that no good one can hold
+	Checks         []Check               `json:"checks"`           // picture against simulation
+	Remains        []Remains             `json:"remains"`          // of the changes that targets limit
+	Binding        *Binding              `json:"binding"`          // nil: none
+	Alternates     []Alternate           `json:"alternates"`
+	Targets        []spread.TargetReport `json:"-"` // as the simulation that confirmed has them, in the build's order
+	Why            string                `json:"why,omitempty"`
+	Provided       string                `json:"provided,omitempty"` // what the proof rests on beside the picture
+}
+
+// emptyResult is one with lists that JSON writes as such.
+func emptyResult() *Result {
+	return &Result{Choices: []Choice{}, Checks: []Check{}, Remains: []Remains{}, Alternates: []Alternate{}}
 }
 
 // Check is a target by share as the search saw it and as the simulation did.
 type Check struct {
-	Target    string  `json:"target"`
-	Predicted float64 `json:"predicted"` // share of the units, to first order
-	Simulated float64 `json:"simulated"`
+	Target    string        `json:"target"`
+	Predicted spread.Figure `json:"predicted"` // share of the units, to first order
+	Simulated spread.Figure `json:"simulated"`
 }
 
 // Binding is the target that costs most, and what a tighter one would.
@@ -75,8 +85,8 @@ type Alternate struct {
 // Moved is how much wider or narrower a change becomes, to first order: the
 // half width that the target's share of the units stays within.
 type Moved struct {
-	Target string  `json:"target"`
-	Unit   string  `json:"unit"`
-	From   float64 `json:"from"`
-	To     float64 `json:"to"`
+	Target string        `json:"target"`
+	Unit   string        `json:"unit"`
+	From   spread.Figure `json:"from"`
+	To     spread.Figure `json:"to"`
 }

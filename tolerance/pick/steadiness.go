@@ -3,13 +3,12 @@ package pick
 import (
 	"math"
 
-	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick/exact"
 )
 
-// steadiness is how far, to first order, the share of the units that a target
-// asks for stays from the middle of its limits, or half its worst case's width:
-// the smaller the steadier. Of several conditions it is the worst.
+// steadiness is how far from none, to first order, a target's change stays on
+// the share of the units that it asks for, or in its worst case: the smaller the
+// steadier. Of several conditions it is the worst.
 func (p *pictures) steadiness(choice []int, target int) float64 {
 	widest := 0.0
 	for k, d := range p.demands {
@@ -20,23 +19,13 @@ func (p *pictures) steadiness(choice []int, target int) float64 {
 		if !ok {
 			return math.Inf(1)
 		}
-		m := middle(p.build.Targets[target])
-		at := exact.Demand{Low: m, High: m, Share: d.Share, WorstCase: d.WorstCase}
+		at := exact.Demand{Share: d.Share, WorstCase: d.WorstCase} // a window without width at none
 		half := j.Half / halfSlack
 		if w := at.Miss(j.Mean, j.Variance, half); !(w <= widest) {
 			widest = w
 		}
 	}
 	return widest
-}
-
-// middle is the place from which a target's limits are counted: halfway between
-// them, or nothing where one of them is open.
-func middle(t build.Target) float64 {
-	if m := t.Low/2 + t.High/2; !math.IsInf(m, 0) && !math.IsNaN(m) {
-		return m
-	}
-	return 0
 }
 
 // changes are the targets on changes, whose steadiness people ask about.

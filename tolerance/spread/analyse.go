@@ -101,6 +101,8 @@ func JudgeWorstCases(m *build.Model) []TargetReport {
 			worst[i] = worstCase(m, m.Outputs[i].Node, m.Outputs[i].Trims)
 		}
 		r := targetReport(target)
+		none := Figure(math.NaN())
+		r.Share, r.ShareInterval = none, [2]Figure{none, none}
 		judgeWorst(&r, m, t, worst)
 		list = append(list, r)
 	}

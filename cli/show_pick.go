@@ -1,0 +1,43 @@
+package cli
+
+import (
+	"strings"
+
+	"batchwright/bom/order"
+	"batchwright/export/plan"
+	"batchwright/tolerance/pick"
+)
+
+// showPick prints what was picked and all that is known about it.
+func (p *program) showPick(r plan.Pick) {
+	p.line("%s: %s, seed %d", r.Build, count(r.Order.Units, "unit"), r.Seed)
+	p.showPicks(&r.Pick, r.Order)
+	p.showTargets(r.Targets)
+	p.paragraph("what remains of the changes, to first order", strings.Join(plan.RemainSentences(r.Pick), "\n"))
+	p.showOrder(r.Order)
+}
+
+// showPicks prints the choices, how sure it is that nothing is cheaper, what
+// makes them cost what they do, and what to buy where a line is out of stock.
+func (p *program) showPicks(r *pick.Result, o order.Order) {
+	var rows [][]string
+	for _, c := range r.Choices {
+		rows = append(rows, []string{order.Runs(c.Refs), plan.ChoiceText(c), c.UnitCost.String(), c.Why})
+	}
+	p.section("picked", []string{"for", "part", "a unit", "because"}, rows)
+	if len(rows) > 0 || r.Why != "" {
+		p.paragraph("proof", plan.ProofSentence(*r))
+	}
+	p.paragraph("what binds", plan.BindingSentence(*r))
+	p.paragraph("picture and simulation", strings.Join(plan.CheckSentences(*r), "\n"))
+	p.showAlternates(r.Alternates)
+}
+
+// showAlternates prints what to buy where a line is out of stock.
+func (p *program) showAlternates(list []pick.Alternate) {
+	var rows [][]string
+	for _, a := range list {
+		rows = append(rows, []string{order.Runs(a.Refs), plan.AlternateInstead(a), plan.Signed(a.More), plan.AlternateDrifts(a)})
+	}
+	p.section("if it is out of stock", []string{"for", "take", "order", "then, to first order"}, rows)
+}

@@ -52,6 +52,11 @@ func (e *Editor) Rewrite(m *Node, at string, pairs []Pair, drop ...string) {
 		e.wanted[m] = r.divide(pairs)
 		r.make()
 	}
+	for _, key := range drop {
+		if n := m.Get(key); n != nil && r.index(key) < 0 {
+			e.refuse(m, key+" that is merged into the mapping and has to go", "a mapping without <<, or one merged that has no "+key)
+		}
+	}
 }
 
 // refuse complains of a node that cannot be changed.

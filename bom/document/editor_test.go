@@ -53,6 +53,8 @@ func TestSpans(t *testing.T) {
 		{"anchors", "a: &x {b: c}\nd: *x\ne: &y\n  f: g\n", []string{"a: &x {b: c}\nd: *x\ne: &y\n  f: g", "a", "{b: c}", "b", "c", "d", "{b: c}", "b", "c", "e", "f: g", "f", "g"}},
 		{"merges", "a: &x {b: c}\nd:\n  e: f\n  <<: *x\ng: h\n", []string{"a: &x {b: c}\nd:\n  e: f\n  <<: *x\ng: h", "a", "{b: c}", "b", "c", "d", "e: f\n  <<: *x", "e", "f", "b", "c", "g", "h"}},
 		{"a header and an end", "---\na: {b: c}\n...\n", []string{"a: {b: c}", "a", "{b: c}", "b", "c"}},
+		{"escapes", `{a: "\x41\"", b: "\u00e9\\"}`, []string{`{a: "\x41\"", b: "\u00e9\\"}`, "a", `"\x41\""`, "b", `"\u00e9\\"`}},
+		{"an escape that takes the quote for a digit", `a: "\x"1"`, []string{"?", "a", "?"}},
 		{"a pair between brackets", "[a: b, c]", []string{"[a: b, c]", "a: b", "a", "b", "c"}},
 	} {
 		t.Run(c.reason, func(t *testing.T) {

@@ -162,6 +162,9 @@ func (s *source) quoted(start int) Span {
 	for i := start + 1; i < len(s.text); i++ {
 		switch {
 		case mark == '"' && s.text[i] == '\\':
+			if !s.escape(i + 1) {
+				return uncertain
+			}
 			i++
 		case mark == '\'' && s.text[i] == mark && s.byteAt(i+1) == mark:
 			i++
@@ -170,6 +173,19 @@ func (s *source) quoted(start int) Span {
 		}
 	}
 	return uncertain
+}
+
+// escape says whether what stands behind a backslash has the digits it needs:
+// the scanner takes whatever comes for them, a closing quote too.
+func (s *source) escape(i int) bool {
+	digits := map[byte]int{'x': 2, 'u': 4, 'U': 8}[s.byteAt(i)]
+	for range digits {
+		i++
+		if !bytes.ContainsRune([]byte("0123456789abcdefABCDEF"), rune(s.byteAt(i))) {
+			return false
+		}
+	}
+	return true
 }
 
 // plain is the span of a plain scalar: its value's letters, between which the

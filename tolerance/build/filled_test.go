@@ -3,7 +3,6 @@ package build_test
 import (
 	"fmt"
 	"io/fs"
-	"slices"
 	"strings"
 	"testing"
 
@@ -104,7 +103,7 @@ func TestFilledInStyles(t *testing.T) {
 			lots(single("c0g", 0.05, "220 pF"), "mixed"), "upper: {ref: C1, value: 220 pF, family: c0g, tolerance: 5 %, lots: mixed}\n"},
 		{"lots that are there", "upper: {ref: C1, lots: mixed, value: 220 pF, choose: {families: [c0g]}}\n",
 			lots(single("c0g", 0.05, "220 pF"), "one"), "upper: {ref: C1, lots: one, value: 220 pF, family: c0g, tolerance: 5 %}\n"},
-		{"an alias as the value", "upper: {ref: C1, value: 220 pF, choose: &open {families: [c0g]}}\n      # second\n",
+		{"an anchor that nothing uses", "upper: {ref: C1, value: 220 pF, choose: &open {families: [c0g]}}\n      # second\n",
 			single("c0g", 0.05, "220 pF"), "upper: {ref: C1, value: 220 pF, family: c0g, tolerance: 5 %}\n      # second\n"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -396,7 +395,7 @@ func (d *drawn) gap(indent string) string {
 	return text
 }
 
-// part writes an open part; false, it does not stand in lines of its own.
+// part writes an open part behind its name.
 func (d *drawn) part(i int) string {
 	keys, choose := d.keys(i)
 	const indent = "        "
@@ -454,8 +453,7 @@ func TestFilledInProperties(t *testing.T) {
 			}
 			rest = rest[at+len(d.chunks[i]):]
 		}
-		if ends := func(r rune) bool { return r == '\n' || r == '\r' }; strings.Contains(text, "\r\n") != strings.Contains(out, "\r\n") ||
-			slices.ContainsFunc(strings.FieldsFunc(out, ends), func(line string) bool { return strings.TrimSpace(line) == "" }) && !strings.Contains(out, "}") {
+		if strings.Contains(d.chunks[1], "\r\n") && strings.Count(out, "\n") != strings.Count(out, "\r\n") {
 			t.Errorf("line ends:\n%q", out)
 		}
 	})

@@ -10,29 +10,15 @@ import (
 	"batchwright/bom/quantity"
 )
 
-// Filling is what an opening is filled with, as a build file writes it.
-type Filling struct {
-	Combine string // "single", "parallel" or "series"
-	Pieces  []Piece
-	Lots    string // "one" or "mixed"; "" leaves what is written
-}
-
-// Piece is one piece of a filling.
-type Piece struct {
-	Family    string
-	Tolerance float64 // of families that are sold by it
-	Text      string  // the value, or a trimmer's range
-}
-
 // FilledIn is the text of the build's file with every opening filled; choice
-// holds a filling for each. A part's `choose` gives way to its value, family and
+// holds a fitting for each. A part's `choose` gives way to its value, family and
 // tolerance, or to `parallel` or `series`. What is written already and says the
 // same stays as it is spelled, and so does every byte of what belongs to no
 // opening; comments in a `choose` are put above its place. The error is a
 // document.Complaints where a part cannot be changed without changing another.
-func (b *Build) FilledIn(text []byte, choice []Filling) ([]byte, error) {
+func (b *Build) FilledIn(text []byte, choice []Fitting) ([]byte, error) {
 	if len(choice) != len(b.Openings) {
-		return nil, fmt.Errorf("build: %d fillings for %d openings", len(choice), len(b.Openings))
+		return nil, fmt.Errorf("build: %d fittings for %d openings", len(choice), len(b.Openings))
 	}
 	editor, faults := document.NewEditor(b.File, text)
 	if len(faults) > 0 {
@@ -59,14 +45,14 @@ type filler struct {
 	drop     []string
 }
 
-// fill takes a filling.
-func (f *filler) fill(c Filling) error {
+// fill takes a fitting.
+func (f *filler) fill(c Fitting) error {
 	switch {
-	case c.Combine == "single" && len(c.Pieces) == 1:
+	case c.Combine == Single && len(c.Pieces) == 1:
 		if err := f.single(c.Pieces[0]); err != nil {
 			return err
 		}
-	case (c.Combine == "parallel" || c.Combine == "series") && len(c.Pieces) > 1:
+	case (c.Combine == Parallel || c.Combine == InSeries) && len(c.Pieces) > 1:
 		list := &document.Node{Kind: document.Sequence}
 		for _, p := range c.Pieces {
 			item, err := f.keys(p)
@@ -76,12 +62,16 @@ func (f *filler) fill(c Filling) error {
 			list.Items = append(list.Items, &document.Node{Kind: document.Mapping, Pairs: item})
 		}
 		f.without("value", "family", "tolerance")
-		f.pairs = append(f.pairs, document.Pair{Key: word(c.Combine), Value: list})
+		f.pairs = append(f.pairs, document.Pair{Key: word(string(c.Combine)), Value: list})
 	default:
 		return fmt.Errorf("%d pieces combined as %q", len(c.Pieces), c.Combine)
 	}
-	if at := f.part.Get("lots"); c.Lots != "" && (at == nil || at.Value != c.Lots) {
-		f.pairs = append(f.pairs, document.Pair{Key: word("lots"), Value: word(c.Lots)})
+	lots := OneLot
+	if c.Mixed {
+		lots = MixedLots
+	}
+	if at := f.part.Get("lots"); at == nil && c.Mixed || at != nil && at.Value != string(lots) {
+		f.pairs = append(f.pairs, document.Pair{Key: word("lots"), Value: word(string(lots))})
 	}
 	return nil
 }

@@ -14,15 +14,6 @@ import (
 	"pgregory.net/rapid"
 )
 
-// fillings are fittings as a build file writes them.
-func fillings(choice []build.Fitting) []build.Filling {
-	var list []build.Filling
-	for _, f := range choice {
-		list = append(list, build.Filling{Combine: "single", Pieces: []build.Piece{{Family: f.Family, Tolerance: f.Tolerance, Text: f.Text}}})
-	}
-	return list
-}
-
 // checkFilled fills a build's openings and holds the file that is written
 // against the build that is fitted.
 func checkFilled(t rapid.TB, text string, choice []build.Fitting) string {
@@ -30,7 +21,7 @@ func checkFilled(t rapid.TB, text string, choice []build.Fitting) string {
 	if err != nil {
 		t.Fatal(err)
 	}
-	out, err := b.FilledIn([]byte(text), fillings(choice))
+	out, err := b.FilledIn([]byte(text), choice)
 	if err != nil {
 		t.Fatalf("%v\n%s", err, text)
 	}
@@ -71,16 +62,16 @@ func changed(was, is string) string {
 // one would write by hand.
 func TestFilledInStyles(t *testing.T) {
 	const upper = "upper: {ref: C1, value: 220 pF, family: c0g, tolerance: 5 %}\n"
-	single := func(family string, tolerance float64, text string) build.Filling {
-		return build.Filling{Combine: "single", Pieces: []build.Piece{{Family: family, Tolerance: tolerance, Text: text}}}
+	single := func(family string, tolerance float64, text string) build.Fitting {
+		return build.Fitting{Combine: "single", Pieces: []build.Piece{{Family: family, Tolerance: tolerance, Worth: build.Worth{Text: text}}}}
 	}
-	pair := func(combine string) build.Filling {
-		return build.Filling{Combine: combine, Pieces: []build.Piece{{"c0g", 0.05, "180 pF"}, {"polystyrene", 0.025, "39 pF"}}}
+	pair := func(combine build.Combine) build.Fitting {
+		return build.Fitting{Combine: combine, Pieces: []build.Piece{{Family: "c0g", Tolerance: 0.05, Worth: build.Worth{Text: "180 pF"}}, {Family: "polystyrene", Tolerance: 0.025, Worth: build.Worth{Text: "39 pF"}}}}
 	}
-	lots := func(f build.Filling, word string) build.Filling { f.Lots = word; return f }
+	lots := func(f build.Fitting, word string) build.Fitting { f.Mixed = word == "mixed"; return f }
 	for _, c := range []struct {
 		name, text string
-		choice     build.Filling
+		choice     build.Fitting
 		want       string
 	}{
 		{"flow", "upper: {ref: C1, value: 220 pF, choose: {families: [c0g, polystyrene], tolerances: [5 %]}}   # tank\n",
@@ -88,7 +79,7 @@ func TestFilledInStyles(t *testing.T) {
 		{"block", "upper:\n        ref: C1   # left\n        value: 220 pF\n        choose:   # film or not\n          families:\n            - c0g\n            - polystyrene   # in stock\n          tolerances: [2.5 %, 5 %]\n        temperature_coefficient: 0 ppm/K\n",
 			single("polystyrene", 0.025, "220 pF"), "upper:\n        ref: C1   # left\n        value: 220 pF\n        # film or not\n        # in stock\n        family: polystyrene\n        tolerance: 2.5 %\n        temperature_coefficient: 0 ppm/K\n"},
 		{"flow over lines", "upper: {ref: C1, choose: {families: [c0g, polystyrene],   # film or not\n                              values: [180 pF, 220 pF]},      # near it\n              lots: mixed}\n",
-			single("c0g", 0.01, "180 pF"), "upper: {ref: C1,\n              # film or not\n              value: 180 pF, family: c0g, tolerance: 1 %,      # near it\n              lots: mixed}\n"},
+			lots(single("c0g", 0.01, "180 pF"), "mixed"), "upper: {ref: C1,\n              # film or not\n              value: 180 pF, family: c0g, tolerance: 1 %,      # near it\n              lots: mixed}\n"},
 		{"all there, the same", "upper: {ref: C1, value: \"0.22 nF\", family: c0g, tolerance: 50000 ppm, choose: {families: [c0g]}}\n",
 			single("c0g", 0.05, "220 pF"), "upper: {ref: C1, value: \"0.22 nF\", family: c0g, tolerance: 50000 ppm}\n"},
 		{"all there, changed", "upper: {choose: {families: [c0g, polystyrene], values: [180 pF]}, ref: C1, value: \"0.22 nF\", family: 'c0g' , tolerance: 5 %}\n",
@@ -112,7 +103,7 @@ func TestFilledInStyles(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			out, err := b.FilledIn([]byte(text), []build.Filling{c.choice})
+			out, err := b.FilledIn([]byte(text), []build.Fitting{c.choice})
 			if err != nil {
 				t.Fatal(err)
 			}
@@ -120,7 +111,7 @@ func TestFilledInStyles(t *testing.T) {
 				t.Error(diff)
 			}
 			returns := strings.ReplaceAll(text, "\n", "\r\n")
-			out, err = b.FilledIn([]byte(returns), []build.Filling{c.choice})
+			out, err = b.FilledIn([]byte(returns), []build.Fitting{c.choice})
 			if err != nil || string(out) != strings.ReplaceAll(strings.Replace(good, upper, c.want, 1), "\n", "\r\n") {
 				t.Errorf("with carriage returns: %v\n%q", err, out)
 			}
@@ -224,7 +215,7 @@ func TestFilledInRefusals(t *testing.T) {
 			for _, o := range b.Openings {
 				choice = append(choice, b.Fittings(o)[0])
 			}
-			out, err := b.FilledIn([]byte(text), fillings(choice))
+			out, err := b.FilledIn([]byte(text), choice)
 			if err == nil || !strings.Contains(err.Error(), c.want) || out != nil {
 				t.Errorf("%v\n%s", err, out)
 			}
@@ -258,8 +249,8 @@ func TestFilledInMistakes(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	piece := build.Piece{Family: "c0g", Tolerance: 0.05, Text: "220 pF"}
-	for _, choice := range [][]build.Filling{
+	piece := build.Piece{Family: "c0g", Tolerance: 0.05, Worth: build.Worth{Text: "220 pF"}}
+	for _, choice := range [][]build.Fitting{
 		nil,
 		{{Combine: "single"}},
 		{{Combine: "single", Pieces: []build.Piece{piece, piece}}},

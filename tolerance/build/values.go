@@ -129,7 +129,7 @@ func (r *reader) joinOpening(decider, position string) {
 		if o := &r.build.Openings[i]; o.Positions[0] == decider {
 			o.Positions = append(o.Positions, position)
 			if p := r.build.Place(position); o.paired() {
-				r.reserve(r.refs[p.Part.Ref], p.Part.Ref)
+				r.reserve(p.Part.Ref)
 			}
 		}
 	}
@@ -158,7 +158,7 @@ func (r *reader) resolve(s stageNode, p *Place) {
 		}
 		if root.SameAs == "" || root.resolved {
 			if root.Paired() {
-				r.reserve(at, p.Part.Ref)
+				r.reserve(p.Part.Ref)
 			}
 			p.take(root, next)
 			return

@@ -18,7 +18,7 @@ type pairValues struct {
 	listed         []Worth
 	series         string
 	centre, within float64
-	at             *document.Node // where the centre is written
+	at             *document.Node // where the centre is written; nil where it is no good
 }
 
 // What pairs are made of where a build file does not say: common values that
@@ -53,9 +53,8 @@ func (r *reader) readPairValues(at *document.Node, p *Place, part *document.Node
 	if centre == nil || !r.readCentre(centre, p.Type, &o.pairs.centre) {
 		return // complained of
 	}
-	o.pairs.at = centre
-	if n := at.Get("within"); n != nil {
-		r.readWithin(n, &o.pairs.within)
+	if n := at.Get("within"); n == nil || r.readWithin(n, &o.pairs.within) {
+		o.pairs.at = centre
 	}
 	if n := at.Get("series"); n != nil {
 		if name, ok := r.Word(n, "a series", series.Names()...); ok {
@@ -66,7 +65,7 @@ func (r *reader) readPairValues(at *document.Node, p *Place, part *document.Node
 
 // values are those a piece of a pair may have.
 func (v pairValues) values(t part.Type, join series.Join) []Worth {
-	if v.listed != nil {
+	if v.listed != nil || v.at == nil {
 		return v.listed
 	}
 	low, high := v.centre*lesser, v.centre*(1+v.within)

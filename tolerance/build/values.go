@@ -70,6 +70,8 @@ func (r *reader) readValue(p *Place, n *document.Node, o *Opening, b *bought) bo
 	case o != nil && len(o.Values) > 0:
 		w := o.Values[0]
 		p.Quantity, b.low, b.high, b.given = w.Text, w.Low, w.High, true
+	case n.Get("choose").Get("values") != nil || n.Get("choose").Get("around") != nil:
+		return false // complained of
 	case p.Single():
 		r.Add(n, "missing key value", "the part's value in "+p.Type.Unit().Symbol)
 		return false

@@ -113,9 +113,7 @@ func summarise(b *build.Build) checked {
 	for _, s := range b.Stages {
 		stage := checkedStage{s.Name, s.Kind.Name, []string{}}
 		for _, place := range s.Places {
-			if place.Fitted {
-				stage.Refs = append(stage.Refs, place.Part.Ref)
-			}
+			stage.Refs = append(stage.Refs, place.Refs()...)
 		}
 		out.Stages = append(out.Stages, stage)
 	}

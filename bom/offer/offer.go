@@ -3,6 +3,7 @@
 package offer
 
 import (
+	"cmp"
 	"math"
 	"slices"
 	"sort"
@@ -93,20 +94,47 @@ func (o *Offer) Buy(needed int) (buy int, each, price Money, ok bool) {
 	if needed <= 0 {
 		return 0, 0, 0, true
 	}
-	if needed > mostPieces {
+	r := o.best(needed)
+	if r == nil {
 		return 0, 0, 0, false
 	}
-	for _, r := range o.Rows {
-		n := r.quantity(needed)
-		if r.Stock != NoLimit && n > r.Stock {
+	n := r.quantity(needed)
+	return n, r.Each, Money(n) * r.Each, true
+}
+
+// best is the row that sells at least `needed` pieces, one or more, most
+// cheaply, nil if none sells so many. Of two at one price it is the one that
+// sells fewer pieces, of two alike the one that draws on no stock.
+func (o *Offer) best(needed int) *Row {
+	var best *Row
+	if needed > mostPieces {
+		return best
+	}
+	for i := range o.Rows {
+		r := &o.Rows[i]
+		if n := r.quantity(needed); r.Stock != NoLimit && n > r.Stock {
 			continue
 		}
-		cost := Money(n) * r.Each
-		if !ok || cost < price || cost == price && n < buy {
-			buy, each, price, ok = n, r.Each, cost, true
+		if best == nil || r.compare(best, needed) < 0 {
+			best = r
 		}
 	}
-	return buy, each, price, ok
+	return best
+}
+
+// compare says which of two rows is better to buy from: by price, by how many
+// pieces that buys, and by whether it draws on a stock.
+func (r *Row) compare(q *Row, needed int) int {
+	n, m := r.quantity(needed), q.quantity(needed)
+	return cmp.Or(cmp.Compare(Money(n)*r.Each, Money(m)*q.Each), cmp.Compare(n, m), cmp.Compare(r.limited(), q.limited()))
+}
+
+// limited is 1 for a row that sells while a stock lasts, 0 for others.
+func (r *Row) limited() int {
+	if r.Stock == NoLimit {
+		return 0
+	}
+	return 1
 }
 
 // quantity is the fewest pieces, at least `needed`, that the row's price holds for.
@@ -128,13 +156,20 @@ func (o *Offer) Floor() Money {
 // Multiple is what the pieces of a purchase come in, given what each costs: the
 // multiple of the row that Buy took.
 func (o *Offer) Multiple(needed int) int {
-	buy, each, _, ok := o.Buy(needed)
-	for _, r := range o.Rows {
-		if ok && r.Each == each && r.quantity(needed) == buy {
-			return r.Multiple
-		}
+	if r := o.best(needed); r != nil && needed > 0 {
+		return r.Multiple
 	}
 	return 1
+}
+
+// Draws is how many pieces a purchase takes from the stock: all that are
+// bought, or none where the row that sells them names no stock.
+func (o *Offer) Draws(needed int) int {
+	r := o.best(needed)
+	if r == nil || needed <= 0 {
+		return 0
+	}
+	return r.limited() * r.quantity(needed)
 }
 
 // Most is the largest number of pieces that can be had, NoLimit if any number.
@@ -156,14 +191,15 @@ func (o *Offer) Most() int {
 func (b *Book) Limited(p part.Part) bool {
 	o, _ := b.Offer(p)
 	for _, r := range o.Rows {
-		if r.Stock != NoLimit {
+		if r.limited() > 0 {
 			return true
 		}
 	}
 	return false
 }
 
-// After is the same offer once so many pieces are taken from its stock.
+// After is the same offer once so many pieces are taken from its stock. Rows that
+// name a stock are prices for the same pieces, and draw on it together.
 func (o *Offer) After(taken int) *Offer {
 	left := &Offer{Family: o.Family, Rows: slices.Clone(o.Rows)}
 	for i := range left.Rows {

@@ -37,9 +37,14 @@ func Key(p part.Part) string {
 }
 
 // Shelf is the same for two parts that the price book knows as one thing, and
-// so draw on one stock, whatever else a build file says of each.
+// so draw on one stock, whatever else a build file says of each: its family,
+// grade and value, or its family alone where that comes in no values.
 func Shelf(p part.Part) string {
-	text := p.Family + "|" + figure(p.Grade()) + "|" + figure(p.Main().Value)
+	text := p.Family
+	if p.ValueText() == "" {
+		return text
+	}
+	text += "|" + figure(p.Grade()) + "|" + figure(p.Main().Value)
 	if low := p.Parameter("low"); low != nil {
 		text += "|" + figure(low.Value)
 	}
@@ -86,9 +91,7 @@ func New(parts []part.Part, units, sparesPercent int, book *offer.Book, families
 		l.Needed = l.PerUnit * units
 		l.Spares = Spares(l.Needed, sparesPercent)
 		shelf := Shelf(g[0])
-		if l.buy(g[0], book, taken[shelf]); l.Why == "" {
-			taken[shelf] += l.Buy
-		}
+		taken[shelf] += l.buy(g[0], book, taken[shelf])
 		if l.Why != "" {
 			o.Unoffered = append(o.Unoffered, l)
 			continue
@@ -143,17 +146,17 @@ func describe(g []part.Part, families *part.Catalogue) Line {
 }
 
 // buy fills in quantity and price, or why there is none. Other lines have taken
-// some pieces already.
-func (l *Line) buy(p part.Part, book *offer.Book, taken int) {
+// some pieces from the stock already; it gives how many more this one takes.
+func (l *Line) buy(p part.Part, book *offer.Book, taken int) (draws int) {
 	l.Buy = l.Needed + l.Spares
 	if p.Family == "" {
 		l.Why = "no family is given"
-		return
+		return 0
 	}
 	o, ok := book.Offer(p)
 	if !ok {
 		l.Why = fmt.Sprintf("%s does not offer it", book.Name)
-		return
+		return 0
 	}
 	if taken > 0 {
 		o = o.After(taken)
@@ -162,14 +165,15 @@ func (l *Line) buy(p part.Part, book *offer.Book, taken int) {
 	switch most := o.Most(); {
 	case !ok && most == offer.NoLimit:
 		l.Why = fmt.Sprintf("%d pieces are more than one line can be", l.Buy)
-		return
+		return 0
 	case !ok:
 		l.Why = fmt.Sprintf("%s has %d, %d are needed", book.Name, most, l.Buy)
 		if taken > 0 {
-			l.Why = fmt.Sprintf("%s has %d left beside the %d of another line, %d are needed", book.Name, most, taken, l.Buy)
+			l.Why = fmt.Sprintf("%s has %d left beside the %d on other lines, %d are needed", book.Name, most, taken, l.Buy)
 		}
-		return
+		return 0
 	}
-	l.Multiple = o.Multiple(l.Buy)
+	l.Multiple, draws = o.Multiple(l.Buy), o.Draws(l.Buy)
 	l.Buy, l.Each, l.Price = buy, each, price
+	return draws
 }

@@ -12,27 +12,27 @@ import (
 	"batchwright/tolerance/build"
 )
 
-// positions lists every fitted part in its place, stage by stage.
+// positions lists every fitted part in its place, stage by stage; of a place
+// that two pieces make up, both.
 func positions(w Work) []workbook.Position {
 	lots := lots(w.Build)
 	var list []workbook.Position
 	for _, s := range w.Build.Stages {
 		for _, place := range s.Places {
-			if !place.Fitted {
-				continue
+			for i, piece := range place.Pieces() {
+				at := workbook.Position{
+					Stage: s.Name, Kind: s.Kind.Name, Ref: piece.Ref,
+					Role:  strings.ReplaceAll(place.Role, "_", " "),
+					Value: bought(w.Build, piece), Family: title(w.Build, piece.Family),
+					Tolerance: grade(piece), Marking: marking.Text(piece),
+					Note: note(w, s, place, i, lots),
+				}
+				if place.Geometry != nil {
+					at.Value, at.Tolerance, at.Marking = place.Quantity, "", ""
+					at.Family, at.Note = "wound, not bought", winding(place.Geometry)
+				}
+				list = append(list, at)
 			}
-			at := workbook.Position{
-				Stage: s.Name, Kind: s.Kind.Name, Ref: place.Part.Ref,
-				Role:  strings.ReplaceAll(place.Role, "_", " "),
-				Value: bought(w.Build, place.Part), Family: title(w.Build, place.Part.Family),
-				Tolerance: grade(place.Part), Marking: marking.Text(place.Part),
-				Note: note(w, s, place, lots),
-			}
-			if place.Geometry != nil {
-				at.Value, at.Tolerance, at.Marking = place.Quantity, "", ""
-				at.Family, at.Note = "wound, not bought", winding(place.Geometry)
-			}
-			list = append(list, at)
 		}
 	}
 	return list
@@ -70,17 +70,21 @@ func lots(b *build.Build) map[string][]string {
 	return lots
 }
 
-// note says how a part is handled: when a trimmer is turned, and what must
-// come from one bag with it.
-func note(w Work, s *build.Stage, place build.Place, lots map[string][]string) string {
+// note says how the i-th piece of a place is handled: what it is joined to, when
+// a trimmer is turned, and what must come from one bag with it.
+func note(w Work, s *build.Stage, place build.Place, i int, lots map[string][]string) string {
 	var notes []string
+	piece := place.Pieces()[i]
+	if place.Paired() {
+		notes = append(notes, fmt.Sprintf("in %s with %s, together %s", place.Combine, place.Refs()[1-i], place.Base()))
+	}
 	if place.Type.Trimmer() {
 		notes = append(notes, trimmerNote(w, s.Name+"."+place.Role, place))
 	}
-	if refs := lots[order.Key(place.Part)]; len(refs) > 1 && !place.Part.LotsMixed && scattersByLot(place.Part) {
+	if refs := lots[order.Key(piece)]; len(refs) > 1 && !piece.LotsMixed && scattersByLot(piece) {
 		notes = append(notes, "one lot for "+order.Runs(refs))
 	}
-	if place.Part.LotsMixed {
+	if piece.LotsMixed {
 		notes = append(notes, "from mixed lots")
 	}
 	return strings.Join(notes, "; ")

@@ -3,6 +3,7 @@ package plan
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"batchwright/bom/order"
@@ -106,10 +107,9 @@ func advice(w Work) map[string]string {
 		s := w.Build.Stage(name)
 		var refs []string
 		for _, p := range s.Places {
-			if p.Fitted && p.Part.Ref != t.Ref {
-				refs = append(refs, p.Part.Ref)
-			}
+			refs = append(refs, p.Refs()...)
 		}
+		refs = slices.DeleteFunc(refs, func(ref string) bool { return ref == t.Ref })
 		if len(refs) == 0 {
 			continue
 		}

@@ -17,16 +17,9 @@ var acrossKeys = []string{"across", "rated", "bias_law"}
 // readAcross reads the steady voltage across a capacitor, which each position
 // has of its own: a value, a condition's variable or an output.
 func (r *reader) readAcross(p *Place, n *document.Node) {
-	if p.Type != part.Capacitor {
-		for _, key := range acrossKeys {
-			if at := n.Get(key); at != nil {
-				r.Add(at, key+" of a "+string(p.Type), "none: a capacitor's voltage is meant")
-			}
-		}
-		return
-	}
+	r.refuseAcross(p, n)
 	at := n.Get("across")
-	if at == nil {
+	if at == nil || p.Type != part.Capacitor {
 		return
 	}
 	across := Setting{Name: "across", Parameter: part.Parameter{Name: "across", Unit: quantity.Volt}}
@@ -36,6 +29,16 @@ func (r *reader) readAcross(p *Place, n *document.Node) {
 		return
 	}
 	p.Across = &across
+}
+
+// refuseAcross complains of a voltage, a rating or a bias law of what is no
+// capacitor.
+func (r *reader) refuseAcross(p *Place, n *document.Node) {
+	for _, key := range acrossKeys {
+		if at := n.Get(key); at != nil && p.Type != part.Capacitor {
+			r.Add(at, key+" of a "+string(p.Type), "none: a capacitor's voltage is meant")
+		}
+	}
 }
 
 // readRated reads a capacitor's rated voltage and bias law over its family's.
@@ -65,9 +68,12 @@ func (r *reader) allRated(family *part.Family, o *Opening) bool {
 	return family != nil && family.Voltage != 0
 }
 
+// unshared is why capacitors in series are refused under a steady voltage.
+const unshared = "none here, or parallel: how two capacitors in series share a steady voltage is up to their leakage"
+
 // checkAcross checks the voltages across capacitors: that what they refer to
-// exists, is a voltage and does not need the capacitor itself, and that a plain
-// one is not above the rated voltage.
+// exists, is a voltage and does not need the capacitor itself, that a plain one
+// is not above the rated voltage, and that no two in series have to share it.
 func (r *reader) checkAcross() {
 	for _, s := range r.stages {
 		for i := range s.Places {
@@ -76,10 +82,13 @@ func (r *reader) checkAcross() {
 				continue
 			}
 			n := s.node.Get("parts").Get(p.Role).Get("across")
+			if r.mayBeSeries(s.Name+"."+p.Role, p) {
+				r.Add(n, "steady voltage across a series pair", unshared)
+			}
 			switch from, output, _ := strings.Cut(p.Across.Reference, "."); {
-			case p.Across.Reference == "" && p.strained(p.Part.Rated):
+			case p.Across.Reference == "" && p.strained(p.rated()):
 				r.Add(n, "capacitor above its rated voltage",
-					"at most "+part.Text(p.Part.Rated, quantity.Volt)+", or rated: with what it is made for")
+					"at most "+part.Text(p.rated(), quantity.Volt)+", or rated: with what it is made for")
 			case p.Across.Reference == "":
 			case from == s.Name && s.needsPart(output, p.Role, map[string]bool{}):
 				r.Add(n, "voltage that needs the capacitor itself", "a value, a condition's variable or an output that does not need it")
@@ -88,6 +97,25 @@ func (r *reader) checkAcross() {
 			}
 		}
 	}
+}
+
+// mayBeSeries says whether two pieces in series make up a position, or may be
+// chosen for it.
+func (r *reader) mayBeSeries(position string, p *Place) bool {
+	return p.Combine == InSeries || slices.ContainsFunc(r.build.Openings, func(o Opening) bool {
+		return slices.Contains(o.Positions, position) && slices.Contains(o.Combines, InSeries)
+	})
+}
+
+// rated is the lowest rated voltage of a place's pieces; 0 where none is rated.
+func (p *Place) rated() float64 {
+	lowest := 0.0
+	for _, piece := range p.Pieces() {
+		if piece.Rated > 0 && (lowest == 0 || piece.Rated < lowest) {
+			lowest = piece.Rated
+		}
+	}
+	return lowest
 }
 
 // needsPart says whether an equation of the stage needs the part in a role, by

@@ -115,7 +115,8 @@ func (r *reader) readOwnPlaces(s stageNode) {
 }
 
 // ownType is the type of a formula stage's part: said, its family's, that of
-// the part it is the same as, or told by its value's unit.
+// the part it is the same as, that of the first of a pair, or told by its
+// value's unit.
 func (r *reader) ownType(n *document.Node) part.Type {
 	if at := n.Get("part"); at != nil {
 		word, _ := r.Word(at, "a type of part", typeNames()...)
@@ -138,6 +139,9 @@ func (r *reader) ownType(n *document.Node) part.Type {
 	if n.Get("winding") != nil {
 		return part.Coil
 	}
+	if first := aPiece(n); first != nil {
+		return r.ownType(first)
+	}
 	if t := typeOfValue(n.Get("value")); t != "" {
 		return t
 	}
@@ -152,6 +156,16 @@ func aFamily(n *document.Node) *document.Node {
 	}
 	if list := n.Get("choose").Get("families"); list != nil && len(list.Items) > 0 {
 		return list.Items[0]
+	}
+	return nil
+}
+
+// aPiece is the first of the two that a part is written as.
+func aPiece(n *document.Node) *document.Node {
+	for _, combine := range []Combine{Parallel, InSeries} {
+		if list := n.Get(string(combine)); list != nil && len(list.Items) > 0 {
+			return list.Items[0]
+		}
 	}
 	return nil
 }

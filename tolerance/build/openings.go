@@ -31,7 +31,7 @@ func (r *reader) readOpening(s stageNode, p *Place, n *document.Node, family *pa
 	o.Values = r.readOpenValues(at, p, &o)
 	o.Lots = r.readOpenLots(at.Get("lots"))
 	if o.paired() {
-		r.reserve(n, p.Part.Ref)
+		r.reserve(p.Part.Ref)
 		r.readPairValues(at, p, n, &o)
 	}
 	if len(o.Families) == 0 {
@@ -119,8 +119,7 @@ func (r *reader) readOpenValues(at *document.Node, p *Place, o *Opening) []Worth
 	case !p.Single():
 		r.Add(at, "values of a "+string(p.Type), "families and tolerances only")
 		return nil
-	case list != nil && around != nil:
-		r.Add(around, "around beside values", "one of the two")
+	case list != nil && r.besideValues(at):
 		return nil
 	case list == nil && p.Type.Trimmer():
 		r.Add(around, "around a trimmer's range", "values: a list of ranges")
@@ -164,8 +163,10 @@ func (r *reader) readWorth(n *document.Node, t part.Type) (Worth, bool) {
 func (r *reader) readAround(at, around *document.Node, p *Place, o *Opening) []Worth {
 	var centre, within float64
 	name := "E24"
-	ok := r.read(around, p.Type.Unit(), &centre)
-	if n := r.Need(at, "within", "how far from it, such as 10 %"); n == nil || !r.read(n, quantity.Percent, &within) {
+	ok := r.readCentre(around, p.Type, &centre)
+	if at.Get("within") == nil && o.paired() {
+		within = pairWithin
+	} else if n := r.Need(at, "within", "how far from it, such as 10 %"); !r.readWithin(n, &within) {
 		ok = false
 	}
 	if n := at.Get("series"); n != nil {
@@ -190,6 +191,42 @@ func (r *reader) readAround(at, around *document.Node, p *Place, o *Opening) []W
 	return list
 }
 
+// besideValues complains of what says how to find values where they are listed.
+func (r *reader) besideValues(at *document.Node) bool {
+	found := false
+	for _, key := range []string{"around", "within", "series"} {
+		if n := at.Get(key); n != nil {
+			r.Add(n, key+" beside values", "values: a list, or around: one to stay near")
+			found = true
+		}
+	}
+	return found
+}
+
+// readCentre reads the value to stay near.
+func (r *reader) readCentre(n *document.Node, t part.Type, centre *float64) bool {
+	if !r.read(n, t.Unit(), centre) {
+		return false
+	}
+	if !(*centre > 0) {
+		r.Add(n, "value", "more than zero")
+		return false
+	}
+	return true
+}
+
+// readWithin reads how far from it.
+func (r *reader) readWithin(n *document.Node, within *float64) bool {
+	if n == nil || !r.read(n, quantity.Percent, within) {
+		return false // complained of
+	}
+	if !(*within >= 0 && *within < 1) {
+		r.Add(n, "within", "a share of the value from 0 % to below 100 %")
+		return false
+	}
+	return true
+}
+
 // sortByDistance puts the value nearest to the centre by ratio first, since
 // the first is what an unchosen position is taken to hold.
 func sortByDistance(values []float64, centre float64) {
@@ -210,8 +247,6 @@ func (r *reader) readCombine(n *document.Node, p *Place) []Combine {
 		case !ok:
 		case c != Single && !joinable(p.Type):
 			r.Add(item, word+" of a "+string(p.Type), "single: only resistors, capacitors and coils make up pairs")
-		case c == InSeries && p.Type == part.Capacitor && p.Across != nil:
-			r.Add(item, "series pair under a steady voltage", unshared)
 		case slices.Contains(list, c):
 			r.Add(item, "combination named twice", "each once")
 		default:

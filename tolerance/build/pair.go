@@ -65,8 +65,8 @@ func (p *Place) Refs() []string {
 // make up C6.
 func pieceRefs(ref string) (first, second string) { return ref + "A", ref + "B" }
 
-// base is the reference of the position itself.
-func (p *Place) base() string {
+// Base is the reference of the position itself: C6, of two pieces C6A and C6B.
+func (p *Place) Base() string {
 	if p.Paired() {
 		return strings.TrimSuffix(p.Part.Ref, "A")
 	}
@@ -75,8 +75,9 @@ func (p *Place) base() string {
 
 // reserve keeps the references of the two pieces a position may hold from every
 // other part.
-func (r *reader) reserve(n *document.Node, ref string) {
-	if ref == "" {
+func (r *reader) reserve(ref string) {
+	n := r.refs[ref]
+	if n == nil {
 		return // complained of
 	}
 	first, second := pieceRefs(ref)
@@ -108,19 +109,20 @@ func (r *reader) readPair(s stageNode, p *Place, n *document.Node) bool {
 	if at == nil {
 		return false
 	}
-	r.Keys(n, "ref", string(Parallel), string(InSeries), "across", "lots")
+	keys := []string{"ref", string(Parallel), string(InSeries), "across", "lots"}
+	if s.Kind.Free {
+		keys = append(keys, "part")
+	}
+	r.Keys(n, keys...)
 	if !joinable(p.Type) {
 		r.Add(at, string(combine)+" of a "+string(p.Type), "one part: only resistors, capacitors and coils make up pairs")
 		return true
-	}
-	if combine == InSeries && p.Type == part.Capacitor && p.Across != nil {
-		r.Add(at, "series pair under a steady voltage", unshared)
 	}
 	if at.Kind != document.Sequence || len(at.Items) != 2 {
 		r.Add(at, "pair", "two parts such as [{value: 180 pF, family: c0g}, {value: 39 pF, family: polystyrene}]")
 		return true
 	}
-	r.reserve(n, p.Part.Ref)
+	r.reserve(p.Part.Ref)
 	p.Combine = combine
 	first, second := pieceRefs(p.Part.Ref)
 	p.Part, p.Second = r.readPiece(s, p, at.Items[0], first), r.readPiece(s, p, at.Items[1], second)
@@ -129,9 +131,6 @@ func (r *reader) readPair(s stageNode, p *Place, n *document.Node) bool {
 	p.Quantity = p.written()
 	return true
 }
-
-// unshared is why capacitors in series are refused under a steady voltage.
-const unshared = "parallel, or one part: how two capacitors in series share a steady voltage is up to their leakage"
 
 // pieceKeys are the keys of one part of a pair, besides part.ScatterKeys.
 var pieceKeys = []string{"value", "family", "rated", "bias_law"}
@@ -144,6 +143,7 @@ func (r *reader) readPiece(s stageNode, p *Place, n *document.Node, ref string) 
 		return own.Part
 	}
 	r.Keys(n, append(append([]string{}, pieceKeys...), part.ScatterKeys...)...)
+	r.refuseAcross(&own, n)
 	r.readFitted(s, &own, n, r.readFamily(&own, n), nil)
 	return own.Part
 }

@@ -8,7 +8,6 @@ import (
 
 	"batchwright/bom/document"
 	"batchwright/bom/part"
-	"batchwright/bom/quantity"
 	"batchwright/bom/series"
 )
 
@@ -19,6 +18,7 @@ type pairValues struct {
 	listed         []Worth
 	series         string
 	centre, within float64
+	at             *document.Node // where the centre is written; nil where it is no good
 }
 
 // What pairs are made of where a build file does not say: common values that
@@ -31,6 +31,10 @@ const (
 // lesser is how much of the whole the lesser piece of a pair must make up. What
 // is less moves neither the value nor its slope.
 const lesser = 0.01
+
+// rounding is the relative distance within which two values are one: 100 pF and
+// 120 pF make up 220 pF but for their last digit.
+const rounding = 1e-9
 
 // MaxFittings is how much one opening may be filled with.
 const MaxFittings = 20_000
@@ -46,15 +50,11 @@ func (r *reader) readPairValues(at *document.Node, p *Place, part *document.Node
 	if centre == nil {
 		centre = part.Get("value")
 	}
-	if centre == nil {
-		r.Add(part, "missing key value", "what the pair is to come to in "+p.Type.Unit().Symbol)
-		return
+	if centre == nil || !r.readCentre(centre, p.Type, &o.pairs.centre) {
+		return // complained of
 	}
-	r.read(centre, p.Type.Unit(), &o.pairs.centre)
-	if n := at.Get("within"); n != nil {
-		if r.read(n, quantity.Percent, &o.pairs.within) && !(o.pairs.within >= 0 && o.pairs.within < 1) {
-			r.Add(n, "within", "a share of the value from 0 % to below 100 %")
-		}
+	if n := at.Get("within"); n == nil || r.readWithin(n, &o.pairs.within) {
+		o.pairs.at = centre
 	}
 	if n := at.Get("series"); n != nil {
 		if name, ok := r.Word(n, "a series", series.Names()...); ok {
@@ -65,7 +65,7 @@ func (r *reader) readPairValues(at *document.Node, p *Place, part *document.Node
 
 // values are those a piece of a pair may have.
 func (v pairValues) values(t part.Type, join series.Join) []Worth {
-	if v.listed != nil {
+	if v.listed != nil || v.at == nil {
 		return v.listed
 	}
 	low, high := v.centre*lesser, v.centre*(1+v.within)
@@ -81,7 +81,7 @@ func (v pairValues) values(t part.Type, join series.Join) []Worth {
 
 // near says whether a whole is one that was asked for.
 func (v pairValues) near(whole float64) bool {
-	return v.listed != nil || math.Abs(whole/v.centre-1) <= v.within*(1+1e-9)
+	return v.listed != nil || math.Abs(whole/v.centre-1) <= v.within+rounding
 }
 
 // pairs are the fittings of two pieces, those that come nearest to the value
@@ -114,35 +114,60 @@ func pairOf(combine Combine, join series.Join, p, q Piece, v float64) Fitting {
 	}
 }
 
-// checkFittings complains of openings that may be filled with more than a
-// search can look at, and of series pairs at a position under a steady voltage.
-func (r *reader) checkFittings() {
-	for _, o := range r.build.Openings {
-		at := o.node.Get("choose")
-		if n := len(r.build.Fittings(o)); o.paired() && n > MaxFittings {
-			r.Add(at, "too much to choose from", fmt.Sprintf("at most %d ways to fill a position, not %d: a smaller within, a coarser series or fewer families", MaxFittings, n))
-		}
-		if slices.Contains(o.Combines, InSeries) {
-			r.checkUnshared(o.Positions...)
+// countPairs is how many fittings there are of two pieces, without making them.
+func (b *Build) countPairs(o Opening, combine Combine) int {
+	join := combine.Join(o.Type)
+	pieces := b.pieces(o, o.pairs.values(o.Type, join))
+	if o.pairs.listed != nil {
+		return len(pieces) * (len(pieces) + 1) / 2
+	}
+	var values []float64
+	sold := map[float64]int{} // pieces of each value
+	for _, p := range pieces {
+		if sold[p.High]++; sold[p.High] == 1 {
+			values = append(values, p.High)
 		}
 	}
-	for _, s := range r.stages {
-		for i := range s.Places {
-			if p := &s.Places[i]; p.Combine == InSeries && p.SameAs != "" {
-				r.checkUnshared(s.Name + "." + p.Role)
+	n := 0
+	for i, x := range values {
+		for k, y := range values[i:] {
+			switch {
+			case !o.pairs.near(join.Of(x, y)):
+			case k == 0:
+				n += sold[x] * (sold[x] + 1) / 2
+			default:
+				n += sold[x] * sold[y]
 			}
 		}
 	}
+	return n
 }
 
-// checkUnshared complains where capacitors in series follow another position
-// and stand under a steady voltage. At the position itself that is said as soon
-// as it is read.
-func (r *reader) checkUnshared(positions ...string) {
-	for _, position := range positions {
-		p := r.build.Place(position)
-		if p.Type == part.Capacitor && p.Across != nil && p.SameAs != "" {
-			r.Add(r.refs[p.base()], "series pair under a steady voltage", unshared)
+// countFittings is how many fittings an opening has, without making them.
+func (b *Build) countFittings(o Opening) int {
+	n := 0
+	for _, combine := range o.combines() {
+		if combine == Single {
+			n += len(b.singles(o))
+		} else {
+			n += b.countPairs(o, combine)
+		}
+	}
+	return n * max(1, len(o.Lots))
+}
+
+// checkFittings complains of openings that no pair fills, or more than a search
+// can look at.
+func (r *reader) checkFittings() {
+	for _, o := range r.build.Openings {
+		if !o.paired() {
+			continue
+		}
+		switch n := r.build.countFittings(o); {
+		case n > MaxFittings:
+			r.Add(o.node.Get("choose"), "too much to choose from", fmt.Sprintf("at most %d ways to fill a position, not %d: a smaller within, a coarser series or fewer families", MaxFittings, n))
+		case n == 0 && o.pairs.at != nil:
+			r.Add(o.pairs.at, "nothing to choose from", "a value that two come to: a wider within, a finer series or other families")
 		}
 	}
 }

@@ -70,6 +70,8 @@ func (r *reader) readValue(p *Place, n *document.Node, o *Opening, b *bought) bo
 	case o != nil && len(o.Values) > 0:
 		w := o.Values[0]
 		p.Quantity, b.low, b.high, b.given = w.Text, w.Low, w.High, true
+	case n.Get("choose").Get("values") != nil || n.Get("choose").Get("around") != nil:
+		return false // complained of
 	case p.Single():
 		r.Add(n, "missing key value", "the part's value in "+p.Type.Unit().Symbol)
 		return false
@@ -129,7 +131,7 @@ func (r *reader) joinOpening(decider, position string) {
 		if o := &r.build.Openings[i]; o.Positions[0] == decider {
 			o.Positions = append(o.Positions, position)
 			if p := r.build.Place(position); o.paired() {
-				r.reserve(r.refs[p.Part.Ref], p.Part.Ref)
+				r.reserve(p.Part.Ref)
 			}
 		}
 	}
@@ -158,7 +160,7 @@ func (r *reader) resolve(s stageNode, p *Place) {
 		}
 		if root.SameAs == "" || root.resolved {
 			if root.Paired() {
-				r.reserve(at, p.Part.Ref)
+				r.reserve(p.Part.Ref)
 			}
 			p.take(root, next)
 			return

@@ -81,8 +81,8 @@ func exampleText(name string) ([]byte, error) {
 // writeNew writes a file that is not there yet, whole or not at all: a
 // temporary file beside it is filled, synced and given its name.
 func writeNew(file string, text []byte) (err error) {
-	if _, err := os.Lstat(file); err == nil {
-		return alreadyThere(file)
+	if err := unused(file); err != nil {
+		return err
 	}
 	f, err := os.CreateTemp(filepath.Dir(file), ".batchwright-*.tmp")
 	if err != nil {
@@ -117,6 +117,17 @@ func giveName(temporary, file string) error {
 	}
 	if err != nil {
 		return unwritable(file, err)
+	}
+	return nil
+}
+
+// unused refuses the name of a new file that is none.
+func unused(file string) error {
+	if file == "" {
+		return usage("expected the name of a new file")
+	}
+	if _, err := os.Lstat(file); err == nil {
+		return alreadyThere(file)
 	}
 	return nil
 }

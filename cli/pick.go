@@ -31,6 +31,7 @@ out of stock. Every choice printed is confirmed by simulation.
   batchwright pick tone-box.yaml
   batchwright pick tone-box.yaml --write chosen.yaml`,
 		Flags: []cli.Flag{
+			&cli.StringFlag{Name: "write", Usage: "write the build file with its choices filled in to `FILE`"},
 			searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
 		},
 		Action: p.pick,
@@ -46,6 +47,12 @@ func (p *program) pick(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
+	written := c.String("write")
+	if c.IsSet("write") {
+		if err := unused(written); err != nil { // before any work is done
+			return err
+		}
+	}
 	src, err := p.read(file, s.units)
 	if err != nil {
 		return err
@@ -53,6 +60,11 @@ func (p *program) pick(c *cli.Context) error {
 	result, err := p.cheapest(c.Context, src.Build, o)
 	if err != nil {
 		return err
+	}
+	if written != "" {
+		if err := p.writeChosen(written, src, &result); err != nil {
+			return err
+		}
 	}
 	if c.Bool("json") {
 		err = p.json(result)
@@ -77,6 +89,22 @@ func (p *program) cheapest(ctx context.Context, b *build.Build, o pick.Options) 
 	}
 	bought := order.New(fitted.Parts(), fitted.Units, fitted.Spares, fitted.Book, fitted.Families)
 	return plan.NewPick(fitted, o.Seed, r, bought), nil
+}
+
+// writeChosen writes the build file with its openings filled, as a new file.
+func (p *program) writeChosen(path string, src *source, r *plan.Pick) error {
+	if len(r.Pick.Fittings) != len(src.Openings) {
+		return missed("%s; nothing was written", r.Pick.Why)
+	}
+	text, err := src.FilledIn(src.text, r.Pick.Fittings)
+	if err != nil {
+		return err
+	}
+	if err := writeNew(path, text); err != nil {
+		return err
+	}
+	r.Files = append(r.Files, path)
+	return nil
 }
 
 // pickVerdict is nil where everything was picked and every target is met.

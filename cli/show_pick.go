@@ -15,6 +15,9 @@ func (p *program) showPick(r plan.Pick) {
 	p.showTargets(r.Targets)
 	p.paragraph("what remains of the changes, to first order", strings.Join(plan.RemainSentences(r.Pick), "\n"))
 	p.showOrder(r.Order)
+	if len(r.Files) > 0 {
+		p.line("\nwrote %s", strings.Join(r.Files, ", "))
+	}
 }
 
 // showPicks prints the choices, how sure it is that nothing is cheaper, what

@@ -109,7 +109,7 @@ func (r *reader) readPair(s stageNode, p *Place, n *document.Node) bool {
 	if at == nil {
 		return false
 	}
-	keys := []string{"ref", string(Parallel), string(InSeries), "across", "lots"}
+	keys := append([]string{"ref", string(Parallel), string(InSeries), "across", "lots"}, sharedKeys...)
 	if s.Kind.Free {
 		keys = append(keys, "part")
 	}
@@ -125,7 +125,7 @@ func (r *reader) readPair(s stageNode, p *Place, n *document.Node) bool {
 	r.reserve(p.Part.Ref)
 	p.Combine = combine
 	first, second := pieceRefs(p.Part.Ref)
-	p.Part, p.Second = r.readPiece(s, p, at.Items[0], first), r.readPiece(s, p, at.Items[1], second)
+	p.Part, p.Second = r.readPiece(s, p, n, at.Items[0], first), r.readPiece(s, p, n, at.Items[1], second)
 	r.readHandling(p, n)
 	p.Second.LotsMixed = p.Part.LotsMixed
 	p.Quantity = p.written()
@@ -135,8 +135,12 @@ func (r *reader) readPair(s stageNode, p *Place, n *document.Node) bool {
 // pieceKeys are the keys of one part of a pair, besides part.ScatterKeys.
 var pieceKeys = []string{"value", "family", "rated", "bias_law"}
 
-// readPiece reads one part of a pair.
-func (r *reader) readPiece(s stageNode, p *Place, n *document.Node, ref string) part.Part {
+// sharedKeys may also be written on the pair and then hold for both pieces.
+// Each has a tolerance of its own.
+var sharedKeys = append([]string{"rated", "bias_law"}, part.ScatterKeys[1:]...)
+
+// readPiece reads one part of a pair; what is written on the pair holds for it.
+func (r *reader) readPiece(s stageNode, p *Place, pair, n *document.Node, ref string) part.Part {
 	own := Place{Role: p.Role, Type: p.Type, Fitted: true, Across: p.Across, Part: part.Part{Ref: ref, Type: p.Type}}
 	if n.Kind != document.Mapping {
 		r.Add(n, "part of a pair", "a mapping such as {value: 180 pF, family: c0g, tolerance: 5 %}")
@@ -144,8 +148,25 @@ func (r *reader) readPiece(s stageNode, p *Place, n *document.Node, ref string) 
 	}
 	r.Keys(n, append(append([]string{}, pieceKeys...), part.ScatterKeys...)...)
 	r.refuseAcross(&own, n)
-	r.readFitted(s, &own, n, r.readFamily(&own, n), nil)
+	for _, key := range sharedKeys {
+		if at := n.Get(key); at != nil && pair.Get(key) != nil {
+			r.Add(at, key+" on a piece beside the pair's", "one of the two")
+		}
+	}
+	family := r.readFamily(&own, n)
+	r.readFitted(s, &own, n, family, nil)
+	r.readShared(&own, pair, family)
 	return own.Part
+}
+
+// readShared reads what is written on a pair over one of its pieces.
+func (r *reader) readShared(own *Place, pair *document.Node, family *part.Family) {
+	if len(own.Part.Parameters) != 1 {
+		return // complained of
+	}
+	q := &own.Part.Parameters[0]
+	part.ReadScatter(&r.Faults, pair, q.Unit, &q.Scatter) // a fault found twice is told once
+	r.readRated(own, pair, family, nil)
 }
 
 // written is what a position's pieces make up, as people write it.

@@ -38,6 +38,7 @@ func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 		picked := c.describe(i, j)
 		picked.Why = c.why(choice, i, j)
 		r.Choices = append(r.Choices, picked)
+		r.Fittings = append(r.Fittings, c.fittings[i][j])
 	}
 	if err := c.report(r, choice); err != nil {
 		return nil, nil, err

@@ -4,6 +4,7 @@ package pick
 
 import (
 	"batchwright/bom/offer"
+	"batchwright/tolerance/build"
 	"batchwright/tolerance/spread"
 )
 
@@ -46,6 +47,7 @@ type Result struct {
 	Remains        []Remains             `json:"remains"`          // of the changes that targets limit
 	Binding        *Binding              `json:"binding"`          // nil: none
 	Alternates     []Alternate           `json:"alternates"`
+	Fittings       []build.Fitting       `json:"-"` // the choices, as a build is fitted with them
 	Targets        []spread.TargetReport `json:"-"` // as the simulation that confirmed has them, in the build's order
 	Why            string                `json:"why,omitempty"`
 	Provided       string                `json:"provided,omitempty"` // what the proof rests on beside the picture

@@ -39,8 +39,8 @@ func (p *Problem) Cheapest(ctx context.Context, limits Limits) (Outcome, error) 
 	if limits.Steps <= 0 {
 		limits.Steps = DefaultSteps
 	}
-	if limits.piece <= 0 {
-		limits.piece = pieceSteps
+	if limits.leaf <= 0 {
+		limits.leaf = leafChoices
 	}
 	s := &search{p: p, limits: limits, answers: map[string]answer{}}
 	if limits.For > 0 {

@@ -178,8 +178,8 @@ func checkProof(t *testing.T, seed uint64, m *market, out Outcome, want brute) {
 func TestDivesEqualBruteForce(t *testing.T) {
 	for name, limits := range map[string]Limits{
 		"whole":  {Nodes: 1},
-		"split":  {Nodes: 1, piece: 4},
-		"midway": {Nodes: 25, piece: 9},
+		"split":  {Nodes: 1, leaf: 4},
+		"midway": {Nodes: 25, leaf: 1},
 	} {
 		t.Run(name, func(t *testing.T) {
 			found := 0

@@ -30,7 +30,7 @@ type piece struct {
 // it.
 func (d *dive) branch(p *piece) bool {
 	if d.over() {
-		d.open = min(d.open, d.lattice.up(p.bound))
+		d.leave(p)
 		return false
 	}
 	if !d.tighten(p) {
@@ -40,15 +40,22 @@ func (d *dive) branch(p *piece) bool {
 	if choices(p.kept) <= float64(d.s.limits.leaf) {
 		return d.search(p)
 	}
+	whole := true
 	for _, part := range d.split(p) {
-		if part.bound > d.target() {
+		switch {
+		case part.bound > d.target():
 			d.s.out.CutByBound++
-		} else if !d.branch(part) {
-			return false
+		case whole:
+			whole = d.branch(part)
+		default:
+			d.leave(part)
 		}
 	}
-	return true
+	return whole
 }
+
+// leave notes a piece that is not looked at.
+func (d *dive) leave(p *piece) { d.open = min(d.open, d.lattice.up(p.bound)) }
 
 // target is the greatest sum of floors still of interest.
 func (d *dive) target() float64 {
@@ -183,7 +190,7 @@ func (d *dive) search(p *piece) bool {
 	if d.below(0) {
 		return true
 	}
-	d.open = min(d.open, d.lattice.up(p.bound))
+	d.leave(p)
 	return false
 }
 

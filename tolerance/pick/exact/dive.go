@@ -11,8 +11,9 @@ import (
 // frontier: branch and bound, depth first, below a ceiling that falls as the
 // pool fills with cheaper ones. It serves where best first would need more
 // memory than allowed. It splits the problem on the bounds of linear
-// relaxations and looks through small pieces line by line. Of equally dear choices it keeps those it meets first, which are
-// always the same but not always the first in lexicographic order.
+// relaxations and looks through small pieces line by line. Of equally dear
+// choices it keeps those it meets first, which are always the same but not
+// always the first in lexicographic order.
 type dive struct {
 	s    *search
 	ctx  context.Context
@@ -60,10 +61,14 @@ func (d *dive) last() int64 {
 
 // ceiling is the dearest cost still of interest.
 func (d *dive) ceiling() int64 {
-	if last := d.last(); last != none {
-		return last - 1
+	last := d.last()
+	switch {
+	case last == none:
+		return d.s.most
+	case last <= d.s.least:
+		return math.MinInt64 / 2
 	}
-	return none
+	return last - 1
 }
 
 // over says whether the search must end here.

@@ -89,7 +89,7 @@ func TestPartialBoundsAreSound(t *testing.T) {
 		s := randomShape(seed)
 		s.refuse, s.lines = 0, min(s.lines, 4)
 		m := newMarket(seed, s)
-		sr := &search{p: &m.Problem, answers: map[string]answer{}}
+		sr := newSearch(&m.Problem, Limits{}.filled())
 		b, _ := sr.prepare(m.all(), none)
 		choice := make([]int, len(m.Lines))
 		for {

@@ -7,22 +7,24 @@ import (
 	"slices"
 )
 
-// pieceSteps is how many partial choices a depth-first search looks at before
-// its part of the problem is split on one line and prepared anew, which makes
-// the bounds of each piece tighter.
-const pieceSteps = 200_000
-
 // A dive finds the cheapest few choices that Judge passes without keeping a
-// frontier: depth first below a ceiling that falls as the pool fills with
-// cheaper ones. It serves where best first would need more memory than
-// allowed. Of equally dear choices it keeps those it meets first, which are
-// always the same but not always the first in lexicographic order.
+// frontier: branch and bound, depth first, below a ceiling that falls as the
+// pool fills with cheaper ones. It serves where best first would need more
+// memory than allowed. It splits the problem on the bounds of linear
+// relaxations and looks through small pieces line by line. Of equally dear
+// choices it keeps those it meets first, which are always the same but not
+// always the first in lexicographic order.
 type dive struct {
 	s    *search
 	ctx  context.Context
 	want int   // how many choices
-	left int   // partial choices until the next split
 	err  error // of the context, or a broken promise
+
+	lattice lattice
+	dearest float64
+	curved  bool
+	best    []int // scratch
+	open    int64 // where it was stopped, what is not looked at costs at least this
 
 	bank    *bank
 	at      []*standing // by depth
@@ -36,61 +38,37 @@ type dive struct {
 // stopped.
 func (s *search) dive(ctx context.Context, kept [][]int, want int) (upTo int64, end ending, err error) {
 	s.want = max(poolSize, want)
-	d := &dive{s: s, ctx: ctx, want: want}
-	whole := d.split(kept)
+	d := &dive{s: s, ctx: ctx, want: want, open: none, lattice: s.p.lattice(kept), curved: s.p.curved()}
+	d.dearest, d.best = s.p.relax(kept).dearest(), make([]int, len(kept))
+	whole := d.branch(&piece{kept: kept, bound: math.Inf(-1)})
 	switch {
 	case d.err != nil:
 		return 0, stopped, d.err
 	case !whole:
+		s.out.Bound = max(s.out.Bound, min(d.open, d.last()))
 		return 0, stopped, nil
 	}
-	return d.best(), exhausted, nil
+	return d.last(), exhausted, nil
 }
 
-// best is the cost that a choice must be below to be of interest.
-func (d *dive) best() int64 {
+// last is the cost that a choice must be below to be of interest.
+func (d *dive) last() int64 {
 	if len(d.s.pool) < d.want {
 		return none
 	}
 	return d.s.pool[d.want-1].cost
 }
 
-// split searches the choices of the kept options, in pieces if need be. It is
-// false when a limit stopped it.
-func (d *dive) split(kept [][]int) bool {
-	b, _ := d.s.prepare(kept, d.ceiling())
-	if b == nil {
-		return true
-	}
-	d.enter(b)
-	d.left = d.s.limits.piece
-	open := slices.IndexFunc(b.order, func(i int) bool { return len(b.kept[i]) > 1 })
-	if open < 0 {
-		d.left = len(b.order)
-	}
-	if d.below(0) {
-		return true
-	}
-	if d.over() {
-		return false
-	}
-	line := b.order[open]
-	for _, o := range d.sorted[open] {
-		part := slices.Clone(b.kept)
-		part[line] = b.kept[line][o : o+1]
-		if !d.split(part) {
-			return false
-		}
-	}
-	return true
-}
-
 // ceiling is the dearest cost still of interest.
 func (d *dive) ceiling() int64 {
-	if best := d.best(); best != none {
-		return best - 1
+	last := d.last()
+	switch {
+	case last == none:
+		return d.s.most
+	case last <= d.s.least:
+		return math.MinInt64 / 2
 	}
-	return none
+	return last - 1
 }
 
 // over says whether the search must end here.
@@ -134,9 +112,6 @@ func (d *dive) below(depth int) bool {
 		return d.err == nil
 	}
 	for _, o := range d.sorted[depth] {
-		if d.left--; d.left < 0 {
-			return false
-		}
 		if d.s.steps++; d.s.steps&1023 == 0 && d.over() {
 			return false
 		}

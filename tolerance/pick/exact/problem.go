@@ -101,14 +101,14 @@ type Verdict struct {
 // Limits bounds the work. The zero value means the defaults.
 type Limits struct {
 	Nodes       int // partial choices kept in memory, 28 bytes each; 0: DefaultNodes
-	Steps       int // partial choices looked at; 0: DefaultSteps
+	Steps       int // partial choices looked at, and rows changed in steps of linear relaxations; 0: DefaultSteps
 	Simulations int // calls of Confirm; 0: no limit
 	// For is the time from the start of the search, 0: no limit. It is looked
 	// at now and then and before each call of Confirm, which it does not
 	// interrupt. Where it stops a search, the outcome depends on the machine.
 	For time.Duration
 
-	piece int // steps of a dive between splits, for tests; 0: pieceSteps
+	leaf int // choices up to which a dive does not split, for tests; 0: leafChoices
 }
 
 // The limits meant by zero: some 4 MB and on one core some ten seconds.

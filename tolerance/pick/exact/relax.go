@@ -228,3 +228,32 @@ func (p *Problem) scale(w row, kept [][]int) (row, bool) {
 	w.limit /= step
 	return w, true
 }
+
+// narrow is the relaxation with fewer options and the same rows.
+func (r *relaxation) narrow(kept [][]int) *relaxation {
+	out := &relaxation{p: r.p, kept: kept, limit: r.limit}
+	for i, options := range kept {
+		if len(options) == len(r.kept[i]) {
+			out.floor, out.use = append(out.floor, r.floor[i]), append(out.use, r.use[i])
+			continue
+		}
+		floor, use, at := make([]float64, 0, len(options)), make([]float64, 0, len(options)*len(r.limit)), 0
+		for _, j := range options {
+			for r.kept[i][at] != j {
+				at++
+			}
+			floor, use = append(floor, r.floor[i][at]), append(use, r.takes(i, at)...)
+		}
+		out.floor, out.use = append(out.floor, floor), append(out.use, use)
+	}
+	return out
+}
+
+// options is how many are left in all lines.
+func (r *relaxation) options() int {
+	n := 0
+	for _, options := range r.kept {
+		n += len(options)
+	}
+	return n
+}

@@ -33,25 +33,40 @@ func (p *Problem) Cheapest(ctx context.Context, limits Limits) (Outcome, error) 
 	if err := p.check(); err != nil {
 		return Outcome{}, fmt.Errorf("exact: %w", err)
 	}
-	if limits.Nodes <= 0 {
-		limits.Nodes = DefaultNodes
-	}
-	if limits.Steps <= 0 {
-		limits.Steps = DefaultSteps
-	}
-	if limits.piece <= 0 {
-		limits.piece = pieceSteps
-	}
-	s := &search{p: p, limits: limits, answers: map[string]answer{}}
+	s := newSearch(p, limits.filled())
 	if limits.For > 0 {
 		s.deadline = time.Now().Add(limits.For)
 	}
+	err := s.cheapest(ctx)
+	return s.out, err
+}
+
+// filled are the limits with their defaults.
+func (l Limits) filled() Limits {
+	if l.Nodes <= 0 {
+		l.Nodes = DefaultNodes
+	}
+	if l.Steps <= 0 {
+		l.Steps = DefaultSteps
+	}
+	if l.leaf <= 0 {
+		l.leaf = leafChoices
+	}
+	return l
+}
+
+func newSearch(p *Problem, limits Limits) *search {
+	s := &search{p: p, limits: limits, answers: map[string]answer{}, most: none, least: math.MinInt64 / 2}
 	s.out.Candidates = p.candidates()
+	return s
+}
+
+func (s *search) cheapest(ctx context.Context) error {
 	err := s.run(ctx)
-	if err == nil {
+	if err == nil && !s.bare {
 		err = s.near(ctx)
 	}
-	return s.out, err
+	return err
 }
 
 // An answer is what is known of a full choice.
@@ -77,6 +92,12 @@ type search struct {
 	steps   int   // partial choices looked at
 	want    int   // how many choices the pool has room for, at least poolSize
 	nearest known // the nearest seen so far, with its verdict in out
+
+	// Of a walk of several searches.
+	most, least     int64           // costs above are of no interest; none is below
+	heard           map[string]bool // what Confirm said before
+	simulatedBefore int             // how often it was asked
+	bare            bool            // what comes nearest is of no interest
 
 	deadline time.Time // zero: none
 	late     bool      // it has passed
@@ -106,7 +127,7 @@ func (s *search) spent(ctx context.Context) (bool, error) {
 
 // simulated says that no call of Confirm is left.
 func (s *search) simulated() bool {
-	return s.limits.Simulations > 0 && s.out.Simulated >= s.limits.Simulations
+	return s.limits.Simulations > 0 && s.simulatedBefore+s.out.Simulated >= s.limits.Simulations
 }
 
 // An ending is why a pass over the choices came to its end.
@@ -128,7 +149,7 @@ func (s *search) run(ctx context.Context) error {
 		return nil
 	}
 	kept, dominated := s.p.undominated()
-	s.out.Bound = s.p.leastFloor()
+	s.out.Bound = max(s.p.leastFloor(), s.least)
 	if err := cmp.Or(s.start(ctx, kept), s.aim(ctx, kept)); err != nil {
 		return err
 	}
@@ -150,7 +171,7 @@ func (s *search) run(ctx context.Context) error {
 			return s.deep(ctx, kept, dominated > 0)
 		case end == stopped:
 			return s.settle(ctx)
-		case end == exhausted && ceiling == none && (dominated == 0 || s.refused == 0):
+		case end == exhausted && ceiling == s.most && (dominated == 0 || s.refused == 0):
 			s.out.Proved = true
 			return nil
 		case end == exhausted:
@@ -164,18 +185,18 @@ func (s *search) run(ctx context.Context) error {
 // raise lets in dearer choices after all within the ceiling were refused: up
 // to the cheapest known, or a few times as far above the floors.
 func (s *search) raise(ceiling int64, raised int) int64 {
-	if ceiling == none || raised > 20 {
-		return none
+	if ceiling == s.most || raised > 20 {
+		return s.most
 	}
 	s.out.Bound = max(s.out.Bound, ceiling)
-	if next := s.ceiling(); next != none {
+	if next := s.ceiling(); next != s.most {
 		return max(next, ceiling)
 	}
 	above := max(ceiling-s.p.leastFloor(), 1)
 	if raised > 2 || above > Unavailable/8 {
-		return none
+		return s.most
 	}
-	return ceiling + 4*above
+	return min(ceiling+4*above, s.most)
 }
 
 // mostWanted is how many choices a dive looks for at most.
@@ -225,7 +246,7 @@ func (s *search) deep(ctx context.Context, kept [][]int, wary bool) error {
 func (s *search) pass(ctx context.Context, b *bank, ceiling int64, wary bool) (ending, error) {
 	f := newFrontier(b.order, b.kept)
 	at, choice := b.newStanding(), make([]int, len(b.order))
-	f.push(f.root(s.p.leastFloor()))
+	f.push(f.root(max(s.p.leastFloor(), s.least)))
 	for len(f.heap) > 0 {
 		i := f.pop()
 		n := f.nodes[i]
@@ -296,11 +317,12 @@ func (s *search) ask(choice []int, cost int64) (ending, error) {
 	if !s.judge(choice, cost) || s.answers[name(choice)].refused {
 		return exhausted, nil
 	}
+	_, known := s.heard[name(choice)]
 	switch {
 	case s.expired():
 		s.out.Stopped = OutOfTime
 		return stopped, nil
-	case s.simulated():
+	case s.simulated() && !known:
 		s.out.Stopped = OutOfSimulations
 		return stopped, nil
 	}
@@ -338,10 +360,16 @@ func (s *search) confirm(choice []int) (bool, error) {
 	if s.p.Confirm == nil {
 		return true, nil
 	}
-	s.out.Simulated++
-	ok, err := s.p.Confirm(slices.Clone(choice))
-	if err != nil {
-		return false, fmt.Errorf("exact: confirming: %w", err)
+	ok, known := s.heard[name(choice)]
+	if !known {
+		var err error
+		s.out.Simulated++
+		if ok, err = s.p.Confirm(slices.Clone(choice)); err != nil {
+			return false, fmt.Errorf("exact: confirming: %w", err)
+		}
+	}
+	if s.heard != nil {
+		s.heard[name(choice)] = ok
 	}
 	if !ok {
 		s.refused++

@@ -126,12 +126,12 @@ func TestLooserDemandsNeverCostMore(t *testing.T) {
 
 func TestNodeLimitIsHonest(t *testing.T) {
 	stopped, gaps := 0, 0
-	for seed := range uint64(200) {
+	for seed := range uint64(400) {
 		s := randomShape(seed)
 		s.lines, s.options = 4+int(seed%3), 5
 		m := newMarket(seed, s)
 		want := m.brute()
-		out, err := m.Cheapest(context.Background(), Limits{Nodes: 12, Steps: 30})
+		out, err := m.Cheapest(context.Background(), Limits{Nodes: 12, Steps: []int{30, 200, 600}[seed%3], leaf: []int{0, 1, 6}[seed/3%3]})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -178,8 +178,8 @@ func checkProof(t *testing.T, seed uint64, m *market, out Outcome, want brute) {
 func TestDivesEqualBruteForce(t *testing.T) {
 	for name, limits := range map[string]Limits{
 		"whole":  {Nodes: 1},
-		"split":  {Nodes: 1, piece: 4},
-		"midway": {Nodes: 25, piece: 9},
+		"split":  {Nodes: 1, leaf: 4},
+		"midway": {Nodes: 25, leaf: 1},
 	} {
 		t.Run(name, func(t *testing.T) {
 			found := 0

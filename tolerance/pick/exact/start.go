@@ -31,7 +31,7 @@ func (s *search) start(ctx context.Context, kept [][]int) error {
 // keep judges a choice and, where Judge passes it, puts it in the pool, which
 // holds the cheapest, none of them refused.
 func (s *search) keep(k known) {
-	if k.cost >= Unavailable || !s.judge(k.choice, k.cost) {
+	if k.cost >= Unavailable || k.cost > s.most || !s.judge(k.choice, k.cost) {
 		return
 	}
 	at, found := slices.BinarySearchFunc(s.pool, k, known.compare)
@@ -68,7 +68,7 @@ func (s *search) aim(ctx context.Context, kept [][]int) error {
 // ceiling is the cost of the cheapest choice known that may still be confirmed.
 func (s *search) ceiling() int64 {
 	if len(s.pool) == 0 {
-		return none
+		return s.most
 	}
 	return s.pool[0].cost
 }

@@ -225,17 +225,11 @@ func (p *program) showYields(r *compare.Result) {
 func (p *program) showBodies(r *compare.Result) {
 	var rows [][]string
 	for _, c := range r.Cases {
-		rated, size := "–", "–"
-		if t := c.Temperatures; t != nil {
-			rated = fmt.Sprintf("%g to %g °C", float64(t.Low), float64(t.High))
-		}
-		if len(c.Beyond) > 0 {
-			rated += ", exceeded at " + strings.Join(c.Beyond, ", ")
-		}
+		size := "–"
 		if len(c.Sizes) > 0 {
 			size = strings.Join(c.Sizes, "; ")
 		}
-		rows = append(rows, []string{marked(c), size, rated})
+		rows = append(rows, []string{marked(c), size, plan.Rated(c)})
 	}
 	p.section("size and rated temperature, typical of each class", []string{"case", "size", "temperature"}, rows)
 }

@@ -21,6 +21,8 @@ type Result struct {
 	Pick  Proof         `json:"pick"`
 	Order order.Order   `json:"order"`
 	Files []string      `json:"files"` // written
+
+	Comparison *Comparison `json:"compare,omitempty"`
 }
 
 // Proof is how the parts were chosen.
@@ -57,6 +59,10 @@ func NewSpread(r *spread.Report, s bench.Sheet) Spread {
 // NewResult joins everything known about a batch and the files written.
 func NewResult(w Work, files ...string) Result {
 	p := w.Pick
+	var compared *Comparison
+	if w.Compared != nil {
+		compared = NewComparison(w.Compared)
+	}
 	return Result{
 		Spread: NewSpread(w.Report, w.Sheet),
 		Picks:  listed(p.Choices),
@@ -64,7 +70,7 @@ func NewResult(w Work, files ...string) Result {
 			ProvedCheapest: p.ProvedCheapest, CostPerUnit: p.CostPerUnit, Candidates: p.Candidates,
 			Examined: p.Examined, Simulated: p.Simulated, Alternates: []Alternate{}, Why: p.Why,
 		},
-		Order: w.Order, Files: listed(files),
+		Order: w.Order, Files: listed(files), Comparison: compared,
 	}
 }
 

@@ -56,13 +56,20 @@ func marked(c compare.Case) string {
 func (p *program) showDrifts(r *compare.Result) {
 	for i, first := range r.Cases[0].Drifts {
 		var figures []float64
-		var scatter float64
+		var most, least float64 = 0, math.Inf(1)
 		for _, c := range r.Cases {
 			d := c.Drifts[i]
 			figures = append(figures, float64(d.Mean), float64(d.LotToLot), float64(d.UnitToUnit))
-			scatter = math.Max(scatter, math.Max(float64(d.LotToLot), float64(d.UnitToUnit)))
+			for _, s := range []float64{float64(d.LotToLot), float64(d.UnitToUnit)} {
+				if s > 0 {
+					most, least = math.Max(most, s), math.Min(least, s)
+				}
+			}
 		}
-		row := newRow(first.Unit, scatter, figures...)
+		if most == 0 {
+			least = 0
+		}
+		row := newRow(first.Unit, math.Max(least, most/20), figures...)
 		var rows [][]string
 		for _, c := range r.Cases {
 			d := c.Drifts[i]

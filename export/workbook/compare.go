@@ -67,7 +67,7 @@ func (b *book) compare() {
 	s := setup{landscape: true, onePage: 900}
 	widths := []float64{30}
 	for range compareWide {
-		widths = append(widths, 10.5)
+		widths = append(widths, 13.5)
 	}
 	p := b.open(compareSheet, widths, s)
 	p.heading(compareSheet, c.Below)
@@ -128,7 +128,23 @@ func (x CompareCase) name() string {
 
 // shareCell is a share as a figure, for a chart.
 func shareCell(of func(CompareCase) spread.Figure) func(*page, CompareCase, look) excelize.Cell {
-	return func(p *page, x CompareCase, l look) excelize.Cell { return p.number(float64(of(x)), "0.0 %", l) }
+	return func(p *page, x CompareCase, l look) excelize.Cell {
+		v, format := shareFigure(of(x))
+		return p.number(v, format, l)
+	}
+}
+
+// shareFigure is a share as a figure that reads 100 % or 0 % only where it is
+// exactly that, and its format.
+func shareFigure(f spread.Figure) (float64, string) {
+	v := float64(f)
+	switch {
+	case v > 0.9995 && v < 1:
+		return min(v, 0.9999), "0.00 %"
+	case v < 0.0005 && v > 0:
+		return max(v, 0.0001), "0.00 %"
+	}
+	return v, "0.0 %"
 }
 
 // yieldColumns are yield, money, and the shares on targets and trims.
@@ -153,11 +169,11 @@ func (c *Compare) yieldColumns(yield *cellSpan) []compareColumn {
 	}
 	for t, title := range c.Targets {
 		list = append(list, compareColumn{clean(title), func(p *page, x CompareCase, l look) excelize.Cell {
-			format := "0.0 %"
+			v, format := shareFigure(x.Targets[t])
 			if x.Missed[t] {
-				l.fill, l.ink, format = rose, brick, `"✗ "0.0 %`
+				l.fill, l.ink, format = rose, brick, `"✗ "`+format
 			}
-			return p.number(float64(x.Targets[t]), format, l)
+			return p.number(v, format, l)
 		}, nil})
 	}
 	for t, title := range c.Trims {

@@ -11,7 +11,7 @@ import (
 func (p *page) compareCharts(c *Compare, yield cellSpan, widths []cellSpan, limit cellSpan) {
 	p.put(9)
 	top := p.last + 1
-	p.keep(p.file.AddChart(p.name, at(1, top), p.columnChart("Good units", []cellSpan{yield}, 540, "0.0 %")))
+	p.keep(p.file.AddChart(p.name, at(1, top), p.columnChart("Good units", []cellSpan{yield}, 700, "0.0 %")))
 	var shown []cellSpan
 	for _, w := range widths {
 		if w.column > 0 {
@@ -19,9 +19,10 @@ func (p *page) compareCharts(c *Compare, yield cellSpan, widths []cellSpan, limi
 		}
 	}
 	if len(shown) > 0 {
-		bars := p.columnChart("Half width as a share of its limit", shown, 560, "0 %")
-		bars.YAxis.Maximum = nil
-		p.keep(p.file.AddChart(p.name, at(7, top), bars, &excelize.Chart{Type: excelize.Line, Series: []excelize.ChartSeries{p.limitLine(limit)}}))
+		bars := p.columnChart("Half width as a share of its limit", shown, 700, "0 %")
+		bars.YAxis.Maximum, bars.Legend.Position = nil, "bottom"
+		line := &excelize.Chart{Type: excelize.Line, Series: []excelize.ChartSeries{p.limitLine(limit)}, XAxis: bars.XAxis, YAxis: bars.YAxis}
+		p.keep(p.file.AddChart(p.name, at(7, top), bars, line))
 	}
 	for range compareChartRows {
 		p.put(0)
@@ -54,10 +55,10 @@ func (p *page) columnChart(title string, spans []cellSpan, width uint, figures s
 			Line: excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75},
 		})
 	}
-	gap := uint(60)
+	gap, vary := uint(60), false
 	return &excelize.Chart{
-		Type: excelize.Col, Series: series, Dimension: excelize.ChartDimension{Width: width, Height: 320}, GapWidth: &gap,
-		Legend: excelize.ChartLegend{Position: "bottom", Font: &small},
+		Type: excelize.Col, Series: series, Dimension: excelize.ChartDimension{Width: width, Height: 320}, GapWidth: &gap, VaryColors: &vary,
+		Legend: excelize.ChartLegend{Position: "none", Font: &small},
 		XAxis:  excelize.ChartAxis{Font: small}, YAxis: excelize.ChartAxis{MajorGridLines: true, Font: small, Minimum: new(float64), Maximum: &top, NumFmt: excelize.ChartNumFmt{CustomNumFmt: "0 %"}},
 		Title:    excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: title, Font: &small}}},
 		PlotArea: excelize.ChartPlotArea{ShowVal: true, NumFmt: excelize.ChartNumFmt{CustomNumFmt: figures}},

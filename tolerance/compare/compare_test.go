@@ -149,7 +149,7 @@ func TestCasesRefuses(t *testing.T) {
 		{compare.Options{At: []string{"b.pad"}, Tolerances: []float64{0.05}}, "b.pad has no family"},
 		{compare.Options{At: []string{"b.coil"}, Families: []string{"drum-choke"}}, "b.coil is wound, not bought"},
 	} {
-		if _, err := compare.Cases(read(t, text), c.o); err == nil || !strings.Contains(err.Error(), c.want) {
+		if _, err := compare.Cases(read(t, text), c.o); err == nil || !strings.HasPrefix(err.Error(), c.want) && !strings.Contains(err.Error(), "; "+c.want) {
 			t.Errorf("%+v: %v; want %q", c.o, err, c.want)
 		}
 	}
@@ -242,6 +242,10 @@ func TestWhy(t *testing.T) {
 		{"nothing at all", drift("10 kHz", "90 %"), compare.Options{At: divider, Lots: []build.Lots{build.MixedLots}}, compare.Even, "costs the same; ", "no difference in yield"},
 		{"out of rating", strings.Replace(drift("10 kHz", "90 %"), "at: [warm]", "at: [warm, oven]", 1), compare.Options{At: tank, Families: []string{"polystyrene"}}, compare.Loses, "is not rated for the temperature at oven", ""},
 		{"a corner", drift("10 kHz", "90 %"), compare.Options{At: []string{"half.upper"}, Families: []string{"carbon-film"}, Tolerances: []float64{0.1}}, compare.Loses, `misses "half" (every corner)`, ""},
+		// 2 % above and 1 % below move 4.5 V by up to 67.5 mV, but some 4 standard
+		// deviations of 17 mV are seen on no unit
+		{"a corner that chance does not see", strings.Replace(drift("10 kHz", "90 %"), "[4.4 V, 4.6 V]", "[4.435 V, 4.565 V]", 1),
+			compare.Options{At: []string{"half.upper"}, Tolerances: []float64{0.02}}, compare.Loses, `misses "half" (every corner)`, ""},
 		{"a target lost", drift("60 Hz", "35 %"), compare.Options{At: coil, Lots: []build.Lots{build.MixedLots}}, compare.Loses, `misses "drift" (`, "35 % asked)"},
 		// 41.8 and 40.8 % of these draws, which 300 batches of 8 cannot tell apart
 		{"close by", drift("60 Hz", "41.3 %"), compare.Options{At: tank, Lots: []build.Lots{build.MixedLots}}, compare.Even, "costs the same; ", `on "drift" on the other side of the limit by less than 2400 units can show`},
@@ -258,6 +262,17 @@ func TestWhy(t *testing.T) {
 				t.Errorf("base: %s %q", b.Verdict, b.Why)
 			}
 		})
+	}
+}
+
+// A part that is not exchanged and not offered is in no price, and no reason
+// against a case.
+func TestUnofferedElsewhere(t *testing.T) {
+	r := run(t, strings.Replace(pair, "{ref: C3, value: 15 pF, family: c0g, tolerance: 5 %}", "{ref: C3, value: 15 pF}", 1),
+		compare.Options{At: []string{"a.tank"}, Families: []string{"mica"}})
+	want := []string{"a.tank is still open; the base takes it as c0g", "not offered by the price book, and in no price: C3"}
+	if diff := cmp.Diff(want, r.Notes); diff != "" || r.Cases[1].NotOffered != "" {
+		t.Errorf("not offered: %q; notes:\n%s", r.Cases[1].NotOffered, diff)
 	}
 }
 

@@ -41,9 +41,9 @@ not leave out zero. Lot to lot is what all units of a batch share, unit to unit
 what is each one's own; both are standard deviations. Exit code 1 says that no
 case meets every target.
 
-  batchwright compare tone-box.yaml --at tank.tank --families c0g,polypropylene,polystyrene
-  batchwright compare tone-box.yaml --at half.upper,half.lower --tolerances 1%,5% --lots one,mixed
-  batchwright compare tone-box.yaml --at tank.coil --families drum-choke,ferrite-pot --json`,
+  batchwright compare tone-box.yaml --at fixed.upper --families c0g,polypropylene,polystyrene
+  batchwright compare tone-box.yaml --at fixed.upper,moving.upper --tolerances 1%,5% --lots one,mixed
+  batchwright compare tone-box.yaml --at fixed.coil --families drum-choke,ferrite-pot --json`,
 		Flags: append(append([]cli.Flag{
 			&cli.StringSliceFlag{Name: "at", Usage: "exchange the parts at `STAGE.ROLE`, several with commas"},
 		}, caseFlags()...),

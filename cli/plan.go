@@ -38,7 +38,7 @@ that were picked, as compare has it, with the same --families, --tolerances,
 
   batchwright plan
   batchwright plan tone-box.yaml --units 12 --out plans
-  batchwright plan tone-box.yaml --compare tank.tank --out plans`,
+  batchwright plan tone-box.yaml --compare fixed.upper --out plans`,
 		Flags: append([]cli.Flag{
 			&cli.StringFlag{Name: "out", Usage: "write the workbook into folder `DIR`", Value: "."},
 			&cli.StringSliceFlag{Name: "compare", Usage: "add a sheet with other parts at `STAGE.ROLE`, several with commas"},

@@ -64,7 +64,7 @@ func (b *book) compare() {
 	if c == nil {
 		return
 	}
-	s := setup{landscape: true, onePage: 900}
+	s := setup{landscape: true, onePage: 1000}
 	widths := []float64{30}
 	for range compareWide {
 		widths = append(widths, 13.5)

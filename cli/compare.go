@@ -1,6 +1,7 @@
 package cli
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"slices"
@@ -40,9 +41,9 @@ not leave out zero. Lot to lot is what all units of a batch share, unit to unit
 what is each one's own; both are standard deviations. Exit code 1 says that no
 case meets every target.
 
-  batchwright compare tone-box.yaml --at tank.tank --families c0g,polypropylene,polystyrene
-  batchwright compare tone-box.yaml --at half.upper,half.lower --tolerances 1%,5% --lots one,mixed
-  batchwright compare tone-box.yaml --at tank.coil --families drum-choke,ferrite-pot --json`,
+  batchwright compare tone-box.yaml --at fixed.upper --families c0g,polypropylene,polystyrene
+  batchwright compare tone-box.yaml --at fixed.upper,moving.upper --tolerances 1%,5% --lots one,mixed
+  batchwright compare tone-box.yaml --at fixed.coil --families drum-choke,ferrite-pot --json`,
 		Flags: append(append([]cli.Flag{
 			&cli.StringSliceFlag{Name: "at", Usage: "exchange the parts at `STAGE.ROLE`, several with commas"},
 		}, caseFlags()...),
@@ -216,4 +217,38 @@ func fittedPositions(b *build.Build) []string {
 		}
 	}
 	return list
+}
+
+// readPlanCases reads what a plan is to compare; nil where nothing is.
+func readPlanCases(c *cli.Context, b *build.Build) (*compare.Options, error) {
+	if !c.IsSet("compare") {
+		for _, f := range caseFlags() {
+			if name := f.Names()[0]; c.IsSet(name) {
+				return nil, usage("--%s needs --compare STAGE.ROLE: where the parts are exchanged", name)
+			}
+		}
+		return nil, nil
+	}
+	o, err := readCases(c, "compare", b)
+	if err != nil {
+		return nil, err
+	}
+	if _, err := compare.Cases(b, o); err != nil { // before any work is done
+		return nil, usage("--compare %s: %w", strings.Join(o.At, ","), err)
+	}
+	return &o, nil
+}
+
+// compared compares other parts with those that were picked; nil where nothing
+// is to be compared.
+func compared(ctx context.Context, b *build.Build, cases *compare.Options, o spread.Options, g *progress) (*compare.Result, error) {
+	if cases == nil {
+		return nil, nil
+	}
+	r, err := compare.Cases(b, *cases)
+	if err != nil {
+		return nil, usage("--compare %s: %w", strings.Join(cases.At, ","), err)
+	}
+	o.Units = min(o.Units, compare.Units)
+	return r, r.Run(ctx, o, g.start)
 }

@@ -17,6 +17,7 @@ import (
 	"batchwright/export/plan"
 	"batchwright/export/workbook"
 	"batchwright/tolerance/bench"
+	"batchwright/tolerance/compare"
 	"batchwright/tolerance/pick"
 	"batchwright/tolerance/spread"
 )
@@ -31,12 +32,18 @@ simulates whole batches of the result, orders the parts and writes a workbook
 named after the build's title. Without BUILD it plans the embedded example; "-"
 reads the build from standard input.
 
+--compare STAGE.ROLE adds a sheet "Compare": other parts in the place of those
+that were picked, as compare has it, with the same --families, --tolerances,
+--values and --lots; with none of them, the families that an open position lists.
+
   batchwright plan
-  batchwright plan tone-box.yaml --units 12 --out plans`,
-		Flags: []cli.Flag{
+  batchwright plan tone-box.yaml --units 12 --out plans
+  batchwright plan tone-box.yaml --compare fixed.upper --out plans`,
+		Flags: append([]cli.Flag{
 			&cli.StringFlag{Name: "out", Usage: "write the workbook into folder `DIR`", Value: "."},
+			&cli.StringSliceFlag{Name: "compare", Usage: "add a sheet with other parts at `STAGE.ROLE`, several with commas"},
 			searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
-		},
+		}, caseFlags()...),
 		Action: p.plan,
 	}
 }
@@ -60,7 +67,11 @@ func (p *program) plan(c *cli.Context) error {
 	if file == "" {
 		fmt.Fprintf(p.stderr, "batchwright: no build file named; planning the embedded example, %s\n", src.Title)
 	}
-	work, err := p.work(c.Context, src, o)
+	cases, err := readPlanCases(c, src.Build)
+	if err != nil {
+		return err
+	}
+	work, err := p.work(c.Context, src, o, cases)
 	if err != nil {
 		return err
 	}
@@ -80,7 +91,7 @@ func (p *program) plan(c *cli.Context) error {
 }
 
 // work does the whole job but for the writing.
-func (p *program) work(ctx context.Context, src *source, o pick.Options) (*plan.Work, error) {
+func (p *program) work(ctx context.Context, src *source, o pick.Options, cases *compare.Options) (*plan.Work, error) {
 	g := p.newProgress()
 	defer g.stop()
 	w := &plan.Work{File: src.File, Text: src.text, Seed: o.Seed, Simulate: o.Units, Version: Version}
@@ -101,6 +112,9 @@ func (p *program) work(ctx context.Context, src *source, o pick.Options) (*plan.
 	}
 	g.start("drifting")
 	if w.Drifts, err = plan.Drifts(ctx, w.Build, simulated); err != nil {
+		return nil, err
+	}
+	if w.Compared, err = compared(ctx, w.Build, cases, simulated, g); err != nil {
 		return nil, err
 	}
 	w.Sheet = bench.NewSheet(w.Model, w.Report)

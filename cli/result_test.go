@@ -42,12 +42,29 @@ var planKeys = strings.Fields(`
 	order.total order.currency files.[]
 `)
 
+var compareKeys = strings.Fields(`
+	build seed simulation.batches simulation.units lines.[].positions.[] lines.[].refs.[] currency demonstration left_out notes
+	cases.[].label cases.[].base cases.[].families.[] cases.[].tolerances.[] cases.[].values.[] cases.[].lots
+	cases.[].drift_per_kelvin.[].output cases.[].drift_per_kelvin.[].unit cases.[].drift_per_kelvin.[].mean
+	cases.[].drift_per_kelvin.[].lot_to_lot cases.[].drift_per_kelvin.[].unit_to_unit
+	cases.[].targets.[].name cases.[].targets.[].met cases.[].targets.[].share cases.[].targets.[].share_interval.[]
+	cases.[].targets.[].difference.share cases.[].targets.[].difference.interval.[] cases.[].targets.[].difference.shown
+	cases.[].trims.[].turn cases.[].trims.[].reached_share
+	cases.[].yield.unit_share cases.[].yield.interval.[] cases.[].yield.difference.share cases.[].yield.batch.units
+	cases.[].unit_cost cases.[].batch_cost cases.[].sizes.[] cases.[].temperatures.low cases.[].verdict cases.[].why
+`)
+
 func TestResultKeys(t *testing.T) {
-	for command, keys := range map[string][]string{"spread": spreadKeys, "plan": append(spreadKeys[:len(spreadKeys):len(spreadKeys)], planKeys...)} {
+	for command, keys := range map[string][]string{
+		"spread": spreadKeys, "plan": append(spreadKeys[:len(spreadKeys):len(spreadKeys)], planKeys...), "compare": compareKeys,
+	} {
 		t.Run(command, func(t *testing.T) {
 			args := []string{command, "testdata/small.yaml", "--simulate", "600", "--json"}
 			if command == "plan" {
 				args = append(args, "--out", t.TempDir())
+			}
+			if command == "compare" {
+				args = append(args, "--at", "tank.tank")
 			}
 			r := runHere(t, args...)
 			if r.code != exitDone || r.stderr != "" {
@@ -109,8 +126,8 @@ func TestSameBytesForAnyProcessors(t *testing.T) {
 		t.Fatal(err)
 	}
 	type outcome struct {
-		Plan, JSON, Spread result
-		Workbook           string
+		Plan, JSON, Spread, Compare result
+		Workbook                    string
 	}
 	var all []outcome
 	for _, processors := range []int{1, 2} {
@@ -122,9 +139,10 @@ func TestSameBytesForAnyProcessors(t *testing.T) {
 			}
 			// 20,000 units are several runs of the simulation
 			o := outcome{
-				Plan:   runHere(t, "plan", "small.yaml", "--simulate", "20000"),
-				JSON:   runHere(t, "plan", "small.yaml", "--simulate", "20000", "--json"),
-				Spread: runHere(t, "spread", "small.yaml", "--simulate", "20000", "--json"),
+				Plan:    runHere(t, "plan", "small.yaml", "--simulate", "20000"),
+				JSON:    runHere(t, "plan", "small.yaml", "--simulate", "20000", "--compare", "tank.tank", "--json"),
+				Compare: runHere(t, "compare", "small.yaml", "--at", "tank.tank", "--simulate", "20000", "--json"),
+				Spread:  runHere(t, "spread", "small.yaml", "--simulate", "20000", "--json"),
 			}
 			book, err := os.ReadFile("small-pair.xlsx")
 			if err != nil {

@@ -56,13 +56,20 @@ func marked(c compare.Case) string {
 func (p *program) showDrifts(r *compare.Result) {
 	for i, first := range r.Cases[0].Drifts {
 		var figures []float64
-		var scatter float64
+		var most, least float64 = 0, math.Inf(1)
 		for _, c := range r.Cases {
 			d := c.Drifts[i]
 			figures = append(figures, float64(d.Mean), float64(d.LotToLot), float64(d.UnitToUnit))
-			scatter = math.Max(scatter, math.Max(float64(d.LotToLot), float64(d.UnitToUnit)))
+			for _, s := range []float64{float64(d.LotToLot), float64(d.UnitToUnit)} {
+				if s > 0 {
+					most, least = math.Max(most, s), math.Min(least, s)
+				}
+			}
 		}
-		row := newRow(first.Unit, scatter, figures...)
+		if most == 0 {
+			least = 0
+		}
+		row := newRow(first.Unit, math.Max(least, most/20), figures...)
 		var rows [][]string
 		for _, c := range r.Cases {
 			d := c.Drifts[i]
@@ -225,17 +232,11 @@ func (p *program) showYields(r *compare.Result) {
 func (p *program) showBodies(r *compare.Result) {
 	var rows [][]string
 	for _, c := range r.Cases {
-		rated, size := "–", "–"
-		if t := c.Temperatures; t != nil {
-			rated = fmt.Sprintf("%g to %g °C", float64(t.Low), float64(t.High))
-		}
-		if len(c.Beyond) > 0 {
-			rated += ", exceeded at " + strings.Join(c.Beyond, ", ")
-		}
+		size := "–"
 		if len(c.Sizes) > 0 {
 			size = strings.Join(c.Sizes, "; ")
 		}
-		rows = append(rows, []string{marked(c), size, rated})
+		rows = append(rows, []string{marked(c), size, plan.Rated(c)})
 	}
 	p.section("size and rated temperature, typical of each class", []string{"case", "size", "temperature"}, rows)
 }

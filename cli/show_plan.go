@@ -16,6 +16,9 @@ func (p *program) showPlan(w plan.Work, path string) {
 	p.paragraph("yield", plan.YieldSentence(w.Report.Yield))
 	p.showPicks(w.Pick, w.Order)
 	p.showOrder(w.Order)
+	if w.Compared != nil {
+		p.showWhy(w.Compared)
+	}
 	p.showFindings(w.Report)
 	p.paragraph("mind", strings.Join(plan.Cautions(), "\n"))
 	p.line("\nwrote %s", path)

@@ -1,7 +1,13 @@
 package plan
 
 import (
+	"fmt"
+	"math"
+	"strings"
+
 	"batchwright/bom/offer"
+	"batchwright/bom/order"
+	"batchwright/export/workbook"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/compare"
 	"batchwright/tolerance/spread"
@@ -102,4 +108,80 @@ func newComparedCase(x compare.Case) ComparedCase {
 		c.Targets = append(c.Targets, ComparedTarget{t.TargetReport, t.Changes, x.Targets[i]})
 	}
 	return c
+}
+
+// compared lays a comparison out for the workbook; nil where there is none.
+func compared(r *compare.Result) *workbook.Compare {
+	if r == nil {
+		return nil
+	}
+	c := &workbook.Compare{Currency: r.Base().Order.Currency, Notes: r.Notes}
+	var lines []string
+	for _, l := range r.Lines {
+		lines = append(lines, fmt.Sprintf("%s (%s)", l.Positions[0], order.Runs(l.Refs)))
+	}
+	c.Below = fmt.Sprintf("Other parts at %s. %d cases, each on the same %d simulated units, seed %d.",
+		strings.Join(lines, ", "), len(r.Cases), r.Simulation.Units, r.Seed)
+	for _, l := range r.LeftOut {
+		c.Notes = append(c.Notes, fmt.Sprintf("Left out: %s: %s.", l.Label, l.Why))
+	}
+	for _, d := range r.Cases[0].Drifts {
+		c.Drifts = append(c.Drifts, workbook.CompareDrift{Output: d.Output, Unit: d.Unit})
+	}
+	for i, t := range r.Build.Targets {
+		c.Targets = append(c.Targets, t.Name)
+		for _, x := range r.Cases[0].Judgement.Targets[i].Changes {
+			c.Changes = append(c.Changes, workbook.CompareChange{
+				Title: t.Name + ", " + x.Condition, Unit: t.Unit.Symbol, Limit: math.Min(-t.Low, t.High),
+			})
+		}
+	}
+	for _, t := range r.Cases[0].Judgement.Trims {
+		c.Trims = append(c.Trims, t.Turn)
+	}
+	for _, x := range r.Cases {
+		c.Cases = append(c.Cases, comparedCase(x))
+	}
+	return c
+}
+
+// comparedCase is one case as the workbook shows it.
+func comparedCase(x compare.Case) workbook.CompareCase {
+	c := workbook.CompareCase{
+		Label: x.Label, Base: x.Base, Drifts: x.Drifts,
+		Yield: x.Judgement.Yield.UnitShare, Interval: x.Judgement.Yield.Interval, Difference: "none shown",
+		Unit: math.NaN(), Batch: math.NaN(), Size: strings.Join(x.Sizes, "; "), Rated: Rated(x),
+		Verdict: string(x.Verdict), Why: x.Why,
+	}
+	if x.Base {
+		c.Difference = "–"
+	} else if x.Yield.Shown {
+		c.Difference = fmt.Sprintf("%+.3g", 100*float64(x.Yield.Share))
+	}
+	if x.NotOffered == "" {
+		c.Unit, c.Batch = x.Order.PerUnit.Float(), x.Order.Total.Float()
+	}
+	for _, t := range x.Judgement.Targets {
+		c.Targets, c.Missed = append(c.Targets, t.Share), append(c.Missed, !t.Met)
+		for _, change := range t.Changes {
+			c.Changes = append(c.Changes, change.HalfWidth)
+		}
+	}
+	for _, t := range x.Judgement.Trims {
+		c.Reached = append(c.Reached, t.ReachedShare)
+	}
+	return c
+}
+
+// Rated is the range of temperatures that a case's parts are rated for, and
+// where it is left.
+func Rated(x compare.Case) string {
+	if x.Temperatures == nil {
+		return "–"
+	}
+	text := fmt.Sprintf("%g to %g °C", float64(x.Temperatures.Low), float64(x.Temperatures.High))
+	if len(x.Beyond) > 0 {
+		text += ", exceeded at " + strings.Join(x.Beyond, ", ")
+	}
+	return text
 }

@@ -21,6 +21,8 @@ type Result struct {
 	Pick  pick.Result   `json:"pick"`
 	Order order.Order   `json:"order"`
 	Files []string      `json:"files"` // written
+
+	Comparison *Comparison `json:"compare,omitempty"`
 }
 
 // Pick is what `pick --json` prints.
@@ -48,9 +50,13 @@ func NewSpread(r *spread.Report, s bench.Sheet) Spread {
 
 // NewResult joins everything known about a batch and the files written.
 func NewResult(w Work, files ...string) Result {
+	var compared *Comparison
+	if w.Compared != nil {
+		compared = NewComparison(w.Compared)
+	}
 	return Result{
 		Spread: NewSpread(w.Report, w.Sheet), Picks: listed(w.Pick.Choices), Pick: *w.Pick,
-		Order: w.Order, Files: listed(files),
+		Order: w.Order, Files: listed(files), Comparison: compared,
 	}
 }
 

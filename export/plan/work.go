@@ -12,6 +12,7 @@ import (
 	"batchwright/export/workbook"
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/build"
+	"batchwright/tolerance/compare"
 	"batchwright/tolerance/pick"
 	"batchwright/tolerance/spread"
 )
@@ -31,6 +32,8 @@ type Work struct {
 	Sheet  bench.Sheet
 	Order  order.Order
 	Drifts []workbook.Drift
+
+	Compared *compare.Result // nil: nothing was compared
 }
 
 // Digest identifies a plan: the SHA-256 of the build file and of all else that
@@ -53,7 +56,7 @@ func Compose(w Work) workbook.Plan {
 		Order:      w.Order, Pick: *w.Pick,
 		Positions: positions(w),
 		Turns:     w.Sheet.Turns, Readings: w.Sheet.Readings,
-		Spread: *w.Report, Drifts: w.Drifts,
+		Spread: *w.Report, Drifts: w.Drifts, Compare: compared(w.Compared),
 		Basis: basis(w), Cautions: Cautions(),
 		Advice: advice(w),
 	}

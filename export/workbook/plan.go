@@ -49,6 +49,7 @@ type Plan struct {
 	Readings   []bench.Reading
 	Spread     spread.Report
 	Drifts     []Drift
+	Compare    *Compare // nil: no such sheet
 	Basis      []Basis
 	Cautions   []string
 

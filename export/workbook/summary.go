@@ -223,6 +223,9 @@ func (p *page) contents() {
 	p.section("In this workbook")
 	left := [][2]string{{buySheet, "what to order, in packs, with prices"}, {stagesSheet, "what goes where, and its marking"}, {trimsSheet, "adjustments in bench order"}, {testSheet, "what every meter should show"}}
 	right := [][2]string{{tolerancesSheet, "every output at every condition"}, {driftSheet, "movement with temperature"}, {basisSheet, "assumptions, sources, limits"}, {}}
+	if p.plan.Compare != nil {
+		right[3] = [2]string{compareSheet, "other parts in the same places"}
+	}
 	link, text := look{bold: true, ink: copper}, look{}
 	for i := range left {
 		r := p.put(0, p.text(left[i][0], link), p.text(left[i][1], text), excelize.Cell{}, p.text(right[i][0], link), p.text(right[i][1], text))

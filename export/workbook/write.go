@@ -19,6 +19,7 @@ const (
 	testSheet       = "Test sheet"
 	tolerancesSheet = "Tolerances"
 	driftSheet      = "Drift"
+	compareSheet    = "Compare" // only where the plan has one
 	basisSheet      = "Basis"
 	carrierSheet    = "_plan" // never shown
 )
@@ -38,6 +39,7 @@ func Write(w io.Writer, p Plan) error {
 	verdicts := b.test()
 	b.tolerances()
 	b.drift()
+	b.compare()
 	b.basis()
 	b.summary(total, verdicts)
 	b.carriers()
@@ -64,7 +66,10 @@ type book struct {
 func newBook(p Plan) *book {
 	b := &book{plan: p, file: excelize.NewFile(), styles: map[look]int{}}
 	b.keep(b.file.SetSheetName("Sheet1", summarySheet))
-	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, tolerancesSheet, driftSheet, basisSheet, carrierSheet} {
+	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, tolerancesSheet, driftSheet, compareSheet, basisSheet, carrierSheet} {
+		if name == compareSheet && p.Compare == nil {
+			continue
+		}
 		_, err := b.file.NewSheet(name)
 		b.keep(err)
 	}

@@ -122,9 +122,9 @@ func (r *Result) byPrice(c *Case, near []int) {
 	case base.NotOffered != "":
 		c.Verdict, c.Why = Wins, "can be bought, which the base cannot; "+alike
 	case dearer < 0:
-		c.Verdict, c.Why = Wins, fmt.Sprintf("saves %v a unit; %s", -dearer, alike)
+		c.Verdict, c.Why = Wins, fmt.Sprintf("saves %s a unit; %s", (-dearer).Each(), alike)
 	case dearer > 0:
-		c.Verdict, c.Why = Loses, fmt.Sprintf("costs %v a unit more; %s", dearer, alike)
+		c.Verdict, c.Why = Loses, fmt.Sprintf("costs %s a unit more; %s", dearer.Each(), alike)
 	default:
 		c.Verdict, c.Why = Even, "costs the same; "+alike
 	}

@@ -58,12 +58,17 @@ func (s *searching) addEffects() (*additive, error) {
 		a.learn(choice)
 	}
 	a.beyond = false
-	judge := s.problem.Judge
-	s.problem.Judge = func(choice []int) exact.Verdict {
+	a.watch()
+	return a, nil
+}
+
+// watch has every choice that the problem judges held against the margins.
+func (a *additive) watch() {
+	judge := a.problem.Judge
+	a.problem.Judge = func(choice []int) exact.Verdict {
 		a.learn(choice)
 		return judge(choice)
 	}
-	return a, nil
 }
 
 // safely gives the problem demands that a choice meets with room to spare: as

@@ -3,6 +3,7 @@ package pick
 import (
 	"fmt"
 	"maps"
+	"math"
 	"slices"
 
 	"batchwright/bom/offer"
@@ -126,6 +127,18 @@ func (m *market) shareShelves() bool {
 		shelves[shelf] = true
 	}
 	return false
+}
+
+// candidates is the number of combinations, held at math.MaxInt.
+func (m *market) candidates() int {
+	n := 1
+	for _, list := range m.fittings {
+		if n > math.MaxInt/max(1, len(list)) {
+			return math.MaxInt
+		}
+		n *= len(list)
+	}
+	return n
 }
 
 // unsold is the first opening that nothing offered may fill, or -1.

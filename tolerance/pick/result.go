@@ -47,8 +47,9 @@ type Result struct {
 	Remains        []Remains             `json:"remains"`          // of the changes that targets limit
 	Binding        *Binding              `json:"binding"`          // nil: none
 	Alternates     []Alternate           `json:"alternates"`
-	Fittings       []build.Fitting       `json:"-"` // the choices, as a build is fitted with them
-	Targets        []spread.TargetReport `json:"-"` // as the simulation that confirmed has them, in the build's order
+	Fittings       []build.Fitting       `json:"-"`                  // the choices, as a build is fitted with them
+	Targets        []spread.TargetReport `json:"-"`                  // as the simulation that confirmed has them, in the build's order
+	Searched       string                `json:"searched,omitempty"` // what for, where that is not the cheapest
 	Why            string                `json:"why,omitempty"`
 	Provided       string                `json:"provided,omitempty"` // what the proof rests on beside the picture
 }

@@ -28,12 +28,18 @@ func (p *program) pickCommand() *cli.Command {
 which target binds, what a tighter one would cost and what to buy where a line is
 out of stock. Every choice printed is confirmed by simulation.
 
+--within PRICE asks for the steadiest instead: of a target on a change, the
+smallest half width that its share of the units stays within, at what the whole
+order may cost. --frontier prints every efficient trade between the two.
+
   batchwright pick tone-box.yaml
+  batchwright pick tone-box.yaml --frontier
+  batchwright pick tone-box.yaml --within 230
   batchwright pick tone-box.yaml --write chosen.yaml`,
-		Flags: []cli.Flag{
+		Flags: append(tradeFlags(),
 			&cli.StringFlag{Name: "write", Usage: "write the build file with its choices filled in to `FILE`"},
 			searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
-		},
+		),
 		Action: p.pick,
 	}
 }
@@ -57,7 +63,19 @@ func (p *program) pick(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
-	result, err := p.cheapest(c.Context, src.Build, o)
+	t, err := readTrade(c, src.Build)
+	if err != nil {
+		return err
+	}
+	if t.frontier {
+		return p.trade(c, src.Build, t, o)
+	}
+	var result plan.Pick
+	if t.within > 0 {
+		result, err = p.steadiest(c.Context, src.Build, t, o)
+	} else {
+		result, err = p.cheapest(c.Context, src.Build, o)
+	}
 	if err != nil {
 		return err
 	}

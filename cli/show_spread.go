@@ -141,10 +141,18 @@ func (p *program) showTargets(targets []spread.TargetReport) {
 		}
 		rows = append(rows, []string{
 			t.Name, verdict, plan.Share(t.Share),
-			plan.Share(t.ShareInterval[0]) + " to " + plan.Share(t.ShareInterval[1]), asked,
+			intervalText(t.ShareInterval), asked,
 		})
 	}
 	p.section("targets", []string{"name", "verdict", "share", "95 % interval", "asked"}, rows)
+}
+
+// intervalText is an interval of shares, or a dash.
+func intervalText(i [2]spread.Figure) string {
+	if math.IsNaN(float64(i[0])) {
+		return "–"
+	}
+	return plan.Share(i[0]) + " to " + plan.Share(i[1])
 }
 
 // showCheck prints what is in a build.

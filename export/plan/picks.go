@@ -41,6 +41,8 @@ func pieceText(p pick.Piece) string {
 func ProofSentence(r pick.Result) string {
 	how := "Not proved to be the cheapest"
 	switch {
+	case r.Searched != "":
+		how = steadiestSentence(r)
 	case r.ProvedCheapest && r.Why != "":
 		how = capital(r.Why)
 	case r.ProvedCheapest:
@@ -53,6 +55,15 @@ func ProofSentence(r pick.Result) string {
 	}
 	return fmt.Sprintf("%s. %s combinations, %d judged, %d simulated; %s and %s ruled out unseen.", how, candidates(r),
 		r.Examined, r.Simulated, many(r.CutByDominance, "dominated option"), many(r.CutByBound, "partial combination"))
+}
+
+// steadiestSentence says how the steadiest at a price was found.
+func steadiestSentence(r pick.Result) string {
+	text := capital(r.Searched)
+	if r.Why != "" {
+		return text + " that was found: " + r.Why
+	}
+	return text + "; proved to first order: no other choice within it that meets the other targets is steadier"
 }
 
 // candidates is how many combinations exist.
@@ -135,7 +146,7 @@ func RemainSentences(r pick.Result) []string {
 			from = append(from, fmt.Sprintf("%s %s %s", s.Ref, s.Parameter, Share(s.Share)))
 		}
 		text := fmt.Sprintf("%s at %s: mean %s, standard deviation %s", m.Target, m.Condition,
-			figure(float64(m.Mean), m.Unit), figure(float64(m.Deviation), m.Unit))
+			Figure(float64(m.Mean), m.Unit), Figure(float64(m.Deviation), m.Unit))
 		if len(from) > 0 && float64(m.Deviation) > 0 {
 			text += "; the spread is " + strings.Join(from, ", ")
 		}
@@ -144,8 +155,8 @@ func RemainSentences(r pick.Result) []string {
 	return list
 }
 
-// figure is a figure of three digits with its unit.
-func figure(x float64, symbol string) string {
+// Figure is a figure of three digits with its unit.
+func Figure(x float64, symbol string) string {
 	if unit, ok := quantity.Find(symbol); ok {
 		return quantity.Format(x, unit, 3)
 	}
@@ -175,7 +186,7 @@ func AlternateDrifts(a pick.Alternate) string {
 		if math.Abs(float64(d.To-d.From)) <= moved*math.Abs(float64(d.From)) {
 			continue
 		}
-		words = append(words, fmt.Sprintf("%s within %s instead of %s", d.Target, figure(float64(d.To), d.Unit), figure(float64(d.From), d.Unit)))
+		words = append(words, fmt.Sprintf("%s within %s instead of %s", d.Target, Figure(float64(d.To), d.Unit), Figure(float64(d.From), d.Unit)))
 	}
 	if len(words) == 0 && len(a.Drifts) > 0 {
 		return "drifts no different"

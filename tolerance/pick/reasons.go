@@ -181,14 +181,23 @@ func (c *chooser) why(choice []int, i, j int) string {
 	other[i] = next
 	name := c.name(i, next)
 	saving := offer.Money(c.money(choice) - cost)
-	if text := c.answers[fmt.Sprint(other)]; text != "" {
-		return fmt.Sprintf("%s would save %v, but meets %s", name, saving, text)
-	}
-	if v := c.asked().wholly(other); !v.Meets {
-		t := c.build.Targets[c.demands[v.Worst].target]
-		return fmt.Sprintf("%s would save %v, but on %q, to first order, %s", name, saving, t.Name, c.predicted(other, v.Worst))
+	if text := c.misses(other); text != "" {
+		return fmt.Sprintf("%s would save %v, but %s", name, saving, text)
 	}
 	return fmt.Sprintf("%s would save %v here, but not with the other choices", name, saving)
+}
+
+// misses says which target a choice fails and by how much; "" where none is
+// known.
+func (c *chooser) misses(choice []int) string {
+	if text := c.answers[fmt.Sprint(choice)]; text != "" {
+		return "meets " + text
+	}
+	if v := c.asked().wholly(choice); !v.Meets {
+		t := c.build.Targets[c.demands[v.Worst].target]
+		return fmt.Sprintf("on %q, to first order, %s", t.Name, c.predicted(choice, v.Worst))
+	}
+	return ""
 }
 
 // nextCheaper is the dearest option that makes the order cheaper, and the

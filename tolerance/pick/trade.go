@@ -25,6 +25,7 @@ type Trade struct {
 	Complete bool         `json:"complete"` // proved: nothing efficient is left out
 	Beaten   int          `json:"beaten"`   // points left out because another one is cheaper and, in simulation, as steady
 	Examined int          `json:"examined"`
+	Tried    int          `json:"simulated"` // combinations put through a simulation
 	Searches int          `json:"searches"`
 	Why      string       `json:"why,omitempty"`
 }
@@ -103,7 +104,7 @@ func (t *trader) trade(most offer.Money) (*Trade, error) {
 	if err != nil {
 		return nil, err
 	}
-	out.Complete, out.Examined, out.Searches = walk.Complete && !t.beyond(), walk.Examined, walk.Searches
+	out.Complete, out.Examined, out.Tried, out.Searches = walk.Complete && !t.beyond(), walk.Examined, walk.Simulated, walk.Searches
 	if !out.Complete {
 		out.Why = "the search ended early; steadier choices may be missing"
 	}
@@ -217,7 +218,7 @@ func (t *trader) steadiest(found *Trade, most offer.Money) (*Result, *build.Buil
 	whole := t.varied(t.target, t.asked) // for its verdict
 	r := emptyResult()
 	r.Choices, r.Total, r.CostPerUnit, r.Bound = p.Choices, p.Total, p.PerUnit, p.Total
-	r.Examined, r.Searched = found.Examined, fmt.Sprintf("the steadiest %s within %v", found.Target, most)
+	r.Examined, r.Simulated, r.Searched = found.Examined, found.Tried, fmt.Sprintf("the steadiest %s within %v", found.Target, most)
 	r.Candidates = t.candidates()
 	if !found.Complete {
 		r.Why = found.Why
@@ -242,7 +243,10 @@ func (t *trader) whySteadiest(choice []int, i int, found *Trade) string {
 	}
 	other := append([]int(nil), choice...)
 	other[i] = next
-	unit := t.asked.Unit
+	unit, saving := t.asked.Unit, offer.Money(t.money(choice)-cost)
+	if text := t.misses(other); text != "" {
+		return fmt.Sprintf("%s would save %v, but %s", t.name(i, next), saving, text)
+	}
 	return fmt.Sprintf("%s would save %v, with %s within %s instead of %s to first order", t.name(i, next),
-		offer.Money(t.money(choice)-cost), found.Target, quantity.Format(t.steadiness(other, t.target), unit, 3), quantity.Format(t.steadiness(choice, t.target), unit, 3))
+		saving, found.Target, quantity.Format(t.steadiness(other, t.target), unit, 3), quantity.Format(t.steadiness(choice, t.target), unit, 3))
 }

@@ -45,7 +45,7 @@ func (s *search) dive(ctx context.Context, kept [][]int, want int) (upTo int64, 
 	case d.err != nil:
 		return 0, stopped, d.err
 	case !whole:
-		s.out.Bound = max(s.out.Bound, min(d.open, d.last()))
+		s.out.Bound = max(s.out.Bound, min(d.open, s.ceiling()))
 		return 0, stopped, nil
 	}
 	return d.last(), exhausted, nil

@@ -7,18 +7,26 @@ import (
 )
 
 // A market is a random problem with everything that keeps a real one from
-// being a sum: lines that buy the same offer share its price breaks and,
-// coming from one bag, vary together.
+// being a sum: lines that buy the same offer share its price breaks and its
+// stock and, coming from one bag, vary together; an option may be a pair of
+// pieces, from two offers or from one.
 type market struct {
 	Problem
-	offers [][]int       // line, option -> offer
-	needs  []int         // pieces per line
-	breaks [][]priceStep // by offer
-	slope  [][][]float64 // line, option, demand: signed deviation
+	offers [][][]int       // line, option -> offers, one for each piece
+	needs  []int           // units per line
+	shelf  []shelf         // by offer
+	slope  [][][][]float64 // line, option, piece, demand: signed deviation
 	rho    float64
 	refuse float64 // share of choices that Confirm refuses
 	salt   uint64
 	asked  [][]int // choices Confirm was asked about, in order
+}
+
+// A shelf is how an offer is sold.
+type shelf struct {
+	breaks   []priceStep
+	multiple int
+	stock    int
 }
 
 type priceStep struct {
@@ -26,50 +34,68 @@ type priceStep struct {
 	each int64
 }
 
-// price is the cheapest way to hold at least n pieces of an offer.
+// price is the cheapest way to hold at least n pieces of an offer, bought in
+// multiples and from stock.
 func (m *market) price(offer, n int) int64 {
 	if n == 0 {
 		return 0
 	}
-	best := int64(math.MaxInt64)
-	for _, s := range m.breaks[offer] {
-		best = min(best, int64(max(n, s.from))*s.each)
+	best, s := Unavailable, m.shelf[offer]
+	for _, b := range s.breaks {
+		buy := (max(n, b.from) + s.multiple - 1) / s.multiple * s.multiple
+		if buy <= s.stock {
+			best = min(best, int64(buy)*b.each)
+		}
 	}
 	return best
 }
 
 func (m *market) cost(choice []int) int64 {
-	pieces := make([]int, len(m.breaks))
+	pieces := make([]int, len(m.shelf))
 	for i, j := range choice {
-		pieces[m.offers[i][j]] += m.needs[i]
+		for _, offer := range m.offers[i][j] {
+			pieces[offer] += m.needs[i]
+		}
 	}
 	sum := m.Base
 	for offer, n := range pieces {
-		sum += m.price(offer, n)
+		price := m.price(offer, n)
+		if price == Unavailable {
+			return Unavailable
+		}
+		sum += price
 	}
 	return sum
 }
 
 // total adds means and half widths, and variances with correlation rho between
-// lines that chose the same offer:
+// pieces of the same offer:
 //
 //	variance = sum s^2 + 2 rho sum over pairs of one offer s_i s_j
 //	         = (1-rho) sum s^2 + rho sum over offers (sum s)^2 >= (1-rho) sum s^2
 func (m *market) total(q int, choice []int) Effect {
 	d := &m.Demands[q]
 	t := Effect{d.BaseMean, d.BaseVariance, d.BaseHalf}
+	bags := make([]float64, len(m.shelf))
 	for i, j := range choice {
 		e := m.Lines[i].Options[j].Effects[q]
-		s := m.slope[i][j][q]
-		t.add(Effect{e.Mean, s * s, e.Half})
-		for k := range i {
-			if m.offers[k][choice[k]] == m.offers[i][j] {
-				t.Variance += 2 * m.rho * s * m.slope[k][choice[k]][q]
-			}
-		}
+		t.add(Effect{e.Mean, 0, e.Half})
+		m.bag(bags, &t, q, i, j)
 	}
-	t.Variance = max(t.Variance, 0)
+	for _, sum := range bags {
+		t.Variance += m.rho * sum * sum
+	}
 	return t
+}
+
+// bag adds an option's pieces to the sums by offer, and what of their variance
+// is their own.
+func (m *market) bag(bags []float64, t *Effect, q, i, j int) {
+	for k, offer := range m.offers[i][j] {
+		s := m.slope[i][j][k][q]
+		bags[offer] += s
+		t.Variance += (1 - m.rho) * s * s
+	}
 }
 
 func (m *market) meets(choice []int) bool {
@@ -113,6 +139,9 @@ type shape struct {
 	tight                   float64 // demands: 0 hopeless .. 1 loose
 	whole                   int64   // money is a multiple of this, for ties
 	mixed                   bool    // shares below one half and one-sided limits too
+	pairs                   float64 // chance that an option is two pieces
+	scarce                  bool    // stocks and multiples
+	marked                  float64 // chance that a line has options marked as dominated
 }
 
 // newMarket draws a market; the same seed gives the same one.
@@ -151,37 +180,73 @@ func (m *market) addOffer(r *rand.Rand, s shape) int {
 	for k := range steps {
 		steps[k].each = max(1, steps[k].each/s.whole) * s.whole
 	}
-	m.breaks = append(m.breaks, steps)
-	return len(m.breaks) - 1
+	sold := shelf{steps, 1, math.MaxInt}
+	if s.scarce {
+		sold.multiple, sold.stock = 1+r.IntN(3), 1+r.IntN(14)
+	}
+	m.shelf = append(m.shelf, sold)
+	return len(m.shelf) - 1
 }
 
 // addLine draws options; a dearer one tends to scatter less.
 func (m *market) addLine(r *rand.Rand, s shape, shared int) {
 	var line Line
-	var offers []int
-	var slopes [][]float64
+	var offers [][]int
+	var slopes [][][]float64
 	side := make([]float64, s.demands)
 	for q := range side {
 		side[q] = (0.3 + r.Float64()) * float64(1-2*r.IntN(2))
 	}
 	for range s.options {
-		offer := r.IntN(shared)
-		if r.Float64() >= s.merge {
-			offer = m.addOffer(r, s)
+		o, offer, slope := Option{Effects: make([]Effect, s.demands)}, []int{}, [][]float64{}
+		pieces := 1
+		if s.pairs > 0 && r.Float64() < s.pairs {
+			pieces = 2
 		}
-		spread := 3 / math.Sqrt(float64(m.breaks[offer][0].each)) * math.Exp(0.3*r.NormFloat64())
-		effects, slope := make([]Effect, s.demands), make([]float64, s.demands)
-		for q := range effects {
-			slope[q] = spread * side[q]
-			effects[q] = Effect{Mean: 0.6 * r.NormFloat64() * side[q], Variance: slope[q] * slope[q], Half: 2 * math.Abs(slope[q])}
+		for range pieces {
+			from, slopes := m.piece(r, s, shared, side, o.Effects)
+			offer, slope = append(offer, from), append(slope, slopes)
 		}
-		line.Options = append(line.Options, Option{Effects: effects})
-		offers = append(offers, offer)
-		slopes = append(slopes, slope)
+		line.Options, offers, slopes = append(line.Options, o), append(offers, offer), append(slopes, slope)
+	}
+	if s.marked > 0 && r.Float64() < s.marked {
+		for range 2 {
+			k := r.IntN(len(line.Options))
+			o, offer, slope := m.worse(r, s, line.Options[k], offers[k], slopes[k])
+			line.Options, offers, slopes = append(line.Options, o), append(offers, offer), append(slopes, slope)
+		}
 	}
 	m.Lines = append(m.Lines, line)
 	m.offers = append(m.offers, offers)
 	m.slope = append(m.slope, slopes)
+}
+
+// piece draws one piece of an option and adds its effects.
+func (m *market) piece(r *rand.Rand, s shape, shared int, side []float64, effects []Effect) (offer int, slope []float64) {
+	offer = r.IntN(shared)
+	if r.Float64() >= s.merge {
+		offer = m.addOffer(r, s)
+	}
+	spread := 3 / math.Sqrt(float64(m.shelf[offer].breaks[0].each)) * math.Exp(0.3*r.NormFloat64())
+	slope = make([]float64, s.demands)
+	for q := range effects {
+		slope[q] = spread * side[q]
+		effects[q].add(Effect{0.6 * r.NormFloat64() * side[q], slope[q] * slope[q], 2 * math.Abs(slope[q])})
+	}
+	return offer, slope
+}
+
+// worse is an option that another stands in for: the same once more, or with a
+// piece besides that only costs and widens worst cases.
+func (m *market) worse(r *rand.Rand, s shape, o Option, offer []int, slope [][]float64) (Option, []int, [][]float64) {
+	o.Dominated, o.Effects = true, slices.Clone(o.Effects)
+	if r.IntN(2) == 0 {
+		return o, offer, slope
+	}
+	for q := range o.Effects {
+		o.Effects[q].Half += 0.1
+	}
+	return o, append(slices.Clone(offer), m.addOffer(r, s)), append(slices.Clone(slope), make([]float64, s.demands))
 }
 
 // demand sets limits around what a random choice gives.
@@ -217,37 +282,70 @@ func (m *market) demand(r *rand.Rand, s shape, q int) Demand {
 func (m *market) promise(shared int) {
 	for i := range m.Lines {
 		for j := range m.Lines[i].Options {
-			option, offer := &m.Lines[i].Options[j], m.offers[i][j]
-			others := m.others(i, offer)
-			option.Alone = len(others) == 1
-			option.Floor = math.MaxInt64
-			for _, n := range others {
-				option.Floor = min(option.Floor, m.price(offer, n+m.needs[i])-m.price(offer, n))
-			}
-			if !option.Alone {
-				for q := range option.Effects {
-					option.Effects[q].Variance *= 1 - m.rho
+			option := &m.Lines[i].Options[j]
+			option.Alone, option.Floor = true, 0
+			for k, offer := range m.offers[i][j] {
+				if slices.Contains(m.offers[i][j][:k], offer) {
+					continue
 				}
+				others := m.others(i, offer)
+				option.Alone = option.Alone && len(others) == 1
+				option.Floor = min(option.Floor+m.adds(i, j, offer, others), Unavailable)
+			}
+			for q := range option.Effects {
+				bags, t := make([]float64, len(m.shelf)), Effect{}
+				m.bag(bags, &t, q, i, j)
+				if option.Alone {
+					for _, sum := range bags {
+						t.Variance += m.rho * sum * sum
+					}
+				}
+				option.Effects[q].Variance = t.Variance
 			}
 		}
 	}
+}
+
+// adds is the least that an option's pieces of an offer add to the money,
+// Unavailable when there are never enough.
+func (m *market) adds(i, j, offer int, others []int) int64 {
+	own := 0
+	for _, o := range m.offers[i][j] {
+		if o == offer {
+			own += m.needs[i]
+		}
+	}
+	least := Unavailable
+	for _, n := range others {
+		if with := m.price(offer, n+own); with < Unavailable {
+			least = min(least, with-m.price(offer, n))
+		}
+	}
+	return least
 }
 
 // others are the quantities of an offer that lines other than i can come to.
 func (m *market) others(i, offer int) []int {
 	sums := []int{0}
 	for k := range m.Lines {
-		if k == i || !slices.Contains(m.offers[k], offer) {
+		if k == i {
 			continue
 		}
-		for _, n := range sums {
-			if !slices.Contains(sums, n+m.needs[k]) {
-				sums = append(sums, n+m.needs[k])
+		for _, n := range slices.Clone(sums) {
+			for _, offers := range m.offers[k] {
+				sum := n
+				for _, o := range offers {
+					if o == offer {
+						sum += m.needs[k]
+					}
+				}
+				if !slices.Contains(sums, sum) {
+					sums = append(sums, sum)
+				}
 			}
 		}
 	}
-	slices.Sort(sums)
-	return slices.Compact(sums)
+	return sums
 }
 
 // A brute is what looking at every choice finds.
@@ -257,13 +355,16 @@ type brute struct {
 	nearest  []int
 	verdict  Verdict
 	nearCost int64
+	scarce   bool // some choice meets the demands and cannot be bought
 }
 
 func (m *market) brute() brute {
 	var b brute
 	choice := make([]int, len(m.Lines))
 	for {
-		if cost := m.cost(choice); (b.choice == nil || cost < b.cost) && m.meets(choice) && m.willing(choice) {
+		if cost := m.cost(choice); cost == Unavailable {
+			b.scarce = b.scarce || m.meets(choice)
+		} else if (b.choice == nil || cost < b.cost) && m.meets(choice) && m.willing(choice) {
 			b.choice, b.cost = slices.Clone(choice), cost
 		}
 		if !m.next(choice) {
@@ -271,8 +372,8 @@ func (m *market) brute() brute {
 		}
 	}
 	for b.choice == nil {
-		cost, v := m.cost(choice), m.judge(choice)
-		if b.nearest == nil || v.Shortfall < b.verdict.Shortfall || v.Shortfall == b.verdict.Shortfall && cost < b.nearCost {
+		if cost, v := m.cost(choice), m.judge(choice); cost < Unavailable && (b.nearest == nil ||
+			v.Shortfall < b.verdict.Shortfall || v.Shortfall == b.verdict.Shortfall && cost < b.nearCost) {
 			b.nearest, b.verdict, b.nearCost = slices.Clone(choice), v, cost
 		}
 		if !m.next(choice) {

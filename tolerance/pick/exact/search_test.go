@@ -8,6 +8,7 @@ import (
 	"math/rand/v2"
 	"slices"
 	"testing"
+	"time"
 
 	"github.com/google/go-cmp/cmp"
 )
@@ -23,10 +24,35 @@ func randomShape(seed uint64) shape {
 	}
 }
 
+// pairedShape is a randomShape with pairs, stocks and marked options, and fewer
+// lines.
+func pairedShape(seed uint64) shape {
+	r, s := rand.New(rand.NewPCG(seed, 4)), randomShape(seed)
+	s.lines, s.options = min(s.lines, 4), min(s.options, 5)
+	s.pairs, s.scarce, s.marked = []float64{0.3, 0.7}[r.IntN(2)], r.IntN(4) > 0, 0.4*float64(r.IntN(2))
+	if r.IntN(2) == 0 {
+		s.tight = 1.8
+	}
+	return s
+}
+
+// draws is how many random problems a test looks at.
+func draws(n uint64) uint64 {
+	if testing.Short() {
+		return n / 4
+	}
+	return n
+}
+
 func TestCheapestEqualsBruteForce(t *testing.T) {
-	found, refused, hopeless := 0, 0, 0
-	for seed := range uint64(600) {
-		m := newMarket(seed, randomShape(seed))
+	t.Run("plain", func(t *testing.T) { equalsBruteForce(t, draws(400), randomShape, false) })
+	t.Run("pairs and stocks", func(t *testing.T) { equalsBruteForce(t, draws(6000), pairedShape, true) })
+}
+
+func equalsBruteForce(t *testing.T, seeds uint64, shape func(seed uint64) shape, paired bool) {
+	found, refused, hopeless, unavailable, scarce := 0, 0, 0, 0, 0
+	for seed := range seeds {
+		m := newMarket(seed, shape(seed))
 		want := m.brute()
 		got, err := m.Cheapest(context.Background(), Limits{})
 		if err != nil {
@@ -36,6 +62,9 @@ func TestCheapestEqualsBruteForce(t *testing.T) {
 			t.Fatalf("seed %d: got %v at %d (proved %v), want %v at %d\n%+v", seed, got.Choice, got.Cost, got.Proved, want.choice, want.cost, got)
 		}
 		checkOrder(t, seed, m)
+		if want.scarce {
+			scarce++
+		}
 		if want.choice != nil {
 			found++
 			if got.Bound != got.Cost {
@@ -47,13 +76,18 @@ func TestCheapestEqualsBruteForce(t *testing.T) {
 			continue
 		}
 		hopeless++
+		if want.nearest == nil {
+			unavailable++
+		}
 		if !got.NearestExact || !slices.Equal(got.Nearest, want.nearest) || cmp.Diff(got.NearestVerdict, want.verdict) != "" {
 			t.Fatalf("seed %d: nearest %v %+v, want %v %+v", seed, got.Nearest, got.NearestVerdict, want.nearest, want.verdict)
 		}
 	}
-	t.Logf("%d found, %d of them after a refusal, %d without a choice", found, refused, hopeless)
-	if found < 250 || refused < 50 || hopeless < 100 {
-		t.Errorf("%d found, %d after refusals, %d hopeless: the draw no longer covers all cases", found, refused, hopeless)
+	t.Logf("%d found, %d of them after a refusal, %d without a choice, %d with nothing to be bought, %d short of stock",
+		found, refused, hopeless, unavailable, scarce)
+	n := int(seeds)
+	if found < n/3 || refused < n/15 || hopeless < n/10 || paired && (unavailable < n/200 || scarce < n/10) {
+		t.Error("the draw no longer covers all cases")
 	}
 }
 
@@ -93,8 +127,11 @@ func TestLooserDemandsNeverCostMore(t *testing.T) {
 	for kind, change := range loosen {
 		t.Run(kind, func(t *testing.T) {
 			cheaper := 0
-			for seed := range uint64(150) {
-				s := randomShape(seed)
+			for seed := range draws(600) {
+				s := pairedShape(seed)
+				if seed%4 == 0 {
+					s = randomShape(seed)
+				}
 				s.refuse = 0
 				m := newMarket(seed, s)
 				last, have := int64(0), false
@@ -179,13 +216,17 @@ func TestDivesEqualBruteForce(t *testing.T) {
 	for name, limits := range map[string]Limits{
 		"whole":  {Nodes: 1},
 		"split":  {Nodes: 1, leaf: 4},
-		"midway": {Nodes: 25, leaf: 1},
+		"midway": {Nodes: 25, leaf: 25},
+		"single": {Nodes: 1, leaf: 1},
 	} {
 		t.Run(name, func(t *testing.T) {
 			found := 0
-			for seed := range uint64(120) {
-				s := randomShape(seed)
-				s.lines = min(s.lines, 5)
+			for seed := range draws(400) {
+				s := pairedShape(seed)
+				if seed%4 == 0 {
+					s = randomShape(seed)
+					s.lines = min(s.lines, 5)
+				}
 				m := newMarket(seed, s)
 				out, err := m.Cheapest(context.Background(), limits)
 				if err != nil {
@@ -199,7 +240,7 @@ func TestDivesEqualBruteForce(t *testing.T) {
 					found++
 				}
 			}
-			if found < 40 {
+			if found < 40 && !testing.Short() {
 				t.Errorf("%d found: hardly tested", found)
 			}
 		})
@@ -305,6 +346,139 @@ func TestCancelled(t *testing.T) {
 	}
 }
 
+// Time that is over at once still leaves something near.
+func TestNoTime(t *testing.T) {
+	p := flat(6, 6)
+	p.Judge = func([]int) Verdict { return Verdict{Shortfall: 1} }
+	out, err := p.Cheapest(context.Background(), Limits{For: 1})
+	if err != nil || out.Proved || out.Stopped != OutOfTime || out.Choice != nil || out.Bound != 42 {
+		t.Errorf("%v, %+v; want out of time at the floors", err, out)
+	}
+	if diff := cmp.Diff(make([]int, 6), out.Nearest); diff != "" || out.Examined != 1 || out.NearestExact {
+		t.Errorf("nearest %v after %d choices, want the first of all", out.Nearest, out.Examined)
+	}
+	if out, err = p.Cheapest(context.Background(), Limits{For: time.Hour}); err != nil || !out.Proved || out.Stopped != "" {
+		t.Errorf("%v, %+v; want proved within an hour", err, out)
+	}
+}
+
+// The first simulation takes more than the time: then only a few more follow.
+func TestTimeOverInConfirm(t *testing.T) {
+	p, asked, end := graded(1, 8, 10, 2, true), 0, time.Now().Add(400*time.Millisecond)
+	p.Confirm = func([]int) (bool, error) {
+		asked++
+		time.Sleep(time.Until(end))
+		return false, nil
+	}
+	out, err := p.Cheapest(context.Background(), Limits{For: 200 * time.Millisecond})
+	if err != nil || out.Proved || out.Stopped != OutOfTime || out.Choice != nil || out.Simulated != asked {
+		t.Errorf("%v, %+v; want out of time", err, out)
+	}
+	if asked < 2 || asked > 1+lateAnswers {
+		t.Errorf("asked %d times, want the first and at most %d more", asked, lateAnswers)
+	}
+}
+
+func TestStoppedSaysWhy(t *testing.T) {
+	refuse := func([]int) (bool, error) { return false, nil }
+	for want, limits := range map[Stop]Limits{OutOfSimulations: {Simulations: 2}, OutOfSteps: {Steps: 40}} {
+		for _, nodes := range []int{0, 1} {
+			p := graded(1, 8, 10, 2, true)
+			p.Confirm, limits.Nodes = refuse, nodes
+			if out, err := p.Cheapest(context.Background(), limits); err != nil || out.Proved || out.Stopped != want {
+				t.Errorf("%v: %v, %+v", want, err, out)
+			}
+		}
+	}
+}
+
+// Three lines want the one cheap piece, of which there is one. Judge and Confirm
+// must not hear of choices that take two. Money is near the largest there is.
+func TestUnavailable(t *testing.T) {
+	const much = Unavailable/3 - 10
+	p := &Problem{}
+	for range 3 {
+		p.Lines = append(p.Lines, Line{Options: []Option{{Floor: much - 9}, {Floor: much}, {Floor: Unavailable}, {Floor: math.MaxInt64}}})
+	}
+	ones := func(c []int) (n int) {
+		for _, j := range c {
+			if j == 0 {
+				n++
+			}
+		}
+		return n
+	}
+	p.Cost = func(c []int) int64 {
+		if ones(c) > 1 {
+			return math.MaxInt64
+		}
+		return p.floor(c)
+	}
+	p.Judge = func(c []int) Verdict {
+		if ones(c) > 1 || slices.Max(c) > 1 {
+			t.Errorf("judged %v, which cannot be bought", c)
+		}
+		return Verdict{Meets: c[1] == 0, Shortfall: float64(c[1])}
+	}
+	for name, limits := range map[string]Limits{"frontier": {}, "dive": {Nodes: 1}, "split": {Nodes: 1, leaf: 1}} {
+		out, err := p.Cheapest(context.Background(), limits)
+		if diff := cmp.Diff([]int{1, 0, 1}, out.Choice); err != nil || diff != "" || !out.Proved || out.Cost != 3*much-9 || out.Bound != out.Cost {
+			t.Errorf("%s: %v, %+v", name, err, out)
+		}
+	}
+	p.Cost = func([]int) int64 { return Unavailable }
+	out, err := p.Cheapest(context.Background(), Limits{})
+	if err != nil || !out.Proved || out.Choice != nil || out.Nearest != nil || !out.NearestExact {
+		t.Errorf("nothing to be bought: %v, %+v", err, out)
+	}
+}
+
+// What is nearest among too many choices to look at all: only few can be bought.
+func TestNearestThatCanBeBought(t *testing.T) {
+	p := flat(9, 9)
+	p.Cost = func(c []int) int64 {
+		if slices.Contains(c, 0) {
+			return Unavailable
+		}
+		return p.floor(c)
+	}
+	p.Judge = func(c []int) Verdict {
+		sum := 0
+		for _, j := range c {
+			sum += j
+		}
+		if slices.Contains(c, 0) {
+			t.Errorf("judged %v, which cannot be bought", c)
+		}
+		return Verdict{Shortfall: float64(sum)}
+	}
+	p.Lines[0].Options = p.Lines[0].Options[:2]
+	p.Demands = []Demand{{Low: 1, High: 1, WorstCase: true}} // out of reach, so that nothing is judged before
+	for i := range p.Lines {
+		for j := range p.Lines[i].Options {
+			p.Lines[i].Options[j].Effects = []Effect{{}}
+		}
+	}
+	out, err := p.Cheapest(context.Background(), Limits{})
+	if diff := cmp.Diff([]int{1, 1, 1, 1, 1, 1, 1, 1, 1}, out.Nearest); err != nil || diff != "" || !out.Proved {
+		t.Errorf("%v, %+v", err, out)
+	}
+}
+
+func TestMarkedAsDominated(t *testing.T) {
+	p := flat(3, 4)
+	p.Lines[1].Options[1].Dominated, p.Lines[2].Options[3].Dominated = true, true
+	out, err := p.Cheapest(context.Background(), Limits{})
+	if err != nil || out.Dominated != 2 || !out.Proved {
+		t.Errorf("%v, %+v; want two options dominated", err, out)
+	}
+	p.Confirm = func(c []int) (bool, error) { return c[1] == 1 && c[2] == 3, nil }
+	out, err = p.Cheapest(context.Background(), Limits{})
+	if diff := cmp.Diff([]int{0, 1, 3}, out.Choice); err != nil || diff != "" || !out.Proved {
+		t.Errorf("%v, %+v; want them let in again after refusals", err, out)
+	}
+}
+
 func TestConfirmError(t *testing.T) {
 	broken := errors.New("no meter")
 	p := flat(2, 2)
@@ -327,10 +501,16 @@ func TestBrokenPromiseOfFloors(t *testing.T) {
 func TestFaultyProblems(t *testing.T) {
 	nan := math.NaN()
 	one := func(o Option, d ...Demand) Problem { return Problem{Lines: []Line{{Options: []Option{o}}}, Demands: d} }
+	many := one(Option{Floor: Unavailable / 2})
+	many.Lines = append(many.Lines, many.Lines[0])
 	cases := map[string]struct {
 		p    Problem
 		want string
 	}{
+		"all dominated":        {one(Option{Dominated: true}), "exact: line 0: every option is dominated, expected one that stands in for the others"},
+		"too much money":       {many, "exact: base and floors come to 1152921504606846976 or more in size, expected less"},
+		"base too large":       {Problem{Base: math.MinInt64}, "exact: base and floors come to 1152921504606846976 or more in size, expected less"},
+		"floor too low":        {one(Option{Floor: math.MinInt64}), "exact: base and floors come to 1152921504606846976 or more in size, expected less"},
 		"line without options": {Problem{Lines: []Line{{}}}, "exact: line 0: no options"},
 		"effects missing":      {one(Option{}, Demand{Share: 0.9}), "exact: line 0, option 0: 0 effects, expected one for each of the 1 demands"},
 		"negative variance": {one(Option{Effects: []Effect{{0, -1, 0}}}, Demand{Share: 0.9}),

@@ -129,6 +129,7 @@ func TestRewrite(t *testing.T) {
 		{"flow, several out", "m: {out: 1, off: 2, a: b, go: {c: d}}\n", nil, "m: {a: b}\n"},
 		{"flow, several out at the end", "m: {a: b, go: {c: d}, out: 1, off: 2,}\n", nil, "m: {a: b,}\n"},
 		{"flow, out beside what is put", "m: {out: 1, go: {c: d}, off: 2}\n", []string{"x", "1"}, "m: {x: 1}\n"},
+		{"flow over lines, out before what is put with a comment", "m: {a: b, out: 1, go: {c: d, # one\n  e: f}}\n", []string{"x", "1"}, "m: {a: b,\n    # one\n    x: 1}\n"},
 		{"flow, all out", "m: {out: 1, go: {c: d}, }\n", nil, "m: { }\n"},
 		{"flow over lines", "m: {a: b,\n    go: {c: d,\n         e: f}}   # g\nh: i\n", []string{"x", "1"}, "m: {a: b,\n    x: 1}   # g\nh: i\n"},
 		{"flow over lines, a comment inside", "m: {a: b,\n    go: {c: d,   # why, then\n         e: f}}   # g\n", []string{"x", "1"}, "m: {a: b,\n    # why, then\n    x: 1}   # g\n"},

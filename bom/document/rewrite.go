@@ -80,10 +80,17 @@ func (r *rewrite) make() {
 			for last+1 < len(list) && r.goes(list[last+1]) {
 				last++
 			}
-			r.dropRun(i, last)
+			if last+1 < len(list) && list[last+1].key != nil && list[last+1].key.Value == r.at {
+				last++ // what takes its place stands where the run began
+				r.exchangeRun(i, last)
+			} else {
+				r.dropRun(i, last)
+			}
 			i = last
+		case e.key.Value == r.at && r.mapping.style == rows:
+			r.exchangeRow(e)
 		case e.key.Value == r.at:
-			r.exchange(e)
+			r.exchangeRun(i, i)
 		case find(r.set, e.key.Value) >= 0:
 			r.replaceValue(e, r.set[find(r.set, e.key.Value)].Value)
 		}
@@ -120,17 +127,28 @@ func (r *rewrite) putTexts() []string {
 	return texts
 }
 
-// exchange writes entries in the place of the one at.
-func (r *rewrite) exchange(e entry) {
-	newline := r.source.newline()
-	if r.mapping.style == rows {
-		span, remarks := r.row(e)
-		indent := newline + r.source.column(e.Start)
-		r.edit(span, strings.Join(append(remarks, r.putTexts()...), indent))
-		return
+// exchangeRow writes entries in the place of the one at, a line each.
+func (r *rewrite) exchangeRow(e entry) {
+	span, remarks := r.row(e)
+	indent := r.source.newline() + r.source.column(e.Start)
+	r.edit(span, strings.Join(append(remarks, r.putTexts()...), indent))
+}
+
+// exchangeRun writes entries between braces in the place of a run that ends
+// with the one at.
+func (r *rewrite) exchangeRun(first, last int) {
+	list := r.mapping.entries
+	gone := Span{list[first].Start, list[last].End}
+	start, above := r.above(gone.Start, r.source.remarks(gone, r.scalarsOf(first, last)))
+	r.edit(Span{start, gone.End}, above+strings.Join(r.putTexts(), ", "))
+}
+
+// scalarsOf are the scalars in a run of entries.
+func (r *rewrite) scalarsOf(first, last int) (list []Span) {
+	for _, e := range r.mapping.entries[first : last+1] {
+		list = r.source.scalarsOf(e, list)
 	}
-	start, above := r.above(e.Start, r.source.remarks(e.Span, r.source.scalarsOf(e, nil)))
-	r.edit(Span{start, e.End}, above+strings.Join(r.putTexts(), ", "))
+	return list
 }
 
 // row is an entry that has its lines to itself, from its first character to the
@@ -191,10 +209,6 @@ func (r *rewrite) above(i int, remarks []string) (start int, text string) {
 func (r *rewrite) dropRun(first, last int) {
 	list, s := r.mapping.entries, r.source
 	gone := Span{list[first].Start, list[last].End}
-	var scalars []Span
-	for _, e := range list[first : last+1] {
-		scalars = s.scalarsOf(e, scalars)
-	}
 	comma := s.comma(gone.End)
 	switch {
 	case last+1 < len(list):
@@ -207,6 +221,6 @@ func (r *rewrite) dropRun(first, last int) {
 		comma = s.comma(list[first-1].End)
 		r.edit(Span{comma, comma + 1}, "")
 	}
-	start, above := r.above(gone.Start, s.remarks(gone, scalars))
+	start, above := r.above(gone.Start, s.remarks(gone, r.scalarsOf(first, last)))
 	r.edit(Span{start, gone.End}, above)
 }

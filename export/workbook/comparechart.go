@@ -32,6 +32,10 @@ func (p *page) compareCharts(c *Compare, yield cellSpan, widths []cellSpan, limi
 // compareChartRows are as tall as a chart.
 const compareChartRows = 15
 
+// mostLabels is how many bars of a chart have their figure written on them:
+// more would run into each other.
+const mostLabels = 12
+
 // greys are the bars' fills, told apart in print: dark, light, middle.
 var greys = [...]string{"4A4540", "D9D0C6", "9A8F84"}
 
@@ -61,7 +65,7 @@ func (p *page) columnChart(title string, spans []cellSpan, width uint, figures s
 		Legend: excelize.ChartLegend{Position: "none", Font: &small},
 		XAxis:  excelize.ChartAxis{Font: small}, YAxis: excelize.ChartAxis{MajorGridLines: true, Font: small, Minimum: new(float64), Maximum: &top, NumFmt: excelize.ChartNumFmt{CustomNumFmt: "0 %"}},
 		Title:    excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: title, Font: &small}}},
-		PlotArea: excelize.ChartPlotArea{ShowVal: true, NumFmt: excelize.ChartNumFmt{CustomNumFmt: figures}},
+		PlotArea: excelize.ChartPlotArea{ShowVal: len(spans)*(spans[0].last-spans[0].first+1) <= mostLabels, NumFmt: excelize.ChartNumFmt{CustomNumFmt: figures}},
 		Border:   excelize.LineOptions{Type: excelize.LineNone}, ShowBlanksAs: "gap",
 		Format: excelize.GraphicOptions{AltText: title, Positioning: "oneCell"},
 	}

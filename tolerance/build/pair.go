@@ -137,7 +137,7 @@ var pieceKeys = []string{"value", "family", "rated", "bias_law"}
 
 // readPiece reads one part of a pair.
 func (r *reader) readPiece(s stageNode, p *Place, n *document.Node, ref string) part.Part {
-	own := Place{Role: p.Role, Type: p.Type, Fitted: true, Across: p.Across, Part: part.Part{Ref: ref, Type: p.Type}}
+	own := Place{Role: p.Role, Type: p.Type, Fitted: true, Part: part.Part{Ref: ref, Type: p.Type}}
 	if n.Kind != document.Mapping {
 		r.Add(n, "part of a pair", "a mapping such as {value: 180 pF, family: c0g, tolerance: 5 %}")
 		return own.Part

@@ -8,6 +8,7 @@ import (
 	"batchwright/bom/order"
 	"batchwright/bom/quantity"
 	"batchwright/export/plan"
+	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick"
 )
 
@@ -36,14 +37,31 @@ func (p *program) showPicks(r *pick.Result) {
 	}
 }
 
-// choiceText is what was picked: "polystyrene 220 pF ±2.5 %".
+// choiceText is what was picked: "polystyrene 220 pF ±2.5 %", of two pieces each,
+// "c0g 180 pF ±5 % ∥ polystyrene 39 pF ±2.5 %", and whether it is from mixed lots.
 func choiceText(c pick.Choice) string {
-	text := c.Family
-	if c.Text != "" {
-		text += " " + c.Text
+	pieces := []string{pieceText(c.Family, c.Text, c.Tolerance)}
+	if len(c.Parts) > 1 {
+		pieces = nil
+		for _, p := range c.Parts {
+			pieces = append(pieces, pieceText(p.Family, p.Text, p.Tolerance))
+		}
 	}
-	if c.Tolerance > 0 {
-		text += " ±" + quantity.Format(c.Tolerance, quantity.Percent, 0)
+	text := strings.Join(pieces, build.Combine(c.Combine).Sign())
+	if c.Lots == "mixed" {
+		text += ", mixed lots"
+	}
+	return text
+}
+
+// pieceText is one part that is bought.
+func pieceText(family, value string, tolerance float64) string {
+	text := family
+	if value != "" {
+		text += " " + value
+	}
+	if tolerance > 0 {
+		text += " ±" + quantity.Format(tolerance, quantity.Percent, 0)
 	}
 	return text
 }

@@ -192,6 +192,7 @@ func TestPairsAreFound(t *testing.T) {
 		{"capacitor", "value: 220 pF, choose: {families: [c0g], combine: [parallel]}", "200 pF ∥ 20 pF"},
 		{"capacitor", "choose: {families: [c0g], combine: [parallel], around: 220 pF}", "120 pF ∥ 100 pF"},
 		{"resistor", "value: 5 kΩ, choose: {families: [carbon-film], combine: [parallel]}", "10 kΩ ∥ 10 kΩ"},
+		{"resistor", "choose: {families: [metal-film-50], combine: [parallel, single], around: 4.73 kΩ}", "4.7 kΩ"},
 		{"coil", "value: 1.22 mH, choose: {families: [drum-choke], combine: [series]}", "1 mH + 220 µH"},
 	} {
 		b, o := opening(t, c.kind, c.choose)

@@ -191,6 +191,7 @@ func TestPairsAreFound(t *testing.T) {
 		{"capacitor", "value: 220 pF, choose: {families: [c0g], combine: [parallel], within: 0 %}", "120 pF ∥ 100 pF"},
 		{"capacitor", "value: 220 pF, choose: {families: [c0g], combine: [parallel]}", "200 pF ∥ 20 pF"},
 		{"capacitor", "choose: {families: [c0g], combine: [parallel], around: 220 pF}", "120 pF ∥ 100 pF"},
+		{"capacitor", "choose: {families: [c0g], combine: [parallel], around: 217 pF}", "200 pF ∥ 18 pF"}, // no single one near
 		{"resistor", "value: 5 kΩ, choose: {families: [carbon-film], combine: [parallel]}", "10 kΩ ∥ 10 kΩ"},
 		{"resistor", "choose: {families: [metal-film-50], combine: [parallel, single], around: 4.73 kΩ}", "4.7 kΩ"},
 		{"coil", "value: 1.22 mH, choose: {families: [drum-choke], combine: [series]}", "1 mH + 220 µH"},

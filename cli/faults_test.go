@@ -46,11 +46,15 @@ var faults = []struct{ at, found, advice string }{
 	{"48:56", `"1 Hz"`, "a length"},                     // dimension of the wrong unit
 	{"50:32", "", "at least 0.4 diameters"},             // winding out of reach
 	{"51:75", `"600 V"`, "at most 50 V"},                // above the rated voltage
-	{"53:12", `"half.upper"`, "not a trimmer"},          // trim on a resistor
-	{"55:23", `"half.voltge"`, "nearest: half.voltage"}, // unknown output
-	{"56:42", `"hal"`, "nearest: hall"},                 // unknown condition
-	{"57:65", "", "high above the low"},                 // limits the wrong way round
-	{"57:78", `"150 %"`, "at most 100 %"},               // share
+	{"55:30", "", "two parts such as"},                  // pair of one
+	{"56:16", `"R9X"`, "ends in a figure"},              // reference of a pair
+	{"57:89", `"paralel"`, "nearest: parallel"},         // combination
+	{"58:28", `"5 V"`, "leakage"},                       // steady voltage across two in series
+	{"61:12", `"half.upper"`, "not a trimmer"},          // trim on a resistor
+	{"63:23", `"half.voltge"`, "nearest: half.voltage"}, // unknown output
+	{"64:42", `"hal"`, "nearest: hall"},                 // unknown condition
+	{"65:65", "", "high above the low"},                 // limits the wrong way round
+	{"65:78", `"150 %"`, "at most 100 %"},               // share
 }
 
 // Every fault of a bad build is reported in one run, each at its place, and

@@ -19,6 +19,11 @@ drawing [roles] must be filled, (roles) may be; the equations printed are the
 ones that run. The shapes, by which settings and coils can be given, are listed
 below and printed likewise.
 
+A resistor, a capacitor or a coil may be two pieces, in parallel or in series,
+and C6 is then C6A and C6B; choose takes combine: [single, parallel, series]:
+
+  tank: {ref: C6, parallel: [{value: 180 pF, family: c0g}, {value: 39 pF, family: c0g}]}
+
   batchwright kinds
   batchwright kinds colpitts
   batchwright kinds rod`,

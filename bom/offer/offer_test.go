@@ -34,6 +34,7 @@ func TestBuy(t *testing.T) {
 		{"below the break: 6 at 100", breaks, 6, 6, 100, 600, true},
 		{"jump to the break: 10 at 70 beat 8 at 100", breaks, 8, 10, 70, 700, true},
 		{"same price either way takes fewer: 7 at 100 or 10 at 70", breaks, 7, 7, 100, 700, true},
+		{"and so where the fewer are named later", rows([4]int{10, 70, 1, NoLimit}, [4]int{1, 100, 1, NoLimit}), 7, 7, 100, 700, true},
 		{"jump to the pack: 100 at 40 beat 60 at 70", breaks, 60, 100, 40, 4000, true},
 		{"not yet: 57 at 70 beat 100 at 40", breaks, 57, 57, 70, 3990, true},
 		{"next pack: 150 at 40 beat 101 at 70", breaks, 101, 150, 40, 6000, true},

@@ -44,13 +44,16 @@ targets:
 `
 
 // lampWork is everything found out about a build that has one of everything.
-func lampWork(t *testing.T) Work {
+func lampWork(t *testing.T) Work { return workOn(t, lamp) }
+
+// workOn is everything found out about a build.
+func workOn(t *testing.T, text string) Work {
 	t.Helper()
-	b, err := build.Read("lamp.yaml", []byte(lamp), nil)
+	b, err := build.Read("lamp.yaml", []byte(text), nil)
 	if err != nil {
 		t.Fatal(err)
 	}
-	w := Work{File: "lamp.yaml", Text: []byte(lamp), Seed: 3, Simulate: 400, Version: "9.9.9"}
+	w := Work{File: "lamp.yaml", Text: []byte(text), Seed: 3, Simulate: 400, Version: "9.9.9"}
 	ctx, o := context.Background(), spread.Options{Seed: 3, Units: 400}
 	if w.Pick, w.Build, err = pick.Choose(ctx, b, pick.Options{Seed: 3, Units: 400}); err != nil {
 		t.Fatal(err)

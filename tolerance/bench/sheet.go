@@ -120,13 +120,13 @@ func (s *sheet) where(t build.Trim) string {
 
 // withReferences puts each part's reference before its role: "collector of the
 // transistor" becomes "collector of Q1 (transistor)"; of two pieces both stand
-// there, "R6A and R6B (load)".
+// there, "R6A + R6B (load)".
 func withReferences(text string, s *build.Stage) string {
 	words := strings.FieldsFunc(text, func(r rune) bool { return !(r == '_' || r >= '0' && r <= '9' || r >= 'A' && r <= 'z') })
 	for _, w := range words {
 		for _, p := range s.Places {
 			if p.Role == w && p.Fitted {
-				named := strings.Join(p.Refs(), " and ") + " (" + w + ")"
+				named := p.Label() + " (" + w + ")"
 				if with := strings.Replace(text, "the "+w, named, 1); with != text {
 					text = with
 				} else {

@@ -173,3 +173,34 @@ func TestLoadedTrim(t *testing.T) {
 		t.Errorf("got %q", at)
 	}
 }
+
+// TestPairAtThePoint names both pieces where two make up a part.
+func TestPairAtThePoint(t *testing.T) {
+	text := strings.NewReplacer(
+		"{ref: R1, value: 1 MΩ, tolerance: 1 %, shape: uniform}", "{ref: R1, parallel: [{value: 2 MΩ}, {value: 2 MΩ}]}",
+		"{ref: R2, value: 1 MΩ, tolerance: 1 %, shape: uniform}", "{ref: R2, series: [{value: 820 kΩ}, {value: 180 kΩ}]}",
+		"{ref: L1, value: 1 mH, tolerance: 2 %}", "{ref: L1, series: [{value: 820 uH}, {value: 180 uH}]}",
+	).Replace(box)
+	b, err := build.Read("box.yaml", []byte(text), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	m, err := b.Compile()
+	if err != nil {
+		t.Fatal(err)
+	}
+	r, err := spread.Analyse(context.Background(), m, spread.Options{Seed: 1, Units: 100})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := bench.NewSheet(m, r)
+	for point, want := range map[string]string{
+		"half.voltage": "tap of R1A ∥ R1B (upper) and R2A + R2B (lower), to ground",
+		"a.frequency":  "live end of L1A + L1B (coil), to ground",
+		"b.frequency":  "live end of L2 (coil), to ground",
+	} {
+		if got := find(t, s, point).At; got != want {
+			t.Errorf("%s is read at %q, want %q", point, got, want)
+		}
+	}
+}

@@ -61,6 +61,9 @@ func (p *Place) Refs() []string {
 	return refs
 }
 
+// Label is what stands at a place: "C6", of two pieces "C6A ∥ C6B".
+func (p *Place) Label() string { return strings.Join(p.Refs(), p.Combine.Sign()) }
+
 // pieceRefs are the references of the two pieces at a position: C6A and C6B
 // make up C6.
 func pieceRefs(ref string) (first, second string) { return ref + "A", ref + "B" }
@@ -141,7 +144,7 @@ var sharedKeys = append([]string{"rated", "bias_law"}, part.ScatterKeys[1:]...)
 
 // readPiece reads one part of a pair; what is written on the pair holds for it.
 func (r *reader) readPiece(s stageNode, p *Place, pair, n *document.Node, ref string) part.Part {
-	own := Place{Role: p.Role, Type: p.Type, Fitted: true, Across: p.Across, Part: part.Part{Ref: ref, Type: p.Type}}
+	own := Place{Role: p.Role, Type: p.Type, Fitted: true, Part: part.Part{Ref: ref, Type: p.Type}}
 	if n.Kind != document.Mapping {
 		r.Add(n, "part of a pair", "a mapping such as {value: 180 pF, family: c0g, tolerance: 5 %}")
 		return own.Part
@@ -174,11 +177,11 @@ func (p *Place) written() string {
 	if !p.Paired() {
 		return p.Part.ValueText()
 	}
-	return p.Part.ValueText() + p.Combine.sign() + p.Second.ValueText()
+	return p.Part.ValueText() + p.Combine.Sign() + p.Second.ValueText()
 }
 
-// sign stands between two values: "180 pF ∥ 39 pF", "4.7 kΩ + 220 Ω".
-func (c Combine) sign() string {
+// Sign stands between two pieces: "180 pF ∥ 39 pF", "4.7 kΩ + 220 Ω".
+func (c Combine) Sign() string {
 	if c == Parallel {
 		return " ∥ "
 	}

@@ -110,7 +110,7 @@ func pairOf(combine Combine, join series.Join, p, q Piece, v float64) Fitting {
 	}
 	return Fitting{
 		Combine: combine, Pieces: []Piece{p, q},
-		Worth: Worth{v, v, p.Text + combine.sign() + q.Text},
+		Worth: Worth{v, v, p.Text + combine.Sign() + q.Text},
 	}
 }
 

@@ -191,7 +191,9 @@ func TestPairsAreFound(t *testing.T) {
 		{"capacitor", "value: 220 pF, choose: {families: [c0g], combine: [parallel], within: 0 %}", "120 pF ∥ 100 pF"},
 		{"capacitor", "value: 220 pF, choose: {families: [c0g], combine: [parallel]}", "200 pF ∥ 20 pF"},
 		{"capacitor", "choose: {families: [c0g], combine: [parallel], around: 220 pF}", "120 pF ∥ 100 pF"},
+		{"capacitor", "choose: {families: [c0g], combine: [parallel], around: 217 pF}", "200 pF ∥ 18 pF"}, // no single one near
 		{"resistor", "value: 5 kΩ, choose: {families: [carbon-film], combine: [parallel]}", "10 kΩ ∥ 10 kΩ"},
+		{"resistor", "choose: {families: [metal-film-50], combine: [parallel, single], around: 4.73 kΩ}", "4.7 kΩ"},
 		{"coil", "value: 1.22 mH, choose: {families: [drum-choke], combine: [series]}", "1 mH + 220 µH"},
 	} {
 		b, o := opening(t, c.kind, c.choose)
@@ -403,4 +405,49 @@ func TestChooseFaults(t *testing.T) {
 	t.Run("pieces taken after", func(t *testing.T) {
 		oneFault(t, openingText("capacitor", sound), "      y:", "      w: {ref: X1A, value: 1 kΩ}\n      y:", "9:16", []string{"duplicate reference", `"X1A"`, "line 8"})
 	})
+}
+
+// TestTooMuch counts what may fill a position before it is listed: as many as a
+// naive double loop finds, those of one piece beside them, times the lots.
+func TestTooMuch(t *testing.T) {
+	const families = "families: [c0g, mica, polystyrene, polypropylene]"
+	b, o := opening(t, "capacitor", "value: 2 nF, choose: {"+families+"}")
+	near := func(whole, lesser float64) bool {
+		return math.Abs(whole/2e-9-1) <= 0.1+1e-12 && lesser/2e-9 >= 0.01-1e-12
+	}
+	pairs := len(naive(t, b, o, build.Parallel, series.Between("E192", 1e-12, 1e-6), near))
+	singles := len(b.Fittings(o))
+	list := func(n int) string { // 100 pF, 101 pF and so on
+		var words []string
+		for i := range n {
+			words = append(words, fmt.Sprintf("%d pF", 100+i))
+		}
+		return "families: [c0g], tolerances: [5 %], values: [" + strings.Join(words, ", ") + "], combine: parallel"
+	}
+	for _, c := range []struct {
+		name, choose string
+		n            int
+	}{
+		{"a window", families + ", series: E192, within: 10 %, combine: [parallel]", pairs},
+		{"single too", families + ", series: E192, within: 10 %, combine: [parallel, single]", pairs + singles},
+		{"two lots", families + ", series: E192, within: 10 %, combine: [parallel, single], lots: [one, mixed]", 2 * (pairs + singles)},
+		{"listed", list(199), 199 * 200 / 2},          // 19,900
+		{"one more listed", list(200), 200 * 201 / 2}, // 20,100
+		{"two lots of what is listed", list(141) + ", lots: [one, mixed]", 141 * 142},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			text := openingText("capacitor", "value: 2 nF, choose: {"+c.choose+"}")
+			if c.n > build.MaxFittings {
+				oneFault(t, text, "open pair", "open pair", "8:58", []string{"too much to choose from", fmt.Sprintf("not %d:", c.n)})
+				return
+			}
+			b, err := read(text)
+			if err != nil || len(b.Fittings(b.Openings[0])) != c.n {
+				t.Errorf("want %d: %v", c.n, err)
+			}
+		})
+	}
+	if pairs <= build.MaxFittings {
+		t.Errorf("only %d pairs", pairs)
+	}
 }

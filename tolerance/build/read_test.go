@@ -221,6 +221,8 @@ func FuzzRead(f *testing.F) {
 	f.Add(good)
 	f.Add("build: x\nunits: 1\nconditions: {a: {}}\nstages: {s: {kind: formula, outputs: {y: {expression: 1/0}}}}")
 	f.Add("a: &a [*a]")
+	f.Add(paired)
+	f.Add(openingText("capacitor", "value: 219 pF, choose: {families: [c0g], combine: [single, parallel, series], within: 0.5 %, series: E12, lots: [one, mixed]}"))
 	text, err := data.Examples.ReadFile("examples/lantern.yaml")
 	if err != nil {
 		f.Fatal(err)

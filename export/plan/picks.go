@@ -8,20 +8,18 @@ import (
 	"batchwright/bom/offer"
 	"batchwright/bom/order"
 	"batchwright/bom/quantity"
+	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick"
 )
 
-// ChoiceText is what was picked: "polystyrene 220 pF ±2.5 %", or, of two
-// pieces, both and how they are joined.
+// ChoiceText is what was picked: "polystyrene 220 pF ±2.5 %", of two pieces
+// each: "c0g 180 pF ±5 % ∥ polystyrene 39 pF ±2.5 %".
 func ChoiceText(c pick.Choice) string {
 	var pieces []string
 	for _, p := range c.Parts {
 		pieces = append(pieces, pieceText(p))
 	}
-	text := strings.Join(pieces, " and ")
-	if len(pieces) > 1 {
-		text += " in " + c.Combine
-	}
+	text := strings.Join(pieces, build.Combine(c.Combine).Sign())
 	if c.Lots == "mixed" {
 		text += ", mixed lots"
 	}

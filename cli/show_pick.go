@@ -11,6 +11,9 @@ import (
 // showPick prints what was picked and all that is known about it.
 func (p *program) showPick(r plan.Pick) {
 	p.line("%s: %s, seed %d", r.Build, count(r.Order.Units, "unit"), r.Seed)
+	if len(r.Picks) == 0 && r.Pick.Why == "" {
+		p.line("nothing is left open, so there is nothing to choose; spread judges the targets")
+	}
 	p.showPicks(&r.Pick, r.Order)
 	p.showTargets(r.Targets)
 	p.paragraph("what remains of the changes, to first order", strings.Join(plan.RemainSentences(r.Pick), "\n"))

@@ -51,7 +51,7 @@ func ProofSentence(r pick.Result) string {
 	if r.Provided != "" {
 		how += ". " + capital(r.Provided)
 	}
-	return fmt.Sprintf("%s. %s combinations, %d judged, %d simulated; %s and %s ruled out unseen.", how, candidates(r),
+	return fmt.Sprintf("%s. %s, %d judged, %d simulated; %s and %s ruled out unseen.", how, candidates(r),
 		r.Examined, r.Simulated, many(r.CutByDominance, "dominated option"), many(r.CutByBound, "partial combination"))
 }
 
@@ -67,9 +67,9 @@ func steadiestSentence(r pick.Result) string {
 // candidates is how many combinations exist.
 func candidates(r pick.Result) string {
 	if r.Candidates == math.MaxInt {
-		return "Countless"
+		return "Countless combinations"
 	}
-	return fmt.Sprint(r.Candidates)
+	return many(r.Candidates, "combination")
 }
 
 // many counts things in words: "1 option", "3 options".

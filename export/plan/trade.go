@@ -62,7 +62,7 @@ func TradeSentence(t Trade) string {
 		text += " " + capital(t.Why) + "."
 	}
 	if t.Beaten > 0 {
-		text += fmt.Sprintf(" Left out: %s that are a little steadier to first order, but not in simulation.", many(t.Beaten, "dearer choice"))
+		text += fmt.Sprintf(" Left out, as steadier to first order but not in simulation: %s.", many(t.Beaten, "dearer choice"))
 	}
 	return text
 }

@@ -82,7 +82,7 @@ func TestTooMuch(t *testing.T) {
 	near := func(whole, lesser float64) bool {
 		return math.Abs(whole/2e-9-1) <= 0.05+1e-12 && lesser/2e-9 >= 0.01-1e-12
 	}
-	pairs := len(naive(t, b, o, build.Parallel, series.Between("E192", 1e-12, 1e-6), near))
+	pairs := len(naive(t, b, o, build.Parallel, series.Between("E192", 10e-12, 4e-9), near))
 	singles := len(b.Fittings(o))
 	list := func(n int) string { // 100 pF, 101 pF and so on
 		var words []string

@@ -218,13 +218,16 @@ func (p *page) findings() {
 	}
 }
 
+// compareContents is what the contents say of the sheet of comparisons.
+const compareContents = "other parts in the same places"
+
 // contents leads to the other sheets, two to a row.
 func (p *page) contents() {
 	p.section("In this workbook")
 	left := [][2]string{{buySheet, "what to order, in packs, with prices"}, {stagesSheet, "what goes where, and its marking"}, {trimsSheet, "adjustments in bench order"}, {testSheet, "what every meter should show"}}
 	right := [][2]string{{tolerancesSheet, "every output at every condition"}, {driftSheet, "movement with temperature"}, {basisSheet, "assumptions, sources, limits"}, {}}
 	if p.plan.Compare != nil {
-		right[3] = [2]string{compareSheet, "other parts in the same places"}
+		right[3] = [2]string{compareSheet, compareContents}
 	}
 	link, text := look{bold: true, ink: copper}, look{}
 	for i := range left {

@@ -12,10 +12,10 @@ import (
 	"github.com/xuri/excelize/v2"
 )
 
-// What a returned workbook may be at most. A plan of 200 units fills a tenth of
+// What a returned workbook may be at most, its file LargestFile bytes. A plan of 200 units fills a tenth of
 // it; a file that asks for more was made to do harm, or is another's.
 const (
-	largestFile  = 16 << 20
+	LargestFile  = 16 << 20
 	largestWhole = 64 << 20 // unpacked
 	mostParts    = 1000
 	mostSheetRow = 10_000
@@ -33,8 +33,8 @@ const (
 // small file that unpacks to gigabytes for a large one. The error says in words
 // what is wrong.
 func preflight(file []byte) error {
-	if len(file) > largestFile {
-		return fmt.Errorf("the file has %d MiB; a filled workbook has at most %d", len(file)>>20, largestFile>>20)
+	if len(file) > LargestFile {
+		return fmt.Errorf("the file has %d MiB; a filled workbook has at most %d", len(file)>>20, LargestFile>>20)
 	}
 	if err := sniff(file); err != nil {
 		return err

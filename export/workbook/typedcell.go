@@ -25,21 +25,22 @@ type readRow struct {
 
 // rowOf adds unit and window to a row.
 func (c *comparison) rowOf(r benchRow) readRow {
-	out := readRow{benchRow: r, label: r.name}
-	symbol := ""
 	for _, x := range c.plan.Readings {
 		if !r.turn && x.Step == r.step {
-			symbol, out.window = x.Unit, x.Expected
+			out := rowInUnit(r, x.Unit)
+			out.window = x.Expected
+			return out
 		}
 	}
 	for _, t := range c.plan.Turns {
 		if r.turn && t.Step == r.step {
-			symbol, out.label = t.Unit, "turn "+r.name
+			out := rowInUnit(r, t.Unit)
+			out.label = "turn " + r.name
 			out.window = spread.Limits{Low: spread.Figure(t.To - t.Within), High: spread.Figure(t.To + t.Within)}
+			return out
 		}
 	}
-	out.unit, out.known = quantity.Find(symbol)
-	return out
+	panic("workbook: a row that is neither a reading nor a trim")
 }
 
 // readRow reads one row of all units.

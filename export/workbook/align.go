@@ -10,6 +10,7 @@ import (
 type alignment struct {
 	fresh, back *sheetCells
 	rows, cols  []int
+	ordered     bool // nothing changed places
 }
 
 // align lays two sheets over each other by what is written in them, so that

@@ -51,10 +51,10 @@ func (c *comparison) lines(a *alignment) {
 
 func (c *comparison) line(a *alignment, what string, to []int, which func(place) int, name func(int) string) {
 	fresh, back := a.fresh.inLines(which), a.back.inLines(which)
-	last, came := 0, map[int]bool{}
+	last, came, stayed := 0, map[int]bool{}, ascending(to)
 	for i, b := range to {
 		came[b] = true
-		if b > 0 && b < last {
+		if b > 0 && !stayed[i] {
 			c.note(Finding{Kind: Moved, Sheet: a.back.name, Cell: name(b), What: "the " + what + " was moved; it is read where it is", Found: shownAll(back[b])})
 		}
 		last = max(last, b)
@@ -67,6 +67,31 @@ func (c *comparison) line(a *alignment, what string, to []int, which func(place)
 			c.note(Finding{Kind: Moved, Sheet: a.back.name, Cell: name(b), What: "a " + what + " was inserted; what follows is read where it is", Found: shownAll(back[b])})
 		}
 	}
+}
+
+// ascending says which of the lines that went somewhere are in their order
+// still: a longest ascending run of places (patience sorting). The others moved.
+func ascending(to []int) []bool {
+	var ends []int // of the best run of each length, the index of its last line
+	before := make([]int, len(to))
+	for i, b := range to {
+		if b == 0 {
+			continue
+		}
+		n, _ := slices.BinarySearchFunc(ends, b, func(end, b int) int { return cmp.Compare(to[end], b) })
+		before[i] = -1
+		if n > 0 {
+			before[i] = ends[n-1]
+		}
+		ends = append(ends[:n], append([]int{i}, ends[min(n+1, len(ends)):]...)...)
+	}
+	in := make([]bool, len(to))
+	if len(ends) > 0 {
+		for i := ends[len(ends)-1]; i >= 0; i = before[i] {
+			in[i] = true
+		}
+	}
+	return in
 }
 
 // inLines are the cells of each row, or of each column, in order.
@@ -96,7 +121,6 @@ func shownAll(cells []oneCell) string {
 // changed reports every cell that is not for typing and says something else
 // than the plan.
 func (c *comparison) changed(a *alignment) {
-	ordered := slices.IsSorted(nonZero(a.rows)) && slices.IsSorted(nonZero(a.cols))
 	for _, p := range a.fresh.places() {
 		want := a.fresh.cells[p]
 		to, ok := a.to(p)
@@ -104,7 +128,7 @@ func (c *comparison) changed(a *alignment) {
 			continue // its row or column is gone, which was said
 		}
 		got := a.back.at(to.row, to.col)
-		if c.agree(a, want, got, ordered) {
+		if c.agree(a, want, got) {
 			continue
 		}
 		found := got.shown()
@@ -115,26 +139,28 @@ func (c *comparison) changed(a *alignment) {
 	}
 }
 
+// order notes whether rows and columns stand in their order still.
+func (a *alignment) order() {
+	a.ordered = slices.IsSorted(nonZero(a.rows)) && slices.IsSorted(nonZero(a.cols))
+}
+
 func nonZero(list []int) []int {
 	return slices.DeleteFunc(slices.Clone(list), func(i int) bool { return i == 0 })
 }
 
 // agree says whether a cell still says what it said. Formulas are compared
-// with every reference moved to where its cell went; not on a sheet whose rows
-// changed places, where programs bend ranges in ways of their own.
-func (c *comparison) agree(a *alignment, want, got oneCell, ordered bool) bool {
+// with every reference moved to where its cell went; not those to a sheet whose
+// rows changed places, for which programs bend ranges in ways of their own.
+func (c *comparison) agree(a *alignment, want, got oneCell) bool {
 	if want.formula == "" && got.formula == "" {
 		return sameLiteral(want, got)
 	}
 	if want.formula == "" || got.formula == "" {
 		return false
 	}
-	if !ordered {
-		return true
-	}
 	moved, ok := canonical(want.formula, a.fresh.name, c.move)
 	if !ok {
-		return true // it refers to what is gone, which was said
+		return true // it refers to what is gone or was moved, which was said
 	}
 	there, _ := canonical(got.formula, a.back.name, stay)
 	return moved == there
@@ -144,6 +170,9 @@ func (c *comparison) agree(a *alignment, want, got oneCell, ordered bool) bool {
 func (c *comparison) move(sheet string, p place) (string, place, bool) {
 	for name, a := range c.pairs {
 		if strings.EqualFold(name, sheet) {
+			if !a.ordered {
+				return "", p, false
+			}
 			q, ok := a.to(p)
 			if !ok && (p.row > a.fresh.rows || p.col > a.fresh.cols) {
 				q, ok = p, true // beside all that is written

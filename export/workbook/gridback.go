@@ -144,26 +144,34 @@ func outward(first, last, all int) []int {
 
 func (t *tracks) followCols(fresh, back fields, a *alignment) {
 	taken := map[int]bool{}
-	columns := outward(back.readings.first.col, back.readings.last.col, back.sheet.cols)
 	units := fresh.freshUnits()
-	for _, col := range columns {
-		u, ok := units[back.sheet.at(back.units, col).key()]
-		switch {
-		case !ok:
-		case t.cols[u] != 0:
-			t.twiceCols[col] = u
-		default:
-			t.cols[u], taken[col] = col, true
+	numbers := slices.Sorted(maps.Values(units))
+	order := outward(back.readings.first.col, back.readings.last.col, back.sheet.cols)
+	take := func(same func(u, to int) bool) {
+		for _, u := range numbers {
+			for _, to := range order {
+				if t.cols[u] == 0 && !taken[to] && same(u, to) {
+					t.cols[u], taken[to] = to, true
+				}
+			}
 		}
 	}
-	for _, text := range slices.Sorted(maps.Keys(units)) { // whose number was written over
-		u := units[text]
+	number := make([]int, back.sheet.cols+1)
+	for _, to := range order {
+		number[to] = units[back.sheet.at(back.units, to).key()]
+	}
+	sameNumber := func(u, to int) bool { return number[to] == u }
+	samePlace := func(u, to int) bool {
 		col := fresh.readings.first.col + u - 1
-		if t.cols[u] != 0 || col >= len(a.cols) || a.cols[col] == 0 || taken[a.cols[col]] {
-			continue
+		return col < len(a.cols) && a.cols[col] == to
+	}
+	take(func(u, to int) bool { return sameNumber(u, to) && samePlace(u, to) })
+	take(sameNumber)
+	take(samePlace) // whose number was written over
+	for _, to := range order {
+		if u := number[to]; u > 0 && !taken[to] {
+			t.twiceCols[to] = u
 		}
-		t.cols[u], taken[a.cols[col]] = a.cols[col], true
-		delete(t.twiceCols, a.cols[col])
 	}
 }
 

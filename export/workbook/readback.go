@@ -132,6 +132,9 @@ func newComparison(p Plan, fresh, back *Returned) (*comparison, error) {
 	c.there = there
 	c.tracks = follow(c.grid, there, a)
 	c.tracks.settle(a, c.grid)
+	for _, pair := range c.pairs {
+		pair.order()
+	}
 	return c, nil
 }
 

@@ -226,6 +226,12 @@ func TestReadBackExactly(t *testing.T) {
 	}
 }
 
+// back moves the first reading of a row to the next unit.
+func back(t *testing.T, f *excelize.File, row int) {
+	set(t, f, testSheet, cellOf(1, row), nil)
+	set(t, f, testSheet, cellOf(2, row), 12.02)
+}
+
 // TestReadBackEdited changes what is not for typing and expects every change to
 // be named by cell, and the readings still to be right.
 func TestReadBackEdited(t *testing.T) {
@@ -288,20 +294,101 @@ func TestReadBackEdited(t *testing.T) {
 		{"beside a heading", func(f *excelize.File) { set(t, f, testSheet, "L11", 3) },
 			"added Test sheet!L11: nothing is to be typed here; it was not read: 3|\n"},
 		{"a part", func(f *excelize.File) { set(t, f, buySheet, "A5", "C99") }, "changed Parts to buy!A5: changed: C99|"},
+		{"a row moved down", func(f *excelize.File) {
+			do(f.DuplicateRowTo(testSheet, rail, rail+4))
+			do(f.RemoveRow(testSheet, rail))
+		}, "moved Test sheet!A15: the row was moved; it is read where it is: 1 · rails.voltage · output of U2, to ground · dc voltage, dmm · V · 12|\n"},
+		{"a row twice", func(f *excelize.File) { do(f.DuplicateRowTo(testSheet, rail, rail+1)) },
+			"moved Test sheet!A13: a row was inserted; what follows is read where it is: 1 · rails.voltage · output of U2, to ground · dc voltage, dmm · V · 12|\n" +
+				"unread Test sheet!L13 (rails.voltage, unit 1): a second row of this point; the other one is read: 12.02|\n"},
+		{"a row less", func(f *excelize.File) {
+			base, _ := rowOfPoint(t, p, "mixer.base")
+			do(f.RemoveRow(testSheet, base))
+		}, "gone Test sheet!A14: the row is gone: |3 · mixer.base · base of Q1, to ground · dc voltage, dmm · mV · 659\n"},
+		{"a column less", func(f *excelize.File) { do(f.RemoveCol(testSheet, "M")) }, "gone Test sheet!M1: the column is gone: |2 · "},
+		{"two numbers changed about", func(f *excelize.File) { set(t, f, testSheet, "L8", 2); set(t, f, testSheet, "M8", 1); back(t, f, rail) },
+			"moved Test sheet!M1: the column was moved; it is read where it is: 1 · "},
+		{"a number twice", func(f *excelize.File) { set(t, f, testSheet, "M8", 3); set(t, f, testSheet, cellOf(2, rail), 7) },
+			"changed Test sheet!M8: changed: 3|2\n"},
+		{"the names", func(f *excelize.File) {
+			for _, name := range []string{"plan_points", "plan_steps", "plan_units", "plan_serials", "plan_readings"} {
+				do(f.DeleteDefinedName(&excelize.DefinedName{Name: name}))
+			}
+		}, ""},
+		{"the names, and a row", func(f *excelize.File) {
+			do(f.DeleteDefinedName(&excelize.DefinedName{Name: "plan_points"}))
+			do(f.InsertRows(testSheet, 3, 1))
+		}, "moved Test sheet!A4: a row was inserted; what follows is read where it is\n"},
 		{"a unit's number", func(f *excelize.File) { set(t, f, testSheet, "N8", 30) }, "changed Test sheet!N8: changed: 30|3\n"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			back := readBack(t, edited(t, p, func(f *excelize.File) { readings(f); c.edit(f) }), p)
 			got := findingLines(back.Findings)
-			if strings.HasSuffix(c.want, "|") && strings.Count(got, "\n") == 1 {
-				got, _, _ = strings.Cut(got, "|")
-				got += "|"
-			}
-			if got != c.want {
+			if got != c.want && !(c.want != "" && !strings.HasSuffix(c.want, "\n") && strings.HasPrefix(got, c.want) && strings.Count(got, "\n") == 1) {
 				t.Errorf("findings:\n%swant:\n%s", got, c.want)
 			}
 			if a, b := of(back.Filled, "rails.voltage", 1), of(back.Filled, "mixer.collector", 3); a != 12.02 || b != -3.25e-3 {
 				t.Errorf("read %v and %v, want 12.02 and -0.00325", a, b)
+			}
+		})
+	}
+}
+
+// TestOrigin takes the marks of the plan out one by one, and forges them.
+func TestOrigin(t *testing.T) {
+	p := sample(2)
+	do := func(err error) {
+		if err != nil {
+			t.Fatal(err)
+		}
+	}
+	property := func(text any) func(f *excelize.File) {
+		return func(f *excelize.File) {
+			do(f.SetCustomProps(excelize.CustomProperty{Name: "plan.digest", Value: text}))
+		}
+	}
+	name := func(refers string) func(f *excelize.File) {
+		return func(f *excelize.File) {
+			do(f.DeleteDefinedName(&excelize.DefinedName{Name: "plan_digest"}))
+			if refers != "" {
+				do(f.SetDefinedName(&excelize.DefinedName{Name: "plan_digest", RefersTo: refers}))
+			}
+		}
+	}
+	cell := func(text string) func(f *excelize.File) {
+		return func(f *excelize.File) { set(t, f, carrierSheet, "B1", text) }
+	}
+	sheet := func(f *excelize.File) { do(f.DeleteSheet(carrierSheet)) }
+	for _, c := range []struct {
+		name   string
+		edits  []func(f *excelize.File)
+		why    string
+		missed int
+	}{
+		{"whole", nil, "", 0},
+		{"no property", []func(*excelize.File){property(nil)}, "", 1},
+		{"no name", []func(*excelize.File){name("")}, "", 1},
+		{"no sheet", []func(*excelize.File){sheet}, "", 1},
+		{"only the sheet", []func(*excelize.File){property(nil), name("")}, "", 2},
+		{"none", []func(*excelize.File){property(nil), name(""), sheet}, "the workbook does not say which plan it was written from; this plan is 7f3a19c2", 3},
+		{"two plans", []func(*excelize.File){cell("0123456789abcdef")}, "the workbook says of itself that it is of the plans 01234567 and 7f3a19c2; this plan is 7f3a19c2", 0},
+		{"another", []func(*excelize.File){property("aa11223344"), name(`"aa11223344"`), cell("aa11223344")}, "the workbook is of plan aa112233; this plan is 7f3a19c2", 0},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			r, err := Open(edited(t, p, func(f *excelize.File) {
+				for _, edit := range c.edits {
+					edit(f)
+				}
+			}))
+			if err != nil {
+				t.Fatal(err)
+			}
+			defer r.Close()
+			if got := r.Origin.Foreign(p.Digest); got != c.why || len(r.Origin.missing) != c.missed {
+				t.Errorf("got %q and %v, want %q and %d", got, r.Origin.missing, c.why, c.missed)
+			}
+			if s := r.Origin; c.name == "whole" && (s.Seed != "1" || s.Units != "2" || s.File != "lantern.yaml" || s.Version != "0.1.0" || s.Simulate != "0") {
+				t.Errorf("got %+v", s)
 			}
 		})
 	}

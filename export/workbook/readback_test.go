@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"bytes"
+	"errors"
 	"fmt"
 	"math"
 	"math/rand/v2"
@@ -367,6 +368,64 @@ func TestReadBackRenamed(t *testing.T) {
 	if v := of(back.Filled, "rails.voltage", 2); v != 12.02 || !strings.Contains(got, "moved Trims!A1: the sheet was renamed: Trims|Test sheet\n") ||
 		!strings.Contains(got, "moved Test sheet!A1: the sheet was renamed: Test sheet|Trims\n") {
 		t.Errorf("read %v\n%s", v, got)
+	}
+}
+
+// TestReadBackCopied has a copy of the test sheet under its name: the one that
+// the names point to is read.
+func TestReadBackCopied(t *testing.T) {
+	p := sample(2)
+	rail, _ := rowOfPoint(t, p, "rails.voltage")
+	back := readBack(t, edited(t, p, func(f *excelize.File) {
+		if err := f.SetSheetName(testSheet, "Bench 4"); err != nil {
+			t.Fatal(err)
+		}
+		to, err := f.NewSheet(testSheet)
+		if err != nil {
+			t.Fatal(err)
+		}
+		from, err := f.GetSheetIndex("Bench 4")
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := f.CopySheet(from, to); err != nil {
+			t.Fatal(err)
+		}
+		for _, n := range f.GetDefinedName() { // a spreadsheet program does this by itself
+			if strings.HasPrefix(n.Name, "plan_") && strings.Contains(n.RefersTo, testSheet) {
+				name := excelize.DefinedName{Name: n.Name, RefersTo: strings.ReplaceAll(n.RefersTo, testSheet, "Bench 4")}
+				if err := errors.Join(f.DeleteDefinedName(&excelize.DefinedName{Name: n.Name}), f.SetDefinedName(&name)); err != nil {
+					t.Fatal(err)
+				}
+			}
+		}
+		set(t, f, "Bench 4", cellOf(2, rail), 12.02)
+		set(t, f, testSheet, cellOf(2, rail), 11.9)
+	}), p)
+	if v := of(back.Filled, "rails.voltage", 2); v != 12.02 {
+		t.Errorf("read %v, want 12.02\n%s", v, findingLines(back.Findings))
+	}
+	if got := findingLines(back.Findings); !strings.Contains(got, "added Test sheet!A1: a sheet that the plan does not have") {
+		t.Error(got)
+	}
+}
+
+// BenchmarkReadBack reads a full sheet of 200 units.
+func BenchmarkReadBack(b *testing.B) {
+	p := sample(200)
+	at := places(p)
+	file := edited(b, p, func(f *excelize.File) {
+		for i := range at {
+			for u := 1; u <= p.Units; u++ {
+				set(b, f, testSheet, cellOf(u, at[i]), 1.25)
+			}
+		}
+	})
+	b.ReportAllocs()
+	for b.Loop() {
+		if len(readBack(b, file, p).Units) != p.Units {
+			b.Fatal("units are missing")
+		}
 	}
 }
 

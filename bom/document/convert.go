@@ -13,23 +13,31 @@ import (
 // out; what a reader of the tree then visits is bounded.
 const nodeBudget = 200_000
 
-// measured is a node with its size and height once aliases are written out.
+// measured is a node with its size and height once aliases are written out, and
+// the place where it is written: an anchor before it, or the alias that stands
+// for it.
 type measured struct {
 	*Node
 	size, height int
+	at           Span
 }
 
 // anchor is a named node; one whose value is still being read has none.
 type anchor struct {
+	name  string
 	value measured
 	done  bool
+	uses  []*Node // its aliases
 }
 
 // converter turns the library's tree into nodes.
 type converter struct {
 	file    string
+	source  *source
 	lines   []string
 	anchors map[string]*anchor
+	named   []*anchor // all of them, in the order written
+	flow    int       // open brackets and braces
 	budget  int
 	spent   bool
 	faults  Faults
@@ -41,7 +49,8 @@ func (c *converter) at(kind Kind, t *token.Token) measured {
 	if t != nil && t.Position != nil {
 		n.Line, n.Column = t.Position.Line, t.Position.Column
 	}
-	return measured{n, 1, 0}
+	n.Span = Span{c.source.find(n.Line, n.Column), -1}
+	return measured{n, 1, 0, n.Span}
 }
 
 // spend takes nodes from the budget and complains once when it is gone.
@@ -91,11 +100,25 @@ func (c *converter) node(y ast.Node, depth int) measured {
 // is right behind the mark.
 func (c *converter) nodeAfter(mark *token.Token, y ast.Node, depth int) measured {
 	n := c.node(y, depth)
-	_, shared := y.(*ast.AliasNode)
-	if !shared && n.Kind == Null && n.Value == "" && mark != nil && mark.Position != nil {
+	switch y.(type) {
+	case *ast.AliasNode, *ast.AnchorNode:
+		return n
+	}
+	if n.Kind == Null && n.Value == "" && mark != nil && mark.Position != nil {
 		n.Line, n.Column = mark.Position.Line, mark.Position.Column+1
+		if start := c.source.find(mark.Position.Line, mark.Position.Column); c.isMark(start) {
+			n.occupy(Span{start + 1, start + 1})
+		}
 	}
 	return n
+}
+
+// isMark says whether a colon or dash stands at an offset.
+func (c *converter) isMark(i int) bool { return c.source.byteAt(i) == ':' || c.source.byteAt(i) == '-' }
+
+// occupy settles where a node and what is written for it stand.
+func (m *measured) occupy(s Span) {
+	m.Span, m.at = s, s
 }
 
 // scalar converts what is left: every plain or quoted value, as text.
@@ -109,10 +132,15 @@ func (c *converter) scalar(y ast.Node) measured {
 		switch t.Type {
 		case token.NullType:
 			n.Kind = Null
+			n.occupy(c.source.plain(n.Span.Start, n.Value))
 		case token.ImplicitNullType:
 			n.Kind, n.Value = Null, ""
+			n.occupy(uncertain)
 		case token.SingleQuoteType, token.DoubleQuoteType:
 			n.lead = 1
+			n.occupy(c.source.quoted(n.Span.Start))
+		default:
+			n.occupy(c.source.plain(n.Span.Start, n.Value))
 		}
 	}
 	c.spend(1, n.Node)
@@ -127,6 +155,7 @@ func (c *converter) literal(y *ast.LiteralNode) measured {
 		n.Value = y.Value.Value
 	}
 	n.lead = c.blockLead(n.Node)
+	n.occupy(c.source.block(n.Span.Start, n.lead))
 	c.spend(1, n.Node)
 	return n
 }
@@ -153,6 +182,7 @@ func (c *converter) sequence(y *ast.SequenceNode, depth int) measured {
 	if !c.spend(1, n.Node) {
 		return n
 	}
+	n.style = c.open(y.IsFlowStyle)
 	for i, value := range y.Values {
 		var dash *token.Token
 		if i < len(y.Entries) && !y.IsFlowStyle {
@@ -160,12 +190,49 @@ func (c *converter) sequence(y *ast.SequenceNode, depth int) measured {
 		}
 		item := c.nodeAfter(dash, value, depth+1)
 		n.Items = append(n.Items, item.Node)
+		n.entries = append(n.entries, entry{value: item.Node, Span: item.at, at: item.at})
 		n.add(item)
 		if c.spent {
 			break
 		}
 	}
+	c.close(&n, ']')
 	return n
+}
+
+// open enters a mapping or list.
+func (c *converter) open(bracketed bool) style {
+	switch {
+	case bracketed:
+		c.flow++
+		return brackets
+	case c.flow > 0:
+		return bare
+	}
+	return rows
+}
+
+// close leaves it, and settles where it ends.
+func (c *converter) close(n *measured, mark byte) {
+	if n.style == brackets {
+		c.flow--
+	}
+	last := n.Span.Start
+	if n.style == brackets {
+		last++
+	}
+	for _, e := range n.entries {
+		if !e.certain() {
+			n.occupy(uncertain)
+			return
+		}
+		last = e.End
+	}
+	if n.style == brackets {
+		n.occupy(c.source.closed(n.Span.Start, last, mark))
+		return
+	}
+	n.occupy(Span{n.Span.Start, last})
 }
 
 func (m *measured) add(child measured) {
@@ -175,9 +242,13 @@ func (m *measured) add(child measured) {
 
 // anchor converts a named value and remembers it.
 func (c *converter) anchor(y *ast.AnchorNode, depth int) measured {
-	a := &anchor{}
-	c.anchors[y.Name.GetToken().Value] = a
+	a := &anchor{name: y.Name.GetToken().Value}
+	c.anchors[a.name] = a
+	c.named = append(c.named, a)
 	a.value = c.node(y.Value, depth)
+	if mark := c.at(Null, y.Start); a.value.Span.certain() {
+		a.value.at = Span{mark.Span.Start, a.value.Span.End}
+	}
 	a.done = true
 	return a.value
 }
@@ -202,5 +273,7 @@ func (c *converter) alias(y *ast.AliasNode, depth int) measured {
 		return n
 	}
 	c.spend(a.value.size, n.Node)
-	return a.value
+	n.occupy(Span{n.Span.Start, n.Span.Start + 1 + len(n.Value)})
+	a.uses = append(a.uses, n.Node)
+	return measured{a.value.Node, a.value.size, a.value.height, n.at}
 }

@@ -15,6 +15,7 @@ func (c *converter) mapping(y ast.Node, start *token.Token, values []*ast.Mappin
 	if !c.spend(1, n.Node) {
 		return n
 	}
+	n.style = c.open(c.source.byteAt(n.Span.Start) == '{' && start.Type == token.MappingStartType)
 	seen := map[string]bool{}
 	var merged []measured
 	for _, value := range values {
@@ -22,7 +23,9 @@ func (c *converter) mapping(y ast.Node, start *token.Token, values []*ast.Mappin
 			break
 		}
 		if value.Key.IsMergeKey() {
-			merged = append(merged, c.merge(value, depth)...)
+			list, e := c.merge(value, depth)
+			merged = append(merged, list...)
+			n.entries = append(n.entries, e)
 			continue
 		}
 		key, ok := c.key(value.Key)
@@ -36,11 +39,30 @@ func (c *converter) mapping(y ast.Node, start *token.Token, values []*ast.Mappin
 		}
 		seen[key.Value] = true
 		n.Pairs = append(n.Pairs, Pair{key.Node, child.Node})
+		n.entries = append(n.entries, c.entry(value, key, child))
 		n.add(child)
 		n.size++
 	}
+	c.close(&n, '}')
 	c.fold(&n, seen, merged)
 	return n
+}
+
+// entry is a pair as it is written. A key without a colon has its value right
+// behind it.
+func (c *converter) entry(y *ast.MappingValueNode, key, child measured) entry {
+	if child.Kind == Null && !child.at.certain() && key.at.certain() && c.source.byteAt(c.source.blanks(key.at.End)) != ':' {
+		child.occupy(Span{key.at.End, key.at.End})
+	}
+	start := key.at.Start
+	if question, ok := y.Key.(*ast.MappingKeyNode); ok {
+		start = c.at(Null, question.Start).Span.Start
+	}
+	e := entry{key: key.Node, value: child.Node, Span: Span{start, child.at.End}, at: child.at}
+	if !key.at.certain() || !child.at.certain() || child.at.Start < key.at.End {
+		e.Span = uncertain
+	}
+	return e
 }
 
 // key converts a key, which must be a scalar.
@@ -77,11 +99,14 @@ func (c *converter) complexKey(y *ast.MappingKeyNode) (measured, bool) {
 }
 
 // merge reads the value of a merge key "<<": a mapping, or a list of them.
-func (c *converter) merge(y *ast.MappingValueNode, depth int) []measured {
+func (c *converter) merge(y *ast.MappingValueNode, depth int) ([]measured, entry) {
 	value := c.node(y.Value, depth)
+	key := c.at(Scalar, y.Key.GetToken())
+	key.Value = "<<"
+	e := entry{merge: true, value: value.Node, Span: Span{key.Span.Start, value.at.End}, at: value.at}
 	switch value.Kind {
 	case Mapping:
-		return []measured{value}
+		return []measured{value}, e
 	case Sequence:
 		var all []measured
 		for _, item := range value.Items {
@@ -89,14 +114,12 @@ func (c *converter) merge(y *ast.MappingValueNode, depth int) []measured {
 				c.faults.Add(item, "a merge of what is no mapping", "*NAME of a mapping, or a list of them")
 				continue
 			}
-			all = append(all, measured{item, value.size, value.height})
+			all = append(all, measured{item, value.size, value.height, item.Span})
 		}
-		return all
+		return all, e
 	}
-	key := c.at(Scalar, y.Key.GetToken())
-	key.Value = "<<"
 	c.faults.Add(key.Node, "a merge of what is no mapping", "*NAME of a mapping, or a list of them")
-	return nil
+	return nil, e
 }
 
 // fold adds the pairs of merged mappings whose keys are not there yet.

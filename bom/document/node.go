@@ -30,9 +30,34 @@ type Node struct {
 	Items        []*Node
 	File         string
 	Line, Column int // of the first character, quote and bar included
+	// Span is where its text stands, without an anchor before it. Of a mapping or
+	// list in block style it runs to the end of the last entry; a node that was
+	// not read from YAML has none.
+	Span Span
 
 	block bool // the text is in the lines below, as of "|" and ">"
 	lead  int  // characters before the text on its lines: a quote, or a block's indentation
+
+	style   style
+	entries []entry // of a mapping or list, as they are written
+}
+
+// style is how a mapping or list is written.
+type style int
+
+const (
+	rows     style = iota // an entry a line
+	brackets              // between braces or brackets
+	bare                  // a mapping of one entry between brackets, without braces
+)
+
+// entry is an entry of a mapping or list as it is written: a merge too.
+type entry struct {
+	key   *Node // nil for an entry of a list, and for a merge
+	merge bool
+	value *Node
+	Span       // of the entry
+	at    Span // of its value: an anchor or an alias included
 }
 
 // Pair is an entry of a mapping. Neither node is nil.

@@ -20,33 +20,39 @@ import (
 // node is nil where there are complaints that leave nothing to go on with; with
 // complaints and a node, both are worth looking at.
 func Parse(file string, text []byte) (*Node, Complaints) {
+	n, _, complaints := parse(file, text)
+	return n, complaints
+}
+
+// parse is Parse; it also tells which anchors are used where.
+func parse(file string, text []byte) (*Node, []*anchor, Complaints) {
 	source, bad := clean(file, text)
 	if bad == nil {
 		bad = badLayout(source)
 	}
 	if bad != nil {
 		bad.File = file
-		return nil, Complaints{*bad}
+		return nil, nil, Complaints{*bad}
 	}
 	tree, bad := parseTree(source)
 	if bad != nil {
 		bad.File = file
-		return nil, Complaints{*bad}
+		return nil, nil, Complaints{*bad}
 	}
 	body, bad := onlyBody(tree)
 	if bad != nil {
 		bad.File = file
-		return nil, Complaints{*bad}
+		return nil, nil, Complaints{*bad}
 	}
 	if body == nil {
-		return &Node{Kind: Null, File: file, Line: 1, Column: 1}, nil
+		return &Node{Kind: Null, File: file, Line: 1, Column: 1, Span: uncertain}, nil, nil
 	}
-	c := converter{file: file, lines: strings.Split(source, "\n"), anchors: map[string]*anchor{}, budget: nodeBudget}
+	c := converter{file: file, source: newSource(text), lines: strings.Split(source, "\n"), anchors: map[string]*anchor{}, budget: nodeBudget}
 	n := c.node(body, 0)
 	if c.spent {
-		return nil, c.faults.List()
+		return nil, nil, c.faults.List()
 	}
-	return n.Node, c.faults.List()
+	return n.Node, c.named, c.faults.List()
 }
 
 // parseTree runs the YAML library, whose panics become complaints: a file that

@@ -305,6 +305,7 @@ func FuzzParse(f *testing.F) {
 		}
 		if n != nil {
 			checkTree(t, n, strings.Count(string(text), "\n")+strings.Count(string(text), "\r")+1, 0)
+			checkSpans(t, text, n)
 		}
 		for _, c := range complaints {
 			if c.File != "f" || c.Message == "" || !utf8.ValidString(c.Error()) || c.Line < 0 || c.Line > 0 && c.Column < 1 {
@@ -335,5 +336,23 @@ func checkTree(t *testing.T, n *Node, lines, depth int) {
 	}
 	for _, item := range n.Items {
 		checkTree(t, item, lines, depth+1)
+	}
+}
+
+// checkSpans reads what is written between brackets or quotes by itself: it is
+// the same again. Anchors would be missing.
+func checkSpans(t *testing.T, text []byte, n *Node) {
+	own := n.Span.certain() && !strings.ContainsAny(string(text), "&*!")
+	if own && (n.style == brackets && n.Kind != Scalar || n.Kind == Scalar && n.lead == 1 && !n.block) {
+		alone, faults := Parse("f", text[n.Span.Start:n.Span.End])
+		if len(faults) == 0 && plainOutline(alone) != plainOutline(n) {
+			t.Fatalf("%q stands at %q, which is %s", plainOutline(n), text[n.Span.Start:n.Span.End], plainOutline(alone))
+		}
+	}
+	for _, e := range n.entries {
+		if own && e.certain() && !n.Span.holds(e.Span) {
+			t.Fatalf("%v in %v", e.Span, n.Span)
+		}
+		checkSpans(t, text, e.value)
 	}
 }

@@ -25,7 +25,8 @@ func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 		choice = found.Nearest
 		r.Why = c.outOfReach(found)
 	case !found.Proved:
-		r.Why = fmt.Sprintf("the search ended early; nothing cheaper than %v exists, %.2g %% below this", offer.Money(found.Bound), 100*found.Gap())
+		r.Why = fmt.Sprintf("the best of a search that ran out of %s; nothing cheaper than %v exists, %.2g %% below this",
+			stopped(found), offer.Money(found.Bound), 100*found.Gap())
 	}
 	if choice == nil {
 		choice = make([]int, len(c.fittings))
@@ -46,6 +47,15 @@ func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 	o := c.order(fitted.Parts())
 	r.CostPerUnit, r.Total = o.PerUnit, o.Total
 	return r, fitted, nil
+}
+
+// stopped is what a search ran out of. One that was not stopped met choices that
+// effects which add up did not foresee.
+func stopped(found exact.Outcome) string {
+	if found.Stopped == "" {
+		return "certainty"
+	}
+	return string(found.Stopped)
 }
 
 // report says what the simulation makes of a choice, target by target, and what

@@ -34,13 +34,15 @@ func (c *chooser) addBinding(r *Result, choice []int) error {
 		return nil
 	}
 	tight := tighter(c.build.Targets[binding])
-	r.Binding = &Binding{Target: c.build.Targets[binding].Name, Saving: offer.Money(saving), Tighter: tightText(tight)}
 	varied := c.varied(binding, tight)
 	found, err := varied.search(varied.asked(), nil)
 	if err != nil {
 		return err
 	}
-	r.Binding.Total, r.Binding.Out = offer.Money(found.Cost), found.Choice == nil
+	r.Binding = &Binding{
+		Target: c.build.Targets[binding].Name, Saving: offer.Money(saving), Tighter: tightText(tight),
+		Total: offer.Money(found.Cost), Out: found.Choice == nil && found.Proved, Unknown: !found.Proved,
+	}
 	return nil
 }
 

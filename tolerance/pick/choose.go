@@ -41,7 +41,7 @@ func Choose(ctx context.Context, b *build.Build, o Options) (*Result, *build.Bui
 		return nil, nil, err
 	}
 	r, fitted, err := c.result(found)
-	if err != nil || found.Choice == nil {
+	if err != nil || found.Choice == nil || !found.Proved { // what there was time for is used up
 		return r, fitted, err
 	}
 	if err := c.addAlternates(r, found.Choice); err != nil {

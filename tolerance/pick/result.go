@@ -73,6 +73,7 @@ type Binding struct {
 	Tighter string      `json:"tighter"`      // the target with its limits a tenth closer
 	Total   offer.Money `json:"total"`        // of the order that meets this
 	Out     bool        `json:"out_of_reach"` // no choice meets it; Total is then 0
+	Unknown bool        `json:"unknown"`      // the search for it ended early; Total is then what was found, or 0
 }
 
 // Alternate is the next-best choice where one of the buying lines is out of

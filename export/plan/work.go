@@ -34,6 +34,7 @@ type Work struct {
 	Drifts []workbook.Drift
 
 	Compared *compare.Result // nil: nothing was compared
+	Trade    *pick.Trade     // nil: nothing was traded
 }
 
 // Digest identifies a plan: the SHA-256 of the build file and of all else that
@@ -53,10 +54,10 @@ func Compose(w Work) workbook.Plan {
 		PriceNote:  PriceNote(w.Order),
 		Findings:   findings(w),
 		Conditions: conditions(w.Build),
-		Order:      w.Order, Pick: *w.Pick,
+		Order:      w.Order, Picks: picked(w),
 		Positions: positions(w),
 		Turns:     w.Sheet.Turns, Readings: w.Sheet.Readings,
-		Spread: *w.Report, Drifts: w.Drifts, Compare: compared(w.Compared),
+		Spread: *w.Report, Drifts: w.Drifts, Compare: compared(w.Compared), Trade: traded(w),
 		Basis: basis(w), Cautions: Cautions(),
 		Advice: advice(w),
 	}

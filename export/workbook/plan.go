@@ -11,7 +11,6 @@ import (
 
 	"batchwright/bom/order"
 	"batchwright/tolerance/bench"
-	"batchwright/tolerance/pick"
 	"batchwright/tolerance/spread"
 )
 
@@ -43,13 +42,14 @@ type Plan struct {
 	Findings   []string // sentences for the first page; verdicts come from Spread
 	Conditions []Condition
 	Order      order.Order
-	Pick       pick.Result
+	Picks      Picks
 	Positions  []Position // in stage order
 	Turns      []bench.Turn
 	Readings   []bench.Reading
 	Spread     spread.Report
 	Drifts     []Drift
 	Compare    *Compare // nil: no such sheet
+	Trade      *Trade   // nil: no such sheet
 	Basis      []Basis
 	Cautions   []string
 

@@ -20,6 +20,7 @@ const (
 	tolerancesSheet = "Tolerances"
 	driftSheet      = "Drift"
 	compareSheet    = "Compare" // only where the plan has one
+	tradeSheet      = "Trade"   // likewise
 	basisSheet      = "Basis"
 	carrierSheet    = "_plan" // never shown
 )
@@ -40,6 +41,7 @@ func Write(w io.Writer, p Plan) error {
 	b.tolerances()
 	b.drift()
 	b.compare()
+	b.trade()
 	b.basis()
 	b.summary(total, verdicts)
 	b.carriers()
@@ -66,8 +68,8 @@ type book struct {
 func newBook(p Plan) *book {
 	b := &book{plan: p, file: excelize.NewFile(), styles: map[look]int{}}
 	b.keep(b.file.SetSheetName("Sheet1", summarySheet))
-	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, tolerancesSheet, driftSheet, compareSheet, basisSheet, carrierSheet} {
-		if name == compareSheet && p.Compare == nil {
+	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, tolerancesSheet, driftSheet, compareSheet, tradeSheet, basisSheet, carrierSheet} {
+		if name == compareSheet && p.Compare == nil || name == tradeSheet && p.Trade == nil {
 			continue
 		}
 		_, err := b.file.NewSheet(name)

@@ -21,7 +21,7 @@ type market struct {
 	lines    []line            // that may be bought
 	lineIDs  map[string]int    // by order.Key
 	takes    []map[int][]int   // of each opening, by line: how many pieces its fittings may take
-	rest     int64             // the money for parts that are not open
+	rest     int64             // the least money for parts that are not open
 	missing  map[string]bool   // references of fixed parts that nobody offers, whatever is chosen
 	crowded  bool              // some lines draw on one stock
 }
@@ -49,13 +49,7 @@ func newMarket(b *build.Build) (*market, error) {
 	for _, p := range fixed {
 		m.lines[m.know(p)].fixed++
 	}
-	alone := m.order(fixed)
-	m.rest = int64(alone.Total)
-	for _, l := range alone.Unoffered {
-		for _, ref := range l.Refs {
-			m.missing[ref] = true
-		}
-	}
+	m.priceFixed(fixed)
 	for _, o := range b.Openings {
 		all := b.Fittings(o)
 		if len(all) == 0 {
@@ -74,6 +68,23 @@ func newMarket(b *build.Build) (*market, error) {
 	}
 	m.crowded = m.shareShelves()
 	return m, nil
+}
+
+// priceFixed notes which fixed parts nobody offers, and what the others come to,
+// each line as if it had its stock to itself: a choice may leave a line more of
+// it than it has without one, by making another line large enough to be bought
+// elsewhere.
+func (m *market) priceFixed(fixed []part.Part) {
+	for _, l := range m.order(fixed).Unoffered {
+		for _, ref := range l.Refs {
+			m.missing[ref] = true
+		}
+	}
+	for id := range m.lines {
+		if !m.missing[m.lines[id].part.Ref] {
+			m.rest += m.price(id, m.lines[id].fixed).money
+		}
+	}
 }
 
 // note adds what a fitting takes of each line.

@@ -50,7 +50,7 @@ func TestPicked(t *testing.T) {
 		Binding: "warm drift: without it the order would be 17.68 cheaper, to first order. A tenth tighter (±2.7 kHz) the order would cost 104.58, 4.58 more.",
 		Checks:  []string{"warm drift: 99.6 % of the units to first order, 98.8 % in simulation, which counts."},
 		Alternates: []workbook.Alternate{
-			{Refs: "L1", Line: "drum-choke 1 mH ±5 %", Instead: "drum-choke 1 mH ±5 % and drum-choke 1 mH ±5 % in parallel", More: -0.81, Drifts: "warm drift within 2.60 kHz instead of 2.40 kHz"},
+			{Refs: "L1", Line: "drum-choke 1 mH ±5 %", Instead: "drum-choke 1 mH ±5 % ∥ drum-choke 1 mH ±5 %", More: -0.81, Drifts: "warm drift within 2.60 kHz instead of 2.40 kHz"},
 			{Refs: "R1, R2", Line: "metal-film-100 10 kΩ ±1 %", Instead: "nothing else was found that meets every target", More: math.NaN()},
 		},
 		Note: AlternatesNote(w),

@@ -77,7 +77,7 @@ func TestNoAlternates(t *testing.T) {
 func TestPicksOnSummary(t *testing.T) {
 	p := sample(24)
 	f := reopen(t, saved(t, p))
-	for _, want := range []string{"c0g 180 pF ±5 % and polystyrene 39 pF ±2.5 % in parallel, mixed lots", p.Picks.Proof, p.Picks.Binding, p.Picks.Checks[0], "Proof", "What binds", "First order"} {
+	for _, want := range []string{"c0g 180 pF ±5 % ∥ polystyrene 39 pF ±2.5 %, mixed lots", p.Picks.Proof, p.Picks.Binding, p.Picks.Checks[0], "Proof", "What binds", "First order"} {
 		if found, err := f.SearchSheet(summarySheet, want); len(found) != 1 || err != nil {
 			t.Errorf("%q stands %d times on the first page, want once", want, len(found))
 		}

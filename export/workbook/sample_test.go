@@ -70,7 +70,7 @@ func sampleOrder(units int) order.Order {
 func samplePicks() Picks {
 	return Picks{
 		Choices: []Picked{
-			{Refs: "C1–C4", Part: "c0g 180 pF ±5 % and polystyrene 39 pF ±2.5 % in parallel, mixed lots", UnitCost: 1.256, Why: "Its −120 ppm/K takes back two thirds of the coil's +180 ppm/K; C0G of the same price drifts 61 Hz where 40 Hz is asked."},
+			{Refs: "C1–C4", Part: "c0g 180 pF ±5 % ∥ polystyrene 39 pF ±2.5 %, mixed lots", UnitCost: 1.256, Why: "Its −120 ppm/K takes back two thirds of the coil's +180 ppm/K; C0G of the same price drifts 61 Hz where 40 Hz is asked."},
 			{Refs: "L1, L2", Part: "drum-choke 1.80 mH ±5 %", UnitCost: 0.97, Why: "With 10 % the tuner runs short on 3.1 % of the units."},
 		},
 		Proof:   "Proved: nothing cheaper meets the targets. 20736 combinations, 4112 judged, 7 simulated; 3 dominated options and 12 partial combinations ruled out unseen.",

@@ -26,7 +26,7 @@ func sampleTrade() *Trade {
 		{210.38, 7.46, 73.151, 79.917, 0.4980, "C6–C9 polystyrene 220 pF ±5 %"},
 		{212.98, 7.46, 49.229, 54.601, 0.7654, "L1, L2 powdered-iron-toroid 1.8 mH ±5 %; C6–C9 c0g 220 pF ±5 %"},
 		{217.48, 7.58, 49.134, 53.657, 0.7684, "C6–C9 c0g 220 pF ±2 %"},
-		{222.05, 7.756, 49.134, 52.543, 0.7703, "C6–C9 c0g 180 pF ±5 % and polystyrene 39 pF ±2.5 % in parallel, mixed lots"},
+		{222.05, 7.756, 49.134, 52.543, 0.7703, "C6–C9 c0g 180 pF ±5 % ∥ polystyrene 39 pF ±2.5 %, mixed lots"},
 		{222.33, 7.868, 40.352, 41.343, 0.8755, "C6–C9 polypropylene 220 pF ±5 %"},
 		{222.38, 7.86, 24.234, 27.421, 0.98761, "C6–C9 polystyrene 220 pF ±5 %"},
 		{227.77, 8.056, 24.217, 26.568, 0.9901, "C6–C9 polystyrene 220 pF ±2.5 %"},
@@ -80,7 +80,7 @@ func TestTradeRead(t *testing.T) {
 		t.Fatal("no row of the cheapest")
 	}
 	for i, want := range map[int][]string{
-		5:  {"222.05", "7.756", "49.1", "52.5", "77.03%", "MISSED", "C6–C9 c0g 180 pF ±5 % and polystyrene 39 pF ±2.5 % in parallel, mixed lots"},
+		5:  {"222.05", "7.756", "49.1", "52.5", "77.03%", "MISSED", "C6–C9 c0g 180 pF ±5 % ∥ polystyrene 39 pF ±2.5 %, mixed lots"},
 		7:  {"222.38", "7.86", "24.2", "27.4", "98.761%", "met", "C6–C9 polystyrene 220 pF ±5 %"},
 		9:  {"240.77", "8.556", "24.2", "26.1", "99.99%", "met", "C6–C9 polystyrene 220 pF ±2.5 %, mixed lots"}, // never 100 %
 		10: {"254.63", "9.06", "24.2", "26", "100%", "met", "C6–C9 polystyrene 220 pF ±1 %"},

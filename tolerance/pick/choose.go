@@ -18,6 +18,7 @@ type Options struct {
 	Progress   func(text string) // nil: not called
 
 	limits exact.Limits // smaller ones, for tests
+	few    int          // combinations up to which none is bounded by effects that add up; 0: manyChoices
 }
 
 // Choose fills a build's openings with the cheapest parts by its price book
@@ -235,9 +236,13 @@ func (s *searching) run() (exact.Outcome, error) {
 
 // few says whether every combination could be judged by its own picture.
 func (s *searching) few() bool {
+	most := s.Options.few
+	if most == 0 {
+		most = manyChoices
+	}
 	n := 1
 	for _, kept := range s.kept {
-		if n *= len(kept); n > manyChoices {
+		if n *= len(kept); n > most {
 			return false
 		}
 	}

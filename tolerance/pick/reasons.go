@@ -19,6 +19,9 @@ func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 	r.ProvedCheapest, r.Bound = found.Proved && found.Choice != nil, offer.Money(found.Bound)
 	r.Candidates, r.Examined, r.Simulated = found.Candidates, found.Examined, found.Simulated
 	r.CutByDominance, r.CutByBound = found.Dominated, found.CutByBound
+	if found.Proved && !c.newSearch(c.asked(), nil).few() {
+		r.Provided = provided
+	}
 	choice := found.Choice
 	switch {
 	case choice == nil:
@@ -81,15 +84,22 @@ func (c *chooser) report(r *Result, choice []int) error {
 
 // outOfReach says which target no choice meets, and how near the best comes.
 func (c *chooser) outOfReach(found exact.Outcome) string {
-	if found.Nearest == nil {
+	if found.Nearest == nil && !found.Proved {
 		return "the search ended before any choice was judged"
 	}
+	if found.Nearest == nil {
+		return "no combination can be bought: the price book has not enough for all the openings together"
+	}
+	early := ""
+	if !found.Proved {
+		early = "the search ended early; so far "
+	}
 	if text := c.answers[fmt.Sprint(found.Nearest)]; text != "" {
-		return "no choice meets every target in simulation; the one nearest meets " + text
+		return early + "no choice meets every target in simulation; the one nearest meets " + text
 	}
 	worst := found.NearestVerdict.Worst
 	t := c.build.Targets[c.demands[worst].target]
-	text := fmt.Sprintf("no choice meets the target %q (%s)", t.Name, t.Asked)
+	text := fmt.Sprintf("%sno choice meets the target %q (%s)", early, t.Name, t.Asked)
 	if !found.NearestVerdict.Meets {
 		text += "; the nearest, to first order, " + c.predicted(found.Nearest, worst)
 	}

@@ -44,7 +44,7 @@ func TestPicked(t *testing.T) {
 	want := workbook.Picks{
 		Choices: []workbook.Picked{
 			{Refs: "R1, R2", Part: "metal-film-100 10 kΩ ±1 %", UnitCost: 0.045, Why: "the cheapest that is sold"},
-			{Refs: "L1", Part: "drum-choke 1 mH ±5 % and ferrite-pot 22 uH ±10 % in series, mixed lots", UnitCost: 0.97},
+			{Refs: "L1", Part: "drum-choke 1 mH ±5 % + ferrite-pot 22 uH ±10 %, mixed lots", UnitCost: 0.97},
 		},
 		Proof:   ProofSentence(*w.Pick),
 		Binding: "warm drift: without it the order would be 17.68 cheaper, to first order. A tenth tighter (±2.7 kHz) the order would cost 104.58, 4.58 more.",

@@ -123,7 +123,10 @@ func (c *chooser) reports(t *trial, choice []int) ([]spread.TargetReport, error)
 // be met, at last on those of the report.
 func (c *chooser) try(m *build.Model, targets []int) (outcome, error) {
 	for _, units := range []int{240, 960, 3840} {
-		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, units)}
+		if quickGain*units > c.Units {
+			break // it would take about as long as the report's own
+		}
+		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: units}
 		came, err := c.simulate(m, targets, o, func(t spread.TargetReport) bool {
 			upper := float64(t.ShareInterval[1])
 			return upper+doubt*(upper-float64(t.Share)) >= t.Demand // it may still do
@@ -135,6 +138,10 @@ func (c *chooser) try(m *build.Model, targets []int) (outcome, error) {
 	o := spread.Options{Seed: c.Seed, Units: c.Units}
 	return c.simulate(m, targets, o, func(t spread.TargetReport) bool { return t.Met })
 }
+
+// quickGain is how many times more units the report must have for a quick
+// simulation to be worth its time.
+const quickGain = 4
 
 // quickSeed keeps the draws of the quick simulations apart from those that
 // confirm.

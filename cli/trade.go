@@ -23,8 +23,12 @@ func tradeFlags() []cli.Flag {
 	return []cli.Flag{
 		&cli.StringFlag{Name: "within", Usage: "not the cheapest but the steadiest for which the whole order costs at most `PRICE`"},
 		&cli.BoolFlag{Name: "frontier", Usage: "every efficient trade between the order's price and steadiness", DisableDefaultText: true},
-		&cli.StringFlag{Name: "target", Usage: "whose steadiness is meant: the `NAME` of a target on a change; the first if left out"},
+		targetFlag(),
 	}
+}
+
+func targetFlag() cli.Flag {
+	return &cli.StringFlag{Name: "target", Usage: "whose steadiness is meant: the `NAME` of a target on a change; the first if left out"}
 }
 
 // tradeChoice is what --within, --frontier and --target ask for.
@@ -50,7 +54,7 @@ func readTrade(c *cli.Context, b *build.Build) (tradeChoice, error) {
 	case t.frontier && c.IsSet("write"):
 		return t, usage("--write beside --frontier: expected a single choice to write, as --within finds")
 	case !t.frontier && t.within == 0 && c.IsSet("target"):
-		return t, usage("--target without --within or --frontier: the cheapest parts meet every target")
+		return t, usage("--target without --frontier or --within: the cheapest parts meet every target")
 	case !t.frontier && t.within == 0:
 		return t, nil
 	}
@@ -76,24 +80,28 @@ func (t *tradeChoice) findTarget(b *build.Build) error {
 
 // trade prints every efficient trade.
 func (p *program) trade(c *cli.Context, b *build.Build, t tradeChoice, o pick.Options) error {
-	g := p.newProgress()
-	defer g.stop()
-	g.start("trading")
-	o.Progress = g.say
 	if !c.IsSet("simulate") {
 		o.Units = tradeSimulate
 	}
-	found, err := pick.Efficient(c.Context, b, t.target, math.MaxInt64, o)
+	found, err := p.efficient(c, b, t, o)
 	if err != nil {
 		return err
 	}
-	g.stop()
 	result := plan.NewTrade(b, o.Seed, o.Units, found)
 	if c.Bool("json") {
 		return p.json(result)
 	}
 	p.showTrade(result)
 	return nil
+}
+
+// efficient finds every efficient trade.
+func (p *program) efficient(c *cli.Context, b *build.Build, t tradeChoice, o pick.Options) (*pick.Trade, error) {
+	g := p.newProgress()
+	defer g.stop()
+	g.start("trading")
+	o.Progress = g.say
+	return pick.Efficient(c.Context, b, t.target, math.MaxInt64, o)
 }
 
 // steadiest picks the steadiest parts at a price.

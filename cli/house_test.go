@@ -25,7 +25,7 @@ var floors = [][]string{
 	{"tolerance/build"},
 	{"tolerance/spread"},
 	{"tolerance/pick", "tolerance/compare", "tolerance/bench"},
-	{"export/table", "export/workbook"},
+	{"export/table", "export/workbook", "export/chart"},
 	{"export/plan"},
 	{"cli"},
 	{"cli/batchwright"},

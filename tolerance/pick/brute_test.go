@@ -262,3 +262,13 @@ func compareWithAll(t *testing.T, b *build.Build, o Options) bool {
 	}
 	return true
 }
+
+// TestPicturesOfPairs compares the linear picture of every choice of the same
+// builds with one made of the choice compiled afresh.
+func TestPicturesOfPairs(t *testing.T) {
+	for _, v := range bruteBuilds {
+		t.Run(v.name, func(t *testing.T) {
+			comparePictures(t, chooserOf(t, readAt(t, fmt.Sprintf(v.text, v.limits[0]), v.prices), Options{}))
+		})
+	}
+}

@@ -90,7 +90,7 @@ func alternatesByForce(t *testing.T, c *chooser, list [][]int, choice []int) (al
 // choice without it, cheapest first.
 func TestAlternatesByForce(t *testing.T) {
 	found, none := 0, 0
-	texts := map[string][2]string{"tanks": {tanks("80 Hz"), ""}, "tight tanks": {tanks("40 Hz"), ""}, "merging": {merging(), ""}}
+	texts := map[string][2]string{"tanks": {tanks("80 Hz"), ""}, "tight tanks": {tanks("40 Hz"), ""}, "merging": {merging(), ""}, "grades": {grades, closeIsCheap}}
 	for _, v := range bruteBuilds {
 		for _, limit := range v.limits {
 			texts[v.name+" "+limit] = [2]string{fmt.Sprintf(v.text, limit), v.prices}

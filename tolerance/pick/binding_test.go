@@ -4,6 +4,8 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
+	"strings"
 	"testing"
 
 	"batchwright/bom/offer"
@@ -82,7 +84,9 @@ func byHand(t build.Target) build.Target {
 // TestBindingByForce compares with dropping and tightening among all choices.
 func TestBindingByForce(t *testing.T) {
 	bound, out := 0, 0
-	for _, v := range bruteBuilds {
+	builds := slices.Clone(bruteBuilds)
+	builds = append(builds, bruteBuild{"tanks", strings.Replace(strings.ReplaceAll(tanks("LIMIT"), "%", "%%"), "LIMIT", "%s", 1), "", []string{"250 Hz", "200 Hz", "130 Hz", "110 Hz", "90 Hz", "70 Hz"}})
+	for _, v := range builds {
 		for _, limit := range v.limits {
 			t.Run(v.name+" "+limit, func(t *testing.T) {
 				b, o := readAt(t, fmt.Sprintf(v.text, limit), v.prices), Options{Seed: 3, Units: 1200}

@@ -101,12 +101,14 @@ func chosenIn(t testing.TB, c *chooser, r *Result) []int {
 	return choice
 }
 
-// varied builds, each small enough for every choice to be simulated, with the
-// limits that are put in.
-var bruteBuilds = []struct {
+// A bruteBuild is small enough for every choice to be simulated, with each of
+// the limits that are put in.
+type bruteBuild struct {
 	name, text, prices string
 	limits             []string
-}{
+}
+
+var bruteBuilds = []bruteBuild{
 	{"pairs of capacitors", `
 build: pairs
 units: 12

@@ -101,12 +101,14 @@ func chosenIn(t testing.TB, c *chooser, r *Result) []int {
 	return choice
 }
 
-// varied builds, each small enough for every choice to be simulated, with the
-// limits that are put in.
-var bruteBuilds = []struct {
+// A bruteBuild is small enough for every choice to be simulated, with each of
+// the limits that are put in.
+type bruteBuild struct {
 	name, text, prices string
 	limits             []string
-}{
+}
+
+var bruteBuilds = []bruteBuild{
 	{"pairs of capacitors", `
 build: pairs
 units: 12
@@ -261,4 +263,14 @@ func compareWithAll(t *testing.T, b *build.Build, o Options) bool {
 		t.Errorf("%d candidates, %+v", r.Candidates, r.Targets)
 	}
 	return true
+}
+
+// TestPicturesOfPairs compares the linear picture of every choice of the same
+// builds with one made of the choice compiled afresh.
+func TestPicturesOfPairs(t *testing.T) {
+	for _, v := range bruteBuilds {
+		t.Run(v.name, func(t *testing.T) {
+			comparePictures(t, chooserOf(t, readAt(t, fmt.Sprintf(v.text, v.limits[0]), v.prices), Options{}))
+		})
+	}
 }

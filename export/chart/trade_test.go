@@ -8,11 +8,14 @@ import (
 	"io"
 	"math"
 	"regexp"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
+	"golang.org/x/image/font/sfnt"
+	"golang.org/x/image/math/fixed"
 	"gonum.org/v1/plot/plotter"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
@@ -144,9 +147,14 @@ func TestSteps(t *testing.T) {
 // points, and of one with the limit right above it and a step down beside it.
 func TestLabelsApart(t *testing.T) {
 	edge := pick.Trade{Unit: "Hz", Points: []pick.TradePoint{
-		{Total: 1_800_000, Predicted: 60, Simulated: 60}, {Total: 2_200_000, Predicted: 29, Simulated: 29}, {Total: 2_202_000, Predicted: 5, Simulated: 5}, {Total: 2_500_000, Predicted: 4, Simulated: 4},
+		{Total: 1_800_000, Predicted: 60, Simulated: 60}, {Total: 2_200_000, Predicted: 29, Simulated: 29}, {Total: 2_224_000, Predicted: 5, Simulated: 5}, {Total: 2_500_000, Predicted: 4, Simulated: 4},
 	}}
-	for name, trade := range map[string]pick.Trade{"crowded": crowded(), "edge": edge} {
+	dear := edge // whose money is too long for the margin on the right
+	dear.Points = slices.Clone(edge.Points)
+	for i := range dear.Points {
+		dear.Points[i].Total *= 1000
+	}
+	for name, trade := range map[string]pick.Trade{"crowded": crowded(), "edge": edge, "dear": dear} {
 		d := newTradeDrawing(trade, Frame{Limit: 30})
 		p, l := d.plot(), d.labels()
 		c := p.DataCanvas(draw.NewCanvas(vgsvg.New(wide, high), wide, high-100))
@@ -268,6 +276,40 @@ func TestCut(t *testing.T) {
 	got := cut(strings.Repeat("W", 400), style, 200)
 	if w := style.Width(got); !strings.HasSuffix(got, "W…") || w > 200 || w+style.Width("W") <= 200 {
 		t.Errorf("%q is %v wide", got, w)
+	}
+}
+
+// An outline is as large as the font says: an H of 10 points from its left end
+// at 10 and its foot at 20, against the box that the font gives for it.
+func TestOutlineSize(t *testing.T) {
+	style := letters(10, false)
+	face := style.Handler.Cache().Lookup(style.Font, style.Font.Size)
+	var buffer sfnt.Buffer
+	glyph, err := face.Face.GlyphIndex(&buffer, 'H')
+	if err != nil {
+		t.Fatal(err)
+	}
+	box, _, err := face.Face.GlyphBounds(&buffer, glyph, fixed.I(10), 0) // in 64ths of a point, y down
+	if err != nil {
+		t.Fatal(err)
+	}
+	segments, err := face.Face.LoadGlyph(&buffer, glyph, fixed.Int26_6(face.Face.UnitsPerEm()), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	got := [4]float64{math.Inf(1), math.Inf(1), math.Inf(-1), math.Inf(-1)}
+	for _, c := range trace(nil, segments, vg.Point{X: 10, Y: 20}, 10/vg.Length(face.Face.UnitsPerEm())) {
+		if c.Type != vg.CloseComp {
+			x, y := c.Pos.X.Points(), c.Pos.Y.Points()
+			got = [4]float64{min(got[0], x), min(got[1], y), max(got[2], x), max(got[3], y)}
+		}
+	}
+	want := [4]float64{10 + float64(box.Min.X)/64, 20 - float64(box.Max.Y)/64, 10 + float64(box.Max.X)/64, 20 - float64(box.Min.Y)/64}
+	for i := range want {
+		if math.Abs(got[i]-want[i]) > 1.0/64 {
+			t.Errorf("the H spans %.3f, want %.3f", got, want)
+			break
+		}
 	}
 }
 

@@ -1,14 +1,17 @@
 package cli
 
 import (
+	"bytes"
 	"context"
 	"fmt"
 	"math"
+	"strings"
 
 	"github.com/urfave/cli/v2"
 
 	"batchwright/bom/offer"
 	"batchwright/bom/order"
+	"batchwright/export/chart"
 	"batchwright/export/plan"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick"
@@ -23,6 +26,7 @@ func tradeFlags() []cli.Flag {
 	return []cli.Flag{
 		&cli.StringFlag{Name: "within", Usage: "not the cheapest but the steadiest for which the whole order costs at most `PRICE`"},
 		&cli.BoolFlag{Name: "frontier", Usage: "every efficient trade between the order's price and steadiness", DisableDefaultText: true},
+		&cli.StringFlag{Name: "chart", Usage: "with --frontier: draw the trade into a new SVG `FILE`"},
 		targetFlag(),
 	}
 }
@@ -51,6 +55,10 @@ func readTrade(c *cli.Context, b *build.Build) (tradeChoice, error) {
 	switch {
 	case t.frontier && t.within > 0:
 		return t, usage("--within beside --frontier: expected one of the two")
+	case !t.frontier && c.IsSet("chart"):
+		return t, usage("--chart without --frontier: only the trade is drawn")
+	case c.IsSet("chart") && unused(c.String("chart")) != nil:
+		return t, unused(c.String("chart")) // before any work is done
 	case t.frontier && c.IsSet("write"):
 		return t, usage("--write beside --frontier: expected a single choice to write, as --within finds")
 	case !t.frontier && t.within == 0 && c.IsSet("target"):
@@ -88,11 +96,30 @@ func (p *program) trade(c *cli.Context, b *build.Build, t tradeChoice, o pick.Op
 		return err
 	}
 	result := plan.NewTrade(b, o.Seed, o.Units, found)
+	if path := c.String("chart"); path != "" {
+		if err := drawTrade(path, b, result); err != nil {
+			return err
+		}
+		result.Files = append(result.Files, path)
+	}
 	if c.Bool("json") {
 		return p.json(result)
 	}
 	p.showTrade(result)
 	return nil
+}
+
+// drawTrade writes a drawing of the trade as a new file.
+func drawTrade(path string, b *build.Build, t plan.Trade) error {
+	f := chart.Frame{Title: b.Title, Currency: t.Currency, Limit: plan.TradeLimit(b, t.Target)}
+	if note := plan.TradeCaution(t); note != "" {
+		f.Notes = append(f.Notes, note)
+	}
+	var drawing bytes.Buffer
+	if err := chart.Trade(&drawing, t.Trade, f); err != nil {
+		return missed("%v", err)
+	}
+	return writeNew(path, drawing.Bytes())
 }
 
 // efficient finds every efficient trade.
@@ -140,4 +167,7 @@ func (p *program) showTrade(t plan.Trade) {
 	p.section(fmt.Sprintf("%s against money", t.Target), []string{"order" + currency, "1st order", "simulated", "comply", "target", "with (below: instead)"}, rows)
 	p.paragraph("read so", plan.TradeSentence(t))
 	p.paragraph("mind", plan.TradeCaution(t))
+	if len(t.Files) > 0 {
+		p.line("\nwrote %s", strings.Join(t.Files, ", "))
+	}
 }

@@ -21,13 +21,15 @@ type Trade struct {
 	Currency      string `json:"currency"`
 	Book          string `json:"price_book"`
 	Demonstration bool   `json:"demonstration"`
+
+	Files []string `json:"files"` // written
 }
 
 // NewTrade joins a trade and what it is of.
 func NewTrade(b *build.Build, seed uint64, simulated int, t *pick.Trade) Trade {
 	return Trade{
 		Build: b.Title, Seed: seed, Units: b.Units, Simulated: simulated, Trade: *t,
-		Currency: b.Book.Currency, Book: b.Book.Name, Demonstration: b.Book.Demonstration,
+		Currency: b.Book.Currency, Book: b.Book.Name, Demonstration: b.Book.Demonstration, Files: []string{},
 	}
 }
 

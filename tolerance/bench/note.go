@@ -8,6 +8,7 @@ import (
 
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/build"
+	"batchwright/tolerance/spread"
 )
 
 // note is what the instrument does to a reading, and whether what is there is
@@ -20,13 +21,14 @@ func (s *sheet) note(i int) string {
 		words = append(words, text+s.buffered(i))
 	}
 	least := p.Instrument.MinimumLevel
-	volts := func(v float64) string { return quantity.Format(v, quantity.Volt, 3) }
+	enough := quantity.Format(least, quantity.Volt, 0)
+	volts := func(v spread.Figure) string { return quantity.Format(float64(v), quantity.Volt, 3) }
 	switch {
 	case !p.Levelled:
 	case float64(x.Level) < least:
-		words = append(words, fmt.Sprintf("the %s needs a peak of %s, and a nominal unit has %s here", p.Instrument.Name, volts(least), volts(float64(x.Level))))
+		words = append(words, fmt.Sprintf("the %s needs a peak of %s, and a nominal unit has %s here", p.Instrument.Name, enough, volts(x.Level)))
 	case float64(x.LevelLow) < least:
-		words = append(words, fmt.Sprintf("the %s needs a peak of %s, and a weak unit has as little as %s here", p.Instrument.Name, volts(least), volts(float64(x.LevelLow))))
+		words = append(words, fmt.Sprintf("the %s needs a peak of %s, and a weak unit has as little as %s here", p.Instrument.Name, enough, volts(x.LevelLow)))
 	}
 	return strings.Join(words, "; ")
 }

@@ -118,11 +118,11 @@ func needs(b *build.Build, condition int) string {
 		switch {
 		case is == was:
 		case v.Name == build.Temperature && math.Abs(is-was) > easyWarmth:
-			words = append(words, fmt.Sprintf("%s, %s from the bench", quantity.Format(is, v.Unit, 3), quantity.Format(is-was, quantity.Kelvin, 3)))
+			words = append(words, fmt.Sprintf("%s, %s from the bench", quantity.Format(is, v.Unit, 0), quantity.Format(math.Round((is-was)*1e6)/1e6, quantity.Kelvin, 0)))
 		case v.Name == build.Humidity:
-			words = append(words, quantity.Format(is, v.Unit, 3)+" relative humidity")
+			words = append(words, quantity.Format(is, v.Unit, 0)+" relative humidity")
 		case v.Name == build.Age:
-			words = append(words, "an age of "+quantity.Format(is, v.Unit, 3))
+			words = append(words, "an age of "+quantity.Format(is, v.Unit, 0))
 		}
 	}
 	return strings.Join(words, "; ")

@@ -95,20 +95,13 @@ func (w window) tooCoarse() string {
 	return text + fmt.Sprintf("an accuracy of %s with the same floor would do", quantity.Format(math.Floor(low/digit*(1+1e-12))*digit, unit, 2))
 }
 
-// standard is the standard uncertainty of a reading within the window: the
-// larger of those at its ends.
-func (w window) standard() float64 {
-	l := w.tolerated()
-	return math.Max(w.guard(w.instrument, float64(l.Low)), w.guard(w.instrument, float64(l.High))) / 2
-}
-
 // specificRisk is the larger of the chances of missing the target at either
 // end of what is accepted.
 func (w window) specificRisk(accepted spread.Limits) float64 {
 	t, most := w.tolerated(), 0.0
-	for _, edge := range []spread.Figure{accepted.Low, accepted.High} {
-		if !math.IsInf(float64(edge), 0) {
-			most = math.Max(most, 1-Conformance(float64(edge), w.standard(), float64(t.Low), float64(t.High)))
+	for _, end := range [][2]spread.Figure{{t.Low, accepted.Low}, {t.High, accepted.High}} {
+		if limit, edge := float64(end[0]), float64(end[1]); !math.IsInf(edge, 0) {
+			most = math.Max(most, 1-Conformance(edge, w.guard(w.instrument, limit)/2, float64(t.Low), float64(t.High)))
 		}
 	}
 	return most
@@ -122,5 +115,7 @@ func (w window) globalRisks(g *spread.Histogram, accepted spread.Limits) Risks {
 	}
 	low, high := back(accepted.Low), back(accepted.High)
 	return GlobalRisks(g, spread.Limits{Low: spread.Figure(w.low), High: spread.Figure(w.high)},
-		spread.Limits{Low: min(low, high), High: max(low, high)}, w.standard()/math.Abs(w.loading.Scale))
+		spread.Limits{Low: min(low, high), High: max(low, high)}, func(value float64) float64 {
+			return w.guard(w.instrument, w.loading.Reading(value)) / 2 / math.Abs(w.loading.Scale)
+		})
 }

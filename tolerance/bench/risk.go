@@ -22,15 +22,15 @@ type Risks struct{ Consumer, Producer float64 }
 
 // GlobalRisks are those of units that scatter as the histogram says, tolerated
 // between the limits and accepted where they read between others, read with a
-// normal error of standard uncertainty u (JCGM 106:2012, 9.5.2):
+// normal error of standard uncertainty u, which may depend on the value (JCGM 106:2012, 9.5.2):
 //
 //	R_C = ∫_{outside} g(η)·P(accepted | η) dη, R_P = ∫_{inside} g(η)·(1 − P(accepted | η)) dη
 //
 // with P(accepted | η) = Φ((high − η)/u) − Φ((low − η)/u) of the accepted
 // limits. Within a bin g is even, a bin across a limit is cut there, and P is
-// integrated exactly. Units beyond all numbers neither conform nor are
+// integrated exactly, with the u of its middle. Units beyond all numbers neither conform nor are
 // accepted.
-func GlobalRisks(g *spread.Histogram, tolerated, accepted spread.Limits, u float64) Risks {
+func GlobalRisks(g *spread.Histogram, tolerated, accepted spread.Limits, u func(value float64) float64) Risks {
 	var r Risks
 	low, high := float64(tolerated.Low), float64(tolerated.High)
 	for bin, n := range g.Bins() {
@@ -40,8 +40,9 @@ func GlobalRisks(g *spread.Histogram, tolerated, accepted spread.Limits, u float
 			if bin.High > bin.Low {
 				weight *= (piece.High - piece.Low) / (bin.High - bin.Low)
 			}
-			p := meanAccepted(piece, accepted, u)
-			if middle := (piece.Low + piece.High) / 2; middle >= low && middle <= high {
+			middle := (piece.Low + piece.High) / 2
+			p := meanAccepted(piece, accepted, u(middle))
+			if middle >= low && middle <= high {
 				r.Producer += weight * (1 - p)
 			} else {
 				r.Consumer += weight * p

@@ -27,6 +27,8 @@ func balls(n int) *spread.Histogram {
 	return h
 }
 
+func constant(u float64) func(float64) float64 { return func(float64) float64 { return u } }
+
 func within(t *testing.T, what string, got, want, relative float64) {
 	t.Helper()
 	if !(math.Abs(got-want) <= relative*math.Abs(want)) {
@@ -40,13 +42,13 @@ func within(t *testing.T, what string, got, want, relative float64) {
 // the two integrals.
 func TestGlobalRisksOfBallBearings(t *testing.T) {
 	h := balls(400_000)
-	free := GlobalRisks(h, limits(math.Inf(-1), 2), limits(math.Inf(-1), 2), 0.25)
+	free := GlobalRisks(h, limits(math.Inf(-1), 2), limits(math.Inf(-1), 2), constant(0.25))
 	within(t, "consumer's risk", free.Consumer, 0.0080191119, 2e-4)
 	within(t, "producer's risk", free.Producer, 0.0174445692, 2e-4)
-	guarded := GlobalRisks(h, limits(math.Inf(-1), 2), limits(math.Inf(-1), 1.6718287716), 0.25)
+	guarded := GlobalRisks(h, limits(math.Inf(-1), 2), limits(math.Inf(-1), 1.6718287716), constant(0.25))
 	within(t, "guarded consumer's risk", guarded.Consumer, 0.001, 5e-4)
 	within(t, "guarded producer's risk", guarded.Producer, 0.0754938763, 2e-4)
-	if none := GlobalRisks(h, limits(math.Inf(-1), 2), limits(math.Inf(-1), 2), 1e-9); none.Consumer+none.Producer > 1e-6 {
+	if none := GlobalRisks(h, limits(math.Inf(-1), 2), limits(math.Inf(-1), 2), constant(1e-9)); none.Consumer+none.Producer > 1e-6 {
 		t.Errorf("a perfect instrument errs: %+v", none)
 	}
 }
@@ -75,7 +77,7 @@ func TestGlobalRisksAgainstADoubleSum(t *testing.T) {
 	}
 	h := spread.NewHistogram(0)
 	h.AddColumn(column, nil)
-	got := GlobalRisks(h, limits(-1.5, 1.2), limits(-1.1, 0.8), u)
+	got := GlobalRisks(h, limits(-1.5, 1.2), limits(-1.1, 0.8), constant(u))
 	within(t, "consumer's risk", got.Consumer, want.Consumer, 1e-3)
 	within(t, "producer's risk", got.Producer, want.Producer, 1e-3)
 }

@@ -160,18 +160,15 @@ trims:`
 	}
 }
 
-// A reading's risks: those of the divider's window are small where the limits
-// are far out, and the specific risk at its edge is Φ(−2) on the side that the
-// guard band is that of the larger uncertainty.
+// A reading's risks: the divider's lower limit cuts through the units, and the
+// specific risk at an edge is Φ(−2).
 func TestReadingRisks(t *testing.T) {
 	s := measured(t, 20_000, "  - {name: half, output: half.voltage, at: [bench], between: [5.97 V, 6.2 V]}\n")
 	r := find(t, s, "half.voltage")
 	if r.Accept == nil || !(r.ConsumerRisk > 0 && r.ConsumerRisk < 0.05) || !(r.ProducerRisk > 0.1 && r.ProducerRisk < 1) {
 		t.Errorf("accept %+v, risks %g and %g", r.Accept, float64(r.ConsumerRisk), float64(r.ProducerRisk))
 	}
-	if !(r.SpecificRisk >= 0.0227 && r.SpecificRisk < 0.03) {
-		t.Errorf("specific risk %g", float64(r.SpecificRisk))
-	}
+	near(t, "specific risk", r.SpecificRisk, 0.022750132, 1e-6)
 	if b := find(t, s, "b.level"); !math.IsNaN(float64(b.ConsumerRisk)) {
 		t.Errorf("a risk of a window that there is none of: %g", float64(b.ConsumerRisk))
 	}

@@ -34,6 +34,7 @@ type Work struct {
 	Drifts []workbook.Drift
 
 	Compared *compare.Result // nil: nothing was compared
+	Cards    bool            // a page for every unit is wanted
 }
 
 // Digest identifies a plan: the SHA-256 of the build file and of all else that
@@ -55,7 +56,7 @@ func Compose(w Work) workbook.Plan {
 		Conditions: conditions(w.Build),
 		Order:      w.Order, Pick: *w.Pick,
 		Positions: positions(w),
-		Turns:     w.Sheet.Turns, Readings: w.Sheet.Readings,
+		Turns:     w.Sheet.Turns, Readings: w.Sheet.Readings, Samples: w.Sheet.Samples, Cards: w.Cards,
 		Spread: *w.Report, Drifts: w.Drifts, Compare: compared(w.Compared),
 		Basis: basis(w), Cautions: Cautions(),
 		Advice: advice(w),

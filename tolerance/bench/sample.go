@@ -114,11 +114,16 @@ func reads(m *build.Model, s build.Sample, name build.OutputName) (i build.Instr
 func needs(b *build.Build, condition int) string {
 	var words []string
 	for j, v := range b.Variables {
+		warmer := "colder"
 		is, was := b.Conditions[condition].Values[j], b.Conditions[0].Values[j]
+		if is > was {
+			warmer = "warmer"
+		}
 		switch {
 		case is == was:
 		case v.Name == build.Temperature && math.Abs(is-was) > easyWarmth:
-			words = append(words, fmt.Sprintf("%s, %s from the bench", quantity.Format(is, v.Unit, 0), quantity.Format(math.Round((is-was)*1e6)/1e6, quantity.Kelvin, 0)))
+			words = append(words, fmt.Sprintf("%s, %s %s than the bench", quantity.Format(is, v.Unit, 0),
+				quantity.Format(math.Round(math.Abs(is-was)*1e6)/1e6, quantity.Kelvin, 0), warmer))
 		case v.Name == build.Humidity:
 			words = append(words, quantity.Format(is, v.Unit, 0)+" relative humidity")
 		case v.Name == build.Age:

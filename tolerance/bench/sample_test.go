@@ -51,7 +51,7 @@ const benchLine = "conditions: {bench: {temperature: 25 °C, supply: 12 V}}"
 // not: of 10 units ⌈√10⌉ + 1 = 5, 1 in 2.
 func TestSampleConditions(t *testing.T) {
 	s := measured(t, 100, "  - {name: half, output: half.voltage, at: [bench, mild, hall, damp, old, hand near, low], between: [5 V, 7 V]}\n", benchLine, rooms)
-	want := map[string]string{"mild": "", "hall": "33 °C, 8 K from the bench", "damp": "80 % relative humidity", "old": "an age of 1000 h", "hand near": "", "low": ""}
+	want := map[string]string{"mild": "", "hall": "33 °C, 8 K warmer than the bench", "damp": "80 % relative humidity", "old": "an age of 1000 h", "hand near": "", "low": ""}
 	if len(s.Samples) != len(want) {
 		t.Fatalf("%d samples, want %d: %+v", len(s.Samples), len(want), s.Samples)
 	}
@@ -115,7 +115,7 @@ func TestSampleInstruments(t *testing.T) {
 func TestNotes(t *testing.T) {
 	target := "  - {name: half, output: half.voltage, at: [bench], between: [5 V, 7 V]}\n"
 	s := measured(t, 20_000, target)
-	if got, want := find(t, s, "b.frequency").Note, "the counter itself moves this: 386.008 kHz without it, 370.028 kHz with it"; !strings.HasPrefix(got, want[:30]) || !strings.Contains(got, "386.0") || !strings.Contains(got, "370.0") {
+	if got, want := find(t, s, "b.frequency").Note, "the counter itself moves this: a nominal unit has 386.008 kHz, it shows 370.028 kHz"; !strings.HasPrefix(got, want[:30]) || !strings.Contains(got, "386.0") || !strings.Contains(got, "370.0") {
 		t.Errorf("got %q, want %q", got, want)
 	}
 	if got := find(t, s, "b.level").Note; got != "" {

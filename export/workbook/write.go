@@ -17,6 +17,8 @@ const (
 	stagesSheet     = "Parts by stage"
 	trimsSheet      = "Trims"
 	testSheet       = "Test sheet"
+	samplesSheet    = "Sample tests" // only where the plan has some
+	cardsSheet      = "Cards"        // only where they are asked for
 	tolerancesSheet = "Tolerances"
 	driftSheet      = "Drift"
 	compareSheet    = "Compare" // only where the plan has one
@@ -38,6 +40,8 @@ func Write(w io.Writer, p Plan) error {
 	b.byStage()
 	b.trims()
 	verdicts := b.test()
+	b.samples()
+	b.cards()
 	b.tolerances()
 	b.drift()
 	b.compare()
@@ -68,8 +72,9 @@ type book struct {
 func newBook(p Plan) *book {
 	b := &book{plan: p, file: excelize.NewFile(), styles: map[look]int{}}
 	b.keep(b.file.SetSheetName("Sheet1", summarySheet))
-	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, tolerancesSheet, driftSheet, compareSheet, tradeSheet, basisSheet, carrierSheet} {
-		if name == compareSheet && p.Compare == nil || name == tradeSheet && p.Trade == nil {
+	absent := map[string]bool{compareSheet: p.Compare == nil, tradeSheet: p.Trade == nil, samplesSheet: len(p.Samples) == 0, cardsSheet: !p.Cards}
+	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, samplesSheet, cardsSheet, tolerancesSheet, driftSheet, compareSheet, tradeSheet, basisSheet, carrierSheet} {
+		if absent[name] {
 			continue
 		}
 		_, err := b.file.NewSheet(name)

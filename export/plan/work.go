@@ -50,7 +50,7 @@ func (w Work) Digest() string {
 // Compose makes the workbook's plan.
 func Compose(w Work) workbook.Plan {
 	return workbook.Plan{
-		Title: w.Build.Title, Units: w.Build.Units, Seed: w.Seed,
+		Title: w.Build.Title, Units: w.Build.Units, Seed: w.Seed, Simulate: w.Simulate,
 		File: w.File, Digest: w.Digest(), Version: w.Version,
 		PriceNote:  PriceNote(w.Order),
 		Findings:   findings(w),

@@ -171,6 +171,9 @@ func (p *page) findings() {
 	}
 }
 
+// compareContents is what the contents say of the sheet of comparisons.
+const compareContents = "other parts in the same places"
+
 // contents leads to the other sheets, two to a row.
 func (p *page) contents() {
 	p.section("In this workbook")
@@ -181,7 +184,7 @@ func (p *page) contents() {
 		{testSheet, "what every meter should show"},
 	}
 	if p.plan.Compare != nil {
-		list = append(list, [2]string{compareSheet, "other parts in the same places"})
+		list = append(list, [2]string{compareSheet, compareContents})
 	}
 	if p.plan.Trade != nil {
 		list = append(list, [2]string{tradeSheet, "what steadier would cost"})

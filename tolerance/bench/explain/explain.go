@@ -17,6 +17,7 @@ import (
 
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/build"
+	"batchwright/tolerance/spread"
 )
 
 // Options say how much is simulated.
@@ -46,11 +47,14 @@ type explainer struct {
 	columns []int           // of Model.Points, by column of what was filled in
 	scorers map[string]*scorer
 	limits  map[string]float64
-	outputs map[*build.Model]*outputReader
+	outputs map[*build.Model]*spread.Reader
+	guesses map[int]guessed
+	shares  *apportion
+	felt    []lotLine
 }
 
 func newExplainer(ctx context.Context, m *build.Model, s bench.Sheet, points []string, o Options) (*explainer, error) {
-	x := &explainer{options: o, scorers: map[string]*scorer{}, limits: map[string]float64{}}
+	x := &explainer{options: o, scorers: map[string]*scorer{}, limits: map[string]float64{}, outputs: map[*build.Model]*spread.Reader{}, guesses: map[int]guessed{}}
 	at := map[string]int{}
 	for i, p := range m.Points {
 		at[pointName(p)] = i

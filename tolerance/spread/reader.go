@@ -40,28 +40,27 @@ type Readings struct {
 	Trims   [][]int8    // [as Model.Trims][unit]: 0 where it reached, else the end it was left at, -1 or +1
 }
 
-// Read simulates units. The inputs are the model's or stand in their places:
-// other parts in other columns. What has no finite value is as the equations
-// leave it.
-func (r *Reader) Read(source scatter.Source, inputs []build.Input, units int) Readings {
-	points := len(r.model.Points)
-	all := block(points+r.outputs+2*len(r.model.Trims), units)
+// Draw fills a column of units for every input that is needed; the others are
+// nil. The inputs are the model's or stand in their places: other parts in other
+// columns.
+func (r *Reader) Draw(source scatter.Source, inputs []build.Input, units int) [][]float64 {
 	in := make([][]float64, len(inputs))
 	for _, i := range r.program.Inputs() {
-		in[i] = make([]float64, lanes)
+		in[i] = make([]float64, units)
+		source.Fill(in[i], inputs[i].Column, 0)
 	}
+	return in
+}
+
+// Read reads units whose inputs were drawn. What has no finite value is as the
+// equations leave it.
+func (r *Reader) Read(in [][]float64, units int) Readings {
+	points := len(r.model.Points)
+	all := block(points+r.outputs+2*len(r.model.Trims), units)
 	frame := r.program.NewFrame(lanes)
-	out := make([][]float64, len(all))
 	for first := 0; first < units; first += lanes {
-		width := min(lanes, units-first)
-		short := cut(in, width)
-		for _, i := range r.program.Inputs() {
-			source.Fill(short[i], inputs[i].Column, first)
-		}
-		for k := range all {
-			out[k] = all[k][first : first+width]
-		}
-		r.program.Values(out, short, frame)
+		last := min(first+lanes, units)
+		r.program.Values(stretch(all, first, last), stretch(in, first, last), frame)
 	}
 	return Readings{
 		Points:  all[:points],
@@ -85,4 +84,15 @@ func ends(columns [][]float64, units int) [][]int8 {
 		list = append(list, left)
 	}
 	return list
+}
+
+// stretch is part of every column.
+func stretch(columns [][]float64, first, last int) [][]float64 {
+	out := make([][]float64, len(columns))
+	for i, c := range columns {
+		if c != nil {
+			out[i] = c[first:last]
+		}
+	}
+	return out
 }

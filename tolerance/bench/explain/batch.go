@@ -103,7 +103,8 @@ func (x *explainer) within() {
 	if x.shares != nil {
 		return
 	}
-	r := x.reader.Read(scatter.Source{Seed: x.seed, Units: batchOf}, x.model.Inputs, healthyUnits)
+	in := x.reader.Draw(scatter.Source{Seed: x.seed, Units: batchOf}, x.model.Inputs, healthyUnits)
+	r := x.reader.Read(in, healthyUnits)
 	s := sample{finite(r.Points), ways(r.Trims, healthyUnits)}
 	points := x.scaled(s.points)
 	n := len(points)

@@ -21,9 +21,9 @@ type scorer struct {
 
 // density is a multivariate t over the points that were read.
 type density struct {
-	log  float64 // of its weight and of its height at the mean
-	mean *mat.VecDense
-	chol mat.Cholesky
+	log   float64 // of its weight and of its height at the mean
+	mean  []float64
+	lower [][]float64 // Cholesky factor of its scale, by rows
 }
 
 // newScorer prepares pictures for readings at some of their points.
@@ -45,49 +45,63 @@ func newScorer(pictures []*picture, read []int) *scorer {
 func newDensity(n normal, read []int) density {
 	p := len(read)
 	scale := mat.NewSymDense(p, nil)
-	mean := mat.NewVecDense(p, nil)
+	mean := make([]float64, p)
 	for a, i := range read {
-		mean.SetVec(a, n.mean[i])
+		mean[a] = n.mean[i]
 		for b, j := range read[:a+1] {
 			scale.SetSym(a, b, n.cov.At(i, j)*(freedom-2)/freedom)
 		}
 	}
-	d := density{mean: mean}
-	if !d.chol.Factorize(scale) {
-		d.log = math.Inf(-1)
+	d := density{mean: mean, log: math.Inf(-1)}
+	var chol mat.Cholesky
+	if !chol.Factorize(scale) {
 		return d
+	}
+	var lower mat.TriDense
+	chol.LTo(&lower)
+	for a := range p {
+		row := make([]float64, a+1)
+		for b := range row {
+			row[b] = lower.At(a, b)
+		}
+		d.lower = append(d.lower, row)
 	}
 	above, _ := math.Lgamma(float64(freedom+p) / 2)
 	below, _ := math.Lgamma(float64(freedom) / 2)
-	d.log = math.Log(n.weight) + above - below - (float64(p)*math.Log(math.Pi*freedom)+d.chol.LogDet())/2
+	d.log = math.Log(n.weight) + above - below - (float64(p)*math.Log(math.Pi*freedom)+chol.LogDet())/2
 	return d
 }
 
-// logarithm is ln f(y).
-func (d *density) logarithm(y *mat.VecDense) float64 {
-	if math.IsInf(d.log, -1) {
+// logarithm is ln f(y); z is room for as many numbers as y has. The form
+// xᵀS⁻¹x is |L⁻¹x|², by forward substitution.
+func (d *density) logarithm(y, z []float64) float64 {
+	if d.lower == nil {
 		return d.log
 	}
-	var x, z mat.VecDense
-	x.SubVec(y, d.mean)
-	if d.chol.SolveVecTo(&z, &x) != nil {
-		return math.Inf(-1)
+	var form float64
+	for a, row := range d.lower {
+		sum := y[a] - d.mean[a]
+		for b, l := range row[:a] {
+			sum -= l * z[b]
+		}
+		z[a] = sum / row[a]
+		form += z[a] * z[a]
 	}
-	return d.log - float64(freedom+y.Len())/2*math.Log1p(mat.Dot(&x, &z)/freedom)
+	return d.log - float64(freedom+len(y))/2*math.Log1p(form/freedom)
 }
 
 // logarithms are the logarithms of the likelihoods of readings, of which those
 // at the scorer's points count, under each picture.
 func (s *scorer) logarithms(readings []float64) []float64 {
-	y := mat.NewVecDense(len(s.read), nil)
+	y, z := make([]float64, len(s.read)), make([]float64, len(s.read))
 	for a, i := range s.read {
-		y.SetVec(a, readings[i])
+		y[a] = readings[i]
 	}
 	list := make([]float64, len(s.parts))
 	for i, parts := range s.parts {
 		terms := make([]float64, len(parts))
 		for k := range parts {
-			terms[k] = parts[k].logarithm(y)
+			terms[k] = parts[k].logarithm(y, z)
 		}
 		list[i] = logSum(terms)
 	}

@@ -3,6 +3,8 @@ package explain
 import (
 	"fmt"
 
+	"gonum.org/v1/gonum/mat"
+
 	"batchwright/tolerance/build"
 )
 
@@ -60,3 +62,25 @@ func readingFaults(m *build.Model) []*fault {
 
 // pointName is a test point as a sheet names it.
 func pointName(p build.Point) string { return p.Stage.Name + "." + p.Stage.Kind.Points[p.Index].Name }
+
+// other stands for all that no hypothesis is about, such as two faults at once.
+func other() *fault {
+	return &fault{class: Other, words: "something else: no single fault here reads like this", pin: -1}
+}
+
+// wide is how many times a healthy unit's standard deviation the readings of a
+// unit with some other fault scatter, each by itself (a choice, no source).
+const wide = 10
+
+// paintOther is the picture of some other fault: about the healthy means, wide,
+// and with no reading tied to another.
+func (k *oracle) paintOther() *picture {
+	n := len(k.centre)
+	cov := mat.NewSymDense(n, nil)
+	for i := range n {
+		cov.SetSym(i, i, wide*wide)
+	}
+	p := &picture{parts: []normal{{1, make([]float64, n), cov}}}
+	p.overall()
+	return p
+}

@@ -1,6 +1,8 @@
 package explain
 
 import (
+	"strings"
+
 	"batchwright/tolerance/build"
 )
 
@@ -18,7 +20,7 @@ type fault struct {
 }
 
 // name is the fault in words: "R5 ten times too large".
-func (f *fault) name() string { return f.ref + " " + f.words }
+func (f *fault) name() string { return strings.TrimSpace(f.ref + " " + f.words) }
 
 // measured says whether the unit itself is healthy and its readings are wrong.
 func (f *fault) measured() bool { return f.class == Range || f.class == Exchanged }

@@ -4,6 +4,7 @@ import (
 	"context"
 	"math"
 	"runtime"
+	"slices"
 	"sync"
 	"sync/atomic"
 
@@ -22,18 +23,19 @@ const (
 
 // oracle predicts readings.
 type oracle struct {
-	model    *build.Model
-	seed     uint64
-	units    int // under each fault
-	reader   *spread.Reader
-	pinned   []bound // builds with a trim left alone
-	faults   []*fault
-	prior    []float64  // of the healthy unit, then of each fault
-	centre   []float64  // of each reading: the healthy mean
-	scale    []float64  // and standard deviation
-	pictures []*picture // of the healthy unit, then of each fault
-	healthy  sample
-	lots     func(lot, batch int) (float64, bool)
+	model      *build.Model
+	seed       uint64
+	units      int // under each fault
+	reader     *spread.Reader
+	pinned     []bound // builds with a trim left alone
+	faults     []*fault
+	prior      []float64  // of the healthy unit, then of each fault
+	centre     []float64  // of each reading: the healthy mean
+	scale      []float64  // and standard deviation
+	pictures   []*picture // of the healthy unit, then of each fault
+	healthy    sample
+	drawn      [][]float64 // inputs of healthy units
+	drawnUnits int
 }
 
 // bound is a model and what reads it.
@@ -56,7 +58,7 @@ func newOracle(ctx context.Context, m *build.Model, o Options) (*oracle, error) 
 	}
 	k.faults = partFaults(m)
 	trims, pins := trimFaults(m.Build)
-	k.faults = append(append(k.faults, trims...), readingFaults(m)...)
+	k.faults = append(append(append(k.faults, trims...), readingFaults(m)...), other())
 	for _, p := range pins {
 		pinned, err := m.Build.Pinned(p.trim, p.position).Compile()
 		if err != nil {
@@ -105,30 +107,54 @@ func touches(f *fault, seen []bool) bool {
 	return false
 }
 
-// simulate reads units under a fault, each with lots of its own; nil is none.
+// source draws each unit with lots of its own, since nobody knows the lots of a
+// single one.
+func (k *oracle) source() scatter.Source { return scatter.Source{Seed: k.seed, Units: 1} }
+
+// simulate reads units under a fault; nil is none. The healthy draws are kept:
+// a fault draws anew only what it changes.
 func (k *oracle) simulate(f *fault, units int) sample {
-	r := k.read(f, units, k.reader, nil)
+	model, reader := k.at(f)
+	in := k.drawn
+	if model != k.model || len(in) == 0 || units > k.drawnUnits {
+		in = reader.Draw(k.source(), model.Inputs, units)
+	}
+	if model == k.model && units > k.drawnUnits {
+		k.drawn, k.drawnUnits = in, units
+	}
+	in = slices.Clone(in)
+	for i, column := range in {
+		if column != nil {
+			in[i] = column[:units]
+		}
+	}
+	if f != nil {
+		for i, input := range f.inputs {
+			if in[i] != nil {
+				in[i] = make([]float64, units)
+				k.source().Fill(in[i], input.Column, 0)
+			}
+		}
+	}
+	r := reader.Read(in, units)
 	return sample{finite(r.Points), ways(r.Trims, units)}
 }
 
-// read simulates units under a fault with one of the readers of its model, or
-// with what another maker of readers gives for it.
-func (k *oracle) read(f *fault, units int, reader *spread.Reader, of func(*build.Model) *spread.Reader) spread.Readings {
-	model := k.model
+// at is the model a fault is seen in, and its reader.
+func (k *oracle) at(f *fault) (*build.Model, *spread.Reader) {
 	if f != nil && f.pin >= 0 {
-		model, reader = k.pinned[f.pin].model, k.pinned[f.pin].reader
+		return k.pinned[f.pin].model, k.pinned[f.pin].reader
 	}
-	if of != nil {
-		reader = of(model)
+	return k.model, k.reader
+}
+
+// faulted is a model's inputs with what a fault changes.
+func (f *fault) faulted(inputs []build.Input) []build.Input {
+	inputs = slices.Clone(inputs)
+	for i, in := range f.inputs {
+		inputs[i] = in
 	}
-	inputs := model.Inputs
-	if f != nil && len(f.inputs) > 0 {
-		inputs = append([]build.Input(nil), inputs...)
-		for i, in := range f.inputs {
-			inputs[i] = in
-		}
-	}
-	return reader.Read(scatter.Source{Seed: k.seed, Units: 1, Lots: k.lots}, inputs, units)
+	return inputs
 }
 
 // finite puts 0 for what has no finite value: an instrument with nothing to
@@ -253,7 +279,10 @@ func (k *oracle) paint(ctx context.Context, o Options) error {
 }
 
 func (k *oracle) paintFault(f *fault) *picture {
-	if f.measured() {
+	switch {
+	case f.class == Other:
+		return k.paintOther()
+	case f.measured():
 		return k.picture(k.healthy, f)
 	}
 	return k.picture(k.simulate(f, k.units), f)

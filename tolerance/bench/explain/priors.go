@@ -16,6 +16,7 @@ const (
 	NotTrimmed Class = "trim"      // a trim not done
 	Range      Class = "range"     // an instrument on the wrong range
 	Exchanged  Class = "exchanged" // two readings in each other's rows
+	Other      Class = "other"     // none of these
 )
 
 // faulty is the share of units taken to have a fault before anything is read
@@ -32,7 +33,7 @@ var weights = []struct {
 	weight float64
 }{
 	{Open, 26}, {Neighbour, 15}, {Decade, 15}, {Swapped, 12}, {Shorted, 8}, {Reversed, 8},
-	{Figures, 5}, {NotTrimmed, 4}, {Range, 3}, {Exchanged, 2}, {Family, 2},
+	{Figures, 5}, {NotTrimmed, 4}, {Range, 3}, {Exchanged, 2}, {Family, 1}, {Other, 1},
 }
 
 // priors are the probabilities of hypotheses of some classes, 1 − faulty being

@@ -26,9 +26,12 @@ const guess = 0.01
 // are nearly as probable, or that predict the same.
 func (x *explainer) tell(u *Unit, groups [][]int, read []int, probabilities []float64) {
 	top := groups[0][0]
+	if x.faults[top-1].class == Other {
+		return
+	}
 	for n, g := range groups {
 		for _, h := range g {
-			if h == top || n > 0 && probabilities[h] < rival*probabilities[top] || probabilities[h] < least {
+			if h == top || x.faults[h-1].class == Other || n > 0 && probabilities[h] < rival*probabilities[top] || probabilities[h] < least {
 				continue
 			}
 			if len(u.Further) == most {
@@ -100,7 +103,10 @@ func (x *explainer) guess(h int) guessed {
 	if g, known := x.guesses[h]; known {
 		return g
 	}
-	r := x.read(x.faults[h-1], x.units, nil, x.outputReader)
+	f := x.faults[h-1]
+	model, _ := x.at(f)
+	reader := x.outputReader(model)
+	r := reader.Read(reader.Draw(x.source(), f.faulted(model.Inputs), x.units), x.units)
 	var g guessed
 	for _, column := range r.Outputs {
 		var m spread.Moments

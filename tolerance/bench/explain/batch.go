@@ -199,8 +199,8 @@ func (x *explainer) batchPoint(i int, g *gathered) BatchPoint {
 	return b
 }
 
-// trend is the least-squares slope, its t and the chance of one as far from 0.
-// Readings that do not scatter about the line at all have no t.
+// trend is the least-squares slope, its t and the chance of one as far from 0;
+// of readings that are all the same there is no t.
 func trend(x, y []float64) (slope, t, p float64) {
 	n := float64(len(x))
 	var mx, my, xx, xy, yy float64
@@ -217,8 +217,8 @@ func trend(x, y []float64) (slope, t, p float64) {
 	}
 	slope = xy / xx
 	t = slope / math.Sqrt(math.Max(0, yy-slope*xy)/(n-2)/xx)
-	if math.IsInf(t, 0) || math.IsNaN(t) {
-		return slope, math.NaN(), math.NaN()
+	if math.IsInf(t, 0) {
+		return slope, t, 0
 	}
 	return slope, t, 2 * distuv.StudentsT{Mu: 0, Sigma: 1, Nu: n - 2}.Survival(math.Abs(t))
 }

@@ -3,6 +3,7 @@ package explain
 import (
 	"math"
 
+	"batchwright/bom/quantity"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/spread"
 )
@@ -42,6 +43,9 @@ func (x *explainer) tell(u *Unit, groups [][]int, read []int, probabilities []fl
 	}
 }
 
+// readable are the dimensions that an instrument reads without cutting a wire.
+var readable = map[quantity.Dimension]bool{quantity.Volt.Dimension: true, quantity.Hertz.Dimension: true}
+
 // guessed is what a hypothesis predicts of every output.
 type guessed struct{ mean, sd []float64 }
 
@@ -52,7 +56,7 @@ func (x *explainer) further(a, b int, read []int) Further {
 	best, score := -1, 0.0
 	p, q := x.guess(a), x.guess(b)
 	for i, o := range x.model.Outputs {
-		if o.ChangeFrom >= 0 || o.Unit.Symbol == "" || x.isRead(o, read) {
+		if o.ChangeFrom >= 0 || !readable[o.Unit.Dimension] || x.isRead(o, read) {
 			continue
 		}
 		noise := guess * math.Max(math.Abs(p.mean[i]), math.Abs(q.mean[i]))

@@ -25,6 +25,7 @@ var floors = [][]string{
 	{"tolerance/build"},
 	{"tolerance/spread"},
 	{"tolerance/pick", "tolerance/compare", "tolerance/bench"},
+	{"tolerance/bench/explain"},
 	{"export/table", "export/workbook", "export/chart"},
 	{"export/plan"},
 	{"cli"},

@@ -496,3 +496,23 @@ func TestColumns(t *testing.T) {
 		t.Errorf("the order of the points counts:\n%s\n%s", a, b)
 	}
 }
+
+// TestSilence reads 0 Hz and 0 V at an oscillator: it does not oscillate, its
+// coil is open or shorted, or a capacitor across it is; which, no reading tells.
+func TestSilence(t *testing.T) {
+	f := examples(t)[0]
+	y := f.measure(f.x.faults[f.find(t, "L1 missing or open")-1], 1, 3, nil)[0]
+	for i, p := range f.model.Points {
+		if p.Stage.Name == "fixed" && y[i] > 0.02 { // a scope's floor is 10 mV, a counter's 1 Hz
+			if p.Unit.Symbol != "Hz" || y[i] > 1 {
+				t.Errorf("%s reads %v", pointName(p), y[i])
+			}
+		}
+	}
+	got := firsts(f.x.unit(1, y))
+	for _, want := range []string{"L1 missing or open", "C6 shorted", "C7 shorted", "CT1 shorted", "fixed does not oscillate"} {
+		if !slices.Contains(got, want) {
+			t.Errorf("suspects %v, want %s among the first", got, want)
+		}
+	}
+}

@@ -105,7 +105,7 @@ func (x *explainer) within() {
 	}
 	in := x.reader.Draw(scatter.Source{Seed: x.seed, Units: batchOf}, x.model.Inputs, healthyUnits)
 	r := x.reader.Read(in, healthyUnits)
-	s := sample{finite(r.Points), ways(r.Trims, healthyUnits)}
+	s := sample{shown(x.model, r.Points), ways(r.Trims, healthyUnits)}
 	points := x.scaled(s.points)
 	n := len(points)
 	a := &apportion{own: mat.NewSymDense(n, nil), lot: make([]float64, n), gain: make([]float64, n)}

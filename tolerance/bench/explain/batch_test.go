@@ -181,3 +181,55 @@ func TestFewUnits(t *testing.T) {
 		t.Errorf("%+v, want nothing but why", r.Batch)
 	}
 }
+
+// TestTrendByHand: of y = 2, 4, 5, 4, 5 over 1..5 the slope is 6/10, the squares
+// about the line 2.4, t = 0.6/√(2.4/3/10) = 2.1213. With 3 degrees of freedom the
+// chance of a t as far from 0 is 1 − (2/π)·(atan a + a/(1 + a²)), a = t/√3, 0.1240.
+func TestTrendByHand(t *testing.T) {
+	slope, score, p := trend([]float64{1, 2, 3, 4, 5}, []float64{2, 4, 5, 4, 5})
+	a := 0.6 / math.Sqrt(0.08) / math.Sqrt(3)
+	want := 1 - 2/math.Pi*(math.Atan(a)+a/(1+a*a))
+	if math.Abs(slope-0.6) > 1e-12 || math.Abs(score-0.6/math.Sqrt(0.08)) > 1e-12 || math.Abs(p-want) > 1e-9 {
+		t.Errorf("slope %v, t %v, p %v, want 0.6, %v, %v", slope, score, p, 0.6/math.Sqrt(0.08), want)
+	}
+	if _, score, p := trend([]float64{1, 2, 3}, []float64{4, 4, 4}); !math.IsNaN(score) || !math.IsNaN(p) {
+		t.Errorf("readings that are all the same have t %v, p %v", score, p)
+	}
+}
+
+// TestDraws holds the mean and the covariance of many drawn lots against what
+// was learned.
+func TestDraws(t *testing.T) {
+	f := examples(t)[0]
+	p := f.learned(f.measure(nil, 24, 6, nil))
+	const n = 20_000
+	draw := p.draws(3, n)
+	columns := make([][]float64, len(p.lots))
+	for k, l := range p.lots {
+		for b := range n {
+			g, ok := draw(l.number, b)
+			if !ok {
+				t.Fatal("a lot that was learned is not drawn")
+			}
+			columns[k] = append(columns[k], g)
+		}
+	}
+	if _, ok := draw(12345, 0); ok {
+		t.Error("a lot that nobody knows is drawn")
+	}
+	if len(p.lots) < 5 {
+		t.Fatalf("%d lots prove little", len(p.lots))
+	}
+	mean := means(columns, span(n))
+	cov := products(columns, span(n), mean)
+	for i := range columns {
+		if math.Abs(mean[i]-p.mean.AtVec(i)) > 0.03 {
+			t.Errorf("lot %d: mean %v, want %v", i, mean[i], p.mean.AtVec(i))
+		}
+		for j := range columns {
+			if got := cov.At(i, j) / (n - 1); math.Abs(got-p.cov.At(i, j)) > 0.05 {
+				t.Errorf("lots %d, %d: covariance %v, want %v", i, j, got, p.cov.At(i, j))
+			}
+		}
+	}
+}

@@ -91,6 +91,19 @@ func TestPredictions(t *testing.T) {
 			}
 		}
 	}
+	// What is read on a wrong range or in a wrong row scatters with it.
+	healthy := f.x.pictures[0].cov
+	ten := f.x.pictures[f.find(t, "dmm read ten times too large at every point")].cov
+	rows := f.x.pictures[f.find(t, "a.voltage and b.voltage in each other's rows")].cov
+	ratio := f.x.scale[1] / f.x.scale[0]
+	for _, x := range [][2]float64{
+		{ten.At(0, 0), 100 * healthy.At(0, 0)}, {ten.At(1, 1), 100 * healthy.At(1, 1)},
+		{rows.At(0, 0), ratio * ratio * healthy.At(1, 1)}, {rows.At(1, 1), healthy.At(0, 0) / ratio / ratio},
+	} {
+		if math.Abs(x[0]/x[1]-1) > 1e-6 {
+			t.Errorf("variance %v, want %v", x[0], x[1])
+		}
+	}
 	// 4 resistors: 2 decades, 2 neighbours, open and shorted each; 6 pairs; 4 ranges
 	// at 2 points and at both; 1 pair of rows; and something else.
 	if n, want := len(f.x.faults), 4*6+6+3*4+1+1; n != want {
@@ -435,4 +448,71 @@ func span(n int) []int {
 		list = append(list, i)
 	}
 	return list
+}
+
+// TestSeenFaults holds that what no reading feels is no hypothesis, and that its
+// share of the faulty is the healthy unit's: the readings cannot accuse it.
+func TestSeenFaults(t *testing.T) {
+	f := examples(t)[0]
+	for _, fa := range f.x.faults {
+		if fa.ref == "C1" || fa.ref == "C5" { // decoupling, in no equation of a reading
+			t.Errorf("%s is a hypothesis", fa.name())
+		}
+	}
+	var sum float64
+	for _, p := range f.x.prior {
+		sum += p
+	}
+	if math.Abs(sum-1) > 1e-12 || !(f.x.prior[0] > 1-faulty && f.x.prior[0] < 1) {
+		t.Errorf("priors add up to %v, the healthy unit's is %v", sum, f.x.prior[0])
+	}
+	for _, class := range []Class{Open, Neighbour, Decade, Swapped, Shorted, Reversed, Family, Figures, NotTrimmed, Range, Exchanged, Other} {
+		if !slices.ContainsFunc(f.x.faults, func(fa *fault) bool { return fa.class == class }) {
+			t.Errorf("no hypothesis is %s", class)
+		}
+	}
+}
+
+// TestColumns gives the points in another order: the review is the same.
+func TestColumns(t *testing.T) {
+	f := small(t, dividers)
+	y := [][]float64{{6.01, 1.77}, {1.3, 1.76}}
+	one, err := Explain(context.Background(), f.model, f.sheet, filled(f, y), Options{Seed: 1})
+	if err != nil {
+		t.Fatal(err)
+	}
+	turned := filled(f, y)
+	slices.Reverse(turned.Points)
+	for _, u := range turned.Units {
+		slices.Reverse(u.Values)
+	}
+	two, err := Explain(context.Background(), f.model, f.sheet, turned, Options{Seed: 1})
+	if err != nil {
+		t.Fatal(err)
+	}
+	a, _ := json.Marshal(one)
+	b, _ := json.Marshal(two)
+	if string(a) != string(b) {
+		t.Errorf("the order of the points counts:\n%s\n%s", a, b)
+	}
+}
+
+// TestSilence reads 0 Hz and 0 V at an oscillator: it does not oscillate, its
+// coil is open or shorted, or a capacitor across it is; which, no reading tells.
+func TestSilence(t *testing.T) {
+	f := examples(t)[0]
+	y := f.measure(f.x.faults[f.find(t, "L1 missing or open")-1], 1, 3, nil)[0]
+	for i, p := range f.model.Points {
+		if p.Stage.Name == "fixed" && y[i] > 0.02 { // a scope's floor is 10 mV, a counter's 1 Hz
+			if p.Unit.Symbol != "Hz" || y[i] > 1 {
+				t.Errorf("%s reads %v", pointName(p), y[i])
+			}
+		}
+	}
+	got := firsts(f.x.unit(1, y))
+	for _, want := range []string{"L1 missing or open", "C6 shorted", "C7 shorted", "CT1 shorted", "fixed does not oscillate"} {
+		if !slices.Contains(got, want) {
+			t.Errorf("suspects %v, want %s among the first", got, want)
+		}
+	}
 }

@@ -130,7 +130,7 @@ func (f fixture) measure(fa *fault, units int, seed uint64, lots func(lot, batch
 	}
 	source := scatter.Source{Seed: 7_000_000 + seed, Units: units, Lots: lots}
 	reader := spread.NewReader(model)
-	columns := finite(reader.Read(reader.Draw(source, inputs, units), units).Points)
+	columns := shown(model, reader.Read(reader.Draw(source, inputs, units), units).Points)
 	random := rand.New(rand.NewPCG(seed, 77))
 	for i, column := range columns {
 		in := model.Points[i].Instrument

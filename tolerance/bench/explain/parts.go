@@ -26,15 +26,23 @@ const (
 type catalogue struct {
 	model  *build.Model
 	column map[[2]string]int // input by reference and parameter
+	stage  map[string]string // of each reference
 	faults []*fault
 }
 
 // partFaults lists every fault of a part, and of two exchanged, that changes an
 // input of the model.
 func partFaults(m *build.Model) []*fault {
-	c := &catalogue{model: m, column: map[[2]string]int{}}
+	c := &catalogue{model: m, column: map[[2]string]int{}, stage: map[string]string{}}
 	for i, in := range m.Inputs {
 		c.column[[2]string{in.Ref, in.Parameter}] = i
+	}
+	for _, s := range m.Build.Stages {
+		for _, p := range s.Places {
+			for _, ref := range p.Refs() {
+				c.stage[ref] = s.Name
+			}
+		}
 	}
 	parts := m.Build.Parts()
 	for i := range parts {
@@ -45,6 +53,7 @@ func partFaults(m *build.Model) []*fault {
 			c.exchange(&parts[k], &parts[i])
 		}
 	}
+	c.silent()
 	return c.faults
 }
 
@@ -77,7 +86,41 @@ func (c *catalogue) add(class Class, p *part.Part, words string, changes ...chan
 		f.inputs[i] = in
 	}
 	if len(f.inputs) > 0 {
+		c.silence(f, p)
 		c.faults = append(c.faults, f)
+	}
+}
+
+// silence lets an oscillator stop whose coil is open or shorted, or across whose
+// coil a capacitor is shorted: its equations take the level as given.
+func (c *catalogue) silence(f *fault, p *part.Part) {
+	shorted := f.class == Shorted && (p.Type == part.Capacitor || p.Type == part.TrimmerCapacitor)
+	if p.Type == part.Coil && (f.class == Open || f.class == Shorted) || shorted {
+		c.stop(f, c.stage[p.Ref])
+	}
+}
+
+// stop takes an oscillator's level away; it says whether the stage is one.
+func (c *catalogue) stop(f *fault, stage string) bool {
+	i, there := c.column[[2]string{stage + ".level", "value"}]
+	if there {
+		in := c.model.Inputs[i]
+		in.Centre, in.HalfWidth = 0, 0
+		f.inputs[i] = in
+	}
+	return there
+}
+
+// doesNot is what is wrong with an oscillator that stands still.
+const doesNot = "does not oscillate"
+
+// silent are oscillators that do not oscillate, whatever the reason.
+func (c *catalogue) silent() {
+	for _, s := range c.model.Build.Stages {
+		f := &fault{class: Open, ref: s.Name, words: doesNot, inputs: map[int]build.Input{}, pin: -1}
+		if c.stop(f, s.Name) {
+			c.faults = append(c.faults, f)
+		}
 	}
 }
 

@@ -8,6 +8,7 @@ import (
 	"sync"
 	"sync/atomic"
 
+	"batchwright/bom/quantity"
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/scatter"
@@ -137,7 +138,7 @@ func (k *oracle) simulate(f *fault, units int) sample {
 		}
 	}
 	r := reader.Read(in, units)
-	return sample{finite(r.Points), ways(r.Trims, units)}
+	return sample{shown(model, r.Points), ways(r.Trims, units)}
 }
 
 // at is the model a fault is seen in, and its reader.
@@ -157,13 +158,29 @@ func (f *fault) faulted(inputs []build.Input) []build.Input {
 	return inputs
 }
 
-// finite puts 0 for what has no finite value: an instrument with nothing to
-// read shows nothing.
-func finite(points [][]float64) [][]float64 {
+// shown is what instruments show of simulated readings, in their place: 0 for
+// what has no finite value, and 0 for a frequency whose level, read in the same
+// stage, is less than the counter needs.
+func shown(m *build.Model, points [][]float64) [][]float64 {
 	for _, column := range points {
-		for i, x := range column {
+		for u, x := range column {
 			if math.IsNaN(x) || math.IsInf(x, 0) {
-				column[i] = 0
+				column[u] = 0
+			}
+		}
+	}
+	for i, p := range m.Points {
+		least := p.Instrument.MinimumLevel
+		if least == 0 || p.Unit.Dimension != quantity.Hertz.Dimension {
+			continue
+		}
+		level := slices.IndexFunc(m.Points, func(q build.Point) bool { return q.Stage == p.Stage && q.Stage.Kind.Points[q.Index].Name == "level" })
+		if level < 0 {
+			continue
+		}
+		for u, x := range points[level] {
+			if x < least {
+				points[i][u] = 0
 			}
 		}
 	}

@@ -86,6 +86,9 @@ func (f *fault) remedy() string {
 	case Family:
 		return "read what is printed on " + f.ref
 	}
+	if f.words == doesNot {
+		return "look for what keeps " + f.ref + " from oscillating"
+	}
 	return "measure " + f.ref + " out of circuit"
 }
 

@@ -15,7 +15,8 @@ const (
 	cardTall    = 9.95 * 72 // points
 	cardWide    = 7.77 * 96 // pixels
 	cardLargest = 92        // percent
-	cardLeast   = 40        // percent; below it nobody reads the figures, and a card takes more pages
+	cardLeast   = 50        // percent; figures of 5 points
+	cardSpread  = 75        // percent where a card takes more than a page
 )
 
 // cardWidths are the columns of a card printed at some percent: step, point,
@@ -53,16 +54,17 @@ func (b *book) cards() {
 }
 
 // cardPercent is the largest at which a card with every row fills no more than
-// a page. A dry run says how high a card is.
+// a page, or what reads well where it must take more. A dry run says how high
+// a card is.
 func (b *book) cardPercent(rows []benchRow) uint {
-	for percent := uint(cardLargest); percent > cardLeast; percent-- {
+	for percent := uint(cardLargest); percent >= cardLeast; percent-- {
 		dry := &page{book: b, name: cardsSheet, widths: cardWidths(percent)}
 		dry.card(0, rows) // 0 is one of every so many
 		if dry.tall*float64(percent)/100 <= 0.985*cardTall {
 			return percent
 		}
 	}
-	return cardLeast
+	return cardSpread
 }
 
 // card writes one unit's page.

@@ -114,7 +114,8 @@ func limits(low, high float64) spread.Limits {
 
 func sampleReadings() []bench.Reading {
 	r := func(step int, point, reading, instrument, condition, unit, at string, nominal, low, high, u float64) bench.Reading {
-		return bench.Reading{Step: step, Point: point, Reading: reading, Instrument: instrument, Condition: condition, Unit: unit, At: at,
+		none := spread.Figure(math.NaN())
+		return bench.Reading{ConsumerRisk: none, ProducerRisk: none, SpecificRisk: none, Step: step, Point: point, Reading: reading, Instrument: instrument, Condition: condition, Unit: unit, At: at,
 			Nominal: spread.Figure(nominal), Unloaded: spread.Figure(nominal), Expected: limits(low, high), Uncertainty: spread.Figure(u)}
 	}
 	rows := []bench.Reading{

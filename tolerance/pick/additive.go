@@ -312,13 +312,15 @@ func (a *additive) first() (exact.Outcome, error) {
 }
 
 // better is what a search found, or, where another found something cheaper,
-// that, with what the search proved.
+// that, with what the search proved of it.
 func better(found, other exact.Outcome) exact.Outcome {
 	found.Examined += other.Examined
 	found.Simulated += other.Simulated
 	if other.Choice != nil && (found.Choice == nil && !found.Proved || found.Choice != nil && other.Cost < found.Cost) {
 		found.Choice, found.Cost, found.Nearest = other.Choice, other.Cost, nil
-		found.Proved = false
+	}
+	if found.Choice != nil { // what costs no more than the bound is the cheapest, whoever found it
+		found.Proved = found.Cost <= found.Bound
 	}
 	return found
 }

@@ -82,7 +82,7 @@ func mixing(seed uint64) string {
 // TestAddingUpGivesThePrice searches small random builds by effects that add up
 // and by judging every choice whole, and asks for one price.
 func TestAddingUpGivesThePrice(t *testing.T) {
-	rounds, found := 6, 0
+	rounds, found := 3, 0
 	if testing.Short() {
 		rounds = 2
 	}
@@ -115,7 +115,7 @@ func TestAddingUpGivesThePrice(t *testing.T) {
 // TestMargins holds the margins, as widened, against every choice. One that
 // lies outside is noticed when it is judged, and the margins then hold it.
 func TestMargins(t *testing.T) {
-	rounds := 8
+	rounds := 4
 	if testing.Short() {
 		rounds = 2
 	}

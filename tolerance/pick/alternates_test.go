@@ -92,13 +92,13 @@ func TestAlternatesByForce(t *testing.T) {
 	found, none := 0, 0
 	texts := map[string][2]string{"tanks": {tanks("80 Hz"), ""}, "tight tanks": {tanks("40 Hz"), ""}, "merging": {merging(), ""}, "grades": {grades, closeIsCheap}}
 	for _, v := range bruteBuilds {
-		for _, limit := range v.limits {
+		for _, limit := range []string{v.limits[0], v.limits[2]} {
 			texts[v.name+" "+limit] = [2]string{fmt.Sprintf(v.text, limit), v.prices}
 		}
 	}
 	for name, text := range texts {
 		t.Run(name, func(t *testing.T) {
-			b, o := readAt(t, text[0], text[1]), Options{Seed: 3, Units: 1200, Alternates: 2}
+			b, o := readAt(t, text[0], text[1]), Options{Seed: 3, Units: 480, Alternates: 2}
 			r, _, err := Choose(context.Background(), b, o)
 			if err != nil {
 				t.Fatal(err)

@@ -6,6 +6,7 @@ import (
 	"math"
 	"strings"
 	"testing"
+	"time"
 
 	"batchwright/data"
 	"batchwright/tolerance/build"
@@ -46,7 +47,7 @@ func twentyLines() string {
 	var parts, sum, up, down strings.Builder
 	total, top, bottom := 0.0, 0.0, 0.0
 	for i, v := range values {
-		fmt.Fprintf(&parts, "      r%d: {part: resistor, ref: R%d, choose: {families: [metal-film-100, metal-film-25, carbon-film], tolerances: [0.5 %%, 1 %%, 2 %%, 5 %%], around: %g Ω, within: 6 %%, series: E24}}\n", i, i+1, v)
+		fmt.Fprintf(&parts, "      r%d: {part: resistor, ref: R%d, choose: {families: [metal-film-100, metal-film-25, carbon-film], tolerances: [0.1 %%, 0.5 %%, 1 %%, 2 %%, 5 %%], around: %g Ω, within: 8 %%, series: E96}}\n", i, i+1, v)
 		fmt.Fprintf(&sum, "+r%d", i)
 		total += v
 		w := float64(1 + i%3)
@@ -70,13 +71,15 @@ stages:
     parts:
 %s    outputs: {total: {expression: "%s", unit: Ω}, ratio: {expression: "(%s)/(%s)"}}
 targets:
-  - {name: total, output: s.total, between: ["%.9g Ω", "%.9g Ω"], share: 99 %%}
-  - {name: drift, output: s.total, change_from: bench, at: [warm], limit: "%.9g Ω", share: 99 %%}
-  - {name: ratio, output: s.ratio, between: ["%.9g", "%.9g"], share: 99 %%}
+  - {name: total, output: s.total, between: ["%.9g Ω", "%.9g Ω"], share: 80 %%}
+  - {name: drift, output: s.total, change_from: bench, at: [warm], limit: "%.9g Ω", share: 80 %%}
+  - {name: ratio, output: s.ratio, between: ["%.9g", "%.9g"], share: 80 %%}
 `, parts.String(), sum.String()[1:], up.String()[1:], down.String()[1:], 0.995*total, 1.005*total, 0.0007*total, 0.995*top/bottom, 1.005*top/bottom)
 }
 
-// BenchmarkTwentyLines searches more combinations than can be looked at.
+// BenchmarkTwentyLines searches more combinations than can be looked at, for a
+// minute at most, and says whether it proved the cheapest and, where not, how
+// far below it the bound is.
 func BenchmarkTwentyLines(b *testing.B) {
 	x := read(b, twentyLines())
 	c := chooserOf(b, x, Options{})
@@ -84,12 +87,18 @@ func BenchmarkTwentyLines(b *testing.B) {
 	for _, list := range c.fittings {
 		least, most = min(least, len(list)), max(most, len(list))
 	}
+	proved, gap := 0.0, 0.0
 	for b.Loop() {
-		r, _, err := Choose(context.Background(), x, Options{Seed: 1, Units: 24_000})
-		if err != nil || !r.ProvedCheapest {
-			b.Fatal(r.Why, r.Total, r.Bound, err)
+		r, _, err := Choose(context.Background(), x, Options{Seed: 1, Units: 6_000, SearchFor: time.Minute})
+		if err != nil {
+			b.Fatal(err)
+		}
+		if gap = 1 - float64(r.Bound)/float64(r.Total); r.ProvedCheapest {
+			proved = 1
 		}
 	}
+	b.ReportMetric(proved, "proved")
+	b.ReportMetric(100*gap, "%gap")
 	b.ReportMetric(float64(least), "fewest-options")
 	b.ReportMetric(float64(most), "most-options")
 }

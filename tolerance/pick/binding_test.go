@@ -89,7 +89,7 @@ func TestBindingByForce(t *testing.T) {
 	for _, v := range builds {
 		for _, limit := range v.limits {
 			t.Run(v.name+" "+limit, func(t *testing.T) {
-				b, o := readAt(t, fmt.Sprintf(v.text, limit), v.prices), Options{Seed: 3, Units: 1200}
+				b, o := readAt(t, fmt.Sprintf(v.text, limit), v.prices), Options{Seed: 3, Units: 480}
 				r, _, err := Choose(context.Background(), b, o)
 				if err != nil {
 					t.Fatal(err)

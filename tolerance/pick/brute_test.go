@@ -218,7 +218,7 @@ func TestChooseByBruteForce(t *testing.T) {
 		for _, limit := range v.limits {
 			t.Run(v.name+" "+limit, func(t *testing.T) {
 				for _, few := range []int{0, 1} {
-					o := Options{Seed: 3, Units: 1200, few: few}
+					o := Options{Seed: 3, Units: 800, few: few}
 					b := readAt(t, fmt.Sprintf(v.text, limit), v.prices)
 					if compareWithAll(t, b, o) {
 						found++

@@ -148,9 +148,9 @@ const quickGain = 4
 const quickSeed = 0x9e3779b97f4a7c15
 
 // doubt is how far beyond its interval, in parts of what that reaches above the
-// share, a quick simulation must miss to refuse a choice: by some four standard
+// share, a quick simulation must miss to refuse a choice: by some three standard
 // deviations, so that what the report would pass is hardly ever refused.
-const doubt = 1
+const doubt = 0.5
 
 // simulate looks for a target that a simulation does not meet.
 func (c *chooser) simulate(m *build.Model, targets []int, o spread.Options, met func(spread.TargetReport) bool) (outcome, error) {

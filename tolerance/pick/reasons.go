@@ -97,6 +97,9 @@ func (c *chooser) outOfReach(found exact.Outcome) string {
 	if text := c.answers[fmt.Sprint(found.Nearest)]; text != "" {
 		return early + "no choice meets every target in simulation; the one nearest meets " + text
 	}
+	if found.NearestVerdict.Meets && !found.Proved {
+		return "the search ended before any choice that meets the targets to first order was simulated"
+	}
 	worst := found.NearestVerdict.Worst
 	t := c.build.Targets[c.demands[worst].target]
 	text := fmt.Sprintf("%sno choice meets the target %q (%s)", early, t.Name, t.Asked)

@@ -31,12 +31,12 @@ func lampPicks() *pick.Result {
 			Refs: []string{"L1"}, Line: "drum-choke 1 mH ±5 %", More: -8100, Drifts: []pick.Moved{{Target: "warm drift", Unit: "Hz", From: 2400, To: 2600}},
 			Instead: []pick.Choice{{Refs: []string{"L1"}, Combine: "parallel", Parts: []pick.Piece{coil, coil}}},
 		}},
+		Irreplaceable: []pick.Irreplaceable{{Refs: []string{"R1", "R2"}, Line: "metal-film-100 10 kΩ ±1 %", Why: "no choice without it meets every target"}},
 	}
 }
 
 // The workbook has the words of the terminal, and a word on the chosen line
-// that nothing else was found for: R1 and R2 were chosen and have no alternate,
-// C1 was not chosen.
+// that nothing can stand in for.
 func TestPicked(t *testing.T) {
 	w := lampWork(t)
 	w.Pick = lampPicks()
@@ -51,7 +51,7 @@ func TestPicked(t *testing.T) {
 		Checks:  []string{"warm drift: 99.6 % of the units to first order, 98.8 % in simulation, which counts."},
 		Alternates: []workbook.Alternate{
 			{Refs: "L1", Line: "drum-choke 1 mH ±5 %", Instead: "drum-choke 1 mH ±5 % ∥ drum-choke 1 mH ±5 %", More: -0.81, Drifts: "warm drift within 2.60 kHz instead of 2.40 kHz"},
-			{Refs: "R1, R2", Line: "metal-film-100 10 kΩ ±1 %", Instead: "nothing else was found that meets every target", More: math.NaN()},
+			{Refs: "R1, R2", Line: "metal-film-100 10 kΩ ±1 %", Instead: "nothing: no choice without it meets every target", More: math.NaN()},
 		},
 		Note: AlternatesNote(w),
 	}

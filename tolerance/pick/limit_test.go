@@ -54,7 +54,7 @@ func TestEndedEarly(t *testing.T) {
 		if r.ProvedCheapest || r.Provided != "" || r.Binding != nil {
 			t.Errorf("%s: proved %v, provided %q, binding %+v", name, r.ProvedCheapest, r.Provided, r.Binding)
 		}
-		if !strings.Contains(r.Why, "the search ended ") {
+		if !strings.Contains(r.Why, "ran out of "+name) && !strings.Contains(r.Why, "the search ended ") {
 			t.Errorf("%s: %q", name, r.Why)
 		}
 		if strings.Contains(r.Why, "no choice meets") && name == "steps" {

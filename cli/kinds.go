@@ -118,6 +118,7 @@ type pointText struct {
 	Reading    string `json:"reading"`
 	Instrument string `json:"instrument"`
 	At         string `json:"at"`
+	Loading    string `json:"loading"`
 }
 
 type findingText struct {
@@ -146,7 +147,7 @@ func describeKind(k *stage.Kind) kindText {
 		t.Outputs = append(t.Outputs, outputText{o.Name, o.Unit.Symbol, o.Summary})
 	}
 	for _, q := range k.Points {
-		t.Points = append(t.Points, pointText{q.Name, q.Reading, q.Instrument, q.At})
+		t.Points = append(t.Points, pointText{q.Name, q.Reading, q.Instrument, q.At, q.Loading()})
 	}
 	for _, f := range k.Findings {
 		t.Findings = append(t.Findings, findingText{f.Equation, f.Text})

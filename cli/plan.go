@@ -32,17 +32,26 @@ simulates whole batches of the result, orders the parts and writes a workbook
 named after the build's title. Without BUILD it plans the embedded example; "-"
 reads the build from standard input.
 
+--cards adds a sheet "Cards": one page for every unit, with all that is read and
+turned on it and room to write, to be printed and laid beside the unit.
+
 --compare STAGE.ROLE adds a sheet "Compare": other parts in the place of those
 that were picked, as compare has it, with the same --families, --tolerances,
 --values and --lots; with none of them, the families that an open position lists.
 
+--frontier adds a sheet "Trade": every efficient trade between the order's price
+and the steadiness of the first change that a target limits, or of --target NAME.
+
   batchwright plan
   batchwright plan tone-box.yaml --units 12 --out plans
+  batchwright plan tone-box.yaml --cards --out plans
   batchwright plan tone-box.yaml --compare fixed.upper --out plans`,
 		Flags: append([]cli.Flag{
 			&cli.StringFlag{Name: "out", Usage: "write the workbook into folder `DIR`", Value: "."},
+			&cli.BoolFlag{Name: "cards", Usage: "add a sheet with a page for every unit, to be filled in by hand"},
 			&cli.StringSliceFlag{Name: "compare", Usage: "add a sheet with other parts at `STAGE.ROLE`, several with commas"},
-			searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
+			&cli.BoolFlag{Name: "frontier", Usage: "add a sheet with every efficient trade between price and steadiness", DisableDefaultText: true},
+			targetFlag(), searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
 		}, caseFlags()...),
 		Action: p.plan,
 	}
@@ -71,10 +80,20 @@ func (p *program) plan(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
+	t, err := readTrade(c, src.Build)
+	if err != nil {
+		return err
+	}
 	work, err := p.work(c.Context, src, o, cases)
 	if err != nil {
 		return err
 	}
+	if t.frontier {
+		if work.Trade, err = p.efficient(c, src.Build, t, o); err != nil {
+			return err
+		}
+	}
+	work.Cards = c.Bool("cards")
 	path, err := p.save(c.String("out"), file, src.Title, plan.Compose(*work))
 	if err != nil {
 		return err

@@ -49,9 +49,9 @@ func (p *program) showKind(k *stage.Kind) {
 	p.section("outputs", []string{"output", "unit", "what it is"}, rows)
 	rows = nil
 	for _, q := range t.Points {
-		rows = append(rows, []string{q.Point, q.Reading, q.Instrument, q.At})
+		rows = append(rows, []string{q.Point, q.Reading, q.Instrument, q.At, q.Loading})
 	}
-	p.section("test points", []string{"point", "reading", "with", "where"}, rows)
+	p.section("test points", []string{"point", "reading", "with", "where", "how it loads"}, rows)
 	rows = nil
 	for _, f := range t.Findings {
 		rows = append(rows, []string{f.Finding, f.Text})

@@ -75,6 +75,9 @@ func instrument(b *build.Build, i build.Instrument) string {
 	if i.Floor > 0 {
 		words = append(words, fmt.Sprintf("and %g in the reading's unit", i.Floor))
 	}
+	if i.MinimumLevel > 0 {
+		words = append(words, "needs a peak of "+quantity.Format(i.MinimumLevel, quantity.Volt, 0))
+	}
 	if i.Through != "" {
 		words = append(words, "through the "+i.Through)
 	}

@@ -3,12 +3,14 @@ package plan
 import (
 	"context"
 	"math"
+	"regexp"
 	"strings"
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
 
 	"batchwright/bom/order"
+	"batchwright/data"
 	"batchwright/export/workbook"
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/build"
@@ -110,6 +112,52 @@ func TestPositions(t *testing.T) {
 	got[5].Note = trim
 	if diff := cmp.Diff(want, got); diff != "" {
 		t.Error(diff)
+	}
+}
+
+// Every reference that the bench is sent to stands on the sheet of parts by
+// stage, in all three examples: of readings, trims and samples.
+func TestReferencesAreThoseOfTheParts(t *testing.T) {
+	reference := regexp.MustCompile(`\b[A-Z]{1,3}[0-9]+[AB]?\b`)
+	for _, name := range []string{"lantern", "nightowl", "shoreline"} {
+		text, err := data.Examples.ReadFile("examples/" + name + ".yaml")
+		if err != nil {
+			t.Fatal(err)
+		}
+		b, err := build.Read(name, text, nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		m, err := b.Compile()
+		if err != nil {
+			t.Fatal(err)
+		}
+		sheet := bench.NewSheet(m, &spread.Report{Readings: make([]spread.ReadingReport, len(m.Points)), Samples: make([]spread.SampleReport, len(m.Samples))})
+		parts := map[string]bool{}
+		for _, p := range positions(Work{Build: b, Sheet: sheet}) {
+			parts[p.Ref] = true
+		}
+		var words []string
+		for _, r := range sheet.Readings {
+			words = append(words, r.At)
+		}
+		for _, x := range sheet.Turns {
+			words = append(words, x.At, x.Ref)
+		}
+		for _, x := range sheet.Samples {
+			words = append(words, x.At)
+		}
+		seen := 0
+		for _, w := range words {
+			for _, ref := range reference.FindAllString(w, -1) {
+				if seen++; !parts[ref] && ref != "AC" {
+					t.Errorf("%s: %q names %s, which is no part", name, w, ref)
+				}
+			}
+		}
+		if seen < 8 {
+			t.Errorf("%s: only %d references seen", name, seen)
+		}
 	}
 }
 

@@ -11,7 +11,8 @@ import (
 // Spread is what `spread --json` prints.
 type Spread struct {
 	spread.Report
-	Bench []bench.Reading `json:"bench"`
+	Bench   []bench.Reading `json:"bench"`
+	Samples []bench.Sample  `json:"samples"`
 }
 
 // Result is what `plan --json` prints.
@@ -38,7 +39,7 @@ type Pick struct {
 
 // NewSpread joins a report and the bench's readings.
 func NewSpread(r *spread.Report, s bench.Sheet) Spread {
-	out := Spread{*r, listed(s.Readings)}
+	out := Spread{*r, listed(s.Readings), listed(s.Samples)}
 	out.Outputs = listed(r.Outputs)
 	for i := range out.Outputs {
 		out.Outputs[i].Contributions = listed(out.Outputs[i].Contributions)

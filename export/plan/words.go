@@ -59,7 +59,7 @@ func variable(v build.Variable, x float64) string {
 // which it has already.
 func findings(w Work) []string {
 	var list []string
-	if w.Pick.Why != "" {
+	if w.Pick.Why != "" && len(w.Pick.Choices) == 0 { // otherwise the proof has it
 		list = append(list, w.Pick.Why)
 	}
 	if n := len(w.Order.Unoffered); n > 0 {
@@ -113,7 +113,7 @@ func advice(w Work) map[string]string {
 		if len(refs) == 0 {
 			continue
 		}
-		out[t.Turn] = fmt.Sprintf("%s. Check %s against the parts list first: a wrong value or a bad joint is likelier.",
+		out[t.Turn] = fmt.Sprintf("%s. Check %s against the parts list first: a wrong value or a bad joint is likelier. If they are right, leave it at the end that comes nearest and write the reading down.",
 			rarity(w.Report, t.Turn), order.Runs(refs))
 	}
 	return out

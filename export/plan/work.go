@@ -34,6 +34,8 @@ type Work struct {
 	Drifts []workbook.Drift
 
 	Compared *compare.Result // nil: nothing was compared
+	Trade    *pick.Trade     // nil: nothing was traded
+	Cards    bool            // a page for every unit is wanted
 }
 
 // Digest identifies a plan: the SHA-256 of the build file and of all else that
@@ -53,10 +55,10 @@ func Compose(w Work) workbook.Plan {
 		PriceNote:  PriceNote(w.Order),
 		Findings:   findings(w),
 		Conditions: conditions(w.Build),
-		Order:      w.Order, Pick: *w.Pick,
+		Order:      w.Order, Picks: picked(w),
 		Positions: positions(w),
-		Turns:     w.Sheet.Turns, Readings: w.Sheet.Readings,
-		Spread: *w.Report, Drifts: w.Drifts, Compare: compared(w.Compared),
+		Turns:     w.Sheet.Turns, Readings: w.Sheet.Readings, Samples: w.Sheet.Samples, Cards: w.Cards,
+		Spread: *w.Report, Drifts: w.Drifts, Compare: compared(w.Compared), Trade: traded(w),
 		Basis: basis(w), Cautions: Cautions(),
 		Advice: advice(w),
 	}

@@ -23,6 +23,10 @@ func (b *book) basis() {
 	for _, f := range windowWords {
 		p.fact(f[0], f[1], f[2])
 	}
+	if len(b.plan.Samples) > 0 {
+		p.fact("At other conditions", "As above, read at that condition. Of a change U is 2·(accuracy·|change| + √2·floor)/√3: what is wrong in proportion is alike in both readings of one meter.", "")
+	}
+	p.risks()
 	if len(b.plan.Basis) > 0 {
 		p.section("Assumptions and sources")
 		for _, e := range b.plan.Basis {
@@ -41,9 +45,10 @@ func (b *book) basis() {
 // windowWords says how expected and accept limits come about; package bench
 // works them out, scale.go rounds them.
 var windowWords = [][3]string{
-	{"A good unit shows", "The middle 99.73 % of the simulated good units' readings, with the meter's own loading, widened by its expanded uncertainty U (k = 2). A reading outside means that something is built wrong. Rounded outward to the digits shown.", ""},
-	{"Proves the target", "The target's limits drawn in by U. A reading inside means that the target is met in spite of the meter. Rounded inward to the digits shown.", "Guard band w = U: JCGM 106:2012, 8.3.2"},
-	{"Digits", "The last digit shown is the largest power of ten below a fifth of U, or below a thousandth of the narrowest window where that is coarser.", ""},
+	{"A good unit shows", "The middle 99.73 % of the simulated good units' readings, with the meter's own loading, widened by its expanded uncertainty U = 2·(accuracy·|reading| + floor)/√3. Outside it something is built wrong. Rounded outward.", "k = 2, rectangular: JCGM 100:2008, 4.3.7"},
+	{"Proves the target", "The target's limits, as the loaded meter would show them, drawn in by U. Inside it the target is met in spite of the meter. Rounded inward.", "Guard band w = U: JCGM 106:2012, 8.3.2"},
+	{"The meter's loading", "A target's limits become readings by the straight line that fits what units scatter best; by how much they differ from it, times two, joins U as a root sum of squares.", "JCGM 100:2008, 5.2.2"},
+	{"Digits", "The last digit is the first power of ten not below a tenth of U, or one below a thousandth of the narrowest window if coarser; never over a twentieth of it.", ""},
 	{"Adjustments", "The limits of a row that says turn are its own: leave the trimmer inside them.", ""},
 }
 

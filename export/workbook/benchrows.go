@@ -20,7 +20,7 @@ type benchRow struct {
 	condition string
 	scale
 	nominal, low, high, acceptLow, acceptHigh float64
-	why                                       string
+	why, note                                 string
 }
 
 // benchRows interleaves adjustments and readings by step.
@@ -43,10 +43,10 @@ func readingRow(r bench.Reading) benchRow {
 	if r.Accept != nil {
 		accept = *r.Accept
 	}
-	sc := windowScale(r.Unit, float64(r.Uncertainty), largestOf(r.Nominal, r.Expected.Low, r.Expected.High),
+	sc := readingScale(r.Unit, float64(r.Uncertainty), largestOf(r.Nominal, r.Expected.Low, r.Expected.High),
 		float64(r.Expected.High-r.Expected.Low), float64(accept.High-accept.Low))
 	row := benchRow{
-		step: r.Step, name: r.Point, at: r.At, read: joined(r.Reading, r.Instrument), condition: r.Condition, scale: sc, why: why,
+		step: r.Step, name: r.Point, at: r.At, read: joined(r.Reading, r.Instrument), condition: r.Condition, scale: sc, why: why, note: clean(r.Note),
 		nominal: sc.nearest(float64(r.Nominal)),
 		low:     sc.below(float64(r.Expected.Low)), high: sc.above(float64(r.Expected.High)),
 		acceptLow: sc.above(float64(accept.Low)), acceptHigh: sc.below(float64(accept.High)),
@@ -60,6 +60,16 @@ func readingRow(r bench.Reading) benchRow {
 	}
 	if !finite(row.low) && !finite(row.high) && why == "" {
 		row.why = sentence(row.why, "No limits could be worked out: write the reading down for the record.")
+	}
+	return row
+}
+
+// sampleRow is the like of a target at another condition.
+func sampleRow(s bench.Sample) benchRow {
+	row := readingRow(bench.Reading{Point: s.Output, Reading: s.Target, Instrument: s.Instrument, Condition: s.Condition, Unit: s.Unit,
+		Nominal: s.Nominal, Unloaded: s.Unloaded, Expected: s.Expected, Accept: s.Accept, Uncertainty: s.Uncertainty, At: s.At, Why: s.Why})
+	if s.ChangeFrom != "" {
+		row.name = "change of " + s.Output
 	}
 	return row
 }

@@ -85,6 +85,13 @@ func (p *page) merge(from, to int) {
 	}
 }
 
+// mergeRows joins the cells of a column from one row to another.
+func (p *page) mergeRows(column, from, to int) {
+	if p.out != nil && to > from {
+		p.keep(p.out.MergeCell(at(column, from), at(column, to)))
+	}
+}
+
 // wide is the width of the columns from one to another, together.
 func (p *page) wide(from, to int) float64 {
 	w := 0.0
@@ -128,6 +135,14 @@ func (p *page) paragraph(s string, from, to int, l look) int {
 	return p.span(lineHeight(l.points(), n), from, to, p.text(s, l), look{})
 }
 
+// indentedIf sets a text off from what stands to its left.
+func indentedIf(so bool, l look) look {
+	if so {
+		l.indent = 1
+	}
+	return l
+}
+
 // indented is how much narrower an indent of one makes a column.
 const indented = 1.5
 
@@ -142,6 +157,10 @@ func (p *page) heads(across string, titles ...string) int {
 	cells := make([]excelize.Cell, len(titles))
 	n := 1
 	for i, t := range titles {
+		if i >= len(p.widths) { // beside the page, where only charts look
+			cells[i] = p.text(t, look{size: 8, ink: faded, down: "bottom"})
+			continue
+		}
 		l := look{size: 9, bold: true, fill: tint, wrap: true, down: "bottom", top: rule, bottom: rule}
 		if i < len(across) && across[i] == 'r' {
 			l.across = "right"

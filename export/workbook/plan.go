@@ -11,7 +11,6 @@ import (
 
 	"batchwright/bom/order"
 	"batchwright/tolerance/bench"
-	"batchwright/tolerance/pick"
 	"batchwright/tolerance/spread"
 )
 
@@ -44,15 +43,18 @@ type Plan struct {
 	Findings   []string // sentences for the first page; verdicts come from Spread
 	Conditions []Condition
 	Order      order.Order
-	Pick       pick.Result
+	Picks      Picks
 	Positions  []Position // in stage order
 	Turns      []bench.Turn
 	Readings   []bench.Reading
+	Samples    []bench.Sample // none: no such sheet
 	Spread     spread.Report
 	Drifts     []Drift
 	Compare    *Compare // nil: no such sheet
+	Trade      *Trade   // nil: no such sheet
 	Basis      []Basis
 	Cautions   []string
+	Cards      bool // a page for every unit
 
 	// Advice is what to do when a trim does not reach, by bench.Turn.Turn. A
 	// general sentence stands where there is none.
@@ -104,7 +106,7 @@ func (p Plan) valid() error {
 	if p.Paper != "" && p.Paper != A4 && p.Paper != Letter {
 		return fmt.Errorf("unknown paper %q: expected %s or %s", p.Paper, A4, Letter)
 	}
-	if len(p.Readings)+len(p.Turns) > maxRows {
+	if len(p.Readings)+len(p.Turns)+len(p.Samples) > maxRows {
 		return errors.New("the bench list is longer than a test sheet can be")
 	}
 	return nil

@@ -142,7 +142,7 @@ func corpus(t testing.TB) []damaged {
 		{"many parts", zipOf(t, strings.Fields(rows(1001, "part# "))...), "1001 parts"},
 		{"half", good[:len(good)/2], "truncated"},
 		{"all but the end", good[:len(good)-30], "truncated"},
-		{"a byte changed", flipped, "damaged"},
+		{"a byte changed", flipped, "the part"},
 		{"too large", append(bytes.Clone(good), make([]byte, 17<<20)...), "MiB; a filled workbook has at most 16"},
 		{"a part twice", zipOf(t, "[Content_Types].xml", "xl/workbook.xml", "xl/workbook.xml"), "is there twice"},
 		{"no list of parts", without(t, good, "[Content_Types].xml"), "lost parts"},

@@ -105,7 +105,7 @@ func findingLines(list []Finding) string {
 
 // TestReadBack types every kind of thing into the sheet and expects what is
 // read of it. mixer.collector is read in mV, between −118.4 mV and 118.4 mV
-// widened to what the sheet shows; detector.level in mV, 31.1 to 53.7 mV.
+// widened to what the sheet shows; detector.level in mV, 31 to 54 mV.
 func TestReadBack(t *testing.T) {
 	p := sample(3)
 	rail, _ := rowOfPoint(t, p, "rails.voltage")
@@ -161,7 +161,7 @@ taken Test sheet!M13 (fixed.frequency, unit 2): typed with its unit; taken as 33
 unit Test sheet!N13 (fixed.frequency, unit 3): far from what is expected; the spreadsheet program may have made a date of it, 2026-03-04: 46085|316.25 to 349.88 kHz
 taken Test sheet!M16 (mixer.collector, unit 2): typed with its unit; taken as 50 mV: 0.05 V|
 unread Test sheet!N16 (mixer.collector, unit 3): a comma before three digits: a decimal comma, or thousands?: 1,234|
-unit Test sheet!L22 (detector.level, unit 1): 1000 times below what is expected; typed in V instead of mV?: 0.0401|31.1 to 53.7 mV
+unit Test sheet!L22 (detector.level, unit 1): 1000 times below what is expected; typed in V instead of mV?: 0.0401|31 to 54 mV
 unread Test sheet!M22 (detector.level, unit 2): text that is no reading of a quantity in V: O.L|
 unread Test sheet!N22 (detector.level, unit 3): a formula; type the figure itself: =41.2|
 `, "|\n", "|\n")

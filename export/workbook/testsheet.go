@@ -26,7 +26,7 @@ func (b *book) test() tally {
 	rows := b.plan.benchRows()
 	g := grid{firstRow: verdictRow + 1, firstCol: fixedCols + 1, lastCol: fixedCols + b.plan.Units}
 	g.lastRow = g.firstRow + max(1, len(rows)+bands(rows)) - 1
-	widths := []float64{5, 20.3, 26.5, 16, 5.5, 9, 9, 9, 9, 9, 5}
+	widths := []float64{5, 20.3, 26.5, 18, 5.5, 8.6, 8.6, 8.6, 8.6, 8.6, 5}
 	for range b.plan.Units {
 		widths = append(widths, unitColumn)
 	}
@@ -53,7 +53,7 @@ func (p *page) testHead(g grid) {
 	p.span(16, 1, fixedCols, p.text(fmt.Sprintf("Test sheet · %s · plan %s · type what the meter shows, in the row's unit", plural(p.plan.Units, "unit"), p.plan.short()), look{size: 9, ink: faded, bottom: heavy}), look{bottom: heavy})
 	p.put(6)
 	p.field("Tested by", "Date")
-	p.field("Instruments", "Room, °C")
+	p.field("Instruments, serial numbers", "Room, °C")
 	p.span(18, 1, fixedCols, p.text("▼ ▲ below, above what a good unit shows: check its parts.   ▽ △ misses the proof of a target.   ? no number.   begun: readings are missing.", look{size: 9, ink: faded}), look{})
 	p.groupHeads()
 	p.unitHeads(g)
@@ -95,7 +95,7 @@ func (p *page) unitHeads(g grid) {
 	right.across = "right"
 	var cells []excelize.Cell
 	for _, t := range []string{"Step", "Test point", "Hold the probe at", "Read", "Unit"} {
-		cells = append(cells, p.text(t, head))
+		cells = append(cells, p.text(t, indentedIf(t == "Read", head)))
 	}
 	for _, t := range []string{"Nominal", "at least", "at most", "at least", "at most"} {
 		cells = append(cells, p.text(t, right))
@@ -170,18 +170,21 @@ func (p *page) testBody(rows []benchRow, g grid) []string {
 	return whys(rows)
 }
 
-// whys are the reasons for what is missing, each once with the steps it is for.
+// whys are the reasons for what is missing and the notes on what is there, each
+// once with the steps it is for.
 func whys(rows []benchRow) []string {
 	steps := map[string][]int{}
 	var order []string
 	for _, r := range rows {
-		if r.why == "" {
-			continue
+		for _, said := range []string{r.why, r.note} {
+			if said == "" {
+				continue
+			}
+			if steps[said] == nil {
+				order = append(order, said)
+			}
+			steps[said] = append(steps[said], r.step)
 		}
-		if steps[r.why] == nil {
-			order = append(order, r.why)
-		}
-		steps[r.why] = append(steps[r.why], r.step)
 	}
 	var notes []string
 	for _, why := range order {
@@ -196,15 +199,21 @@ func whys(rows []benchRow) []string {
 
 // band begins a condition, with what to set up on the bench.
 func (p *page) band(r benchRow) {
-	words := "Condition: " + or(clean(r.condition), "as it comes")
-	for _, c := range p.plan.Conditions {
-		if c.Name == r.condition && clean(c.Text) != "" {
-			words += ". Set up: " + clean(c.Text)
-		}
-	}
+	words := p.plan.setUp(r.condition)
 	l := look{bold: true, ink: copper, bottom: rule, down: "bottom", wrap: true}
 	n := lines(words, p.wide(1, fixedCols), 10, true)
 	p.span(max(22, lineHeight(10, n)+3), 1, fixedCols, p.text(words, l), l)
+}
+
+// setUp says what condition to make.
+func (p Plan) setUp(condition string) string {
+	words := "Condition: " + or(clean(condition), "as it comes")
+	for _, c := range p.Conditions {
+		if c.Name == condition && clean(c.Text) != "" {
+			words += ". Set up: " + clean(c.Text)
+		}
+	}
+	return words
 }
 
 // benchRow writes one reading or adjustment.
@@ -224,7 +233,7 @@ func (p *page) benchRow(r benchRow, g grid) {
 	row := p.last + 1
 	count := look{bottom: hairline, bold: true, across: "center", format: "0;;", fill: fill, ink: brick}
 	cells := []excelize.Cell{
-		p.number(float64(r.step), "0", look{bottom: hairline, across: "center", size: 9, ink: faded, fill: fill}), p.text(name, strong), p.text(r.at, text), p.text(r.read, text), p.text(r.symbol, text),
+		p.number(float64(r.step), "0", look{bottom: hairline, across: "center", size: 9, ink: faded, fill: fill}), p.text(name, strong), p.text(r.at, text), p.text(r.read, indentedIf(true, text)), p.text(r.symbol, text),
 		p.limit(r.nominal, r.format(), nominal), p.limit(r.low, r.format(), figure), p.limit(r.high, r.format(), figure),
 		p.limit(r.acceptLow, r.format(), figure), p.limit(r.acceptHigh, r.format(), figure), p.live(g.outsideCount(row), "", count),
 	}
@@ -232,7 +241,7 @@ func (p *page) benchRow(r benchRow, g grid) {
 	for range p.plan.Units {
 		cells = append(cells, p.text("", open))
 	}
-	n := max(p.tallest(10, "", "", r.at, r.read), lines(clean(name), p.widths[1], 10, true))
+	n := max(p.tallest(10, "", "", r.at), lines(clean(r.read), p.widths[3]-indented, 10, false), lines(clean(name), p.widths[1], 10, true))
 	p.put(max(19, lineHeight(10, n)), cells...)
 }
 

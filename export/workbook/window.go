@@ -65,6 +65,21 @@ func windowScale(unit string, u, largest float64, windows ...float64) scale {
 	return scaleOf(unit, largest, powerBelow(step))
 }
 
+// readingScale is the rule for what an instrument reads: as windowScale, with
+// the last digit the smallest power of ten that is
+//
+//	≥ U/10, a tenth of the instrument's expanded uncertainty,
+//
+// where the windows do not ask for another: an instrument has no finer digit
+// that means anything.
+func readingScale(unit string, u, largest float64, windows ...float64) scale {
+	digit := powerBelow(u / 10)
+	if digit < u/10*(1-1e-9) {
+		digit *= 10
+	}
+	return windowScale(unit, 5*digit, largest, windows...)
+}
+
 // powerBelow is the largest power of ten not above x; 0 for x that has none.
 func powerBelow(x float64) float64 {
 	if !(x > 0) || math.IsInf(x, 1) {

@@ -17,9 +17,12 @@ const (
 	stagesSheet     = "Parts by stage"
 	trimsSheet      = "Trims"
 	testSheet       = "Test sheet"
+	samplesSheet    = "Sample tests" // only where the plan has some
+	cardsSheet      = "Cards"        // only where they are asked for
 	tolerancesSheet = "Tolerances"
 	driftSheet      = "Drift"
 	compareSheet    = "Compare" // only where the plan has one
+	tradeSheet      = "Trade"   // likewise
 	basisSheet      = "Basis"
 	carrierSheet    = "_plan" // never shown
 )
@@ -37,9 +40,12 @@ func Write(w io.Writer, p Plan) error {
 	b.byStage()
 	b.trims()
 	verdicts := b.test()
+	b.samples()
+	b.cards()
 	b.tolerances()
 	b.drift()
 	b.compare()
+	b.trade()
 	b.basis()
 	b.summary(total, verdicts)
 	b.carriers()
@@ -66,8 +72,9 @@ type book struct {
 func newBook(p Plan) *book {
 	b := &book{plan: p, file: excelize.NewFile(), styles: map[look]int{}}
 	b.keep(b.file.SetSheetName("Sheet1", summarySheet))
-	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, tolerancesSheet, driftSheet, compareSheet, basisSheet, carrierSheet} {
-		if name == compareSheet && p.Compare == nil {
+	absent := map[string]bool{compareSheet: p.Compare == nil, tradeSheet: p.Trade == nil, samplesSheet: len(p.Samples) == 0, cardsSheet: !p.Cards}
+	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, samplesSheet, cardsSheet, tolerancesSheet, driftSheet, compareSheet, tradeSheet, basisSheet, carrierSheet} {
+		if absent[name] {
 			continue
 		}
 		_, err := b.file.NewSheet(name)

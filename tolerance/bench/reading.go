@@ -10,7 +10,9 @@ import "batchwright/tolerance/spread"
 // widened by the instrument's expanded uncertainty U (k = 2): outside it,
 // something is built wrong. Accept, where a target sits on the point's output,
 // is the target's limits drawn in by U (guard band w = U, JCGM 106): inside
-// it, the target is met in spite of the instrument.
+// it, the target is met in spite of the instrument. Where the instrument loads
+// the point, the limits are those that it would show of them, and U is
+// joined by what units differ in how far it pulls them (see spread.Loading).
 type Reading struct {
 	Point       string         `json:"point"` // "mixer.collector"
 	Reading     string         `json:"reading"`
@@ -25,6 +27,15 @@ type Reading struct {
 	Uncertainty spread.Figure  `json:"uncertainty"` // U, k = 2, at the nominal reading
 	At          string         `json:"at"`          // where to hold the probe, with references
 	Why         string         `json:"why,omitempty"`
+	Note        string         `json:"note,omitempty"` // what else to know: what the instrument does to the reading
+
+	// The risks of Accept; null without it. Consumer's and producer's are the
+	// shares of all simulated units whose trims reached (JCGM 106:2012, 9.5);
+	// specific is the chance that a unit which reads the very limit misses the
+	// target (7.3).
+	ConsumerRisk spread.Figure `json:"consumer_risk"`
+	ProducerRisk spread.Figure `json:"producer_risk"`
+	SpecificRisk spread.Figure `json:"specific_risk"`
 }
 
 // Turn is one trim as the bench does it.

@@ -3,6 +3,7 @@ package bench
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"batchwright/bom/quantity"
@@ -15,17 +16,22 @@ import (
 type Sheet struct {
 	Turns    []Turn
 	Readings []Reading
+	Samples  []Sample // the targets at other conditions
 }
 
 // NewSheet puts trims and readings in the order the bench meets them and gives
-// every reading its windows. A stage's trims come before its readings; a
-// reading that a later trim still moves waits until that trim is done.
+// every reading its windows. Supplies come before what they feed, and each
+// stage before the next. A stage's trims come before its readings; a reading
+// that a later trim still moves waits until that trim is done, and so does all
+// that a supply feeds while a reading of the supply waits. Trims keep the build
+// file's order.
 func NewSheet(m *build.Model, r *spread.Report) Sheet {
-	s := sheet{model: m, report: r, placed: make([]bool, len(m.Points))}
-	for i := range m.Build.Stages {
-		s.turnsAt(i)
-		s.readingsUpTo(i)
+	s := sheet{model: m, report: r, order: newOrder(m.Build), placed: make([]bool, len(m.Points))}
+	for place := range s.order.stages(m.Build) {
+		s.turnsAt(place)
+		s.readingsUpTo(place)
 	}
+	s.Samples = samples(m, r)
 	return s.Sheet
 }
 
@@ -33,26 +39,28 @@ type sheet struct {
 	Sheet
 	model  *build.Model
 	report *spread.Report
+	order  order
 	turned int // trims done, in order
 	placed []bool
 	step   int
 }
 
 // turnsAt does the trims, in their order, whose watched stage has been met.
-func (s *sheet) turnsAt(stage int) {
+func (s *sheet) turnsAt(place int) {
 	b := s.model.Build
-	for s.turned < len(b.Trims) && stageIndex(b, b.Trims[s.turned].Output.Stage) <= stage {
+	for s.turned < len(b.Trims) && s.order.place[b.Trims[s.turned].Output.Stage] <= place {
 		s.step++
 		s.Turns = append(s.Turns, s.turn(s.turned))
 		s.turned++
-		s.readingsUpTo(stage - 1) // those of earlier stages that waited for it
+		s.readingsUpTo(place - 1) // those of earlier stages that waited for it
 	}
 }
 
-// readingsUpTo places the readings of the stages met that no later trim moves.
-func (s *sheet) readingsUpTo(stage int) {
-	for i, p := range s.model.Points {
-		if s.placed[i] || stageIndex(s.model.Build, p.Stage.Name) > stage || s.moved(p) {
+// readingsUpTo places the readings of the stages met that nothing holds up.
+func (s *sheet) readingsUpTo(place int) {
+	for _, i := range s.order.points(s.model) {
+		p := s.model.Points[i]
+		if s.placed[i] || s.order.place[p.Stage.Name] > place || s.moved(p) || s.unproved(p) {
 			continue
 		}
 		s.placed[i] = true
@@ -71,13 +79,14 @@ func (s *sheet) moved(p build.Point) bool {
 	return false
 }
 
-func stageIndex(b *build.Build, name string) int {
-	for i, s := range b.Stages {
-		if s.Name == name {
-			return i
+// unproved says whether a supply that feeds the point has a reading to come.
+func (s *sheet) unproved(p build.Point) bool {
+	for i, other := range s.model.Points {
+		if !s.placed[i] && isSupply(other.Stage) && slices.Contains(s.order.fed[p.Stage.Name], other.Stage.Name) {
+			return true
 		}
 	}
-	return -1
+	return false
 }
 
 // turn describes a trim.
@@ -92,10 +101,10 @@ func (s *sheet) turn(i int) Turn {
 	}
 }
 
-// where is the place to hold the probe for a trim, if one of the watched
-// stage's test points reads the output; otherwise what the output is. Where the
-// probe itself moves the reading by more than the trim may be off, that is said:
-// the trim is on what is there without it.
+// where is the place to hold the probe for a trim, if a test point reads the
+// output; otherwise what the output is. Where the probe itself moves the
+// reading by more than the trim may be off, that is said: the trim is on what
+// is there without it.
 func (s *sheet) where(t build.Trim) string {
 	for i, p := range s.model.Points {
 		q := p.Stage.Kind.Points[p.Index]
@@ -103,12 +112,15 @@ func (s *sheet) where(t build.Trim) string {
 			continue
 		}
 		at := withReferences(q.At, p.Stage)
-		shown, there := s.report.Readings[i].Nominal, s.report.Readings[i].Unloaded
-		if math.Abs(float64(shown-there)) > t.Within {
+		if x := s.report.Readings[i]; math.Abs(float64(x.Nominal-x.Unloaded)) > t.Within {
 			at += fmt.Sprintf("; with its probe there the %s shows %s on a nominal unit set to %s",
-				p.Instrument.Name, quantity.Format(float64(shown), p.Unit, 6), quantity.Format(float64(there), p.Unit, 6))
+				p.Instrument.Name, shown(x.Nominal, p.Unit), shown(x.Unloaded, p.Unit))
 		}
 		return at
+	}
+	if i := noteAt(s.model, t.Output); i >= 0 {
+		p := s.model.Points[i]
+		return "count the note at the " + withReferences(p.Stage.Kind.Points[p.Index].At, p.Stage)
 	}
 	for _, o := range s.model.Build.Stage(t.Output.Stage).Outputs {
 		if o.Name == t.Output.Output {
@@ -117,6 +129,9 @@ func (s *sheet) where(t build.Trim) string {
 	}
 	return t.Output.Stage
 }
+
+// shown is a figure in words, six digits of it.
+func shown(x spread.Figure, u quantity.Unit) string { return quantity.Format(float64(x), u, 6) }
 
 // withReferences puts each part's reference before its role: "collector of the
 // transistor" becomes "collector of Q1 (transistor)"; of two pieces both stand
@@ -143,60 +158,50 @@ func (s *sheet) reading(i int) Reading {
 	p := s.model.Points[i]
 	x := s.report.Readings[i]
 	q := p.Stage.Kind.Points[p.Index]
-	u := Uncertainty(p.Instrument, float64(x.Nominal))
+	none := spread.Figure(math.NaN())
 	r := Reading{
 		Point: p.Stage.Name + "." + q.Name, Reading: q.Reading, Instrument: p.Instrument.Name,
 		Condition: s.model.Build.Conditions[0].Name, Step: s.step, Unit: p.Unit.Symbol,
-		Nominal: x.Nominal, Unloaded: x.Unloaded, Uncertainty: spread.Figure(u),
-		At: withReferences(q.At, p.Stage),
-		Expected: spread.Limits{
-			Low:  x.Low - spread.Figure(Uncertainty(p.Instrument, float64(x.Low))),
-			High: x.High + spread.Figure(Uncertainty(p.Instrument, float64(x.High))),
-		},
+		Nominal: x.Nominal, Unloaded: x.Unloaded, Uncertainty: spread.Figure(Uncertainty(p.Instrument, float64(x.Nominal))),
+		At: withReferences(q.At, p.Stage), Expected: widened(x.Low, x.High, p.Instrument, Uncertainty),
+		ConsumerRisk: none, ProducerRisk: none, SpecificRisk: none,
+		Note: s.note(i),
 	}
 	if x.Units == 0 {
 		r.Why = "no simulated unit was good"
 	}
-	s.accept(&r, p, q.Name)
+	s.accept(&r, i)
 	return r
 }
 
-// Uncertainty is an instrument's expanded uncertainty (k = 2) at a reading:
-// its accuracy and floor are limits of error, taken as rectangular (JCGM
-// 100:2008, 4.3.7), so
-//
-//	U = 2·(accuracy·|reading| + floor)/√3
-func Uncertainty(i build.Instrument, reading float64) float64 {
-	return 2 * (i.Accuracy*math.Abs(reading) + i.Floor) / math.Sqrt(3)
+// widened are limits let out by an instrument's uncertainty at each.
+func widened(low, high spread.Figure, i build.Instrument, u func(build.Instrument, float64) float64) spread.Limits {
+	return spread.Limits{Low: low - spread.Figure(u(i, float64(low))), High: high + spread.Figure(u(i, float64(high)))}
 }
 
-// accept draws in the limits of the targets on the point's output at the
-// reference condition by the uncertainty there (guard band w = U, JCGM
-// 106:2012, 8.3.2).
-func (s *sheet) accept(r *Reading, p build.Point, output string) {
-	low, high := math.Inf(-1), math.Inf(1)
+// accept gives a reading the window in which it proves the targets on its
+// output at the reference condition, and that window's risks.
+func (s *sheet) accept(r *Reading, i int) {
+	p, x := s.model.Points[i], s.report.Readings[i]
+	w := window{p.Instrument, Uncertainty, x.Loading, math.Inf(-1), math.Inf(1)}
+	output := build.OutputName{Stage: p.Stage.Name, Output: p.Stage.Kind.Points[p.Index].Name}
 	for _, t := range s.model.Build.Targets {
-		if t.Trim < 0 && t.ChangeFrom < 0 && t.Output == (build.OutputName{Stage: p.Stage.Name, Output: output}) && atReference(t) {
-			low, high = math.Max(low, t.Low), math.Min(high, t.High)
+		if t.Trim < 0 && t.ChangeFrom < 0 && t.Output == output && slices.Contains(t.At, 0) {
+			w.low, w.high = math.Max(w.low, t.Low), math.Min(w.high, t.High)
 		}
 	}
-	if math.IsInf(low, -1) && math.IsInf(high, 1) {
+	if math.IsInf(w.low, -1) && math.IsInf(w.high, 1) {
 		return
 	}
-	r.Accept = &spread.Limits{
-		Low:  spread.Figure(low + Uncertainty(p.Instrument, low)),
-		High: spread.Figure(high - Uncertainty(p.Instrument, high)),
+	l, ok := w.accept(p.Instrument)
+	if !ok {
+		r.Why = w.tooCoarse()
+		return
 	}
-	if !(r.Accept.Low < r.Accept.High) {
-		r.Accept, r.Why = nil, "the instrument is too coarse for the target"
+	r.Accept = &l
+	r.SpecificRisk = spread.Figure(w.specificRisk(l))
+	if x.True != nil && x.True.Count() > 0 {
+		risks := w.globalRisks(x.True, l)
+		r.ConsumerRisk, r.ProducerRisk = spread.Figure(risks.Consumer), spread.Figure(risks.Producer)
 	}
-}
-
-func atReference(t build.Target) bool {
-	for _, i := range t.At {
-		if i == 0 {
-			return true
-		}
-	}
-	return false
 }

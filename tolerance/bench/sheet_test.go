@@ -117,8 +117,16 @@ func TestWindows(t *testing.T) {
 	if r.Accept == nil {
 		t.Fatal("no window for the target")
 	}
-	near(t, "accept low", r.Accept.Low, 5.8+u(5.8), 1e-12)
-	near(t, "accept high", r.Accept.High, 6.2-u(6.2), 1e-12)
+	// With R2' = R2 ∥ 10 MΩ = 10/11 MΩ the slopes of the loaded reading are
+	// −12·R2'/(R1+R2')² = −1320/441 V/MΩ by R1 and 12·R1/(R1+R2')²·(10/11)² =
+	// 1200/441 by R2, those of the bare one −3 and 3: the best scale is their
+	// product over 18, 20/21, and what is left (3·20/21 − 1320/441 = −60/441) by
+	// either, each of 1 %/√3.
+	left := 60.0 / 441 * math.Sqrt2 * 0.01 / math.Sqrt(3)
+	guard := func(v float64) float64 { return math.Hypot(u(v), 2*left) }
+	k := 20.0 / 21
+	near(t, "accept low", r.Accept.Low, 5.8*k+guard(5.8*k), 1e-9)
+	near(t, "accept high", r.Accept.High, 6.2*k-guard(6.2*k), 1e-9)
 	if b := find(t, s, "b.level"); b.Accept != nil {
 		t.Error("a window for a target that there is none of")
 	}

@@ -94,6 +94,20 @@ func head(name string) string {
 
 // needs lists the other stages a stage takes something from.
 func (r *reader) needs(s stageNode) []stageNode {
+	var out []stageNode
+	for _, name := range s.Needs() {
+		for _, other := range r.stages {
+			if other.Name == name {
+				out = append(out, other)
+			}
+		}
+	}
+	return out
+}
+
+// Needs names the other stages that a stage takes something from, and perhaps a
+// condition's variables.
+func (s *Stage) Needs() []string {
 	var heads []string
 	for _, w := range s.Wires {
 		heads = append(heads, w.From)
@@ -115,13 +129,5 @@ func (r *reader) needs(s stageNode) []stageNode {
 			}
 		}
 	}
-	var out []stageNode
-	for _, h := range heads {
-		for _, other := range r.stages {
-			if other.Name == h {
-				out = append(out, other)
-			}
-		}
-	}
-	return out
+	return heads
 }

@@ -39,6 +39,13 @@ func (e *environment) load(c *compiler, s *Stage, index int, i Instrument) {
 	}
 }
 
+// loadedEnvironment has an instrument connected to one of a stage's points.
+func (c *compiler) loadedEnvironment(condition int, settings []tape.Ref, s *Stage, index int, i Instrument) *environment {
+	e := c.newEnvironment(condition, settings)
+	e.load(c, s, index, i)
+	return e
+}
+
 // output is the node of a stage's output. A temperature in °C leaves the
 // equations' absolute scale here.
 func (c *compiler) output(e *environment, n OutputName) tape.Ref {

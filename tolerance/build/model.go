@@ -20,6 +20,7 @@ type Model struct {
 	Trims   []TrimNodes
 	Targets []TargetNodes // as Build.Targets
 	Points  []Point
+	Samples []Sample // as the targets list them
 
 	Findings []Finding // by stage, finding and condition
 }
@@ -62,8 +63,19 @@ type Point struct {
 	Instrument Instrument
 	Loaded     tape.Ref
 	Unloaded   tape.Ref
+	Level      tape.Ref // V peak at the loaded node, where Levelled
+	Levelled   bool     // the instrument needs a least level
 	Unit       quantity.Unit
 	Trims      []int
+}
+
+// Sample is what a target asks of an output at a condition other than the
+// reference, or of its change to there, as an instrument would read it.
+type Sample struct {
+	Target, Condition int
+	Point             int      // of Model.Points, that reads the output; -1: none
+	Loaded            tape.Ref // with the point's instrument connected, if there is one
+	Unloaded          tape.Ref
 }
 
 // compiler turns a build into a graph.
@@ -85,6 +97,7 @@ func (b *Build) Compile() (*Model, error) {
 	c.compileOutputs(environments)
 	c.compileFindings(environments)
 	c.compilePoints(settings)
+	c.compileSamples(settings)
 	c.findTrims()
 	return c.Model, c.err
 }
@@ -240,17 +253,23 @@ func (c *compiler) compilePoints(settings []tape.Ref) {
 				c.fail(fmt.Errorf("build: %s.%s is read with %q, which is no instrument", s.Kind.Name, p.Name, p.Instrument))
 				continue
 			}
-			loaded := c.newEnvironment(0, settings)
-			loaded.load(c, s, i, instrument)
+			loaded := c.loadedEnvironment(0, settings, s, i, instrument)
 			out, ok := s.output(p.Name)
 			if !ok {
 				c.fail(fmt.Errorf("build: %s reads %q, which is no output", s.Kind.Name, p.Name))
 				continue
 			}
-			c.Points = append(c.Points, Point{
+			q := Point{
 				Stage: s, Index: i, Instrument: instrument, Unit: out.Unit,
 				Loaded: c.equation(loaded, s, p.Name), Unloaded: c.equation(bare, s, p.Name),
-			})
+			}
+			if instrument.MinimumLevel > 0 {
+				q.Level, q.Levelled = q.Loaded, p.Level != "" || p.Reading == "peak voltage"
+				if p.Level != "" {
+					q.Level = c.equation(loaded, s, p.Level)
+				}
+			}
+			c.Points = append(c.Points, q)
 		}
 	}
 }

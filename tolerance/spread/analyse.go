@@ -17,13 +17,6 @@ var QuantileNames = []string{"0.005", "0.025", "0.5", "0.975", "0.995"}
 
 var quantiles = []float64{0.005, 0.025, 0.5, 0.975, 0.995}
 
-// The central 99.73 % that a test sheet's window spans: ±3 standard deviations
-// of a normal distribution.
-const (
-	readingLow  = 0.00135
-	readingHigh = 0.99865
-)
-
 // Analyse does everything: nominal values, worst cases, root sum squares,
 // contributions and a simulation with its yield.
 func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
@@ -47,7 +40,8 @@ func Analyse(ctx context.Context, m *build.Model, o Options) (*Report, error) {
 		r.Targets = append(r.Targets, s.target(t, worst))
 	}
 	r.Yield = s.yield()
-	r.Readings = s.readings()
+	loads := s.loads()
+	r.Readings, r.Samples = s.readings(loads), s.sampleReports(loads)
 	r.Findings = s.findings()
 	r.LockRanges = lockRanges(m, r.Outputs)
 	r.Notes = s.notes()
@@ -161,7 +155,10 @@ func (s *sample) trim(k int) TrimReport {
 		ReachedShare: Figure(1 - float64(s.short[k][0]+s.short[k][1])/units),
 		ShortLow:     Figure(float64(s.short[k][0]) / units),
 		ShortHigh:    Figure(float64(s.short[k][1]) / units),
+		NearLow:      Figure(float64(s.near[k][0]) / units),
+		NearHigh:     Figure(float64(s.near[k][1]) / units),
 		Setting: TrimSetting{
+			Median:  Figure(x.histogram.Quantile(0.5)),
 			Nominal: Figure(s.nominal[s.nodes.trimColumn(k)]), Mean: Figure(x.moments.Mean()),
 			P01: Figure(x.histogram.Quantile(0.01)), P99: Figure(x.histogram.Quantile(0.99)),
 		},
@@ -287,28 +284,6 @@ func (s *sample) yield() YieldReport {
 		UnitShare: Figure(share), Interval: [2]Figure{Figure(low), Figure(high)},
 		Batch: BatchReport{units, Figure(median), Figure(p05), Figure(all)},
 	}
-}
-
-// readings are the distributions of what the bench will read on good units.
-func (s *sample) readings() []ReadingReport {
-	m := s.nodes.model
-	var list []ReadingReport
-	if len(m.Points) == 0 {
-		return list
-	}
-	var refs []tape.Ref
-	for _, p := range m.Points {
-		refs = append(refs, p.Unloaded)
-	}
-	bare := Linearise(m, refs...)
-	for i, x := range s.points {
-		list = append(list, ReadingReport{
-			Nominal: Figure(s.nominal[s.nodes.points+i]), Unloaded: Figure(bare.Values[i]),
-			Low: Figure(x.histogram.Quantile(readingLow)), High: Figure(x.histogram.Quantile(readingHigh)),
-			Units: x.moments.Count(),
-		})
-	}
-	return list
 }
 
 // notes are what else should be known.

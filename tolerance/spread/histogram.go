@@ -259,6 +259,21 @@ func (h *Histogram) clamp(offset float64) float64 {
 
 func exactly(v float64) reading { return reading{v, v, v} }
 
+// Bin is one bin's ends, not beyond the least and the largest value.
+type Bin struct{ Low, High float64 }
+
+// Bins yields the bins that count anything, in ascending order, with how many
+// values each counts; infinite values are in none.
+func (h *Histogram) Bins() iter.Seq2[Bin, int] {
+	return func(yield func(Bin, int) bool) {
+		for b, n := range h.bins() {
+			if !yield(Bin{h.clamp(b.low), h.clamp(b.high)}, int(n)) {
+				return
+			}
+		}
+	}
+}
+
 // edges are the ends of a bin as offsets from the centre.
 type edges struct{ low, high float64 }
 

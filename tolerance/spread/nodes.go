@@ -24,7 +24,9 @@ type nodes struct {
 	outputs  []int       // the first of Model.Outputs in each column
 	columnOf map[int]int // from an index of Model.Outputs
 	trims    []int       // of Model.Trims; setting, at low, at high follow the outputs for each
-	points   int         // first column of the loaded readings, up to happen
+	points   int         // first column of the loaded readings, and what goes with them, up to happen
+	levels   []int       // of Model.Points, how far from points its level is; -1: none is asked
+	samples  int         // how far from points the first of Model.Samples is
 	happen   int         // first column of the findings
 	findings []int       // the first of Model.Findings in each column from there
 	happenAt []int       // of Model.Findings, which of these it is
@@ -56,9 +58,7 @@ func newNodes(m *build.Model, outputs, targets []int, points bool) *nodes {
 	}
 	n.points = len(refs)
 	if points {
-		for _, p := range m.Points {
-			refs = append(refs, p.Loaded)
-		}
+		refs = n.addReadings(refs)
 	}
 	n.happen = len(refs)
 	if points {
@@ -90,6 +90,31 @@ func (n *nodes) findTrims(all bool) {
 			n.trims = append(n.trims, t)
 		}
 	}
+}
+
+// addReadings gives columns to the loaded readings, to the levels that the
+// instruments ask for, and to the samples.
+func (n *nodes) addReadings(refs []tape.Ref) []tape.Ref {
+	m := n.model
+	for _, p := range m.Points {
+		refs = append(refs, p.Loaded)
+	}
+	for i, p := range m.Points {
+		at := -1
+		switch {
+		case p.Levelled && p.Level == p.Loaded:
+			at = i
+		case p.Levelled:
+			at = len(refs) - n.points
+			refs = append(refs, p.Level)
+		}
+		n.levels = append(n.levels, at)
+	}
+	n.samples = len(refs) - n.points
+	for _, s := range m.Samples {
+		refs = append(refs, s.Loaded)
+	}
+	return refs
 }
 
 // addFindings gives the findings their columns; those that are one node, such

@@ -49,6 +49,7 @@ type Report struct {
 	// Readings are what the bench will see, as the model's points; package
 	// bench makes windows of them.
 	Readings []ReadingReport `json:"-"`
+	Samples  []SampleReport  `json:"-"` // as the model's samples
 }
 
 // ReadingReport is the distribution of one test point's reading, with the
@@ -56,7 +57,29 @@ type Report struct {
 type ReadingReport struct {
 	Nominal, Unloaded, Low, High Figure
 	Units                        int // good units seen
+
+	Level, LevelLow Figure     // V peak at the node, nominal and low; NaN where the instrument needs none
+	Loading         Loading    // what the instrument does
+	True            *Histogram // of what is there without it, over the units whose trims reached
 }
+
+// SampleReport is the like of a sample.
+type SampleReport struct {
+	Nominal, Unloaded, Low, High Figure
+	Units                        int
+	Loading                      Loading
+}
+
+// Loading is how an instrument's reading follows from what is there without it:
+//
+//	reading = Scale·value + Shift
+//
+// on a nominal unit, with a standard uncertainty since units differ in how far
+// they are pulled.
+type Loading struct{ Scale, Shift, Uncertainty float64 }
+
+// Reading is what the instrument shows of a value, but for its own error.
+func (l Loading) Reading(value float64) float64 { return l.Scale*value + l.Shift }
 
 // OutputReport is one output at one condition, or its change from another.
 type OutputReport struct {
@@ -120,6 +143,8 @@ type TrimReport struct {
 	ReachedShare Figure      `json:"reached_share"`
 	ShortLow     Figure      `json:"short_low"`  // share that ran out at setting 0
 	ShortHigh    Figure      `json:"short_high"` // share that ran out at setting 1
+	NearLow      Figure      `json:"near_low"`   // share that reached within NearEnd of setting 0
+	NearHigh     Figure      `json:"near_high"`  // and of setting 1
 	Setting      TrimSetting `json:"setting"`
 	Why          string      `json:"why,omitempty"`
 }
@@ -128,6 +153,7 @@ type TrimReport struct {
 type TrimSetting struct {
 	Nominal Figure `json:"nominal"`
 	Mean    Figure `json:"mean"`
+	Median  Figure `json:"median"`
 	P01     Figure `json:"p01"` // 1 % of the units end below
 	P99     Figure `json:"p99"`
 }

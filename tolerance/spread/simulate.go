@@ -19,6 +19,8 @@ type Options struct {
 	Units    int                   // at least; rounded up to whole batches
 	Workers  int                   // 0: one for each processor
 	Progress func(done, total int) // called from several goroutines; nil: not called
+	// Lots gives what is known of a batch's lots: see scatter.Source.
+	Lots func(lot, batch int) (g float64, ok bool)
 }
 
 // batches is how many whole batches hold the units asked for.
@@ -33,8 +35,9 @@ type sample struct {
 	nominal   []float64
 	outputs   []summary   // as nodes.outputs
 	settings  []summary   // as nodes.trims
-	points    []summary   // over good units; as Model.Points
+	points    []summary   // over good units; as the columns from nodes.points
 	short     [][2]int    // of each trim: units that ran out at setting 0, at 1
+	near      [][2]int    // and those that reached within a tenth of setting 0, of 1
 	happened  [][]int     // [of nodes.findings][batch] in how many units; nil: in none
 	untrimmed []int       // of nodes.findings: units in which a trim it depends on did not reach
 	comply    [][]bool    // [of nodes.targets][unit]
@@ -52,7 +55,7 @@ type summary struct {
 // job is one run's own results.
 type job struct {
 	outputs, settings, points []Moments
-	short                     [][2]int
+	short, near               [][2]int
 	happened                  [][]batchCount // of nodes.findings
 	untrimmed                 []int
 }
@@ -74,7 +77,7 @@ func simulate(ctx context.Context, n *nodes, o Options) (*sample, error) {
 		wait.Add(1)
 		go func() {
 			defer wait.Done()
-			w := s.newWorker(scatter.Source{Seed: o.Seed, Units: units})
+			w := s.newWorker(scatter.Source{Seed: o.Seed, Units: units, Lots: o.Lots})
 			for ctx.Err() == nil {
 				i := int(next.Add(1)) - 1
 				if i >= len(jobs) {
@@ -109,7 +112,7 @@ func newSample(n *nodes, batches, units int) *sample {
 	for column := n.points; column < n.happen; column++ {
 		s.points = append(s.points, newSummary(s.nominal[column]))
 	}
-	s.short = make([][2]int, len(n.trims))
+	s.short, s.near = make([][2]int, len(n.trims)), make([][2]int, len(n.trims))
 	s.happened, s.untrimmed = make([][]int, len(n.findings)), make([]int, len(n.findings))
 	s.comply = make([][]bool, len(n.targets))
 	for i := range s.comply {
@@ -140,6 +143,8 @@ func (s *sample) mergeJobs(jobs []job) {
 		for i := range j.short {
 			s.short[i][0] += j.short[i][0]
 			s.short[i][1] += j.short[i][1]
+			s.near[i][0] += j.near[i][0]
+			s.near[i][1] += j.near[i][1]
 		}
 		s.mergeFindings(j)
 	}

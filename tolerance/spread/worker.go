@@ -59,7 +59,7 @@ func (w *worker) job(first int) job {
 		outputs:  make([]Moments, len(w.outputs)),
 		settings: make([]Moments, len(w.settings)),
 		points:   make([]Moments, len(w.points)),
-		short:    make([][2]int, len(w.settings)),
+		short:    make([][2]int, len(w.settings)), near: make([][2]int, len(w.settings)),
 		happened: make([][]batchCount, len(w.nodes.findings)), untrimmed: make([]int, len(w.nodes.findings)),
 	}
 	for block := first; block < min(first+run, w.sample.units); block += lanes {
@@ -135,7 +135,25 @@ func (w *worker) addTrims(j *job, out [][]float64, width int) {
 			}
 		}
 		earlier := append([]int{t}, w.nodes.model.Trims[t].Trims...)
-		w.add(&j.settings[k], w.settings[k], out[column], w.keepReached(earlier, width))
+		keep := w.keepReached(earlier, width)
+		w.add(&j.settings[k], w.settings[k], out[column], keep)
+		addNear(&j.near[k], out[column], keep)
+	}
+}
+
+// NearEnd is how close to an end of its travel, of 1, a trimmer is called near it.
+const NearEnd = 0.1
+
+// addNear counts the lanes kept whose settings are near 0 and near 1.
+func addNear(near *[2]int, settings []float64, keep []bool) {
+	for i, x := range settings {
+		switch {
+		case !keep[i]:
+		case x <= NearEnd:
+			near[0]++
+		case x >= 1-NearEnd:
+			near[1]++
+		}
 	}
 }
 

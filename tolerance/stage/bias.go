@@ -6,21 +6,26 @@ import "batchwright/bom/quantity"
 // divider between the rails and whose emitter resistor goes to the negative
 // one; `base_foot` is the divider's lower arm. junctionMixer tells the law and
 // the bracket of its root. Outputs: current, base_voltage, emitter_voltage, and
-// the finding starved. A meter at the base (`base_meter`, S) joins the divider.
+// the finding starved. A meter at the base (`base_meter`, S) joins the divider;
+// one at the emitter (`emitter_meter`) makes with the emitter resistor a lesser
+// resistor (`emitter_dc`) to a voltage nearer ground (`emitter_foot`).
 const junctionBias = `
 warmth = temperature - zero_celsius - 25*kelvin
 thermal = boltzmann*temperature/charge
 base_resistance = 1/(1/base_upper + 1/base_foot + base_meter)
 base_open = (positive/base_upper + negative/base_foot)*base_resistance
-drive = base_open - negative
+emitter_part = 1 + emitter*emitter_meter
+emitter_foot = negative/emitter_part
+emitter_dc = emitter/emitter_part
+drive = base_open - emitter_foot
 junction = transistor.vbe + transistor.vbe_slope*warmth
-slope = base_resistance/transistor.beta + (1 + 1/transistor.beta)*emitter
+slope = base_resistance/transistor.beta + (1 + 1/transistor.beta)*emitter_dc
 most = max(drive/slope, 1e-9*ampere)
 least = max((drive - junction - thermal*ln(most/(0.001*ampere)))/slope, 1e-12*ampere)
 more = min(max((drive - junction - thermal*ln(least/(0.001*ampere)))/slope, least), most)
 current = root(i, least, more, drive - i*slope - junction - thermal*ln(i/(0.001*ampere)))
 base_voltage = base_open - current/transistor.beta*base_resistance
-emitter_voltage = negative + current*(1 + 1/transistor.beta)*emitter
+emitter_voltage = emitter_foot + current*(1 + 1/transistor.beta)*emitter_dc
 starved = current < 1e-6*ampere
 `
 

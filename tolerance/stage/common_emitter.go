@@ -32,7 +32,7 @@ import (
 //
 // Instruments as with junctionMixer: a meter on the collector divides with the
 // load, a scope's capacitance shunts it, a meter on the base joins the divider,
-// the emitter is stiff.
+// one on the emitter joins its resistor.
 var commonEmitter = Kind{
 	Name:    "common-emitter",
 	Summary: "one transistor that amplifies and inverts, its emitter resistor bypassed or not",
@@ -77,7 +77,7 @@ at_gain = transistor.beta*at_passing*sqrt(1 + at_turn^2)/at_denominator*at_loadi
 	Points: []Point{
 		basePoint,
 		{Name: "emitter_voltage", Reading: "dc voltage", Instrument: "dmm",
-			At: "end of emitter at the transistor, to ground"},
+			At: "end of emitter at the transistor, to ground", Conductance: "emitter_meter"},
 		{Name: "collector", Reading: "dc voltage", Instrument: "dmm",
 			At: "collector of the transistor, to ground", Conductance: "meter"},
 		{Name: "swing", Reading: "peak voltage", Instrument: "scope",

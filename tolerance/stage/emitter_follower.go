@@ -25,9 +25,8 @@ import (
 // load besides, it clips downwards earlier. No slew limit is given, for want
 // of a load capacitance to know it by.
 //
-// A scope on the emitter joins its resistor (meter and capacitance); a meter
-// there changes the steady voltage by parts in a million and is left out; a
-// meter on the base joins the divider.
+// A scope on the emitter joins its resistor (meter and capacitance); so does a
+// meter there (emitter_meter); a meter on the base joins the divider.
 var emitterFollower = Kind{
 	Name:    "emitter-follower",
 	Summary: "one transistor as a buffer: gain nearly 1, small output resistance",
@@ -69,7 +68,7 @@ at_gain = (transistor.beta + 1)*at_passing*emitter_ac/at_denominator
 	Points: []Point{
 		basePoint,
 		{Name: "dc", Reading: "dc voltage", Instrument: "dmm",
-			At: "end of emitter at the transistor, to ground"},
+			At: "end of emitter at the transistor, to ground", Conductance: "emitter_meter"},
 		{Name: "swing", Reading: "peak voltage", Instrument: "scope",
 			At: "end of emitter at the transistor, to ground, AC coupled", Conductance: "meter", Capacitance: "probe"},
 	},

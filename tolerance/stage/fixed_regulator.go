@@ -19,7 +19,7 @@ var regulatorOutputs = []Output{
 
 // regulatorPoints: a regulator is stiff, so no instrument changes its voltage.
 var regulatorPoints = []Point{{Name: "voltage", Reading: "dc voltage", Instrument: "dmm",
-	At: "output of the regulator, to ground"}}
+	At: "output of the regulator, to ground", Stiff: driven}}
 
 // regulatorFindings: what a supply that is too low does.
 var regulatorFindings = []Finding{

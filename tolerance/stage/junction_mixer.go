@@ -31,8 +31,8 @@ import (
 // `starved` (common practice, no source).
 //
 // Instruments. A meter on the collector divides with the load, a scope's
-// capacitance shunts it; a meter on the base joins the divider; the emitter is
-// stiff. Both are held to ground, 0 V.
+// capacitance shunts it; a meter on the base joins the divider, one on the
+// emitter joins its resistor. All are held to ground, 0 V.
 var junctionMixer = Kind{
 	Name:    "junction-mixer",
 	Summary: "one transistor whose exponential junction mixes two carriers fed to its base",
@@ -65,7 +65,7 @@ var junctionMixer = Kind{
 		{Name: "base_voltage", Reading: "dc voltage", Instrument: "dmm",
 			At: "base of the transistor, to ground", Conductance: "base_meter"},
 		{Name: "emitter_voltage", Reading: "dc voltage", Instrument: "dmm",
-			At: "end of emitter at the transistor, to ground"},
+			At: "end of emitter at the transistor, to ground", Conductance: "emitter_meter"},
 		{Name: "collector", Reading: "dc voltage", Instrument: "dmm",
 			At: "collector of the transistor, to ground", Conductance: "meter"},
 		{Name: "swing", Reading: "peak voltage", Instrument: "scope",

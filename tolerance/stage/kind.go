@@ -81,6 +81,12 @@ type Point struct {
 	// Conductance and Capacitance name the equation variables (S, F; 0 but
 	// while this point is read) through which the instrument loads the node.
 	Conductance, Capacitance string
+	// Stiff is why the part of a load that they do not name changes nothing.
+	// A steady voltage need not say that capacitance leaves it alone.
+	Stiff string
+	// Level names the equation for the peak level (V) at the node, where that
+	// is not the reading itself: some instruments need a least level.
+	Level string
 }
 
 // Finding is something a stage does that its user must not miss: it clips, it

@@ -40,7 +40,7 @@ overdriven = carrier_in + abs(carrier_dc) > scale or signal_in + abs(signal_dc) 
 `,
 	Outputs: mixerOutputs,
 	Points: []Point{{Name: "tone_level", Reading: "peak voltage", Instrument: "scope",
-		At: "output of the multiplier, to ground"}},
+		At: "output of the multiplier, to ground", Stiff: driven}},
 	Findings: []Finding{
 		{"overdriven", "an input goes beyond the multiplier's range, its scale voltage; lower the levels that come in"},
 	},

@@ -32,8 +32,8 @@ var opampOutputs = []Output{
 
 // opampPoints: the output is stiff, so no instrument changes what is there.
 var opampPoints = []Point{
-	{Name: "dc", Reading: "dc voltage", Instrument: "dmm", At: "output of the opamp, to 0 V"},
-	{Name: "swing", Reading: "peak voltage", Instrument: "scope", At: "output of the opamp, to 0 V, AC coupled"},
+	{Name: "dc", Reading: "dc voltage", Instrument: "dmm", At: "output of the opamp, to 0 V", Stiff: driven},
+	{Name: "swing", Reading: "peak voltage", Instrument: "scope", At: "output of the opamp, to 0 V, AC coupled", Stiff: driven},
 }
 
 var opampFindings = []Finding{

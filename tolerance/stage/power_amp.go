@@ -73,8 +73,8 @@ tank_q = in.tank_q
 		{"swing", quantity.Volt, "peak of the whole waveform at the amplifier's output"},
 	},
 	Points: []Point{
-		{Name: "rest_voltage", Reading: "dc voltage", Instrument: "dmm", At: "side of output_c at the amplifier, to ground"},
-		{Name: "swing", Reading: "peak voltage", Instrument: "scope", At: "side of output_c at the amplifier, to ground, AC coupled"},
+		{Name: "rest_voltage", Reading: "dc voltage", Instrument: "dmm", At: "side of output_c at the amplifier, to ground", Stiff: driven},
+		{Name: "swing", Reading: "peak voltage", Instrument: "scope", At: "side of output_c at the amplifier, to ground, AC coupled", Stiff: driven},
 	},
 	Findings: []Finding{
 		{"clips", "the output clips at its supply; lower the level that comes in, make gain_a smaller, or raise the supply"},

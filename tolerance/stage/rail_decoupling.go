@@ -23,7 +23,7 @@ var railDecoupling = Kind{
 corner = 1/(2*pi*series*capacitor)
 carrier_power = 1 + (in.frequency/corner)^2
 attenuation = 10*log10(carrier_power)
-drop = load_current*series
+drop = load_current*series/(1 + series*meter)
 frequency = in.frequency
 level = in.level/sqrt(carrier_power)
 dc = in.dc - drop
@@ -34,7 +34,7 @@ source_resistance = in.source_resistance + series
 		{"attenuation", quantity.Decibel, "how much weaker the carrier leaves than it enters"},
 		{"drop", quantity.Volt, "steady voltage lost in series"},
 	},
-	Points: []Point{{Name: "drop", Reading: "dc voltage", Instrument: "dmm", At: "across series"}},
+	Points: []Point{{Name: "drop", Reading: "dc voltage", Instrument: "dmm", At: "across series", Conductance: "meter"}},
 	Sketch: `
  rail ──[series]──┬── quiet rail
              [capacitor]

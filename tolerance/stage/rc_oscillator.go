@@ -20,12 +20,15 @@ func rcSettings(place string) []Setting {
 	}
 }
 
+// driven is why a point bears every instrument.
+const driven = "the output that is read is stiff"
+
 // rcPoints are held at the output of whatever drives the network, which is
 // stiff: no instrument changes what is there.
 func rcPoints(at string) []Point {
 	return []Point{
-		{Name: "frequency", Reading: "frequency", Instrument: "counter", At: at},
-		{Name: "level", Reading: "peak voltage", Instrument: "scope", At: at},
+		{Name: "frequency", Reading: "frequency", Instrument: "counter", At: at, Stiff: driven, Level: "level"},
+		{Name: "level", Reading: "peak voltage", Instrument: "scope", At: at, Stiff: driven},
 	}
 }
 

@@ -42,8 +42,8 @@ passed = 1
 		{"dc", quantity.Volt, "steady output voltage"},
 	},
 	Points: []Point{
-		{Name: "dc", Reading: "dc voltage", Instrument: "dmm", At: "output of the buffer, to 0 V"},
-		{Name: "tone_level", Reading: "peak voltage", Instrument: "scope", At: "output of the buffer, to 0 V, AC coupled"},
+		{Name: "dc", Reading: "dc voltage", Instrument: "dmm", At: "output of the buffer, to 0 V", Stiff: driven},
+		{Name: "tone_level", Reading: "peak voltage", Instrument: "scope", At: "output of the buffer, to 0 V, AC coupled", Stiff: driven},
 	},
 	Sketch: `
             ┌────────[c1]────────┐

@@ -47,7 +47,7 @@ level = level
 		Output{"average", quantity.Volt, "average of the output, above the lower rail"},
 	),
 	Points: append(rcPoints("output of the gate, to the lower rail"),
-		Point{Name: "average", Reading: "dc voltage", Instrument: "dmm", At: "output of the gate, to the lower rail"}),
+		Point{Name: "average", Reading: "dc voltage", Instrument: "dmm", At: "output of the gate, to the lower rail", Stiff: driven}),
 	Findings: []Finding{{"at_rest", "the thresholds are not in order between the rails, and nothing oscillates; " +
 		"give them as fractions of the supply, the lower below the upper"}},
 	Sketch: `

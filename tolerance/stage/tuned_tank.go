@@ -49,10 +49,13 @@ var tankOutputs = []Output{
 // the level back, so only `probe` appears in the equations.
 var tankPoints = []Point{
 	{Name: "frequency", Reading: "frequency", Instrument: "counter",
-		At: "live end of the coil, to ground", Capacitance: "probe"},
+		At: "live end of the coil, to ground", Capacitance: "probe", Stiff: limited, Level: "level"},
 	{Name: "level", Reading: "peak voltage", Instrument: "scope",
-		At: "live end of the coil, to ground", Capacitance: "probe"},
+		At: "live end of the coil, to ground", Capacitance: "probe", Stiff: limited},
 }
+
+// limited is why an oscillator's resonator bears an instrument's resistance.
+const limited = "resistance damps it without moving it, and limiting brings the level back"
 
 // tunedTank is the plain resonant circuit: one coil and all that is across it.
 var tunedTank = Kind{

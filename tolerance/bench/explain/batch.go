@@ -148,18 +148,6 @@ func (x *explainer) shareNoise(a *apportion) {
 	addNoise(a.own, rest)
 }
 
-// scaled puts columns into the scale of the pictures.
-func (x *explainer) scaled(points [][]float64) [][]float64 {
-	out := make([][]float64, len(points))
-	for i, column := range points {
-		out[i] = make([]float64, len(column))
-		for u, y := range column {
-			out[i][u] = (y - x.centre[i]) / x.scale[i]
-		}
-	}
-	return out
-}
-
 // batchPoint is one point over the units that count:
 //
 //	shift score = (mean − expected)/√(lot² + gain² + own²/n)

@@ -139,12 +139,14 @@ func (f fixture) measure(fa *fault, units int, seed uint64, lots func(lot, batch
 			column[u] += gain*column[u] + in.Floor*(2*random.Float64()-1)
 		}
 	}
-	if fa != nil {
-		columns = fa.apply(columns)
-	}
 	list := make([][]float64, units)
 	for u := range list {
-		for _, column := range columns {
+		for i, column := range columns {
+			if fa != nil {
+				factor, of := fa.writes(i)
+				list[u] = append(list[u], factor*columns[of][u])
+				continue
+			}
 			list[u] = append(list[u], column[u])
 		}
 	}

@@ -8,6 +8,8 @@ import (
 	"sync"
 	"sync/atomic"
 
+	"gonum.org/v1/gonum/mat"
+
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/build"
@@ -246,33 +248,58 @@ func (k *oracle) noise(points [][]float64) []float64 {
 	return list
 }
 
-// picture is what simulated units read, in scale, after what a fault does to
-// what is written.
-func (k *oracle) picture(s sample, f *fault) *picture {
+// picture is what simulated units read, in scale.
+func (k *oracle) picture(s sample) *picture {
 	noise := k.noise(s.points)
-	points := s.points
-	if f != nil {
-		points = f.apply(points)
-		for _, i := range f.scaled {
-			noise[i] *= f.factor
-		}
-		noise[f.rows[0]], noise[f.rows[1]] = noise[f.rows[1]], noise[f.rows[0]]
-	}
-	scaled := make([][]float64, len(points))
-	for i, column := range points {
-		scaled[i] = make([]float64, len(column))
-		for u, x := range column {
-			scaled[i][u] = (x - k.centre[i]) / k.scale[i]
-		}
+	for i := range noise {
 		noise[i] /= k.scale[i]
 	}
-	return newPicture(scaled, s.ways, noise)
+	return newPicture(k.scaled(s.points), s.ways, noise)
+}
+
+// scaled puts columns into the scale of the pictures.
+func (k *oracle) scaled(points [][]float64) [][]float64 {
+	out := make([][]float64, len(points))
+	for i, column := range points {
+		out[i] = make([]float64, len(column))
+		for u, y := range column {
+			out[i][u] = (y - k.centre[i]) / k.scale[i]
+		}
+	}
+	return out
+}
+
+// misread is the healthy picture with readings on a wrong range or in a wrong
+// row. What is written at point i is factor·y of the point it comes from, so in
+// scale it is a·z + b.
+func (k *oracle) misread(f *fault) *picture {
+	n := len(k.centre)
+	from, a, b := make([]int, n), make([]float64, n), make([]float64, n)
+	for i := range n {
+		factor, source := f.writes(i)
+		from[i] = source
+		a[i] = factor * k.scale[source] / k.scale[i]
+		b[i] = (factor*k.centre[source] - k.centre[i]) / k.scale[i]
+	}
+	p := &picture{}
+	for _, d := range k.pictures[0].parts {
+		mean, cov := make([]float64, n), mat.NewSymDense(n, nil)
+		for i := range n {
+			mean[i] = a[i]*d.mean[from[i]] + b[i]
+			for j := range i + 1 {
+				cov.SetSym(i, j, a[i]*a[j]*d.cov.At(from[i], from[j]))
+			}
+		}
+		p.parts = append(p.parts, normal{d.weight, mean, cov})
+	}
+	p.overall()
+	return p
 }
 
 // paint makes the picture of every hypothesis.
 func (k *oracle) paint(ctx context.Context, o Options) error {
 	k.pictures = make([]*picture, len(k.faults)+1)
-	k.pictures[0] = k.picture(k.healthy, nil)
+	k.pictures[0] = k.picture(k.healthy)
 	var next, done atomic.Int64
 	var wait sync.WaitGroup
 	for range min(max(1, runtime.GOMAXPROCS(0)), len(k.faults)) {
@@ -300,9 +327,9 @@ func (k *oracle) paintFault(f *fault) *picture {
 	case f.class == Other:
 		return k.paintOther()
 	case f.measured():
-		return k.picture(k.healthy, f)
+		return k.misread(f)
 	}
-	return k.picture(k.simulate(f, k.units), f)
+	return k.picture(k.simulate(f, k.units))
 }
 
 // inScale puts readings in SI into the scale of the pictures; NaN stays.

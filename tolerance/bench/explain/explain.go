@@ -45,7 +45,6 @@ type explainer struct {
 	options Options
 	sheet   []bench.Reading // as Model.Points
 	columns []int           // of Model.Points, by column of what was filled in
-	scorers map[string]*scorer
 	limits  map[string]float64
 	outputs map[*build.Model]*spread.Reader
 	guesses map[int]guessed
@@ -54,7 +53,7 @@ type explainer struct {
 }
 
 func newExplainer(ctx context.Context, m *build.Model, s bench.Sheet, points []string, o Options) (*explainer, error) {
-	x := &explainer{options: o, scorers: map[string]*scorer{}, limits: map[string]float64{}, outputs: map[*build.Model]*spread.Reader{}, guesses: map[int]guessed{}}
+	x := &explainer{options: o, limits: map[string]float64{}, outputs: map[*build.Model]*spread.Reader{}, guesses: map[int]guessed{}}
 	at := map[string]int{}
 	for i, p := range m.Points {
 		at[pointName(p)] = i
@@ -86,22 +85,40 @@ func newExplainer(ctx context.Context, m *build.Model, s bench.Sheet, points []s
 	return x, err
 }
 
-// review explains each unit, then the batch.
+// review explains each unit by itself, then the batch, then each unit again with
+// what the batch says of the lots, and the units not read yet.
 func (x *explainer) review(ctx context.Context, f bench.Filled) (*Review, error) {
+	r, all, err := x.alone(ctx, f)
+	if err != nil {
+		return nil, err
+	}
+	p := x.together(r, all)
+	if p == nil || p.mean == nil {
+		return r, nil
+	}
+	if err := x.again(ctx, r, p, all); err != nil {
+		return nil, err
+	}
+	return r, x.rest(ctx, r, p)
+}
+
+// alone explains each unit by itself; it also returns the readings.
+func (x *explainer) alone(ctx context.Context, f bench.Filled) (*Review, [][]float64, error) {
 	r := &Review{Units: []Unit{}, Notes: []string{}}
+	r.Batch.Points, r.Batch.Lots, r.Batch.Unclear = []BatchPoint{}, []Lot{}, []Unclear{}
 	var all [][]float64
 	for _, u := range f.Units {
 		if len(u.Values) != len(f.Points) {
-			return nil, fmt.Errorf("explain: unit %d has %d readings at %d points", u.Unit, len(u.Values), len(f.Points))
+			return nil, nil, fmt.Errorf("explain: unit %d has %d readings at %d points", u.Unit, len(u.Values), len(f.Points))
 		}
 		readings := x.readings(u)
 		all = append(all, readings)
 		r.Units = append(r.Units, x.unit(u.Unit, readings))
 		if err := ctx.Err(); err != nil {
-			return nil, err
+			return nil, nil, err
 		}
 	}
-	return r, x.batch(ctx, r, all)
+	return r, all, nil
 }
 
 // readings are a unit's as Model.Points; NaN where nothing was read.

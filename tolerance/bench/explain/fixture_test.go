@@ -190,3 +190,14 @@ func filled(f fixture, units [][]float64) bench.Filled {
 	}
 	return out
 }
+
+// batch reviews units as far as what they say together.
+func (f fixture) batch(t testing.TB, y [][]float64) Batch {
+	t.Helper()
+	r, all, err := f.x.alone(context.Background(), filled(f, y))
+	if err != nil {
+		t.Fatal(err)
+	}
+	f.x.together(r, all)
+	return r.Batch
+}

@@ -2,6 +2,7 @@ package explain
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"runtime"
 	"slices"
@@ -39,6 +40,8 @@ type oracle struct {
 	healthy    sample
 	drawn      [][]float64 // inputs of healthy units
 	drawnUnits int
+	lots       func(lot, batch int) (float64, bool) // what is known of the lots of each unit; nil: nothing
+	scorers    map[string]*scorer
 }
 
 // bound is a model and what reads it.
@@ -55,7 +58,7 @@ type sample struct {
 
 // newOracle predicts what healthy and faulty units read.
 func newOracle(ctx context.Context, m *build.Model, o Options) (*oracle, error) {
-	k := &oracle{model: m, seed: o.Seed, units: o.Units, reader: spread.NewReader(m)}
+	k := &oracle{model: m, seed: o.Seed, units: o.Units, reader: spread.NewReader(m), scorers: map[string]*scorer{}}
 	if k.units <= 0 {
 		k.units = faultyUnits
 	}
@@ -73,6 +76,25 @@ func newOracle(ctx context.Context, m *build.Model, o Options) (*oracle, error) 
 	k.healthy = k.simulate(nil, max(healthyUnits, k.units))
 	k.standardise()
 	return k, k.paint(ctx, o)
+}
+
+// knowing predicts what units of a batch read of whose lots something is known.
+// The scale stays.
+func (k *oracle) knowing(ctx context.Context, lots func(lot, batch int) (float64, bool), o Options) (*oracle, error) {
+	known := *k
+	known.lots, known.scorers = lots, map[string]*scorer{}
+	known.drawn, known.drawnUnits = nil, 0
+	known.healthy = known.simulate(nil, max(healthyUnits, k.units))
+	return &known, known.paint(ctx, o)
+}
+
+// scorer is the one for readings at some points.
+func (k *oracle) scorer(read []int) *scorer {
+	key := fmt.Sprint(read)
+	if k.scorers[key] == nil {
+		k.scorers[key] = newScorer(k.pictures, read)
+	}
+	return k.scorers[key]
 }
 
 // weigh gives every fault its prior, and then leaves out those that no reading
@@ -111,8 +133,8 @@ func touches(f *fault, seen []bool) bool {
 }
 
 // source draws each unit with lots of its own, since nobody knows the lots of a
-// single one.
-func (k *oracle) source() scatter.Source { return scatter.Source{Seed: k.seed, Units: 1} }
+// single one; or with lots from what is known of them.
+func (k *oracle) source() scatter.Source { return scatter.Source{Seed: k.seed, Units: 1, Lots: k.lots} }
 
 // simulate reads units under a fault; nil is none. The healthy draws are kept:
 // a fault draws anew only what it changes.

@@ -334,12 +334,20 @@ func firsts(u Unit) []string {
 	return list
 }
 
-// TestFurther reads 0 V at the end of two dividers in a row, of which the first
-// was not read: R2 or R4 is shorted (or R1 or R3 open). The first divider's
-// voltage tells: 0 V, or 6 V.
+// TestFurther reads 0 V at the end of three dividers in a row, of which the first
+// two were not read: the lower resistor of any is shorted, or the upper open.
+// Between the first divider and the others its voltage tells, 0 V or 6 V, and
+// better than the second's, which scatters more.
 func TestFurther(t *testing.T) {
-	f := small(t, strings.Replace(dividers, "settings: {input: supply}\n    parts:\n      upper: {ref: R3", "settings: {input: a.voltage}\n    parts:\n      upper: {ref: R3", 1))
-	u := f.x.unit(1, []float64{math.NaN(), 0})
+	text := strings.Replace(dividers, "settings: {input: supply}\n    parts:\n      upper: {ref: R3", "settings: {input: a.voltage}\n    parts:\n      upper: {ref: R3", 1)
+	f := small(t, strings.Replace(text, "targets:", `  c:
+    kind: divider
+    settings: {input: b.voltage}
+    parts:
+      upper: {ref: R5, value: 10 kΩ, tolerance: 2 %}
+      lower: {ref: R6, value: 33 kΩ, tolerance: 2 %}
+targets:`, 1))
+	u := f.x.unit(1, []float64{math.NaN(), math.NaN(), 0})
 	told := 0
 	for _, x := range u.Further {
 		own := func(name string) bool { return strings.HasPrefix(name, "R1") || strings.HasPrefix(name, "R2") }

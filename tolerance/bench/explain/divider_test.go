@@ -524,3 +524,24 @@ func TestSilence(t *testing.T) {
 		}
 	}
 }
+
+// TestPins holds a trim left at an end against the value that the model itself
+// has for the output at that end: the collector, which the meter's 10 MΩ across
+// 10 kΩ move by a thousandth.
+func TestPins(t *testing.T) {
+	f := examples(t)[0]
+	l := spread.Linearise(f.model, f.model.Trims[0].AtLow, f.model.Trims[0].AtHigh)
+	i := slices.Index(pointNames(f.model), "mixer.collector")
+	var got []float64
+	for k, end := range []string{"low", "high"} {
+		p := f.x.pictures[f.find(t, "mixer.bias left at its "+end+" end")]
+		v := p.mean[i]*f.x.scale[i] + f.x.centre[i]
+		got = append(got, v)
+		if want := l.Values[k] + f.model.Build.Trims[0].To; math.Abs(v-want) > 0.2 {
+			t.Errorf("left at its %s end the collector is at %v, want %v", end, v, want)
+		}
+	}
+	if math.Abs(got[0]-got[1]) < 2 {
+		t.Errorf("both ends read alike, %v: the test proves nothing", got)
+	}
+}

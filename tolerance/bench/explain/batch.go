@@ -79,9 +79,6 @@ func (x *explainer) gather(r *Review, all [][]float64) *gathered {
 	}
 	g := &gathered{count: make([]int, len(x.sheet)), mean: make([]float64, len(x.sheet))}
 	most := 2*accused > len(all)
-	if most {
-		r.Notes = append(r.Notes, fmt.Sprintf("%d of %d units are accused: look first for what they have in common, such as a wrong reel; they are counted in the batch's averages", accused, len(all)))
-	}
 	for i, u := range r.Units {
 		if !u.Accused || most {
 			g.numbers, g.units = append(g.numbers, float64(u.Unit)), append(g.units, x.inScale(all[i]))

@@ -545,3 +545,30 @@ func TestPins(t *testing.T) {
 		t.Errorf("both ends read alike, %v: the test proves nothing", got)
 	}
 }
+
+// TestAbsurdReadings holds that a reading beyond all reason is outside and has
+// probabilities like any other.
+func TestAbsurdReadings(t *testing.T) {
+	f := small(t, dividers)
+	for _, y := range []float64{1e300, -math.MaxFloat64, 1e12, math.SmallestNonzeroFloat64} {
+		u := f.x.unit(1, []float64{y, 1.76})
+		if u.Verdict != Outside || !u.Accused || !(u.Healthy < 1e-3) || !(u.Suspects[0].Probability > 0.1) {
+			t.Errorf("%g V: %+v", y, u)
+		}
+	}
+}
+
+// TestFurtherAtTheBench holds that a reading where the unit is goes before a
+// better one elsewhere.
+func TestFurtherAtTheBench(t *testing.T) {
+	f := examples(t)[1]
+	a, b := f.find(t, "R6 ten times too small"), f.find(t, "R4 and R5 exchanged")
+	read := span(len(f.x.sheet))
+	got := f.x.further(a, b, read)
+	if !strings.HasSuffix(got.Reading, " at bench") || got.Expect == nil || !(got.Score > enough) {
+		t.Errorf("%+v, want a reading at the bench", got)
+	}
+	if best, _ := f.x.best(a, b, read, false); f.model.Outputs[best].Condition == 0 {
+		t.Error("the best reading is at the bench: the test proves nothing")
+	}
+}

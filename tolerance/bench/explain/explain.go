@@ -14,6 +14,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"strings"
 
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/build"
@@ -22,10 +23,12 @@ import (
 
 // Options say how much is simulated.
 type Options struct {
-	Seed     uint64
-	Units    int                   // simulated under each fault; 0: 256
-	Yield    int                   // simulated of the units not read yet; 0: 20 000
-	Progress func(done, total int) // called from several goroutines; nil: not called
+	Seed  uint64
+	Units int // simulated under each fault; 0: 256
+	Yield int // simulated of the units not read yet; 0: 20 000
+	// Progress is called from several goroutines; nil: not called. It runs through
+	// twice where a batch has narrowed its lots.
+	Progress func(done, total int)
 }
 
 // Explain reviews what was read of some units of a batch. The model is that of
@@ -54,6 +57,9 @@ type explainer struct {
 
 func newExplainer(ctx context.Context, m *build.Model, s bench.Sheet, points []string, o Options) (*explainer, error) {
 	x := &explainer{options: o, limits: map[string]float64{}, outputs: map[*build.Model]*spread.Reader{}, guesses: map[int]guessed{}}
+	if len(m.Points) == 0 {
+		return nil, fmt.Errorf("explain: the build has no test point")
+	}
 	at := map[string]int{}
 	for i, p := range m.Points {
 		at[pointName(p)] = i
@@ -92,14 +98,37 @@ func (x *explainer) review(ctx context.Context, f bench.Filled) (*Review, error)
 	if err != nil {
 		return nil, err
 	}
-	p := x.together(r, all)
-	if p == nil || p.mean == nil {
-		return r, nil
+	if p := x.together(r, all); p != nil && p.mean != nil {
+		if err := x.again(ctx, r, p, all); err != nil {
+			return nil, err
+		}
+		if err := x.rest(ctx, r, p); err != nil {
+			return nil, err
+		}
 	}
-	if err := x.again(ctx, r, p, all); err != nil {
-		return nil, err
+	r.note()
+	return r, nil
+}
+
+// note remarks on a batch of which most units are accused: one fault in each is
+// less likely than one in all.
+func (r *Review) note() {
+	accused, most := 0, ""
+	count := map[string]int{}
+	for _, u := range r.Units {
+		if !u.Accused {
+			continue
+		}
+		accused++
+		name := strings.TrimSpace(u.Suspects[0].Ref + " " + u.Suspects[0].Fault)
+		if count[name]++; count[name] > count[most] {
+			most = name
+		}
 	}
-	return r, x.rest(ctx, r, p)
+	if 2*accused > len(r.Units) && len(r.Units) > 1 {
+		r.Notes = append(r.Notes, fmt.Sprintf("%d of %d units are accused, so their readings count in the batch's averages; look first for what they share, such as a wrong reel: the first suspect in %d of them is %s",
+			accused, len(r.Units), count[most], most))
+	}
 }
 
 // alone explains each unit by itself; it also returns the readings.

@@ -572,3 +572,27 @@ func TestFurtherAtTheBench(t *testing.T) {
 		t.Error("the best reading is at the bench: the test proves nothing")
 	}
 }
+
+// TestShown holds what instruments show of what has no value, and of a frequency
+// whose level is below the 100 mV that a counter needs.
+func TestShown(t *testing.T) {
+	m := examples(t)[0].model
+	points := make([][]float64, len(m.Points))
+	for i := range points {
+		points[i] = []float64{math.NaN(), math.Inf(-1), 5, 5}
+	}
+	names := pointNames(m)
+	frequency, level := slices.Index(names, "fixed.frequency"), slices.Index(names, "fixed.level")
+	points[level] = []float64{1, 1, 0.09, 0.11}
+	shown(m, points)
+	if got := points[frequency]; !slices.Equal(got, []float64{0, 0, 0, 5}) {
+		t.Errorf("the counter shows %v, want 0, 0, 0, 5", got)
+	}
+	if got := points[0]; !slices.Equal(got, []float64{0, 0, 5, 5}) {
+		t.Errorf("the meter shows %v, want 0, 0, 5, 5", got)
+	}
+	// Ends of two trims as digits to the base 3: reached 0, high 1, low 2.
+	if got := ways([][]int8{{0, 1, -1, 0}, {0, 0, 1, -1}}, 4); !slices.Equal(got, []int{0, 3, 7, 2}) {
+		t.Errorf("ways %v, want 0, 3, 7, 2", got)
+	}
+}

@@ -46,6 +46,10 @@ func (x *explainer) tell(u *Unit, groups [][]int, read []int, probabilities []fl
 // readable are the dimensions that an instrument reads without cutting a wire.
 var readable = map[quantity.Dimension]bool{quantity.Volt.Dimension: true, quantity.Hertz.Dimension: true}
 
+// highest is the most that a bench meter reads, in volts (common practice, no
+// source). Equations that know no supply promise more of a part that is open.
+const highest = 1000
+
 // guessed is what a hypothesis predicts of every output.
 type guessed struct{ mean, sd []float64 }
 
@@ -77,7 +81,11 @@ func (x *explainer) best(a, b int, read []int, reference bool) (output int, scor
 		if o.ChangeFrom >= 0 || reference && o.Condition != 0 || !readable[o.Unit.Dimension] || x.isRead(o, read) {
 			continue
 		}
-		noise := guess * math.Max(math.Abs(p.mean[i]), math.Abs(q.mean[i]))
+		largest := math.Max(math.Abs(p.mean[i]), math.Abs(q.mean[i]))
+		if o.Unit.Dimension == quantity.Volt.Dimension && largest > highest {
+			continue
+		}
+		noise := guess * largest
 		s := math.Abs(p.mean[i]-q.mean[i]) / math.Sqrt(p.sd[i]*p.sd[i]+q.sd[i]*q.sd[i]+noise*noise)
 		if s > score { // false for NaN
 			output, score = i, s

@@ -28,7 +28,7 @@ func cardWidths(percent uint) []float64 {
 	for _, w := range widths {
 		pixels += 7*w + 5
 	}
-	spare := math.Max(0, (cardWide*100/float64(percent)*0.995-pixels)/7)
+	spare := math.Max(0, (0.975*cardWide*100/float64(percent)-pixels)/7)
 	widths[1] += 0.1 * spare
 	widths[2] += 0.55 * spare
 	widths[3] += 0.15 * spare

@@ -57,25 +57,24 @@ func cardTexts(t *testing.T, p Plan) []string {
 // caution on it; a sample's row on every fourth. A long bench list is printed
 // smaller.
 func TestCardsAreAPageEach(t *testing.T) {
-	for _, units := range []int{1, 24, 200} {
-		for _, paper := range []Paper{A4, Letter} {
-			for _, rows := range []int{0, 20} {
-				if rows > 0 && units != 24 || testing.Short() && (units != 24 || paper != A4 || rows > 0) {
-					continue
-				}
-				t.Run(fmt.Sprint(units, paper, rows), func(t *testing.T) {
-					p := long(sampled(units), rows)
-					p.Paper, p.Cards = paper, true
-					cards := cardTexts(t, p)
-					if len(cards) != units {
-						t.Fatalf("%d pages of cards, want %d", len(cards), units)
-					}
-					for i, text := range cards {
-						checkCard(t, p, i+1, text)
-					}
-				})
-			}
+	for _, tt := range []struct {
+		units, more int
+		paper       Paper
+	}{{1, 0, Letter}, {24, 20, A4}, {200, 0, A4}, {200, 0, Letter}} {
+		if testing.Short() && tt.units != 24 {
+			continue
 		}
+		t.Run(fmt.Sprint(tt), func(t *testing.T) {
+			p := long(sampled(tt.units), tt.more)
+			p.Paper, p.Cards = tt.paper, true
+			cards := cardTexts(t, p)
+			if len(cards) != tt.units {
+				t.Fatalf("%d pages of cards, want %d", len(cards), tt.units)
+			}
+			for i, text := range cards {
+				checkCard(t, p, i+1, text)
+			}
+		})
 	}
 }
 

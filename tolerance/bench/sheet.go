@@ -120,7 +120,7 @@ func (s *sheet) where(t build.Trim) string {
 	}
 	if i := noteAt(s.model, t.Output); i >= 0 {
 		p := s.model.Points[i]
-		return "count the note at the " + withReferences(p.Stage.Kind.Points[p.Index].At, p.Stage)
+		return "count the note: " + withReferences(p.Stage.Kind.Points[p.Index].At, p.Stage)
 	}
 	for _, o := range s.model.Build.Stage(t.Output.Stage).Outputs {
 		if o.Name == t.Output.Output {

@@ -9,6 +9,8 @@ import (
 	"strings"
 	"testing"
 
+	"github.com/xuri/excelize/v2"
+
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/spread"
 )
@@ -157,6 +159,9 @@ func TestSheetsOnlyWhereAsked(t *testing.T) {
 	if list := f.GetSheetList(); slices.Contains(list, cardsSheet) || slices.Index(list, samplesSheet) != slices.Index(list, testSheet)+1 {
 		t.Errorf("sheets %v", list)
 	}
+	if link, target, err := f.GetCellHyperLink(summarySheet, linkTo(t, f, samplesSheet)); err != nil || !link || target != "'Sample tests'!A1" {
+		t.Errorf("the summary leads to %q, %v, %v", target, link, err)
+	}
 	if list := reopen(t, saved(t, sample(3))).GetSheetList(); slices.Contains(list, samplesSheet) {
 		t.Errorf("sheets %v", list)
 	}
@@ -231,4 +236,14 @@ func TestReadingDigits(t *testing.T) {
 			t.Errorf("U = %g, windows %v: %d decimals of %s, want %d of %s", tt.u, tt.windows, s.decimals, s.symbol, tt.decimals, tt.symbol)
 		}
 	}
+}
+
+// linkTo is the summary's cell with a sheet's name.
+func linkTo(t *testing.T, f *excelize.File, sheet string) string {
+	t.Helper()
+	found, err := f.SearchSheet(summarySheet, sheet)
+	if err != nil || len(found) != 1 {
+		t.Fatalf("%s stands in %v of the summary (%v)", sheet, found, err)
+	}
+	return found[0]
 }

@@ -222,14 +222,24 @@ func (p *page) findings() {
 func (p *page) contents() {
 	p.section("In this workbook")
 	left := [][2]string{{buySheet, "what to order, in packs, with prices"}, {stagesSheet, "what goes where, and its marking"}, {trimsSheet, "adjustments in bench order"}, {testSheet, "what every meter should show"}}
-	right := [][2]string{{tolerancesSheet, "every output at every condition"}, {driftSheet, "movement with temperature"}, {basisSheet, "assumptions, sources, limits"}, {}}
+	right := [][2]string{{tolerancesSheet, "every output at every condition"}, {driftSheet, "movement with temperature"}, {basisSheet, "assumptions, sources, limits"}}
 	if p.plan.Compare != nil {
-		right[3] = [2]string{compareSheet, "other parts in the same places"}
+		right = append(right, [2]string{compareSheet, "other parts in the same places"})
 	}
+	if len(p.plan.Samples) > 0 {
+		right = append(right, [2]string{samplesSheet, "targets at other conditions"})
+	}
+	if p.plan.Cards {
+		right = append(right, [2]string{cardsSheet, "a page for every unit"})
+	}
+	for len(right) < len(left) {
+		right = append(right, [2]string{})
+	}
+	left = append(left, make([][2]string, len(right)-len(left))...)
 	link, text := look{bold: true, ink: copper}, look{}
 	for i := range left {
 		r := p.put(0, p.text(left[i][0], link), p.text(left[i][1], text), excelize.Cell{}, p.text(right[i][0], link), p.text(right[i][1], text))
-		p.link(at(1, r), left[i][0])
+		p.link(at(1, r), left[i][0]) // nowhere where there is no sheet
 		p.link(at(4, r), right[i][0])
 	}
 }

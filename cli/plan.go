@@ -39,6 +39,9 @@ turned on it and room to write, to be printed and laid beside the unit.
 that were picked, as compare has it, with the same --families, --tolerances,
 --values and --lots; with none of them, the families that an open position lists.
 
+--frontier adds a sheet "Trade": every efficient trade between the order's price
+and the steadiness of the first change that a target limits, or of --target NAME.
+
   batchwright plan
   batchwright plan tone-box.yaml --units 12 --out plans
   batchwright plan tone-box.yaml --cards --out plans
@@ -47,7 +50,8 @@ that were picked, as compare has it, with the same --families, --tolerances,
 			&cli.StringFlag{Name: "out", Usage: "write the workbook into folder `DIR`", Value: "."},
 			&cli.BoolFlag{Name: "cards", Usage: "add a sheet with a page for every unit, to be filled in by hand"},
 			&cli.StringSliceFlag{Name: "compare", Usage: "add a sheet with other parts at `STAGE.ROLE`, several with commas"},
-			searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
+			&cli.BoolFlag{Name: "frontier", Usage: "add a sheet with every efficient trade between price and steadiness", DisableDefaultText: true},
+			targetFlag(), searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
 		}, caseFlags()...),
 		Action: p.plan,
 	}
@@ -76,9 +80,18 @@ func (p *program) plan(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
+	t, err := readTrade(c, src.Build)
+	if err != nil {
+		return err
+	}
 	work, err := p.work(c.Context, src, o, cases)
 	if err != nil {
 		return err
+	}
+	if t.frontier {
+		if work.Trade, err = p.efficient(c, src.Build, t, o); err != nil {
+			return err
+		}
 	}
 	work.Cards = c.Bool("cards")
 	path, err := p.save(c.String("out"), file, src.Title, plan.Compose(*work))

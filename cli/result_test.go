@@ -2,6 +2,7 @@ package cli
 
 import (
 	"encoding/json"
+	"errors"
 	"fmt"
 	"os"
 	"runtime"
@@ -9,6 +10,7 @@ import (
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
+	"github.com/xuri/excelize/v2"
 )
 
 // The keys that scripts of other people rely on, as the README lists them.
@@ -53,6 +55,49 @@ var compareKeys = strings.Fields(`
 	cases.[].yield.unit_share cases.[].yield.interval.[] cases.[].yield.difference.share cases.[].yield.batch.units
 	cases.[].unit_cost cases.[].batch_cost cases.[].sizes.[] cases.[].temperatures.low cases.[].verdict cases.[].why
 `)
+
+var reviewKeys = strings.Fields(`
+	build plan unread_units.[] batch.points.[].point batch.points.[].mean batch.points.[].expected_mean batch.points.[].shift_score
+	units.[].unit units.[].verdict units.[].suspects
+	units.[].points.[].point units.[].points.[].reading units.[].points.[].inside units.[].points.[].accepted units.[].points.[].score
+	units.[].trims.[].turn units.[].trims.[].reading units.[].trims.[].inside
+	workbook.digest workbook.seed workbook.simulate workbook.typed workbook.lost
+	workbook.findings.[].kind workbook.findings.[].sheet workbook.findings.[].cell workbook.findings.[].what
+`)
+
+// TestReviewKeys reads a workbook back of which one thing is to be said.
+func TestReviewKeys(t *testing.T) {
+	small, err := os.ReadFile("testdata/small.yaml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Chdir(t.TempDir())
+	if err := os.WriteFile("tone-box.yaml", small, 0o600); err != nil {
+		t.Fatal(err)
+	}
+	comeBack(t)
+	f, err := excelize.OpenFile("filled.xlsx")
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	if err := errors.Join(f.SetCellValue("Test sheet", "B8", "Point"), f.Save()); err != nil {
+		t.Fatal(err)
+	}
+	r := runHere(t, "review", "tone-box.yaml", "filled.xlsx", "--json")
+	if r.code != exitDone || r.stderr != "" {
+		t.Fatalf("exit code %d, standard error %q", r.code, r.stderr)
+	}
+	var v any
+	if err := json.Unmarshal([]byte(r.stdout), &v); err != nil {
+		t.Fatal(err)
+	}
+	for _, key := range reviewKeys {
+		if err := holds(v, strings.Split(key, ".")); err != nil {
+			t.Errorf("%s: %v", key, err)
+		}
+	}
+}
 
 func TestResultKeys(t *testing.T) {
 	for command, keys := range map[string][]string{

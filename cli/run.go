@@ -72,7 +72,7 @@ func (p *program) newApp() *cli.App {
 		Usage:   "plans a small batch of analogue stages: parts, tolerances, trims and test sheets",
 		Version: Version,
 		Commands: []*cli.Command{
-			p.planCommand(), p.checkCommand(), p.spreadCommand(), p.pickCommand(), p.compareCommand(), p.kindsCommand(), p.familiesCommand(), p.newCommand(),
+			p.planCommand(), p.checkCommand(), p.spreadCommand(), p.pickCommand(), p.compareCommand(), p.reviewCommand(), p.kindsCommand(), p.familiesCommand(), p.newCommand(),
 		},
 		Action:                p.noCommand,
 		OnUsageError:          usageFault,

@@ -30,7 +30,7 @@ func TestScripts(t *testing.T) {
 	}
 	testscript.Run(t, testscript.Params{
 		Files: found, RequireExplicitExec: true, RequireUniqueNames: true, UpdateScripts: *update,
-		Cmds: map[string]func(*testscript.TestScript, bool, []string){"code": code, "workbooks": workbooks},
+		Cmds: map[string]func(*testscript.TestScript, bool, []string){"code": code, "workbooks": workbooks, "typed": typed, "half": half},
 		Setup: func(e *testscript.Env) error {
 			small, err := os.ReadFile("testdata/small.yaml")
 			if err != nil {

@@ -36,14 +36,17 @@ func (p *program) showPicks(r *pick.Result, o order.Order) {
 	}
 	p.paragraph("what binds", plan.BindingSentence(*r))
 	p.paragraph("picture and simulation", strings.Join(plan.CheckSentences(*r), "\n"))
-	p.showAlternates(r.Alternates)
+	p.showAlternates(r)
 }
 
 // showAlternates prints what to buy where a line is out of stock.
-func (p *program) showAlternates(list []pick.Alternate) {
+func (p *program) showAlternates(r *pick.Result) {
 	var rows [][]string
-	for _, a := range list {
+	for _, a := range r.Alternates {
 		rows = append(rows, []string{order.Runs(a.Refs), plan.AlternateInstead(a), plan.Signed(a.More), plan.AlternateDrifts(a)})
+	}
+	for _, l := range r.Irreplaceable {
+		rows = append(rows, []string{order.Runs(l.Refs), "nothing", "–", l.Why})
 	}
 	p.section("if it is out of stock", []string{"for", "take", "order", "then, to first order"}, rows)
 }

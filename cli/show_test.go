@@ -1,6 +1,7 @@
 package cli
 
 import (
+	"encoding/json"
 	"flag"
 	"os"
 	"os/exec"
@@ -10,6 +11,9 @@ import (
 	"strings"
 	"testing"
 
+	"github.com/xuri/excelize/v2"
+
+	"batchwright/bom/quantity"
 	"batchwright/data"
 )
 
@@ -141,6 +145,9 @@ func TestExamples(t *testing.T) {
 					t.Fatal(err)
 				}
 			}
+			if args[0] == "review" {
+				comeBack(t)
+			}
 			r := runHere(t, args...)
 			if compares && r.code == exitMissed {
 				r.code, r.stderr = exitDone, strings.TrimPrefix(r.stderr, "batchwright: no case meets every target\n")
@@ -149,5 +156,52 @@ func TestExamples(t *testing.T) {
 				t.Errorf("exit code %d, %d bytes on standard output, standard error %q", r.code, len(r.stdout), r.stderr)
 			}
 		})
+	}
+}
+
+// comeBack plans the build that is there and leaves its workbook as filled.xlsx,
+// with one unit's readings as the model has them, and the same as a table.
+func comeBack(t *testing.T) {
+	t.Helper()
+	r := runHere(t, "plan", "tone-box.yaml", "--json")
+	var result struct {
+		Bench []struct {
+			Point, Unit string
+			Nominal     float64
+		}
+		Files []string
+	}
+	if err := json.Unmarshal([]byte(r.stdout), &result); err != nil || len(result.Files) != 1 || len(result.Bench) == 0 {
+		t.Fatalf("%v: %s", err, r.stderr)
+	}
+	table := "point,unit,reading\n"
+	f, err := excelize.OpenFile(result.Files[0])
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	const sheet = "Test sheet"
+	for _, b := range result.Bench {
+		u, _ := quantity.Find(b.Unit)
+		text := quantity.Format(b.Nominal, u, 6)
+		table += b.Point + ",1," + text + "\n"
+		at, err := f.SearchSheet(sheet, b.Point)
+		if err != nil || len(at) != 1 {
+			t.Fatalf("%s stands at %v (%v)", b.Point, at, err)
+		}
+		scale, symbol := quantity.Prefixed(b.Nominal, u)
+		row := strings.TrimLeft(at[0], "ABCDEFGHIJKLMNOPQRSTUVWXYZ")
+		if shown, err := f.GetCellValue(sheet, "E"+row); err != nil || shown != symbol {
+			t.Fatalf("%s is read in %q, expected %q", b.Point, shown, symbol)
+		}
+		if err := f.SetCellValue(sheet, "L"+row, b.Nominal/scale); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if err := f.SaveAs("filled.xlsx"); err != nil {
+		t.Fatal(err)
+	}
+	if err := os.WriteFile("readings.csv", []byte(table), 0o600); err != nil {
+		t.Fatal(err)
 	}
 }

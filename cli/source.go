@@ -61,6 +61,16 @@ func (p *program) text(file *string) ([]byte, error) {
 
 // open reads a file, but no more of it than a file of ours can be.
 func open(path string) ([]byte, error) {
+	text, err := openAtMost(path, largestFile)
+	if err != nil {
+		return nil, err
+	}
+	return notTooLarge(path, text)
+}
+
+// openAtMost reads a file up to a byte beyond most, which shows that it is
+// larger.
+func openAtMost(path string, most int64) ([]byte, error) {
 	f, err := os.Open(path)
 	if err != nil {
 		return nil, unreadable(path, err)
@@ -69,15 +79,27 @@ func open(path string) ([]byte, error) {
 	if info, err := f.Stat(); err == nil && info.IsDir() {
 		return nil, unreadable(path, errors.New("it is a folder, expected a file"))
 	}
-	return limited(path, f)
+	return atMost(path, f, most)
 }
 
 // limited reads r to its end unless that is too far away.
 func limited(name string, r io.Reader) ([]byte, error) {
-	text, err := io.ReadAll(io.LimitReader(r, largestFile+1))
+	text, err := atMost(name, r, largestFile)
+	if err != nil {
+		return nil, err
+	}
+	return notTooLarge(name, text)
+}
+
+func atMost(name string, r io.Reader, most int64) ([]byte, error) {
+	text, err := io.ReadAll(io.LimitReader(r, most+1))
 	if err != nil {
 		return nil, unreadable(name, err)
 	}
+	return text, nil
+}
+
+func notTooLarge(name string, text []byte) ([]byte, error) {
 	if len(text) > largestFile {
 		return nil, document.Complaints{{
 			File: name, Message: "the file is too large",

@@ -1,14 +1,17 @@
 package cli
 
 import (
+	"bytes"
 	"context"
 	"fmt"
 	"math"
+	"strings"
 
 	"github.com/urfave/cli/v2"
 
 	"batchwright/bom/offer"
 	"batchwright/bom/order"
+	"batchwright/export/chart"
 	"batchwright/export/plan"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick"
@@ -23,8 +26,13 @@ func tradeFlags() []cli.Flag {
 	return []cli.Flag{
 		&cli.StringFlag{Name: "within", Usage: "not the cheapest but the steadiest for which the whole order costs at most `PRICE`"},
 		&cli.BoolFlag{Name: "frontier", Usage: "every efficient trade between the order's price and steadiness", DisableDefaultText: true},
-		&cli.StringFlag{Name: "target", Usage: "whose steadiness is meant: the `NAME` of a target on a change; the first if left out"},
+		&cli.StringFlag{Name: "chart", Usage: "with --frontier: draw the trade into a new SVG `FILE`"},
+		targetFlag(),
 	}
+}
+
+func targetFlag() cli.Flag {
+	return &cli.StringFlag{Name: "target", Usage: "whose steadiness is meant: the `NAME` of a target on a change; the first if left out"}
 }
 
 // tradeChoice is what --within, --frontier and --target ask for.
@@ -47,10 +55,14 @@ func readTrade(c *cli.Context, b *build.Build) (tradeChoice, error) {
 	switch {
 	case t.frontier && t.within > 0:
 		return t, usage("--within beside --frontier: expected one of the two")
+	case !t.frontier && c.IsSet("chart"):
+		return t, usage("--chart without --frontier: only the trade is drawn")
+	case c.IsSet("chart") && unused(c.String("chart")) != nil:
+		return t, unused(c.String("chart")) // before any work is done
 	case t.frontier && c.IsSet("write"):
 		return t, usage("--write beside --frontier: expected a single choice to write, as --within finds")
 	case !t.frontier && t.within == 0 && c.IsSet("target"):
-		return t, usage("--target without --within or --frontier: the cheapest parts meet every target")
+		return t, usage("--target without --frontier or --within: the cheapest parts meet every target")
 	case !t.frontier && t.within == 0:
 		return t, nil
 	}
@@ -76,24 +88,47 @@ func (t *tradeChoice) findTarget(b *build.Build) error {
 
 // trade prints every efficient trade.
 func (p *program) trade(c *cli.Context, b *build.Build, t tradeChoice, o pick.Options) error {
-	g := p.newProgress()
-	defer g.stop()
-	g.start("trading")
-	o.Progress = g.say
 	if !c.IsSet("simulate") {
 		o.Units = tradeSimulate
 	}
-	found, err := pick.Efficient(c.Context, b, t.target, math.MaxInt64, o)
+	found, err := p.efficient(c, b, t, o)
 	if err != nil {
 		return err
 	}
-	g.stop()
 	result := plan.NewTrade(b, o.Seed, o.Units, found)
+	if path := c.String("chart"); path != "" {
+		if err := drawTrade(path, b, result); err != nil {
+			return err
+		}
+		result.Files = append(result.Files, path)
+	}
 	if c.Bool("json") {
 		return p.json(result)
 	}
 	p.showTrade(result)
 	return nil
+}
+
+// drawTrade writes a drawing of the trade as a new file.
+func drawTrade(path string, b *build.Build, t plan.Trade) error {
+	f := chart.Frame{Title: b.Title, Currency: t.Currency, Limit: plan.TradeLimit(b, t.Target)}
+	if note := plan.TradeCaution(t); note != "" {
+		f.Notes = append(f.Notes, note)
+	}
+	var drawing bytes.Buffer
+	if err := chart.Trade(&drawing, t.Trade, f); err != nil {
+		return missed("%v", err)
+	}
+	return writeNew(path, drawing.Bytes())
+}
+
+// efficient finds every efficient trade.
+func (p *program) efficient(c *cli.Context, b *build.Build, t tradeChoice, o pick.Options) (*pick.Trade, error) {
+	g := p.newProgress()
+	defer g.stop()
+	g.start("trading")
+	o.Progress = g.say
+	return pick.Efficient(c.Context, b, t.target, math.MaxInt64, o)
 }
 
 // steadiest picks the steadiest parts at a price.
@@ -132,4 +167,7 @@ func (p *program) showTrade(t plan.Trade) {
 	p.section(fmt.Sprintf("%s against money", t.Target), []string{"order" + currency, "1st order", "simulated", "comply", "target", "with (below: instead)"}, rows)
 	p.paragraph("read so", plan.TradeSentence(t))
 	p.paragraph("mind", plan.TradeCaution(t))
+	if len(t.Files) > 0 {
+		p.line("\nwrote %s", strings.Join(t.Files, ", "))
+	}
 }

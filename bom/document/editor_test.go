@@ -47,6 +47,8 @@ func TestSpans(t *testing.T) {
 		{"a space that is none of YAML's", "a: 5\u00A0%\n", []string{"a: 5\u00A0%", "a", "5\u00A0%"}},
 		{"plain over lines", "a:\n  b\n  c\nd: e\n", []string{"a:\n  b\n  c\nd: e", "a", "b\n  c", "d", "e"}},
 		{"blocks of text", "a: | # b\n  c\n   # d\n\n# e\nf: >-\n  g\n\n", []string{"a: | # b\n  c\n   # d\n\n# e\nf: >-\n  g", "a", "| # b\n  c\n   # d", "f", ">-\n  g"}},
+		{"a comment nearer to the margin than the text above", "a: |\n   c\n  # d\nb: e\n", []string{"a: |\n   c\n  # d\nb: e", "a", "|\n   c", "b", "e"}},
+		{"an anchor of nothing", "a: &x\nb: c\n", []string{"?", "a", "?", "b", "c"}},
 		{"nothing", "a:\nb: ~\nc: null # d\ne:\n", []string{"a:\nb: ~\nc: null # d\ne:", "a", "", "b", "~", "c", "null", "e", ""}},
 		{"nothing in flow", "{a: , b, c: }", []string{"{a: , b, c: }", "a", "", "b", "", "c", ""}},
 		{"lists", "- a\n- - b\n  - c: d\n    e: f\n-\n", []string{"- a\n- - b\n  - c: d\n    e: f\n-", "a", "- b\n  - c: d\n    e: f", "b", "c: d\n    e: f", "c", "d", "e", "f", ""}},
@@ -77,7 +79,7 @@ func TestReplace(t *testing.T) {
 	}{
 		{nil, "abcdef"},
 		{[]Edit{{Span{4, 6}, "Y"}, {Span{0, 1}, "XX"}}, "XXbcdY"},
-		{[]Edit{{Span{1, 3}, ""}, {Span{3, 3}, "Z"}}, "aZdef"},
+		{[]Edit{{Span{3, 3}, "Z"}, {Span{1, 3}, ""}}, "aZdef"},
 		{[]Edit{{Span{1, 3}, ""}, {Span{2, 4}, ""}}, ""},
 		{[]Edit{{Span{2, 7}, ""}}, ""},
 		{[]Edit{{Span{-1, 2}, ""}}, ""},
@@ -146,6 +148,8 @@ func TestRewrite(t *testing.T) {
 		{"block, nothing to put but comments", "m:\n  a: b\n  go:\n    c: d # one\n    # two\n  e: f\n", nil, "m:\n  a: b\n  # one\n  # two\n  e: f\n"},
 		{"block, out", "m:\n  out: 1\n  off: | # one\n    # text\n  a: b\n  go: c\n", []string{"x", "1"}, "m:\n  # one\n  a: b\n  x: 1\n"},
 		{"block in a flow line each", "m:\n  go: {c: \"#d\", e: 'f # g', h: i#j} # k\n  a: b\n", []string{"x", "1"}, "m:\n  # k\n  x: 1\n  a: b\n"},
+		{"signs of a comment in keys and names", "k: &x#y b\nm:\n  go: {\"a #b\": c, d: *x#y } # one  \n  a: b\n", []string{"x", "1"}, "k: &x#y b\nm:\n  # one\n  x: 1\n  a: b\n"},
+		{"an anchor before the key", "m:\n  &x go: c\n  a: b\n", []string{"x", "1"}, "m:\n  x: 1\n  a: b\n"},
 		{"quotes kept", "m: {a: \"b\", e: 'f', go: c}\n", []string{"a", "x", "e", "it's"}, "m: {a: \"x\", e: 'it''s'}\n"},
 		{"quotes needed", "m: {a: b, go: c}\n", []string{"a", "x: y", "x", "[", "y", "", "z", "4..34 pF", "v", "b # c"}, "m: {a: \"x: y\", x: \"[\", y: \"\", z: 4..34 pF, v: \"b # c\"}\n"},
 		{"value over lines", "m:\n  a: b\n    c\n  go: d\n", []string{"a", "x"}, "m:\n  a: x\n"},
@@ -187,6 +191,7 @@ func TestRewriteComplaints(t *testing.T) {
 		{"an anchor that goes", "m: {go: [&x a, *x]}\nk: *x\n", "f.yaml:1:4: change inside &x, which line 2 uses too: expected line 2 written out, without *x"},
 		{"a value used elsewhere", "m: {a: &x b, go: c}\nk: [*x]\n", "f.yaml:1:4: change inside &x, which line 2 uses too: expected line 2 written out, without *x"},
 		{"a value of many lines", "m:\n  a:\n    b: c\n  go: c\n", "f.yaml:2:3: value of a that cannot be replaced in its place: expected a value on the same line"},
+		{"what is taken out is merged", "k: &x {out: a}\nm: {<<: *x, go: c}\n", "f.yaml:2:4: out that is merged into the mapping and has to go: expected a mapping without <<, or one merged that has no out"},
 		{"what is taken out would be merged", "k: &x {out: a}\nm: {<<: *x, out: b, go: c}\n", "f.yaml:2:4: entries that cannot be changed in their place: expected a line for each entry, or braces around them all on one line"},
 	} {
 		t.Run(c.reason, func(t *testing.T) {
@@ -195,6 +200,15 @@ func TestRewriteComplaints(t *testing.T) {
 				t.Errorf("%q, %v", out, err)
 			}
 		})
+	}
+}
+
+// TestRewriteLastLine takes a line out of a mapping that is used elsewhere: the
+// line reaches beyond the mapping.
+func TestRewriteLastLine(t *testing.T) {
+	out, err := rewritten("m: &x\n  a: b\n  go: c\nk: *x\n", nil)
+	if err == nil || !strings.Contains(err.Error(), "change inside &x, which line 4 uses too") {
+		t.Errorf("%q, %v", out, err)
 	}
 }
 

@@ -51,7 +51,7 @@ func (c *converter) mapping(y ast.Node, start *token.Token, values []*ast.Mappin
 // entry is a pair as it is written. A key without a colon has its value right
 // behind it.
 func (c *converter) entry(y *ast.MappingValueNode, key, child measured) entry {
-	if child.Kind == Null && !child.at.certain() && key.at.certain() {
+	if child.Kind == Null && !child.at.certain() && key.at.certain() && c.source.byteAt(c.source.blanks(key.at.End)) != ':' {
 		child.occupy(Span{key.at.End, key.at.End})
 	}
 	start := key.at.Start

@@ -92,6 +92,9 @@ func BindingSentence(r pick.Result) string {
 		return "No target does, to first order: dropping any one of them would make nothing cheaper."
 	}
 	text := fmt.Sprintf("%s: without it the order would be %v cheaper, to first order.", b.Target, b.Saving)
+	if b.Unknown {
+		return text + fmt.Sprintf(" What it would cost a tenth tighter (%s) was not found in time.", b.Tighter)
+	}
 	if b.Out {
 		return text + fmt.Sprintf(" A tenth tighter (%s) it is out of reach of every choice.", b.Tighter)
 	}

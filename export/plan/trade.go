@@ -2,9 +2,11 @@ package plan
 
 import (
 	"fmt"
+	"math"
 	"strings"
 
 	"batchwright/bom/order"
+	"batchwright/export/workbook"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/pick"
 )
@@ -19,13 +21,15 @@ type Trade struct {
 	Currency      string `json:"currency"`
 	Book          string `json:"price_book"`
 	Demonstration bool   `json:"demonstration"`
+
+	Files []string `json:"files"` // written
 }
 
 // NewTrade joins a trade and what it is of.
 func NewTrade(b *build.Build, seed uint64, simulated int, t *pick.Trade) Trade {
 	return Trade{
 		Build: b.Title, Seed: seed, Units: b.Units, Simulated: simulated, Trade: *t,
-		Currency: b.Book.Currency, Book: b.Book.Name, Demonstration: b.Book.Demonstration,
+		Currency: b.Book.Currency, Book: b.Book.Name, Demonstration: b.Book.Demonstration, Files: []string{},
 	}
 }
 
@@ -70,4 +74,33 @@ func TradeSentence(t Trade) string {
 // TradeCaution says whose prices these are.
 func TradeCaution(t Trade) string {
 	return PriceNote(order.Order{Demonstration: t.Demonstration})
+}
+
+// traded lays a trade out for the workbook; nil where there is none.
+func traded(w Work) *workbook.Trade {
+	t := w.Trade
+	if t == nil {
+		return nil
+	}
+	out := &workbook.Trade{Target: t.Target, Unit: t.Unit, Asked: t.Asked, Limit: TradeLimit(w.Build, t.Target)}
+	with := PointTexts(t.Points)
+	for i, x := range t.Points {
+		out.Points = append(out.Points, workbook.TradePoint{
+			Order: x.Total.Float(), Unit: x.PerUnit.Float(), Predicted: x.Predicted, Simulated: x.Simulated,
+			Complying: x.Complying, Met: x.Met, Parts: with[i],
+		})
+	}
+	out.Notes = []string{TradeSentence(NewTrade(w.Build, w.Seed, w.Simulate, t))}
+	return out
+}
+
+// TradeLimit is the largest change to either side that a target allows; NaN
+// for a target that the build does not have.
+func TradeLimit(b *build.Build, target string) float64 {
+	for _, t := range b.Targets {
+		if t.Name == target {
+			return math.Min(-t.Low, t.High)
+		}
+	}
+	return math.NaN()
 }

@@ -59,7 +59,7 @@ func variable(v build.Variable, x float64) string {
 // which it has already.
 func findings(w Work) []string {
 	var list []string
-	if w.Pick.Why != "" {
+	if w.Pick.Why != "" && len(w.Pick.Choices) == 0 { // otherwise the proof has it
 		list = append(list, w.Pick.Why)
 	}
 	if n := len(w.Order.Unoffered); n > 0 {

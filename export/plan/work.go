@@ -34,6 +34,7 @@ type Work struct {
 	Drifts []workbook.Drift
 
 	Compared *compare.Result // nil: nothing was compared
+	Trade    *pick.Trade     // nil: nothing was traded
 	Cards    bool            // a page for every unit is wanted
 }
 
@@ -49,15 +50,15 @@ func (w Work) Digest() string {
 // Compose makes the workbook's plan.
 func Compose(w Work) workbook.Plan {
 	return workbook.Plan{
-		Title: w.Build.Title, Units: w.Build.Units, Seed: w.Seed,
+		Title: w.Build.Title, Units: w.Build.Units, Seed: w.Seed, Simulate: w.Simulate,
 		File: w.File, Digest: w.Digest(), Version: w.Version,
 		PriceNote:  PriceNote(w.Order),
 		Findings:   findings(w),
 		Conditions: conditions(w.Build),
-		Order:      w.Order, Pick: *w.Pick,
+		Order:      w.Order, Picks: picked(w),
 		Positions: positions(w),
 		Turns:     w.Sheet.Turns, Readings: w.Sheet.Readings, Samples: w.Sheet.Samples, Cards: w.Cards,
-		Spread: *w.Report, Drifts: w.Drifts, Compare: compared(w.Compared),
+		Spread: *w.Report, Drifts: w.Drifts, Compare: compared(w.Compared), Trade: traded(w),
 		Basis: basis(w), Cautions: Cautions(),
 		Advice: advice(w),
 	}

@@ -28,7 +28,7 @@ func (b *book) buy() string {
 	p.put(0, p.text("Spares, percent", label), p.number(float64(o.SparesPercent), "0", figure))
 	p.put(0, p.text("Prices", label), p.text(b.priceWords(), look{bold: true}))
 	p.put(8)
-	money := "(" + or(clean(o.Currency), "no currency") + ")"
+	money := p.currency()
 	head := p.heads("lllllrrrrrrr", "References", "Part", "Value", "Tolerance", "Marked", "Per unit", "Needed", "Spares", "Packs of", "Buy", "One piece "+money, "Price "+money)
 	total, notes := "", []string(nil)
 	if len(o.Lines) == 0 {
@@ -36,6 +36,7 @@ func (b *book) buy() string {
 	} else {
 		total, notes = p.buyLines(o, head)
 	}
+	p.alternates(b.plan.Picks)
 	p.unoffered(o.Unoffered)
 	if len(notes) > 0 {
 		p.section("Notes")

@@ -60,7 +60,9 @@ func poison(v reflect.Value, s string) {
 // Whatever stands in the texts, the file is well-formed XML and its formulas
 // are those of the harmless plan.
 func TestHostileTexts(t *testing.T) {
-	_, clean := parts(t, written(t, sample(2)))
+	harmless := sample(2)
+	harmless.Trade = sampleTrade()
+	_, clean := parts(t, written(t, harmless))
 	for _, c := range []struct{ name, s string }{
 		{"formula", `=cmd|'/c calc'!A1`}, {"quotes", `'"'; "")&A1`}, {"controls", "\x00\x01\x1b\x7f\x9b"}, {"markup", `</t></is></c><c r="A1"><f>1+1</f>`},
 		{"escape", "_x0041_&amp;&#0;"}, {"broken", "\xff\xfe\xc0\x80"}, {"long", strings.Repeat("a ", 40000)}, {"one word", strings.Repeat("W", 5000)},
@@ -68,6 +70,7 @@ func TestHostileTexts(t *testing.T) {
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			p := sample(2)
+			p.Trade = sampleTrade()
 			poison(reflect.ValueOf(&p).Elem(), c.s)
 			p.Advice = map[string]string{c.s: c.s}
 			_, text := parts(t, written(t, p))
@@ -123,6 +126,7 @@ func spoil(v reflect.Value) {
 // and the test sheet says why.
 func TestNoFigures(t *testing.T) {
 	p := sample(2)
+	p.Trade = sampleTrade()
 	spoil(reflect.ValueOf(&p).Elem())
 	for i := range p.Readings {
 		p.Readings[i].Why = ""

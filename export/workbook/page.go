@@ -157,6 +157,10 @@ func (p *page) heads(across string, titles ...string) int {
 	cells := make([]excelize.Cell, len(titles))
 	n := 1
 	for i, t := range titles {
+		if i >= len(p.widths) { // beside the page, where only charts look
+			cells[i] = p.text(t, look{size: 8, ink: faded, down: "bottom"})
+			continue
+		}
 		l := look{size: 9, bold: true, fill: tint, wrap: true, down: "bottom", top: rule, bottom: rule}
 		if i < len(across) && across[i] == 'r' {
 			l.across = "right"

@@ -11,7 +11,6 @@ import (
 
 	"batchwright/bom/order"
 	"batchwright/tolerance/bench"
-	"batchwright/tolerance/pick"
 	"batchwright/tolerance/spread"
 )
 
@@ -31,19 +30,20 @@ const (
 // degrees Celsius; shares are fractions. Empty parts leave out their rows, and
 // the sheet says that there is nothing to show.
 type Plan struct {
-	Title   string // the build's
-	Units   int    // 1 to MaxUnits
-	Seed    uint64
-	File    string // the build file as the user named it
-	Digest  string // of the build, hexadecimal; binds a filled sheet to its plan
-	Version string // of this program
-	Paper   Paper
+	Title    string // the build's
+	Units    int    // 1 to MaxUnits
+	Seed     uint64
+	Simulate int    // units asked to be simulated
+	File     string // the build file as the user named it
+	Digest   string // of the build, hexadecimal; binds a filled sheet to its plan
+	Version  string // of this program
+	Paper    Paper
 
 	PriceNote  string   // "demonstration prices, invented"; shown wherever money is
 	Findings   []string // sentences for the first page; verdicts come from Spread
 	Conditions []Condition
 	Order      order.Order
-	Pick       pick.Result
+	Picks      Picks
 	Positions  []Position // in stage order
 	Turns      []bench.Turn
 	Readings   []bench.Reading
@@ -51,6 +51,7 @@ type Plan struct {
 	Spread     spread.Report
 	Drifts     []Drift
 	Compare    *Compare // nil: no such sheet
+	Trade      *Trade   // nil: no such sheet
 	Basis      []Basis
 	Cautions   []string
 	Cards      bool // a page for every unit

@@ -2,10 +2,7 @@ package workbook
 
 import (
 	"fmt"
-	"strings"
 
-	"batchwright/bom/order"
-	"batchwright/tolerance/pick"
 	"batchwright/tolerance/spread"
 
 	"github.com/xuri/excelize/v2"
@@ -23,7 +20,7 @@ func (b *book) summary(total string, verdicts tally) {
 	p.targets()
 	p.yield()
 	p.benchState(verdicts)
-	p.choices(b.plan.Pick)
+	p.choices(b.plan.Picks)
 	p.findings()
 	p.contents()
 	p.close(s, 0)
@@ -158,56 +155,12 @@ func (p *page) benchState(v tally) {
 	p.put(0, cells...)
 }
 
-// choices says which parts were picked and why.
-func (p *page) choices(r pick.Result) {
-	if len(r.Choices) == 0 {
-		return
-	}
-	p.section("Parts that were chosen")
-	p.heads("lllril", "For", "Part", "", "In one unit", "Why", "")
-	text := look{bottom: hairline, wrap: true}
-	for _, c := range r.Choices {
-		what := chosen(c)
-		n := max(lines(what, p.wide(2, 3), 10, false), lines(clean(c.Why), p.wide(5, 6)-indented, 9, false), p.tallest(10, order.Runs(c.Refs)))
-		small := text
-		small.size, small.indent = 9, 1
-		money := text
-		p.put(lineHeight(10, n), p.text(order.Runs(c.Refs), bolder(text)), p.text(what, text), p.text("", text), p.number(c.UnitCost.Float(), eachFormat, money), p.text(c.Why, small), p.text("", small))
-		p.merge(2, 3)
-		p.merge(5, 6)
-	}
-	p.paragraph(proof(r), 1, 6, look{size: 9, ink: faded})
-}
-
-// chosen is what was picked, as one would ask for it.
-func chosen(c pick.Choice) string {
-	words := strings.TrimSpace(c.Text + " " + c.Family)
-	if t := within(c.Tolerance); t != "" {
-		words += ", " + t
-	}
-	if c.Combine != "" && c.Combine != "single" {
-		words += ", in " + c.Combine
-	}
-	return clean(words)
-}
-
-// proof says how sure it is that nothing cheaper would do.
-func proof(r pick.Result) string {
-	words := fmt.Sprintf("%s combinations exist, %s were judged, %s simulated.", whole(r.Candidates), whole(r.Examined), whole(r.Simulated))
-	if r.ProvedCheapest {
-		return words + " Proved: nothing cheaper meets the targets; every cheaper choice misses one, to first order with room to spare or in simulation."
-	}
-	return sentence(words+" Not proved to be the cheapest.", capital(clean(r.Why)))
-}
-
 func (p *page) findings() {
 	all := append(append([]string{}, p.plan.Findings...), p.plan.Spread.Notes...)
 	if len(all) > 0 {
 		p.section("Worth knowing")
 		for _, f := range all {
-			if f = clean(f); f != clean(p.plan.Pick.Why) { // said above
-				p.paragraph("• "+capital(f), 1, 6, look{})
-			}
+			p.paragraph("• "+capital(clean(f)), 1, 6, look{})
 		}
 	}
 	if len(p.plan.Cautions) > 0 {
@@ -218,29 +171,39 @@ func (p *page) findings() {
 	}
 }
 
+// compareContents is what the contents say of the sheet of comparisons.
+const compareContents = "other parts in the same places"
+
 // contents leads to the other sheets, two to a row.
 func (p *page) contents() {
 	p.section("In this workbook")
-	left := [][2]string{{buySheet, "what to order, in packs, with prices"}, {stagesSheet, "what goes where, and its marking"}, {trimsSheet, "adjustments in bench order"}, {testSheet, "what every meter should show"}}
-	right := [][2]string{{tolerancesSheet, "every output at every condition"}, {driftSheet, "movement with temperature"}, {basisSheet, "assumptions, sources, limits"}}
+	list := [][2]string{
+		{buySheet, "what to order, in packs, with prices"}, {tolerancesSheet, "every output at every condition"},
+		{stagesSheet, "what goes where, and its marking"}, {driftSheet, "movement with temperature"},
+		{trimsSheet, "adjustments in bench order"}, {basisSheet, "assumptions, sources, limits"},
+		{testSheet, "what every meter should show"},
+	}
 	if p.plan.Compare != nil {
-		right = append(right, [2]string{compareSheet, "other parts in the same places"})
+		list = append(list, [2]string{compareSheet, compareContents})
+	}
+	if p.plan.Trade != nil {
+		list = append(list, [2]string{tradeSheet, "what steadier would cost"})
 	}
 	if len(p.plan.Samples) > 0 {
-		right = append(right, [2]string{samplesSheet, "targets at other conditions"})
+		list = append(list, [2]string{samplesSheet, "targets at other conditions"})
 	}
 	if p.plan.Cards {
-		right = append(right, [2]string{cardsSheet, "a page for every unit"})
+		list = append(list, [2]string{cardsSheet, "a page for every unit"})
 	}
-	for len(right) < len(left) {
-		right = append(right, [2]string{})
+	if len(list)%2 > 0 {
+		list = append(list, [2]string{})
 	}
-	left = append(left, make([][2]string, len(right)-len(left))...)
-	link, text := look{bold: true, ink: copper}, look{}
-	for i := range left {
-		r := p.put(0, p.text(left[i][0], link), p.text(left[i][1], text), excelize.Cell{}, p.text(right[i][0], link), p.text(right[i][1], text))
-		p.link(at(1, r), left[i][0]) // nowhere where there is no sheet
-		p.link(at(4, r), right[i][0])
+	name, text := look{bold: true, ink: copper}, look{}
+	for i := 0; i < len(list); i += 2 {
+		left, right := list[i], list[i+1]
+		r := p.put(0, p.text(left[0], name), p.text(left[1], text), excelize.Cell{}, p.text(right[0], name), p.text(right[1], text))
+		p.link(at(1, r), left[0])
+		p.link(at(4, r), right[0])
 	}
 }
 

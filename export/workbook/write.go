@@ -22,6 +22,7 @@ const (
 	tolerancesSheet = "Tolerances"
 	driftSheet      = "Drift"
 	compareSheet    = "Compare" // only where the plan has one
+	tradeSheet      = "Trade"   // likewise
 	basisSheet      = "Basis"
 	carrierSheet    = "_plan" // never shown
 )
@@ -44,6 +45,7 @@ func Write(w io.Writer, p Plan) error {
 	b.tolerances()
 	b.drift()
 	b.compare()
+	b.trade()
 	b.basis()
 	b.summary(total, verdicts)
 	b.carriers()
@@ -70,8 +72,8 @@ type book struct {
 func newBook(p Plan) *book {
 	b := &book{plan: p, file: excelize.NewFile(), styles: map[look]int{}}
 	b.keep(b.file.SetSheetName("Sheet1", summarySheet))
-	absent := map[string]bool{compareSheet: p.Compare == nil, samplesSheet: len(p.Samples) == 0, cardsSheet: !p.Cards}
-	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, samplesSheet, cardsSheet, tolerancesSheet, driftSheet, compareSheet, basisSheet, carrierSheet} {
+	absent := map[string]bool{compareSheet: p.Compare == nil, tradeSheet: p.Trade == nil, samplesSheet: len(p.Samples) == 0, cardsSheet: !p.Cards}
+	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, samplesSheet, cardsSheet, tolerancesSheet, driftSheet, compareSheet, tradeSheet, basisSheet, carrierSheet} {
 		if absent[name] {
 			continue
 		}

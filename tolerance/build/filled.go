@@ -70,7 +70,7 @@ func (f *filler) fill(c Fitting) error {
 	if c.Mixed {
 		lots = MixedLots
 	}
-	if at := f.part.Get("lots"); at == nil && c.Mixed || at != nil && at.Value != string(lots) {
+	if at := f.part.Get("lots"); (c.Mixed || at != nil) && !f.says("lots", string(lots)) {
 		f.pairs = append(f.pairs, document.Pair{Key: word("lots"), Value: word(string(lots))})
 	}
 	return nil

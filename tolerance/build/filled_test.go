@@ -124,7 +124,12 @@ func TestFilledInTypes(t *testing.T) {
 	for _, c := range []struct{ name, part, choose, want string }{
 		{"transistor", "ref: Q9, part: transistor", "{families: [small-signal-npn]}", "ref: Q9, part: transistor, family: small-signal-npn"},
 		{"trimmer", "ref: CT9, part: trimmer-capacitor, tolerance: 10 %", "{families: [ceramic-trimmer], values: [\"4..34 pF\"]}", ""},
+		{"trimmer of another low end", "ref: CT9, value: 5..34 pF", "{families: [ceramic-trimmer], values: [4..34 pF]}", "ref: CT9, value: 4..34 pF, family: ceramic-trimmer"},
+		{"trimmer of another high end", "ref: CT9, value: 4..20 pF", "{families: [ceramic-trimmer], values: [4..34 pF]}", "ref: CT9, value: 4..34 pF, family: ceramic-trimmer"},
+		{"trimmer in other words", "ref: CT9, value: 4 pF..0.034 nF", "{families: [ceramic-trimmer], values: [4..34 pF]}", "ref: CT9, value: 4 pF..0.034 nF, family: ceramic-trimmer"},
 		{"coil", "ref: L9, value: 1.8 mH", "{families: [drum-choke], tolerances: [10 %]}", "ref: L9, value: 1.8 mH, family: drum-choke, tolerance: 10 %"},
+		{"regulator", "ref: U9, part: regulator, value: 12 V", "{families: [fixed-regulator], tolerances: [4 %]}", "ref: U9, part: regulator, value: 12 V, family: fixed-regulator, tolerance: 4 %"},
+		{"trimmer with its tolerance written", "ref: CT9, part: trimmer-capacitor, value: 4..34 pF, tolerance: 10 %", "{families: [film-trimmer]}", "ref: CT9, part: trimmer-capacitor, value: 4..34 pF, family: film-trimmer"},
 		{"tolerance that is not sold", "ref: Q9, part: transistor, tolerance: 5 %", "{families: [small-signal-npn]}", "ref: Q9, part: transistor, family: small-signal-npn"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -141,6 +146,23 @@ func TestFilledInTypes(t *testing.T) {
 				}
 			}
 		})
+	}
+}
+
+// TestFilledInCloserTrimmer writes the tolerance of a trimmer that its family
+// is sold in more closely than it is taken for unsaid.
+func TestFilledInCloserTrimmer(t *testing.T) {
+	x := "x: {ref: RV9, value: 0..10 kΩ, choose: {families: [cermet-trimmer], tolerances: [10 %, 20 %]}}"
+	text := strings.Replace(good, "parts: {r: {ref: R1, value: 10 kΩ}}", "parts: {r: {ref: R1, value: 10 kΩ}, "+x+"}", 1)
+	b, err := read(text)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i, want := range []string{"family: cermet-trimmer, tolerance: 10 %}", "family: cermet-trimmer}"} {
+		out, err := b.FilledIn([]byte(text), b.Fittings(b.Openings[0])[i:i+1])
+		if err != nil || !strings.Contains(string(out), "x: {ref: RV9, value: 0..10 kΩ, "+want) {
+			t.Errorf("%v\n%s", err, changed(text, string(out)))
+		}
 	}
 }
 

@@ -171,7 +171,7 @@ func (b *Build) Fit(choice []Fitting) (*Build, error) {
 	for i, o := range b.Openings {
 		for _, position := range o.Positions {
 			p := out.Place(position)
-			p.fill(p.Part.Ref, choice[i].Combine, choice[i].parts())
+			p.fill(p.Base(), choice[i].Combine, choice[i].parts())
 			p.Quantity = choice[i].Text
 		}
 	}

@@ -97,13 +97,13 @@ func (r *Result) findLines(o Options) error {
 			return fmt.Errorf("%s is wound, not bought", line[0])
 		case r.Type != "" && p.Type != r.Type:
 			return fmt.Errorf("%s is a %s and %s a %s: expected parts of one type", r.Lines[0].Positions[0], r.Type, line[0], p.Type)
-		case p.Part.Family == "" && len(o.Families) == 0 && len(o.Values)+len(o.Tolerances) > 0:
+		case !p.Paired() && p.Part.Family == "" && len(o.Families) == 0 && len(o.Values)+len(o.Tolerances) > 0:
 			return fmt.Errorf("%s has no family: expected some to compare it with", line[0])
 		}
 		r.Type = p.Type
 		l := Line{Positions: line}
 		for _, at := range line {
-			l.Refs = append(l.Refs, r.Build.Place(at).Part.Ref)
+			l.Refs = append(l.Refs, r.Build.Place(at).Refs()...)
 		}
 		r.Lines = append(r.Lines, l)
 	}
@@ -162,21 +162,8 @@ func (r *Result) describe(c *Case, o Options) {
 	limits := spread.Limits{Low: spread.Figure(math.Inf(-1)), High: spread.Figure(math.Inf(1))}
 	c.Lots = build.OneLot
 	for _, l := range r.Lines {
-		p := c.build.Place(l.Positions[0]).Part
-		c.parts = append(c.parts, p)
-		c.Families = addNew(c.Families, p.Family)
-		c.Values = addNew(c.Values, p.ValueText())
-		if g := p.Grade(); g > 0 || p.Type.Trimmer() {
-			c.Tolerances = addNew(c.Tolerances, g)
-		}
-		if p.LotsMixed {
-			c.Lots = build.MixedLots
-		}
-		if f, ok := c.build.Families.Family(p.Family); ok {
-			c.Sizes = addNew(c.Sizes, f.Size)
-			if f.MinCelsius != 0 || f.MaxCelsius != 0 {
-				limits.Low, limits.High = max(limits.Low, spread.Figure(f.MinCelsius)), min(limits.High, spread.Figure(f.MaxCelsius))
-			}
+		for _, p := range c.build.Place(l.Positions[0]).Pieces() {
+			c.addPiece(p, &limits)
 		}
 	}
 	c.Sizes = slices.DeleteFunc(c.Sizes, func(s string) bool { return s == "" })
@@ -185,6 +172,27 @@ func (r *Result) describe(c *Case, o Options) {
 		c.Beyond = beyond(c.build, limits)
 	}
 	c.Label = c.label(o)
+}
+
+// addPiece adds what a part of a case is, and the temperatures it stands.
+func (c *Case) addPiece(p part.Part, limits *spread.Limits) {
+	c.parts = append(c.parts, p)
+	c.Families = addNew(c.Families, p.Family)
+	c.Values = addNew(c.Values, p.ValueText())
+	if g := p.Grade(); g > 0 || p.Type.Trimmer() {
+		c.Tolerances = addNew(c.Tolerances, g)
+	}
+	if p.LotsMixed {
+		c.Lots = build.MixedLots
+	}
+	f, ok := c.build.Families.Family(p.Family)
+	if !ok {
+		return
+	}
+	c.Sizes = addNew(c.Sizes, f.Size)
+	if f.MinCelsius != 0 || f.MaxCelsius != 0 {
+		limits.Low, limits.High = max(limits.Low, spread.Figure(f.MinCelsius)), min(limits.High, spread.Figure(f.MaxCelsius))
+	}
 }
 
 // beyond are the conditions whose ambient temperature is outside limits.

@@ -75,7 +75,7 @@ type Case struct {
 	Why     string // one clause, from the numbers
 
 	build *build.Build
-	parts []part.Part // of the lines, one each
+	parts []part.Part // of the lines, one each or the two of a pair
 }
 
 // Base is the case that the others are compared with.

@@ -14,10 +14,10 @@ import (
 // addBinding finds the target that costs most and what a tighter one would
 // cost. Which one binds is asked of the linear picture alone: the order's money
 // without each target in turn. The price of the tighter one is that of a choice
-// that the simulation confirms.
+// that the simulation confirms. Where its search ended early that is said.
 func (c *chooser) addBinding(r *Result, choice []int) error {
 	all, err := c.pictured(c.asked())
-	if err != nil || all.Choice == nil {
+	if err != nil || all.Choice == nil || !all.Proved {
 		return err
 	}
 	binding, saving := -1, int64(0)
@@ -26,7 +26,10 @@ func (c *chooser) addBinding(r *Result, choice []int) error {
 		if err != nil {
 			return err
 		}
-		if less := all.Cost - found.Cost; found.Choice != nil && less > saving {
+		if !found.Proved || found.Choice == nil {
+			return nil // the search ended early: what was found says nothing of what a target costs
+		}
+		if less := all.Cost - found.Cost; less > saving {
 			binding, saving = t, less
 		}
 	}
@@ -34,13 +37,15 @@ func (c *chooser) addBinding(r *Result, choice []int) error {
 		return nil
 	}
 	tight := tighter(c.build.Targets[binding])
-	r.Binding = &Binding{Target: c.build.Targets[binding].Name, Saving: offer.Money(saving), Tighter: tightText(tight)}
 	varied := c.varied(binding, tight)
 	found, err := varied.search(varied.asked(), nil)
 	if err != nil {
 		return err
 	}
-	r.Binding.Total, r.Binding.Out = offer.Money(found.Cost), found.Choice == nil
+	r.Binding = &Binding{
+		Target: c.build.Targets[binding].Name, Saving: offer.Money(saving), Tighter: tightText(tight),
+		Total: offer.Money(found.Cost), Out: found.Choice == nil && found.Proved, Unknown: !found.Proved,
+	}
 	return nil
 }
 

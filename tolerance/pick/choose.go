@@ -2,6 +2,7 @@ package pick
 
 import (
 	"context"
+	"maps"
 	"slices"
 	"time"
 
@@ -18,6 +19,7 @@ type Options struct {
 	Progress   func(text string) // nil: not called
 
 	limits exact.Limits // smaller ones, for tests
+	few    int          // combinations up to which none is bounded by effects that add up; 0: manyChoices
 }
 
 // Choose fills a build's openings with the cheapest parts by its price book
@@ -41,13 +43,14 @@ func Choose(ctx context.Context, b *build.Build, o Options) (*Result, *build.Bui
 		return nil, nil, err
 	}
 	r, fitted, err := c.result(found)
-	if err != nil || found.Choice == nil {
+	if err != nil || found.Choice == nil || !found.Proved { // what there was time for is used up
 		return r, fitted, err
 	}
-	if err := c.addAlternates(r, found.Choice); err != nil {
+	aside := c.aside()
+	if err := aside.addAlternates(r, found.Choice); err != nil {
 		return nil, nil, err
 	}
-	return r, fitted, c.addBinding(r, found.Choice)
+	return r, fitted, aside.addBinding(r, found.Choice)
 }
 
 // chooser turns a build's openings into a problem.
@@ -93,6 +96,26 @@ func newChooser(ctx context.Context, b *build.Build, o Options) (*chooser, error
 		c.floors = append(c.floors, floors)
 	}
 	return c, nil
+}
+
+// AsideUnits is how many units at most confirm what is said beside a choice:
+// alternates, and the price of a tighter target.
+const AsideUnits = 6_000
+
+// aside is the chooser for questions beside the choice itself, of which there
+// are many: what it simulates, it simulates with fewer units. What is known
+// already stands.
+func (c *chooser) aside() *chooser {
+	own := *c
+	own.Units = min(c.Units, AsideUnits)
+	own.answers = maps.Clone(c.answers)
+	own.trials = nil
+	for _, t := range c.trials {
+		fresh := *t
+		fresh.seen = maps.Clone(t.seen)
+		own.trials = append(own.trials, &fresh)
+	}
+	return &own
 }
 
 // withoutSearch is the result where there is nothing to search: no opening, or
@@ -235,9 +258,13 @@ func (s *searching) run() (exact.Outcome, error) {
 
 // few says whether every combination could be judged by its own picture.
 func (s *searching) few() bool {
+	most := s.Options.few
+	if most == 0 {
+		most = manyChoices
+	}
 	n := 1
 	for _, kept := range s.kept {
-		if n *= len(kept); n > manyChoices {
+		if n *= len(kept); n > most {
 			return false
 		}
 	}

@@ -213,7 +213,7 @@ func TestCostIsTheOrder(t *testing.T) {
 // one made of the choice compiled afresh.
 func TestPictureIsTheModel(t *testing.T) {
 	for name, text := range map[string]string{"two lines": tanks("60 Hz"), "lines that may merge": merging()} {
-		t.Run(name, func(t *testing.T) { comparePictures(t, text) })
+		t.Run(name, func(t *testing.T) { comparePictures(t, chooserOf(t, read(t, text), Options{})) })
 	}
 }
 
@@ -233,11 +233,7 @@ func joining() string {
   mix: {`, 1)
 }
 
-func comparePictures(t *testing.T, text string) {
-	c, err := newChooser(context.Background(), read(t, text), Options{})
-	if err != nil {
-		t.Fatal(err)
-	}
+func comparePictures(t *testing.T, c *chooser) {
 	p := c.pictures
 	for _, choice := range everyChoice(c) {
 		b, err := c.fit(choice)

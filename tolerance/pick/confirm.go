@@ -123,9 +123,13 @@ func (c *chooser) reports(t *trial, choice []int) ([]spread.TargetReport, error)
 // be met, at last on those of the report.
 func (c *chooser) try(m *build.Model, targets []int) (outcome, error) {
 	for _, units := range []int{240, 960, 3840} {
-		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: min(c.Units, units)}
+		if quickGain*units > c.Units {
+			break // it would take about as long as the report's own
+		}
+		o := spread.Options{Seed: c.Seed ^ quickSeed, Units: units}
 		came, err := c.simulate(m, targets, o, func(t spread.TargetReport) bool {
-			return float64(t.ShareInterval[1]) >= t.Demand // it may still do
+			upper := float64(t.ShareInterval[1])
+			return upper+doubt*(upper-float64(t.Share)) >= t.Demand // it may still do
 		})
 		if err != nil || came.failed >= 0 {
 			return came, err
@@ -135,9 +139,18 @@ func (c *chooser) try(m *build.Model, targets []int) (outcome, error) {
 	return c.simulate(m, targets, o, func(t spread.TargetReport) bool { return t.Met })
 }
 
+// quickGain is how many times more units the report must have for a quick
+// simulation to be worth its time.
+const quickGain = 4
+
 // quickSeed keeps the draws of the quick simulations apart from those that
 // confirm.
 const quickSeed = 0x9e3779b97f4a7c15
+
+// doubt is how far beyond its interval, in parts of what that reaches above the
+// share, a quick simulation must miss to refuse a choice: by some three standard
+// deviations, so that what the report would pass is hardly ever refused.
+const doubt = 0.5
 
 // simulate looks for a target that a simulation does not meet.
 func (c *chooser) simulate(m *build.Model, targets []int, o spread.Options, met func(spread.TargetReport) bool) (outcome, error) {

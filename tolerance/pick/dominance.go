@@ -13,12 +13,18 @@ import (
 // in for whatever else is chosen: it differs in nothing but narrower
 // tolerances, costs no more, and nobody else buys on the lines of either. The
 // first-order scatter of anything then is no larger, for every variance rises
-// with each half width. That holds of the picture where every shape is normal;
+// with each half width, and on no less than half of the units no less of a
+// target is met; where less is asked for, nothing is marked. That holds of the picture where every shape is normal;
 // others change how generously it judges, so they are left alone.
 func (p *pictures) dominated() [][]bool {
 	var all [][]bool
+	least := slices.ContainsFunc(p.demands, func(d demandNode) bool { return !d.WorstCase && d.Share < 0.5 })
 	for i, list := range p.fittings {
 		marks := make([]bool, len(list))
+		if least {
+			all = append(all, marks)
+			continue
+		}
 		for _, alike := range p.alike(i) {
 			for _, b := range alike {
 				marks[b] = slices.ContainsFunc(alike, func(a int) bool { return a != b && p.standsIn(i, a, b) })
@@ -51,10 +57,11 @@ func (p *pictures) alike(i int) [][]int {
 }
 
 // likeness names everything about a fitting but its half widths; not ok where
-// something that scatters is not normal.
+// something that scatters is not normal. Two pieces that come from one lot vary
+// together, so whether they do is part of it.
 func (p *pictures) likeness(i, j int) (string, bool) {
 	var b strings.Builder
-	b.WriteString(p.signs[i][j])
+	fmt.Fprintf(&b, "%s%d ", p.signs[i][j], len(p.buys[i][j]))
 	for k, inputs := range p.options[i][j] {
 		for _, name := range names(inputs) {
 			x := inputs[name]

@@ -21,7 +21,8 @@ type market struct {
 	lines    []line            // that may be bought
 	lineIDs  map[string]int    // by order.Key
 	takes    []map[int][]int   // of each opening, by line: how many pieces its fittings may take
-	rest     int64             // the money for parts that are not open
+	rest     int64             // the least money for parts that are not open
+	missing  map[string]bool   // references of fixed parts that nobody offers, whatever is chosen
 	crowded  bool              // some lines draw on one stock
 }
 
@@ -43,12 +44,12 @@ type price struct {
 
 // newMarket lists what may fill each opening and is offered.
 func newMarket(b *build.Build) (*market, error) {
-	m := &market{build: b, lineIDs: map[string]int{}}
+	m := &market{build: b, lineIDs: map[string]int{}, missing: map[string]bool{}}
 	fixed := m.fixedParts()
 	for _, p := range fixed {
 		m.lines[m.know(p)].fixed++
 	}
-	m.rest = int64(m.order(fixed).Total)
+	m.priceFixed(fixed)
 	for _, o := range b.Openings {
 		all := b.Fittings(o)
 		if len(all) == 0 {
@@ -67,6 +68,23 @@ func newMarket(b *build.Build) (*market, error) {
 	}
 	m.crowded = m.shareShelves()
 	return m, nil
+}
+
+// priceFixed notes which fixed parts nobody offers, and what the others come to,
+// each line as if it had its stock to itself: a choice may leave a line more of
+// it than it has without one, by making another line large enough to be bought
+// elsewhere.
+func (m *market) priceFixed(fixed []part.Part) {
+	for _, l := range m.order(fixed).Unoffered {
+		for _, ref := range l.Refs {
+			m.missing[ref] = true
+		}
+	}
+	for id := range m.lines {
+		if !m.missing[m.lines[id].part.Ref] {
+			m.rest += m.price(id, m.lines[id].fixed).money
+		}
+	}
 }
 
 // note adds what a fitting takes of each line.
@@ -205,21 +223,14 @@ func (m *market) orderCost(choice []int) (int64, bool) {
 		return 0, false
 	}
 	o := m.order(b.Parts())
-	return int64(o.Total), !slices.ContainsFunc(o.Unoffered, m.open)
+	return int64(o.Total), !slices.ContainsFunc(o.Unoffered, m.spoilt)
 }
 
-// open says whether anything on a line of the order is open. A line of which
-// nothing is, and which nobody offers, is in no total whatever is chosen.
-func (m *market) open(l order.Line) bool {
-	for _, o := range m.build.Openings {
-		for _, position := range o.Positions {
-			ref := m.build.Place(position).Part.Ref
-			if slices.ContainsFunc(l.Refs, func(r string) bool { return r == ref || r == ref+"A" || r == ref+"B" }) {
-				return true
-			}
-		}
-	}
-	return false
+// spoilt says whether the choice is why nobody offers a line of the order: it
+// is on the line, or took what the fixed parts there would have had. A line
+// that nobody offers anyway is in no total whatever is chosen.
+func (m *market) spoilt(l order.Line) bool {
+	return slices.ContainsFunc(l.Refs, func(ref string) bool { return !m.missing[ref] })
 }
 
 // price is the money for some pieces a unit on one line, spares included. A

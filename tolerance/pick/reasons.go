@@ -19,13 +19,17 @@ func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 	r.ProvedCheapest, r.Bound = found.Proved && found.Choice != nil, offer.Money(found.Bound)
 	r.Candidates, r.Examined, r.Simulated = found.Candidates, found.Examined, found.Simulated
 	r.CutByDominance, r.CutByBound = found.Dominated, found.CutByBound
+	if found.Proved && !c.newSearch(c.asked(), nil).few() {
+		r.Provided = provided
+	}
 	choice := found.Choice
 	switch {
 	case choice == nil:
 		choice = found.Nearest
 		r.Why = c.outOfReach(found)
 	case !found.Proved:
-		r.Why = fmt.Sprintf("the search ended early; nothing cheaper than %v exists, %.2g %% below this", offer.Money(found.Bound), 100*found.Gap())
+		r.Why = fmt.Sprintf("the best of a search that ran out of %s; nothing cheaper than %v exists, %.2g %% below this",
+			stopped(found), offer.Money(found.Bound), 100*found.Gap())
 	}
 	if choice == nil {
 		choice = make([]int, len(c.fittings))
@@ -46,6 +50,15 @@ func (c *chooser) result(found exact.Outcome) (*Result, *build.Build, error) {
 	o := c.order(fitted.Parts())
 	r.CostPerUnit, r.Total = o.PerUnit, o.Total
 	return r, fitted, nil
+}
+
+// stopped is what a search ran out of. One that was not stopped met choices that
+// effects which add up did not foresee.
+func stopped(found exact.Outcome) string {
+	if found.Stopped == "" {
+		return "certainty"
+	}
+	return string(found.Stopped)
 }
 
 // report says what the simulation makes of a choice, target by target, and what
@@ -71,15 +84,25 @@ func (c *chooser) report(r *Result, choice []int) error {
 
 // outOfReach says which target no choice meets, and how near the best comes.
 func (c *chooser) outOfReach(found exact.Outcome) string {
-	if found.Nearest == nil {
+	if found.Nearest == nil && !found.Proved {
 		return "the search ended before any choice was judged"
 	}
+	if found.Nearest == nil {
+		return "no combination can be bought: the price book has not enough for all the openings together"
+	}
+	early := ""
+	if !found.Proved {
+		early = "the search ended early; so far "
+	}
 	if text := c.answers[fmt.Sprint(found.Nearest)]; text != "" {
-		return "no choice meets every target in simulation; the one nearest meets " + text
+		return early + "no choice meets every target in simulation; the one nearest meets " + text
+	}
+	if found.NearestVerdict.Meets && !found.Proved {
+		return "the search ended before any choice that meets the targets to first order was simulated"
 	}
 	worst := found.NearestVerdict.Worst
 	t := c.build.Targets[c.demands[worst].target]
-	text := fmt.Sprintf("no choice meets the target %q (%s)", t.Name, t.Asked)
+	text := fmt.Sprintf("%sno choice meets the target %q (%s)", early, t.Name, t.Asked)
 	if !found.NearestVerdict.Meets {
 		text += "; the nearest, to first order, " + c.predicted(found.Nearest, worst)
 	}

@@ -47,6 +47,7 @@ type Result struct {
 	Remains        []Remains             `json:"remains"`          // of the changes that targets limit
 	Binding        *Binding              `json:"binding"`          // nil: none
 	Alternates     []Alternate           `json:"alternates"`
+	Irreplaceable  []Irreplaceable       `json:"irreplaceable"`      // lines that were looked at and have no alternate
 	Fittings       []build.Fitting       `json:"-"`                  // the choices, as a build is fitted with them
 	Targets        []spread.TargetReport `json:"-"`                  // as the simulation that confirmed has them, in the build's order
 	Searched       string                `json:"searched,omitempty"` // what for, where that is not the cheapest
@@ -56,7 +57,7 @@ type Result struct {
 
 // emptyResult is one with lists that JSON writes as such.
 func emptyResult() *Result {
-	return &Result{Choices: []Choice{}, Checks: []Check{}, Remains: []Remains{}, Alternates: []Alternate{}}
+	return &Result{Choices: []Choice{}, Checks: []Check{}, Remains: []Remains{}, Alternates: []Alternate{}, Irreplaceable: []Irreplaceable{}}
 }
 
 // Check is a target by share as the search saw it and as the simulation did.
@@ -73,6 +74,7 @@ type Binding struct {
 	Tighter string      `json:"tighter"`      // the target with its limits a tenth closer
 	Total   offer.Money `json:"total"`        // of the order that meets this
 	Out     bool        `json:"out_of_reach"` // no choice meets it; Total is then 0
+	Unknown bool        `json:"unknown"`      // the search for it ended early; Total is then what was found, or 0
 }
 
 // Alternate is the next-best choice where one of the buying lines is out of
@@ -83,6 +85,13 @@ type Alternate struct {
 	Instead []Choice    `json:"picks"` // the openings that are then filled otherwise
 	More    offer.Money `json:"more"`  // money of the order above the choice's
 	Drifts  []Moved     `json:"drifts"`
+}
+
+// Irreplaceable is a buying line for which no alternate was found, and why not.
+type Irreplaceable struct {
+	Refs []string `json:"refs"` // of the line
+	Line string   `json:"line"` // what it is
+	Why  string   `json:"why"`
 }
 
 // Moved is how much wider or narrower a change becomes, to first order: the

@@ -28,6 +28,7 @@ type Trade struct {
 	Tried    int          `json:"simulated"` // combinations put through a simulation
 	Searches int          `json:"searches"`
 	Why      string       `json:"why,omitempty"`
+	Provided string       `json:"provided,omitempty"` // what the proof rests on beside the picture
 }
 
 // TradePoint is one efficient choice.
@@ -105,6 +106,9 @@ func (t *trader) trade(most offer.Money) (*Trade, error) {
 		return nil, err
 	}
 	out.Complete, out.Examined, out.Tried, out.Searches = walk.Complete && !t.beyond(), walk.Examined, walk.Simulated, walk.Searches
+	if out.Complete && t.sums != nil {
+		out.Provided = provided
+	}
 	if !out.Complete {
 		out.Why = "the search ended early; steadier choices may be missing"
 	}
@@ -219,7 +223,7 @@ func (t *trader) steadiest(found *Trade, most offer.Money) (*Result, *build.Buil
 	r := emptyResult()
 	r.Choices, r.Total, r.CostPerUnit, r.Bound = p.Choices, p.Total, p.PerUnit, p.Total
 	r.Examined, r.Simulated, r.Searched = found.Examined, found.Tried, fmt.Sprintf("the steadiest %s within %v", found.Target, most)
-	r.Candidates = t.candidates()
+	r.Candidates, r.Provided = t.candidates(), found.Provided
 	if !found.Complete {
 		r.Why = found.Why
 	}

@@ -35,6 +35,10 @@ type Column struct {
 type Source struct {
 	Seed  uint64
 	Units int // per batch, at least 1
+	// Lots, where it is not nil, gives g_lot of a lot in a batch instead of a
+	// draw; ok is false where it has nothing to say of the lot. It must answer
+	// the same whenever it is asked, from any goroutine.
+	Lots func(lot, batch int) (g float64, ok bool)
 }
 
 // Fill writes to dst the units first, first+1, … of the flat numbering
@@ -68,6 +72,11 @@ func (s Source) Fill(dst []float64, c Column, first int) {
 
 // lot returns g_lot of one lot in one batch.
 func (s Source) lot(lot, batch int) float64 {
+	if s.Lots != nil {
+		if g, ok := s.Lots(lot, batch); ok {
+			return g
+		}
+	}
 	h := hash(key(lotOrigin, s.Seed, uint64(lot), uint64(batch)), 0)
 	return flip(normalTailQuantile(tail(h)), side(h))
 }

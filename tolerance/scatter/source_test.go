@@ -7,6 +7,7 @@ import (
 	"slices"
 	"testing"
 
+	"gonum.org/v1/gonum/mathext"
 	"gonum.org/v1/gonum/stat"
 
 	"batchwright/bom/part"
@@ -274,4 +275,26 @@ var pinned = []float64{
 	0.56933215944034921, 0.86552918118110167,
 	0.34374712148467435, 0.63329737004093034,
 	0.78466607972017455, 0.93276459059055084,
+}
+
+// TestGivenLots draws with lots that are given: the same columns as a shift of
+// what each piece has of its own, Φ⁻¹(F(z)) = √ρ·g_lot + √(1−ρ)·g_piece.
+func TestGivenLots(t *testing.T) {
+	const n, rho = 64, 0.64 // √ρ = 0.8
+	c := z(part.Uniform, 7, rho, 3)
+	given := func(g float64) []float64 {
+		s := Source{Seed: 1, Units: 8, Lots: func(lot, batch int) (float64, bool) { return g * float64(batch), lot == 7 }}
+		return drawn(s, c, n)
+	}
+	none, one := given(0), given(1)
+	normal := func(z float64) float64 { return mathext.NormalQuantile((1 + z) / 2) }
+	for i := range n {
+		if got, want := normal(one[i])-normal(none[i]), 0.8*float64(i/8); math.Abs(got-want) > 1e-7 && math.Abs(one[i]) < 0.9999999 {
+			t.Errorf("unit %d is moved by %v, want %v", i, got, want)
+		}
+	}
+	other := Source{Seed: 1, Units: 8, Lots: func(lot, batch int) (float64, bool) { return 5, false }}
+	if !slices.Equal(drawn(other, c, n), drawn(Source{Seed: 1, Units: 8}, c, n)) {
+		t.Error("a lot of which nothing is known is not drawn as ever")
+	}
 }

@@ -19,6 +19,8 @@ type Options struct {
 	Units    int                   // at least; rounded up to whole batches
 	Workers  int                   // 0: one for each processor
 	Progress func(done, total int) // called from several goroutines; nil: not called
+	// Lots gives what is known of a batch's lots: see scatter.Source.
+	Lots func(lot, batch int) (g float64, ok bool)
 }
 
 // batches is how many whole batches hold the units asked for.
@@ -75,7 +77,7 @@ func simulate(ctx context.Context, n *nodes, o Options) (*sample, error) {
 		wait.Add(1)
 		go func() {
 			defer wait.Done()
-			w := s.newWorker(scatter.Source{Seed: o.Seed, Units: units})
+			w := s.newWorker(scatter.Source{Seed: o.Seed, Units: units, Lots: o.Lots})
 			for ctx.Err() == nil {
 				i := int(next.Add(1)) - 1
 				if i >= len(jobs) {

@@ -33,6 +33,7 @@ func (d *dive) branch(p *piece) bool {
 		d.leave(p)
 		return false
 	}
+	defer d.release(p)
 	if !d.tighten(p) {
 		d.s.out.CutByBound++
 		return true
@@ -52,6 +53,25 @@ func (d *dive) branch(p *piece) bool {
 		}
 	}
 	return whole
+}
+
+// release lets another piece have the memory of a tableau.
+func (d *dive) release(p *piece) {
+	if p.mixed != nil {
+		d.free = append(d.free, p.mixed)
+		p.mixed = nil
+	}
+}
+
+// spare is a tableau to copy to.
+func (d *dive) spare() *tableau {
+	last := len(d.free) - 1
+	if last < 0 {
+		return &tableau{}
+	}
+	t := d.free[last]
+	d.free = d.free[:last]
+	return t
 }
 
 // leave notes a piece that is not looked at.
@@ -88,7 +108,7 @@ func (d *dive) tighten(p *piece) bool {
 		if !d.curved || gone*10 < p.r.options() {
 			return true
 		}
-		p.mixed = nil // the rows of shares follow the variances that are left
+		d.release(p) // the rows of shares follow the variances that are left
 	}
 }
 
@@ -115,7 +135,10 @@ func (d *dive) split(p *piece) []*piece {
 			score *= 1e-3*reach + min(part.bound-p.bound, reach)
 		}
 		if score > most {
-			best, most = parts, score
+			parts, best, most = best, parts, score
+		}
+		for _, part := range parts {
+			d.release(part)
 		}
 	}
 	slices.SortStableFunc(best, func(x, y *piece) int { return cmp.Compare(x.bound, y.bound) })
@@ -126,11 +149,11 @@ func (d *dive) split(p *piece) []*piece {
 func (d *dive) part(p *piece, line int, options []int) *piece {
 	kept := slices.Clone(p.kept)
 	kept[line] = options
-	q := &piece{kept: kept, bound: p.bound, r: p.r.narrow(kept), mixed: &tableau{}}
+	q := &piece{kept: kept, bound: p.bound, r: p.r.narrow(kept), mixed: d.spare()}
 	p.mixed.narrow(q.mixed, kept)
 	d.mix(q)
 	if d.curved {
-		q.mixed = nil
+		d.release(q)
 	}
 	return q
 }

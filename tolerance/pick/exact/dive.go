@@ -24,6 +24,7 @@ type dive struct {
 	dearest float64
 	curved  bool
 	best    []int // scratch
+	free    []*tableau
 	open    int64 // where it was stopped, what is not looked at costs at least this
 
 	bank    *bank

@@ -141,6 +141,7 @@ type shape struct {
 	mixed                   bool    // shares below one half and one-sided limits too
 	pairs                   float64 // chance that an option is two pieces
 	scarce                  bool    // stocks and multiples
+	pennies                 bool    // prices of 1 to 4, so that sums lie close together
 	marked                  float64 // chance that a line has options marked as dominated
 }
 
@@ -179,6 +180,9 @@ func (m *market) addOffer(r *rand.Rand, s shape) int {
 	}
 	for k := range steps {
 		steps[k].each = max(1, steps[k].each/s.whole) * s.whole
+	}
+	if s.pennies {
+		steps = []priceStep{{1, 1 + each%4}}
 	}
 	sold := shelf{steps, 1, math.MaxInt}
 	if s.scarce {

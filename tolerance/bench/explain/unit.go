@@ -95,19 +95,10 @@ func (u *Unit) verdict(complete bool) Verdict {
 }
 
 // distance is the Mahalanobis distance of some readings, in scale, from a
-// healthy unit's means, √((y−m)ᵀΣ⁻¹(y−m)), over the healthy units whose trims
-// reach.
+// healthy unit's means, over the healthy units whose trims reach.
 func (x *explainer) distance(read []int, scaled []float64) float64 {
-	healthy := x.pictures[0].parts[0] // the first way: every trim reached
-	cov := mat.NewSymDense(len(read), nil)
-	y := mat.NewVecDense(len(read), nil)
-	for a, i := range read {
-		y.SetVec(a, scaled[i]-healthy.mean[i])
-		for b, j := range read[:a+1] {
-			cov.SetSym(a, b, healthy.cov.At(i, j))
-		}
-	}
-	return math.Sqrt(quadratic(cov, y))
+	s := x.scorer(read)
+	return s.parts[0][0].distance(s.pick(scaled), make([]float64, len(read))) // the first way: every trim reached
 }
 
 // limit is the distance that a share `improbable` of simulated healthy units

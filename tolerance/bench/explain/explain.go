@@ -88,7 +88,7 @@ func newExplainer(ctx context.Context, m *build.Model, s bench.Sheet, points []s
 
 // review explains each unit, then the batch.
 func (x *explainer) review(ctx context.Context, f bench.Filled) (*Review, error) {
-	r := &Review{Units: []Unit{}, Notes: []string{}}
+	r := &Review{Units: []Unit{}, Notes: []string{}, Good: x.good()}
 	var all [][]float64
 	for _, u := range f.Units {
 		if len(u.Values) != len(f.Points) {

@@ -276,7 +276,7 @@ func (p *page) distributionChart(d drawn, series []excelize.ChartSeries, off str
 	small := excelize.Font{Family: font, Size: 8, Color: ink}
 	title := cut(clean(d.row.name), 60)
 	if d.row.symbol != "" {
-		title += ", " + d.row.symbol
+		title += ", " + cut(clean(d.row.symbol), 12)
 	}
 	runs := []excelize.RichTextRun{{Text: title, Font: &excelize.Font{Family: font, Size: 9, Bold: true, Color: ink}}}
 	if off != "" {

@@ -196,8 +196,8 @@ func (p *page) reviewedPoint(r bench.Reading, x ReviewedPoint) {
 	finer.decimals = min(6, finer.decimals+1) // a mean is known better than a reading
 	slope := scaleOf(r.Unit, largestOf(x.Slope), powerBelow(largestOf(x.Slope)/100))
 	format := `+` + slope.format() + `;-` + slope.format() + `;` + slope.format()
-	if slope.symbol != "" {
-		format = strings.ReplaceAll(format, "_)", ` "`+slope.symbol+`"_)`)
+	if symbol := cut(strings.ReplaceAll(clean(slope.symbol), `"`, ""), 12); symbol != "" {
+		format = strings.ReplaceAll(format, "_)", ` "`+symbol+`"_)`)
 	}
 	n := max(lines(clean(r.Point), p.widths[0], 10, true), lines(text, p.widths[8]-indented, 10, true))
 	p.put(lineHeight(10, n)+1, p.text(r.Point, name), p.number(float64(x.Units), "0_)", l), p.text(row.symbol, indentedIf(true, l)),

@@ -62,7 +62,7 @@ func (x *explainer) gather(r *Review, all [][]float64) *gathered {
 	}
 	g := &gathered{count: make([]int, len(x.sheet)), mean: make([]float64, len(x.sheet))}
 	most := 2*accused > len(all)
-	if most {
+	if most && len(all) >= enoughUnits {
 		r.Notes = append(r.Notes, fmt.Sprintf("%d of %d units are accused: look first for what they have in common, such as a wrong reel; they are counted in the batch's averages", accused, len(all)))
 	}
 	for i, u := range r.Units {

@@ -24,6 +24,9 @@ func (p *program) showReview(r *reviewed) {
 	p.showBatch(r)
 	p.paragraph("not read", strings.Join(unreadLines(r.review), "\n"))
 	p.showTyped(r.review.Workbook)
+	if len(r.review.Files) > 0 {
+		p.line("\nwrote %s", strings.Join(r.review.Files, ", "))
+	}
 }
 
 // tallied counts the verdicts.

@@ -43,6 +43,7 @@ func VerdictText(u ReviewUnit) string {
 type Odd struct {
 	Point, Reading, Symbol string
 	Shows, Proves          string // the windows; Proves is "" without a target
+	Beyond                 string // "above"
 	Side                   string // "above what a good unit shows"
 	Predicted              string // what the first suspect would read; "" without one
 	Outside                bool   // of what a good unit shows
@@ -50,11 +51,11 @@ type Odd struct {
 
 // Text is all of it in one line.
 func (o Odd) Text() string {
-	within := o.Shows
-	if !o.Outside {
-		within = o.Proves
+	text := fmt.Sprintf("%s %s (%s", o.Point, strings.TrimSpace(o.Reading+" "+o.Symbol), o.Beyond)
+	if o.Outside {
+		return text + " " + o.Shows + ")"
 	}
-	return fmt.Sprintf("%s %s, %s (%s)", o.Point, strings.TrimSpace(o.Reading+" "+o.Symbol), o.Side, strings.TrimSpace(within+" "+o.Symbol))
+	return text + " " + o.Proves + ", which proves the target)"
 }
 
 // Odds are a unit's readings outside a window, in bench order, then its trims.
@@ -72,9 +73,11 @@ func Odds(s bench.Sheet, u ReviewUnit) []Odd {
 		if u.Accused && len(u.Suspects) > 0 && u.Suspects[0].Class != explain.Other && finite(p.Predicted) {
 			o.Predicted = d.Text(p.Predicted)
 		}
-		o.Side = side(p.Reading, p.Expected) + " what a good unit shows"
+		o.Beyond = side(p.Reading, p.Expected)
+		o.Side = o.Beyond + " what a good unit shows"
 		if p.Inside {
-			o.Side = side(p.Reading, *p.Accept) + " what proves the target"
+			o.Beyond = side(p.Reading, *p.Accept)
+			o.Side = o.Beyond + " what proves the target"
 		}
 		list = append(list, o)
 	}
@@ -82,7 +85,7 @@ func Odds(s bench.Sheet, u ReviewUnit) []Odd {
 		if !t.Inside {
 			d := workbook.TurnDigits(s.Turns[i])
 			list = append(list, Odd{Point: "turn " + t.Turn, Reading: d.Text(t.Reading), Symbol: d.Symbol(), Shows: d.Between(t.Within),
-				Side: side(t.Reading, t.Within) + " where the trim belongs", Outside: true})
+				Beyond: side(t.Reading, t.Within), Side: side(t.Reading, t.Within) + " where the trim belongs", Outside: true})
 		}
 	}
 	return list

@@ -125,7 +125,7 @@ func (r *Review) note() {
 			most = name
 		}
 	}
-	if 2*accused > len(r.Units) && len(r.Units) > 1 {
+	if 2*accused > len(r.Units) && len(r.Units) >= enoughUnits {
 		r.Notes = append(r.Notes, fmt.Sprintf("%d of %d units are accused, so their readings count in the batch's averages; look first for what they share, such as a wrong reel: the first suspect in %d of them is %s",
 			accused, len(r.Units), count[most], most))
 	}
@@ -133,7 +133,7 @@ func (r *Review) note() {
 
 // alone explains each unit by itself; it also returns the readings.
 func (x *explainer) alone(ctx context.Context, f bench.Filled) (*Review, [][]float64, error) {
-	r := &Review{Units: []Unit{}, Notes: []string{}}
+	r := &Review{Units: []Unit{}, Notes: []string{}, Good: x.good()}
 	r.Batch.Points, r.Batch.Lots, r.Batch.Unclear = []BatchPoint{}, []Lot{}, []Unclear{}
 	var all [][]float64
 	for _, u := range f.Units {

@@ -12,6 +12,7 @@ import (
 	"batchwright/export/plan"
 	"batchwright/export/workbook"
 	"batchwright/tolerance/bench"
+	"batchwright/tolerance/bench/explain"
 	"batchwright/tolerance/pick"
 )
 
@@ -52,8 +53,11 @@ read to the end.
 type reviewed struct {
 	work   *plan.Work
 	filled bench.Filled
+	turned bench.Filled // where trims were left
 	review plan.Review
-	file   string // the workbook, or the table of readings
+
+	explained *explain.Review // nil: no reading was read
+	file      string          // the workbook, or the table of readings
 }
 
 func (p *program) review(c *cli.Context) error {
@@ -141,7 +145,10 @@ func (p *program) reviewWorkbook(ctx context.Context, src *source, o pick.Option
 	if err != nil {
 		return nil, &fault{exitInput, fmt.Errorf("%s: %w", file, err)}
 	}
-	r := &reviewed{work: work, filled: back.Filled, review: plan.NewReview(*work, back.Filled, back.Turned), file: file}
+	r, err := p.explained(ctx, work, back.Filled, back.Turned, file)
+	if err != nil {
+		return nil, err
+	}
 	r.review.WithWorkbook(returned.Origin, back)
 	return r, nil
 }
@@ -193,21 +200,38 @@ func (p *program) reviewReadings(ctx context.Context, src *source, o pick.Option
 	if len(complaints) > 0 {
 		return nil, complaints
 	}
-	return &reviewed{work: work, filled: filled, review: plan.NewReview(*work, filled, bench.Filled{}), file: file}, nil
+	return p.explained(ctx, work, filled, bench.Filled{}, file)
+}
+
+// explained judges what was read and looks for what explains it.
+func (p *program) explained(ctx context.Context, work *plan.Work, filled, turned bench.Filled, file string) (*reviewed, error) {
+	r := &reviewed{work: work, filled: filled, turned: turned, file: file}
+	if len(filled.Units) > 0 {
+		g := p.newProgress()
+		defer g.stop()
+		g.start("explaining")
+		var err error
+		r.explained, err = explain.Explain(ctx, work.Model, workbook.ShownSheet(work.Sheet), filled, explain.Options{Seed: work.Seed, Progress: g.at})
+		if err != nil {
+			return nil, err
+		}
+	}
+	r.review = plan.NewReview(*work, filled, turned, r.explained)
+	return r, nil
 }
 
 // verdict is nil where every unit that was read is as it should be.
 func (r *reviewed) verdict() error {
 	var wrong []int
 	for _, u := range r.review.Units {
-		if u.Verdict != plan.Inside {
+		if !u.Good() {
 			wrong = append(wrong, u.Unit)
 		}
 	}
 	if len(wrong) == 0 {
 		return nil
 	}
-	return missed("%d of %s read not inside: %s", len(wrong), count(len(r.review.Units), "unit"), unitRuns(wrong))
+	return missed("%d of %s read not as they should be: %s", len(wrong), count(len(r.review.Units), "unit"), unitRuns(wrong))
 }
 
 // nothingRead says so, with what was typed and could not be read.

@@ -41,6 +41,21 @@ func (r *Returned) fields() (fields, bool) {
 	return f, ok && strings.EqualFold(f.readings.sheet, points.sheet)
 }
 
+// hold says whether one of the fresh grid's points stands where the points of
+// this one are to be.
+func (f fields) hold(fresh fields) bool {
+	points := map[string]bool{}
+	for _, row := range fresh.freshRows() {
+		points[fresh.sheet.at(row, fresh.points).key()] = true
+	}
+	for row := 1; row <= f.sheet.rows; row++ {
+		if points[f.sheet.at(row, f.points).key()] {
+			return true
+		}
+	}
+	return len(points) == 0
+}
+
 // moved is where the fields of a fresh sheet went, for a workbook that has lost
 // the names.
 func (f fields) moved(a *alignment) (fields, bool) {

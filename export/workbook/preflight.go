@@ -76,8 +76,8 @@ func (f *flight) part(part *zip.File) error {
 		return errors.New("it is packed in a way that cannot be read")
 	}
 	defer in.Close()
-	r := &budget{in: in, left: &f.left}
-	if !isXML(part.Name) {
+	r := &budget{in: in, left: &f.left, xml: isXML(part.Name)}
+	if !r.xml {
 		_, err = io.Copy(io.Discard, r)
 	} else if err = f.walk(r); err == nil || looseXML(part.Name) && !errors.Is(err, errTooMuch) && !bounded(err) {
 		_, err = io.Copy(io.Discard, r)
@@ -131,12 +131,13 @@ func bounded(err error) bool {
 
 func beyond(format string, args ...any) error { return bound{fmt.Sprintf(format, args...)} }
 
-// budget reads no more than is left over all parts, and no stretch without a <
-// that is longer than any tag or text of ours: the parser holds such a stretch,
-// and many times more for its attributes.
+// budget reads no more than is left over all parts; of XML no stretch without a
+// < that is longer than any tag or text of ours: the parser holds such a
+// stretch, and many times more for its attributes.
 type budget struct {
 	in      io.Reader
 	left    *int64
+	xml     bool
 	stretch int
 }
 
@@ -150,7 +151,7 @@ func (b *budget) Read(p []byte) (int, error) {
 			b.stretch = 0
 		}
 	}
-	if b.stretch > longestTag {
+	if b.xml && b.stretch > longestTag {
 		return 0, beyond("a stretch of %d KiB that is neither cell nor row", b.stretch>>10)
 	}
 	return n, err

@@ -144,12 +144,13 @@ func corpus(t testing.TB) []damaged {
 		{"all but the end", good[:len(good)-30], "truncated"},
 		{"a byte changed", flipped, "the part"},
 		{"too large", append(bytes.Clone(good), make([]byte, 17<<20)...), "MiB; a filled workbook has at most 16"},
-		{"a part twice", twice(t, good), "is there twice"},
+		{"a part twice", zipOf(t, "[Content_Types].xml", "xl/workbook.xml", "xl/workbook.xml"), "is there twice"},
 		{"no list of parts", without(t, good, "[Content_Types].xml"), "lost parts"},
 		{"no workbook part", without(t, good, "xl/workbook.xml"), "lost parts"},
 		{"no test sheet", without(t, good, testPart), "is listed and not there"},
 		{"no relations", without(t, good, "xl/_rels/workbook.xml.rels"), "is listed and not there"},
 		{"a gigabyte of spaces", spacesBomb(t, good, 1<<30), "stretch of"},
+		{"a picture of a hundred megabytes", withPart(t, good, "xl/media/a.png", make([]byte, 100<<20)), "unpacks to more"},
 		{"a hundred megabytes of rows", sheet(rows(1, "<row/>") + strings.Repeat("<x> </x>", 100<<20/8)), "unpacks to more"},
 		{"cells in the last column", sheet(rows(2000, `<row r="#"><c r="XFD#"><v>1</v></c></row>`)), "column 16384; a plan has at most 500"},
 		{"many cells", sheet(rows(1100, `<row r="#"><c r="SF#"><v>1</v></c></row>`)), "more than 500000 cells"},
@@ -177,10 +178,31 @@ func corpus(t testing.TB) []damaged {
 	}
 }
 
-func twice(t testing.TB, file []byte) []byte {
-	names := []string{"[Content_Types].xml", "xl/workbook.xml", "xl/workbook.xml"}
-	_ = file
-	return zipOf(t, names...)
+// withPart adds a part.
+func withPart(t testing.TB, file []byte, name string, text []byte) []byte {
+	t.Helper()
+	in, err := zip.NewReader(bytes.NewReader(file), int64(len(file)))
+	if err != nil {
+		t.Fatal(err)
+	}
+	var b bytes.Buffer
+	out := zip.NewWriter(&b)
+	for _, part := range in.File {
+		if err := out.Copy(part); err != nil {
+			t.Fatal(err)
+		}
+	}
+	w, err := out.Create(name)
+	if err == nil {
+		_, err = w.Write(text)
+	}
+	if err == nil {
+		err = out.Close()
+	}
+	if err != nil {
+		t.Fatal(err)
+	}
+	return b.Bytes()
 }
 
 // spacesBomb puts n spaces into the test sheet, a kilobyte or so of archive a

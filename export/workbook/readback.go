@@ -119,6 +119,9 @@ func newComparison(p Plan, fresh, back *Returned) (*comparison, error) {
 		panic("workbook: our own names are missing")
 	}
 	there, named := back.fields()
+	if named && !there.hold(c.grid) { // names that point somewhere else
+		there, named = fields{}, false
+	}
 	for f, b := range pairSheets(fresh, back, c.grid.sheet, there.sheet) {
 		c.pairs[f.name] = align(f, b)
 	}
@@ -139,8 +142,8 @@ func newComparison(p Plan, fresh, back *Returned) (*comparison, error) {
 }
 
 // pairSheets finds for every fresh sheet the one that it became: the test sheet
-// by its names, others by their own name, those that were renamed by what
-// stands in them.
+// by its names, others by their own name if what stands in them agrees, those
+// that were renamed by what stands in them.
 func pairSheets(fresh, back *Returned, test, there *sheetCells) map[*sheetCells]*sheetCells {
 	pairs := map[*sheetCells]*sheetCells{}
 	taken := map[*sheetCells]bool{}
@@ -151,27 +154,39 @@ func pairSheets(fresh, back *Returned, test, there *sheetCells) map[*sheetCells]
 	}
 	pair(test, there)
 	for _, f := range fresh.sheets {
-		pair(f, back.sheet(f.name))
+		if b := back.sheet(f.name); b != nil && alike(f, b) > 0.5 {
+			pair(f, b)
+		}
 	}
 	for _, f := range fresh.sheets {
 		var most *sheetCells
-		score := 0
+		best := 0.25
 		for _, b := range back.sheets {
-			if n := alike(f, b); !taken[b] && pairs[f] == nil && n > score && 2*n >= len(f.cells)/2 {
-				most, score = b, n
+			if x := alike(f, b); x > best && !taken[b] {
+				most, best = b, x
 			}
 		}
 		pair(f, most)
 	}
+	for _, f := range fresh.sheets {
+		pair(f, back.sheet(f.name))
+	}
 	return pairs
 }
 
-// alike counts the texts that two sheets share.
-func alike(a, b *sheetCells) int {
-	all := func(s *sheetCells) map[string]int {
-		return s.lines(0, func(place) int { return 0 }, func(_ place, c oneCell) string { return c.key() })[0]
+// alike is the share of texts that two sheets have in common (Dice, 1945).
+// Figures do not count: readings are figures.
+func alike(a, b *sheetCells) float64 {
+	texts := func(s *sheetCells) map[string]int {
+		return s.lines(0, func(place) int { return 0 }, func(_ place, c oneCell) string {
+			if c.number() {
+				return ""
+			}
+			return c.key()
+		})[0]
 	}
-	return shared(all(a), all(b))
+	x, y := texts(a), texts(b)
+	return 2 * float64(shared(x, y)) / float64(total(x)+total(y)) // of none, NaN, which is alike to nothing
 }
 
 // note keeps a finding.

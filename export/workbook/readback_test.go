@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"bytes"
+	"errors"
 	"fmt"
 	"math"
 	"math/rand/v2"
@@ -298,6 +299,22 @@ func TestReadBackEdited(t *testing.T) {
 			do(f.DuplicateRowTo(testSheet, rail, rail+4))
 			do(f.RemoveRow(testSheet, rail))
 		}, "moved Test sheet!A15: the row was moved; it is read where it is: 1 · rails.voltage · output of U2, to ground · dc voltage, dmm · V · 12|\n"},
+		{"a row moved down, its step written over", func(f *excelize.File) {
+			set(t, f, testSheet, fmt.Sprint("A", rail), 77)
+			do(f.DuplicateRowTo(testSheet, rail, rail+4))
+			do(f.RemoveRow(testSheet, rail))
+		}, "moved Test sheet!A15: the row was moved; it is read where it is: 77 · rails.voltage · output of U2, to ground · dc voltage, dmm · V · 12|\nchanged Test sheet!A15: changed: 77|1\n"},
+		{"a row moved down, its name written over", func(f *excelize.File) {
+			set(t, f, testSheet, fmt.Sprint("B", rail), "rail")
+			do(f.DuplicateRowTo(testSheet, rail, rail+4))
+			do(f.RemoveRow(testSheet, rail))
+		}, "moved Test sheet!A15: the row was moved; it is read where it is: 1 · rail · output of U2, to ground · dc voltage, dmm · V · 12|\nchanged Test sheet!B15: changed: rail|rails.voltage\n"},
+		{"a formula", func(f *excelize.File) { do(f.SetCellFormula(testSheet, "M10", `"good"`)) }, "changed Test sheet!M10: changed: =\"good\"|"},
+		{"rows of another sheet", func(f *excelize.File) {
+			do(f.InsertRows(stagesSheet, 6, 1))
+			do(f.InsertRows(stagesSheet, 12, 2))
+		}, "moved Parts by stage!A6: a row was inserted; what follows is read where it is\n" +
+			"moved Parts by stage!A12: a row was inserted; what follows is read where it is\nmoved Parts by stage!A13: a row was inserted; what follows is read where it is\n"},
 		{"a row twice", func(f *excelize.File) { do(f.DuplicateRowTo(testSheet, rail, rail+1)) },
 			"moved Test sheet!A13: a row was inserted; what follows is read where it is: 1 · rails.voltage · output of U2, to ground · dc voltage, dmm · V · 12|\n" +
 				"unread Test sheet!L13 (rails.voltage, unit 1): a second row of this point; the other one is read: 12.02|\n"},
@@ -331,6 +348,100 @@ func TestReadBackEdited(t *testing.T) {
 				t.Errorf("read %v and %v, want 12.02 and -0.00325", a, b)
 			}
 		})
+	}
+}
+
+// TestReadBackRenamed has two sheets bear each other's names: the grid goes by
+// the names of its parts.
+func TestReadBackRenamed(t *testing.T) {
+	p := sample(2)
+	rail, _ := rowOfPoint(t, p, "rails.voltage")
+	back := readBack(t, edited(t, p, func(f *excelize.File) {
+		set(t, f, testSheet, cellOf(2, rail), 12.02)
+		for _, n := range [][2]string{{testSheet, "x"}, {trimsSheet, testSheet}, {"x", trimsSheet}} {
+			if err := f.SetSheetName(n[0], n[1]); err != nil {
+				t.Fatal(err)
+			}
+		}
+	}), p)
+	got := findingLines(back.Findings)
+	if v := of(back.Filled, "rails.voltage", 2); v != 12.02 || !strings.Contains(got, "moved Trims!A1: the sheet was renamed: Trims|Test sheet\n") ||
+		!strings.Contains(got, "moved Test sheet!A1: the sheet was renamed: Test sheet|Trims\n") {
+		t.Errorf("read %v\n%s", v, got)
+	}
+}
+
+// TestReadBackCopied has a copy of the test sheet under its name: the one that
+// the names point to is read.
+func TestReadBackCopied(t *testing.T) {
+	p := sample(2)
+	rail, _ := rowOfPoint(t, p, "rails.voltage")
+	back := readBack(t, edited(t, p, func(f *excelize.File) {
+		if err := f.SetSheetName(testSheet, "Bench 4"); err != nil {
+			t.Fatal(err)
+		}
+		to, err := f.NewSheet(testSheet)
+		if err != nil {
+			t.Fatal(err)
+		}
+		from, err := f.GetSheetIndex("Bench 4")
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := f.CopySheet(from, to); err != nil {
+			t.Fatal(err)
+		}
+		for _, n := range f.GetDefinedName() { // a spreadsheet program does this by itself
+			if strings.HasPrefix(n.Name, "plan_") && strings.Contains(n.RefersTo, testSheet) {
+				name := excelize.DefinedName{Name: n.Name, RefersTo: strings.ReplaceAll(n.RefersTo, testSheet, "Bench 4")}
+				if err := errors.Join(f.DeleteDefinedName(&excelize.DefinedName{Name: n.Name}), f.SetDefinedName(&name)); err != nil {
+					t.Fatal(err)
+				}
+			}
+		}
+		set(t, f, "Bench 4", cellOf(2, rail), 12.02)
+		set(t, f, testSheet, cellOf(2, rail), 11.9)
+	}), p)
+	if v := of(back.Filled, "rails.voltage", 2); v != 12.02 {
+		t.Errorf("read %v, want 12.02\n%s", v, findingLines(back.Findings))
+	}
+	if got := findingLines(back.Findings); !strings.Contains(got, "added Test sheet!A1: a sheet that the plan does not have") {
+		t.Error(got)
+	}
+}
+
+// BenchmarkReadBack reads a full sheet of 200 units.
+func BenchmarkReadBack(b *testing.B) {
+	p := sample(200)
+	at := places(p)
+	file := edited(b, p, func(f *excelize.File) {
+		for i := range at {
+			for u := 1; u <= p.Units; u++ {
+				set(b, f, testSheet, cellOf(u, at[i]), 1.25)
+			}
+		}
+	})
+	b.ReportAllocs()
+	for b.Loop() {
+		if len(readBack(b, file, p).Units) != p.Units {
+			b.Fatal("units are missing")
+		}
+	}
+}
+
+// TestReadBackElsewhere reads a workbook back from another folder, and one that
+// has a sheet of comparisons: neither is an edit.
+func TestReadBackElsewhere(t *testing.T) {
+	p := sample(2)
+	written := edited(t, p, func(f *excelize.File) {})
+	p.File = "../lantern.yaml"
+	if got := findingLines(readBack(t, written, p).Findings); got != "" {
+		t.Error(got)
+	}
+	compared := p
+	compared.Compare = sampleCompare(5)
+	if got := findingLines(readBack(t, edited(t, compared, func(f *excelize.File) {}), p).Findings); got != "" {
+		t.Error(got)
 	}
 }
 

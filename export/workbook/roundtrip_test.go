@@ -100,9 +100,11 @@ func TestOfficeRoundTrip(t *testing.T) {
 		`s.Rows.insertByIndex(2, 1)`,
 		`s.Columns.insertByIndex(14, 1)`,
 		`s.Name = "Bench 4"`,
+		`d.Sheets.getByName("`+trimsSheet+`").Name = "`+testSheet+`"`,
 	)
 	back := readBack(t, file, p)
-	const want = `moved Bench 4!A1: the sheet was renamed: Bench 4|Test sheet
+	const want = `moved Test sheet!A1: the sheet was renamed: Test sheet|Trims
+moved Bench 4!A1: the sheet was renamed: Bench 4|Test sheet
 moved Bench 4!O1: a column was inserted; what follows is read where it is
 moved Bench 4!A4: a row was inserted; what follows is read where it is
 changed Bench 4!H13: changed: 13|12.49

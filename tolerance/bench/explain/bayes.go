@@ -90,12 +90,15 @@ func (d *density) logarithm(y, z []float64) float64 {
 	return d.log - float64(freedom+len(y))/2*math.Log1p(form/freedom)
 }
 
+// absurd is where readings in scale are cut off, so that their squares are finite.
+const absurd = 1e100
+
 // logarithms are the logarithms of the likelihoods of readings, of which those
 // at the scorer's points count, under each picture.
 func (s *scorer) logarithms(readings []float64) []float64 {
 	y, z := make([]float64, len(s.read)), make([]float64, len(s.read))
 	for a, i := range s.read {
-		y[a] = readings[i]
+		y[a] = math.Max(-absurd, math.Min(absurd, readings[i]))
 	}
 	list := make([]float64, len(s.parts))
 	for i, parts := range s.parts {

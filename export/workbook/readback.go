@@ -68,11 +68,16 @@ func (r *Returned) Read(p Plan) (back *Back, err error) {
 		return nil, err
 	}
 	defer fresh.Close()
+	return r.against(p, fresh)
+}
+
+// against reads the workbook beside the one that the plan is written as.
+func (r *Returned) against(p Plan, fresh *Returned) (*Back, error) {
 	c, err := newComparison(p, fresh, r)
 	if err != nil {
 		return nil, err
 	}
-	back = &Back{}
+	back := &Back{}
 	if len(r.Origin.found) > 0 {
 		back.Lost = r.Origin.missing
 	}

@@ -93,6 +93,7 @@ func short(s string) string {
 
 // cellName names a cell as formulas do.
 func cellName(sheet, cell string) string {
+	sheet = strings.Join(strings.Fields(harmless(sheet)), " ")
 	if strings.ContainsAny(sheet, " '!-") {
 		return "'" + strings.ReplaceAll(sheet, "'", "''") + "'!" + cell
 	}

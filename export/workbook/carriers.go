@@ -16,7 +16,7 @@ func (b *book) carriers() {
 	b.keep(b.file.SetDefinedName(&excelize.DefinedName{Name: "plan_digest", RefersTo: `"` + strings.ReplaceAll(digest, `"`, `""`) + `"`}))
 	for i, pair := range [][2]string{
 		{"digest", digest}, {"version", clean(b.plan.Version)}, {"seed", fmt.Sprint(b.plan.Seed)}, {"units", fmt.Sprint(b.plan.Units)},
-		{"simulate", fmt.Sprint(b.plan.Simulate)}, {"file", clean(b.plan.File)},
+		{"simulate", fmt.Sprint(b.plan.Simulate)}, {"file", clean(b.plan.File)}, {"sheets", strings.Join(b.plan.optional(), ", ")},
 	} {
 		b.keep(b.file.SetCellStr(carrierSheet, at(1, i+1), pair[0]))
 		b.keep(b.file.SetCellStr(carrierSheet, at(2, i+1), pair[1]))

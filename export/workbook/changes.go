@@ -36,7 +36,7 @@ func (c *comparison) sheets() {
 		paired[a.back] = true
 	}
 	for _, b := range c.back.sheets {
-		if !paired[b] && b.name != carrierSheet && b.name != compareSheet {
+		if !paired[b] && b.name != carrierSheet && !slices.Contains(c.back.Origin.sheets, b.name) {
 			c.note(Finding{Kind: Added, Sheet: b.name, Cell: "A1", What: "a sheet that the plan does not have; it was not looked at"})
 		}
 	}
@@ -274,12 +274,8 @@ func open(s *sheetCells, p place) bool {
 	return style != nil && style.Protection != nil && !style.Protection.Locked
 }
 
-// stray reports what stands where nothing is to be typed. The way to the sheet
-// of comparisons is there only if there is one, which this program does not know.
+// stray reports what stands where nothing is to be typed.
 func (c *comparison) stray(a *alignment, p place, got oneCell) {
-	if a.fresh.name == summarySheet && (got.text == compareSheet || got.text == compareContents) {
-		return
-	}
 	c.note(Finding{Kind: Added, Sheet: a.back.name, Cell: p.String(), What: "nothing is to be typed here; it was not read", Found: got.shown()})
 }
 

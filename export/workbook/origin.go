@@ -17,6 +17,7 @@ type Origin struct {
 	Simulate string `json:"simulate"`
 	File     string `json:"file"`
 
+	sheets  []string // that the plan had only because it was asked for them
 	found   []string // the digests of the carriers that are there
 	missing []string // the carriers that are not
 }
@@ -41,6 +42,7 @@ func (r *Returned) origin() Origin {
 	}
 	take("the hidden sheet "+carrierSheet, facts["digest"])
 	o.Version, o.Seed, o.Units, o.Simulate, o.File = facts["version"], facts["seed"], facts["units"], facts["simulate"], facts["file"]
+	o.sheets = strings.Split(facts["sheets"], ", ")
 	slices.Sort(o.found)
 	if o.found = slices.Compact(o.found); len(o.found) == 1 {
 		o.Digest = o.found[0]

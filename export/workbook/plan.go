@@ -8,6 +8,7 @@ package workbook
 import (
 	"errors"
 	"fmt"
+	"slices"
 
 	"batchwright/bom/order"
 	"batchwright/tolerance/bench"
@@ -52,9 +53,11 @@ type Plan struct {
 	Drifts     []Drift
 	Compare    *Compare // nil: no such sheet
 	Trade      *Trade   // nil: no such sheet
-	Basis      []Basis
-	Cautions   []string
-	Cards      bool // a page for every unit
+
+	others   []string // sheets that the contents name and that are not written
+	Basis    []Basis
+	Cautions []string
+	Cards    bool // a page for every unit
 
 	// Advice is what to do when a trim does not reach, by bench.Turn.Turn. A
 	// general sentence stands where there is none.
@@ -97,6 +100,23 @@ type DriftRow struct {
 
 // Basis is one thing the figures rest on.
 type Basis struct{ Heading, Text, Source string }
+
+// optional are the sheets that a plan has only if it was asked for them.
+func (p Plan) optional() []string {
+	var list []string
+	for _, name := range []string{cardsSheet, compareSheet, tradeSheet} {
+		if p.has(name) {
+			list = append(list, name)
+		}
+	}
+	return list
+}
+
+// has says whether the contents name an optional sheet.
+func (p Plan) has(sheet string) bool {
+	return sheet == cardsSheet && p.Cards || sheet == compareSheet && p.Compare != nil || sheet == tradeSheet && p.Trade != nil ||
+		slices.Contains(p.others, sheet)
+}
 
 // valid reports what no workbook can be made of.
 func (p Plan) valid() error {

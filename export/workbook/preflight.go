@@ -18,11 +18,11 @@ const (
 	LargestFile  = 16 << 20
 	largestWhole = 64 << 20 // unpacked
 	mostParts    = 1000
-	mostSheetRow = 10_000
+	mostSheetRow = 40_000 // cards of 200 units
 	mostSheetCol = 500
 	mostCells    = 500_000   // rows times the last column of each, over all sheets
 	mostElements = 2_000_000 // of XML
-	mostMerges   = 3000
+	mostMerges   = 8000
 	mostNames    = 2000
 	deepest      = 100     // XML elements in each other
 	longestTag   = 1 << 20 // bytes between two < of an XML part

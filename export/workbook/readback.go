@@ -68,11 +68,16 @@ func (r *Returned) Read(p Plan) (back *Back, err error) {
 		return nil, err
 	}
 	defer fresh.Close()
+	return r.against(p, fresh)
+}
+
+// against reads the workbook beside the one that the plan is written as.
+func (r *Returned) against(p Plan, fresh *Returned) (*Back, error) {
 	c, err := newComparison(p, fresh, r)
 	if err != nil {
 		return nil, err
 	}
-	back = &Back{}
+	back := &Back{}
 	if len(r.Origin.found) > 0 {
 		back.Lost = r.Origin.missing
 	}
@@ -85,7 +90,14 @@ func (r *Returned) Read(p Plan) (back *Back, err error) {
 // rewritten is the workbook as it was when it was handed out. What only the
 // run knew that wrote it is taken from the workbook itself.
 func rewritten(p Plan, o Origin) (*Returned, error) {
-	p.Compare = nil // its sheet is not compared: what it compared is not known here
+	// What was compared and traded is not known here: those sheets are only named.
+	p.Compare, p.Trade, p.others = nil, nil, nil
+	for _, name := range []string{compareSheet, tradeSheet} {
+		if slices.Contains(o.sheets, name) {
+			p.others = append(p.others, name)
+		}
+	}
+	p.Cards = slices.Contains(o.sheets, cardsSheet)
 	if o.File != "" {
 		p.File = o.File
 	}

@@ -178,7 +178,10 @@ unread Test sheet!N22 (detector.level, unit 3): a formula; type the figure itsel
 func TestReadBackUntouched(t *testing.T) {
 	for _, units := range []int{1, 200} {
 		p := sample(units)
-		back := readBack(t, written(t, p), p)
+		p.Cards = true
+		file := written(t, p)
+		p.Cards = false // was asked for then, and is not now
+		back := readBack(t, file, p)
 		if len(back.Findings)+len(back.Typed)+len(back.Units)+len(back.Lost) != 0 {
 			t.Errorf("%d units: %s%v %v %v", units, findingLines(back.Findings), back.Typed, back.Units, back.Lost)
 		}
@@ -439,7 +442,7 @@ func TestReadBackElsewhere(t *testing.T) {
 		t.Error(got)
 	}
 	compared := p
-	compared.Compare = sampleCompare(5)
+	compared.Compare, compared.Trade = sampleCompare(5), sampleTrade()
 	if got := findingLines(readBack(t, edited(t, compared, func(f *excelize.File) {}), p).Findings); got != "" {
 		t.Error(got)
 	}

@@ -171,9 +171,6 @@ func (p *page) findings() {
 	}
 }
 
-// compareContents is what the contents say of the sheet of comparisons.
-const compareContents = "other parts in the same places"
-
 // contents leads to the other sheets, two to a row.
 func (p *page) contents() {
 	p.section("In this workbook")
@@ -183,10 +180,10 @@ func (p *page) contents() {
 		{trimsSheet, "adjustments in bench order"}, {basisSheet, "assumptions, sources, limits"},
 		{testSheet, "what every meter should show"},
 	}
-	if p.plan.Compare != nil {
-		list = append(list, [2]string{compareSheet, compareContents})
+	if p.plan.has(compareSheet) {
+		list = append(list, [2]string{compareSheet, "other parts in the same places"})
 	}
-	if p.plan.Trade != nil {
+	if p.plan.has(tradeSheet) {
 		list = append(list, [2]string{tradeSheet, "what steadier would cost"})
 	}
 	if len(p.plan.Samples) > 0 {

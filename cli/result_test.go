@@ -58,8 +58,10 @@ var compareKeys = strings.Fields(`
 
 var reviewKeys = strings.Fields(`
 	build plan unread_units.[] batch.points.[].point batch.points.[].mean batch.points.[].expected_mean batch.points.[].shift_score
-	units.[].unit units.[].verdict units.[].suspects
-	units.[].points.[].point units.[].points.[].reading units.[].points.[].inside units.[].points.[].accepted units.[].points.[].score
+	batch.points.[].units batch.points.[].spread_ratio batch.points.[].slope batch.points.[].remarks
+	batch.counted batch.lots batch.unclear batch.rest batch.why notes files
+	units.[].unit units.[].verdict units.[].suspects units.[].further units.[].healthy units.[].accused units.[].distance units.[].distance_limit
+	units.[].points.[].point units.[].points.[].reading units.[].points.[].inside units.[].points.[].accepted units.[].points.[].score units.[].points.[].predicted
 	units.[].trims.[].turn units.[].trims.[].reading units.[].trims.[].inside
 	workbook.digest workbook.seed workbook.simulate workbook.typed workbook.lost
 	workbook.findings.[].kind workbook.findings.[].sheet workbook.findings.[].cell workbook.findings.[].what

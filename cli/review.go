@@ -21,7 +21,7 @@ import (
 func (p *program) reviewCommand() *cli.Command {
 	return &cli.Command{
 		Name:      "review",
-		Usage:     "a filled test sheet read back: which units are as they should be, and what was changed in the sheet",
+		Usage:     "a filled test sheet read back: which units are as they should be, and what is probably wrong",
 		ArgsUsage: "BUILD [WORKBOOK]",
 		Description: `Reads the readings off a filled workbook, wherever its rows and columns were
 moved to, and judges every unit by them; verdicts in the file are not looked at.

@@ -231,7 +231,7 @@ func remarkText(p ReviewBatchPoint, unit string) string {
 			if p.ShiftScore < 0 {
 				side = "below"
 			}
-			words = append(words, fmt.Sprintf("all %s: the mean by %.1f standard deviations of means", side, math.Abs(float64(p.ShiftScore))))
+			words = append(words, fmt.Sprintf("the mean is %.1f standard deviations of such means %s", math.Abs(float64(p.ShiftScore)), side))
 		case "spread":
 			words = append(words, fmt.Sprintf("%.1f times as far apart as expected", float64(p.SpreadRatio)))
 		case "trend":

@@ -26,7 +26,7 @@ func reviewedSheet() bench.Sheet {
 	}
 }
 
-func TestReviewVerdicts(t *testing.T) {
+func TestReviewWindows(t *testing.T) {
 	none := math.NaN()
 	for _, c := range []struct {
 		name                 string

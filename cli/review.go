@@ -1,9 +1,11 @@
 package cli
 
 import (
+	"bytes"
 	"context"
 	"errors"
 	"fmt"
+	"path/filepath"
 	"strconv"
 	"strings"
 
@@ -12,6 +14,7 @@ import (
 	"batchwright/export/plan"
 	"batchwright/export/workbook"
 	"batchwright/tolerance/bench"
+	"batchwright/tolerance/bench/explain"
 	"batchwright/tolerance/pick"
 )
 
@@ -22,6 +25,10 @@ func (p *program) reviewCommand() *cli.Command {
 		ArgsUsage: "BUILD [WORKBOOK]",
 		Description: `Reads the readings off a filled workbook, wherever its rows and columns were
 moved to, and judges every unit by them; verdicts in the file are not looked at.
+Of every unit that is not as it should be it says what is probably wrong, which
+part or which reading, how probable that is, and what to read next; of the batch
+which points are off, which lots, and what the units not read yet should yield.
+
 A figure typed as text or with its unit is taken and named; what is no figure,
 what fits only in another unit and every cell that says something else than the
 plan is named by its cell.
@@ -33,14 +40,21 @@ what it was made with; --any-plan reads it all the same.
 Without WORKBOOK, --readings takes the readings as a table, each with its unit:
 a first line point,unit,reading, then lines such as mixer.collector,7,-0.12 V.
 
-Exit code 1 says that a unit that was read is not as it should be, or was not
-read to the end.
+--workbook writes all of it into a new workbook: the verdicts, the readings, the
+batch, and for every test point what good units were expected to read with the
+readings on it. A file that is there is never replaced.
+
+Exit code 1 says that a unit that was read is not as it should be: a reading
+outside, all of them unlikely together, a fault more probable than none, a target
+not proved, or not read to the end.
 
   batchwright review tone-box.yaml filled.xlsx
   batchwright review tone-box.yaml filled.xlsx --json
+  batchwright review tone-box.yaml filled.xlsx --workbook reviewed.xlsx
   batchwright review tone-box.yaml --readings readings.csv`,
 		Flags: []cli.Flag{
 			&cli.StringFlag{Name: "readings", Usage: "take the readings from the table in `FILE.csv`"},
+			&cli.StringFlag{Name: "workbook", Usage: "write what was found, with charts, into the new workbook `OUT.xlsx`"},
 			&cli.BoolFlag{Name: "any-plan", Usage: "read a workbook of another plan, too", DisableDefaultText: true},
 			searchFlag(), unitsFlag(), seedFlag(), simulateFlag(), jsonFlag(),
 		},
@@ -52,14 +66,22 @@ read to the end.
 type reviewed struct {
 	work   *plan.Work
 	filled bench.Filled
+	turned bench.Filled // where trims were left
 	review plan.Review
-	file   string // the workbook, or the table of readings
+
+	explained *explain.Review // nil: no reading was read
+	file      string          // the workbook, or the table of readings
 }
 
 func (p *program) review(c *cli.Context) error {
 	buildFile, sheetFile, err := reviewArguments(c)
 	if err != nil {
 		return err
+	}
+	if c.IsSet("workbook") {
+		if err := newWorkbook(c.String("workbook")); err != nil {
+			return err // before any work is done
+		}
 	}
 	o, s, err := readPickOptions(c, planAlternates)
 	if err != nil {
@@ -86,6 +108,12 @@ func (p *program) handBack(c *cli.Context, r *reviewed) error {
 	if len(r.review.Units) == 0 {
 		return r.nothingRead()
 	}
+	if path := c.String("workbook"); path != "" {
+		if err := r.write(path); err != nil {
+			return err
+		}
+		r.review.Files = append(r.review.Files, path)
+	}
 	if c.Bool("json") {
 		if err := p.json(r.review); err != nil {
 			return err
@@ -94,6 +122,31 @@ func (p *program) handBack(c *cli.Context, r *reviewed) error {
 		p.showReview(r)
 	}
 	return r.verdict()
+}
+
+// newWorkbook refuses the name of a workbook to be written that is none, or of
+// one that is there.
+func newWorkbook(path string) error {
+	if err := unused(path); err != nil {
+		return err
+	}
+	if !strings.EqualFold(filepath.Ext(path), ".xlsx") {
+		return usage("--workbook %s: expected the name of a new file that ends in .xlsx", path)
+	}
+	return nil
+}
+
+// write puts the review into a new workbook.
+func (r *reviewed) write(path string) error {
+	var good map[string][]float64
+	if r.explained != nil {
+		good = r.explained.Good
+	}
+	var whole bytes.Buffer
+	if err := workbook.WriteReviewed(&whole, plan.ComposeReviewed(*r.work, r.review, r.filled, r.turned, good, r.file)); err != nil {
+		return missed("%v", err)
+	}
+	return writeNew(path, whole.Bytes())
 }
 
 // reviewArguments are the build file and the workbook, "" where the readings
@@ -141,7 +194,10 @@ func (p *program) reviewWorkbook(ctx context.Context, src *source, o pick.Option
 	if err != nil {
 		return nil, &fault{exitInput, fmt.Errorf("%s: %w", file, err)}
 	}
-	r := &reviewed{work: work, filled: back.Filled, review: plan.NewReview(*work, back.Filled, back.Turned), file: file}
+	r, err := p.explained(ctx, work, back.Filled, back.Turned, file)
+	if err != nil {
+		return nil, err
+	}
 	r.review.WithWorkbook(returned.Origin, back)
 	return r, nil
 }
@@ -193,21 +249,38 @@ func (p *program) reviewReadings(ctx context.Context, src *source, o pick.Option
 	if len(complaints) > 0 {
 		return nil, complaints
 	}
-	return &reviewed{work: work, filled: filled, review: plan.NewReview(*work, filled, bench.Filled{}), file: file}, nil
+	return p.explained(ctx, work, filled, bench.Filled{}, file)
+}
+
+// explained judges what was read and looks for what explains it.
+func (p *program) explained(ctx context.Context, work *plan.Work, filled, turned bench.Filled, file string) (*reviewed, error) {
+	r := &reviewed{work: work, filled: filled, turned: turned, file: file}
+	if len(filled.Units) > 0 {
+		g := p.newProgress()
+		defer g.stop()
+		g.start("explaining")
+		var err error
+		r.explained, err = explain.Explain(ctx, work.Model, workbook.ShownSheet(work.Sheet), filled, explain.Options{Seed: work.Seed, Progress: g.at})
+		if err != nil {
+			return nil, err
+		}
+	}
+	r.review = plan.NewReview(*work, filled, turned, r.explained)
+	return r, nil
 }
 
 // verdict is nil where every unit that was read is as it should be.
 func (r *reviewed) verdict() error {
 	var wrong []int
 	for _, u := range r.review.Units {
-		if u.Verdict != plan.Inside {
+		if !u.Good() {
 			wrong = append(wrong, u.Unit)
 		}
 	}
 	if len(wrong) == 0 {
 		return nil
 	}
-	return missed("%d of %s read not inside: %s", len(wrong), count(len(r.review.Units), "unit"), unitRuns(wrong))
+	return missed("%d of %s read not as they should be: %s", len(wrong), count(len(r.review.Units), "unit"), unitRuns(wrong))
 }
 
 // nothingRead says so, with what was typed and could not be read.

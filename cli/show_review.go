@@ -7,26 +7,32 @@ import (
 
 	"batchwright/export/plan"
 	"batchwright/export/workbook"
-	"batchwright/tolerance/spread"
+	"batchwright/tolerance/bench/explain"
 )
 
 // mostFindings is how many findings are printed; --json has them all.
 const mostFindings = 60
 
 // showReview prints a review: first what is odd about the sheet, then the units
-// that are not as they should be, then what was not read.
+// that are not as they should be, then the batch, then what was not read.
 func (p *program) showReview(r *reviewed) {
 	p.line("%s: %s, %d read from %s: %s", r.review.Build, count(r.work.Build.Units, "unit"), len(r.review.Units), r.file, tallied(r.review.Units))
 	p.showFindingsByCell(r.review.Workbook)
-	p.section("not inside", []string{"unit", "point", "reading", "unit", "a good unit shows", "proves the target", "verdict"}, outsideRows(r.review))
+	for _, u := range r.review.Units {
+		p.showUnit(r, u)
+	}
+	p.showBatch(r)
 	p.paragraph("not read", strings.Join(unreadLines(r.review), "\n"))
 	p.showTyped(r.review.Workbook)
+	if len(r.review.Files) > 0 {
+		p.line("\nwrote %s", strings.Join(r.review.Files, ", "))
+	}
 }
 
 // tallied counts the verdicts.
 func tallied(units []plan.ReviewUnit) string {
 	var words []string
-	for _, verdict := range []string{plan.Inside, plan.Outside, plan.Misses, plan.Incomplete} {
+	for _, verdict := range []explain.Verdict{explain.Inside, explain.Outside, explain.Improbable, explain.Misses, explain.Incomplete} {
 		n := 0
 		for _, u := range units {
 			if u.Verdict == verdict {
@@ -34,20 +40,10 @@ func tallied(units []plan.ReviewUnit) string {
 			}
 		}
 		if n > 0 {
-			words = append(words, fmt.Sprintf("%d %s", n, unitVerdict(verdict)))
+			words = append(words, fmt.Sprintf("%d %s", n, plan.VerdictWords(verdict)))
 		}
 	}
 	return strings.Join(words, ", ")
-}
-
-func unitVerdict(verdict string) string {
-	switch verdict {
-	case plan.Misses:
-		return "not proved to meet a target"
-	case plan.Incomplete:
-		return "not read to the end"
-	}
-	return verdict
 }
 
 // showFindingsByCell prints what is odd about the sheet, by cell.
@@ -102,48 +98,6 @@ func cellName(sheet, cell string) string {
 		return "'" + strings.ReplaceAll(sheet, "'", "''") + "'!" + cell
 	}
 	return sheet + "!" + cell
-}
-
-// outsideRows are the readings that are outside a window, unit by unit.
-func outsideRows(r plan.Review) [][]string {
-	var rows [][]string
-	for _, u := range r.Units {
-		for _, p := range u.Points {
-			if p.Inside && p.Accepted {
-				continue
-			}
-			verdict := side(p.Reading, p.Expected) + " what a good unit shows"
-			if p.Inside {
-				verdict = side(p.Reading, *p.Accept) + " what proves the target"
-			}
-			rows = append(rows, reviewRow(u.Unit, p.Point, p.Unit, p.Reading, p.Expected, p.Accept, verdict))
-		}
-		for _, t := range u.Trims {
-			if !t.Inside {
-				rows = append(rows, reviewRow(u.Unit, "turn "+t.Turn, t.Unit, t.Reading, t.Within, nil, side(t.Reading, t.Within)+" where the trim belongs"))
-			}
-		}
-	}
-	return rows
-}
-
-func reviewRow(unit int, point, symbol string, v spread.Figure, expected spread.Limits, accept *spread.Limits, verdict string) []string {
-	// In the window's unit and digits, whatever the reading is.
-	shown := newRow(symbol, float64(expected.High-expected.Low)/10, float64(expected.Low), float64(expected.High))
-	row := []string{strconv.Itoa(unit), point, shown.text(v), shown.symbol, between(shown, expected), "", verdict}
-	if accept != nil {
-		row[5] = between(shown, *accept)
-	}
-	return row
-}
-
-func between(r row, l spread.Limits) string { return r.text(l.Low) + " to " + r.text(l.High) }
-
-func side(v spread.Figure, l spread.Limits) string {
-	if v < l.Low {
-		return "below"
-	}
-	return "above"
 }
 
 // unreadLines say what was not read: units of which nothing was, then points.

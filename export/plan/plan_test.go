@@ -161,6 +161,19 @@ func TestReferencesAreThoseOfTheParts(t *testing.T) {
 	}
 }
 
+// What the sheet found goes to the workbook and into the JSON result.
+func TestSheetIsHandedOn(t *testing.T) {
+	w := lampWork(t)
+	w.Cards = true
+	p := Compose(w)
+	if !p.Cards || len(p.Samples) != 1 || p.Samples[0].Target != "warm drift" || p.Samples[0].Needs != "35 °C, 12 K warmer than the bench" {
+		t.Errorf("cards %v, samples %+v", p.Cards, p.Samples)
+	}
+	if got := NewResult(w).Samples; len(got) != 1 || got[0].Every != 1 { // 4 units: 3 are tested
+		t.Errorf("got %+v", got)
+	}
+}
+
 // What changes the figures changes the digest; nothing else does.
 func TestDigest(t *testing.T) {
 	w := Work{Text: []byte(lamp), Seed: 1, Simulate: 100, Version: "1", Build: &build.Build{Units: 4}}

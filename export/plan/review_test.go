@@ -5,6 +5,7 @@ import (
 	"testing"
 
 	"batchwright/tolerance/bench"
+	"batchwright/tolerance/bench/explain"
 	"batchwright/tolerance/build"
 	"batchwright/tolerance/spread"
 )
@@ -31,22 +32,22 @@ func TestReviewVerdicts(t *testing.T) {
 		name                 string
 		rail, base, corner   float64
 		tuner                float64
-		verdict              string
+		verdict              explain.Verdict
 		railInside, railGood bool
 	}{
-		{"all inside", 12, 0.66, none, 0.5, Inside, true, true},
-		{"what has no limits is never outside", 12, 0.66, 1e9, none, Inside, true, true},
-		{"inside as the sheet shows it", 11.82, 0.6121, none, none, Inside, true, true},
-		{"inside the window, outside the digits", 12.195, 0.66, none, none, Misses, true, false},
-		{"outside the window, inside the digits", 12.1, 0.612, none, none, Inside, true, true},
-		{"on the expected limit", 11.51, 0.66, none, none, Misses, true, false},
-		{"below it", 11.509, 0.66, none, none, Outside, false, false},
-		{"above the target", 12.3, 0.66, none, none, Misses, true, false},
-		{"another point outside", 12, 0.8, none, none, Outside, true, true},
-		{"outside wins", 12.3, 0.8, none, none, Outside, true, false},
-		{"trim outside", 12, 0.66, none, -2.5, Outside, true, true},
-		{"half", 12, none, none, 0, Incomplete, true, true},
-		{"half and not proved", 12.3, none, none, 0, Misses, true, false},
+		{"all inside", 12, 0.66, none, 0.5, explain.Inside, true, true},
+		{"what has no limits is never outside", 12, 0.66, 1e9, none, explain.Inside, true, true},
+		{"inside as the sheet shows it", 11.82, 0.6121, none, none, explain.Inside, true, true},
+		{"inside the window, outside the digits", 12.195, 0.66, none, none, explain.Misses, true, false},
+		{"outside the window, inside the digits", 12.1, 0.612, none, none, explain.Inside, true, true},
+		{"on the expected limit", 11.51, 0.66, none, none, explain.Misses, true, false},
+		{"below it", 11.509, 0.66, none, none, explain.Outside, false, false},
+		{"above the target", 12.3, 0.66, none, none, explain.Misses, true, false},
+		{"another point outside", 12, 0.8, none, none, explain.Outside, true, true},
+		{"outside wins", 12.3, 0.8, none, none, explain.Outside, true, false},
+		{"trim outside", 12, 0.66, none, -2.5, explain.Outside, true, true},
+		{"half", 12, none, none, 0, explain.Incomplete, true, true},
+		{"half and not proved", 12.3, none, none, 0, explain.Misses, true, false},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			s := reviewedSheet()
@@ -54,7 +55,7 @@ func TestReviewVerdicts(t *testing.T) {
 			values := []spread.Figure{spread.Figure(c.rail), spread.Figure(c.base), spread.Figure(c.corner)}
 			r := NewReview(w, bench.Filled{
 				Points: []string{"rails.voltage", "mixer.base", "detector.corner"}, Units: []bench.FilledUnit{{Unit: 2, Values: values}},
-			}, bench.Filled{Points: []string{"a.tuner"}, Units: []bench.FilledUnit{{Unit: 2, Values: []spread.Figure{spread.Figure(c.tuner)}}}})
+			}, bench.Filled{Points: []string{"a.tuner"}, Units: []bench.FilledUnit{{Unit: 2, Values: []spread.Figure{spread.Figure(c.tuner)}}}}, nil)
 			if len(r.Units) != 1 || len(r.Unread) != 2 {
 				t.Fatalf("units %+v, unread %v", r.Units, r.Unread)
 			}
@@ -66,17 +67,12 @@ func TestReviewVerdicts(t *testing.T) {
 	}
 }
 
-// TestReviewFigures: 12.25 V is 0.25 V above the middle of 11.51 to 12.49, whose
-// half width is 0.49 V; a third of that is 0.1633 V. The mean of 12.25 and 11.75
-// is 12.
+// TestReviewFigures: the mean of 12.25 and 11.75 is 12.
 func TestReviewFigures(t *testing.T) {
 	w := Work{Build: &build.Build{Title: "b", Units: 2}, Sheet: reviewedSheet()}
 	r := NewReview(w, bench.Filled{Points: []string{"rails.voltage"}, Units: []bench.FilledUnit{
 		{Unit: 1, Values: []spread.Figure{12.25}}, {Unit: 2, Values: []spread.Figure{11.75}},
-	}}, bench.Filled{})
-	if got, want := float64(r.Units[0].Points[0].Score), 0.25/(0.49/3); !(math.Abs(got-want) < 1e-9) {
-		t.Errorf("score %v, want %v", got, want)
-	}
+	}}, bench.Filled{}, nil)
 	b := r.Batch.Points[0]
 	if b.Mean != 12 || b.Units != 2 || b.ExpectedMean != 12 || !math.IsNaN(float64(r.Batch.Points[1].Mean)) {
 		t.Errorf("batch %+v", r.Batch)

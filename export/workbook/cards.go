@@ -28,7 +28,7 @@ func cardWidths(percent uint) []float64 {
 	for _, w := range widths {
 		pixels += 7*w + 5
 	}
-	spare := math.Max(0, (cardWide*100/float64(percent)*0.995-pixels)/7)
+	spare := math.Max(0, (0.975*cardWide*100/float64(percent)-pixels)/7)
 	widths[1] += 0.1 * spare
 	widths[2] += 0.55 * spare
 	widths[3] += 0.15 * spare
@@ -119,7 +119,7 @@ func (p *page) cardHeads() {
 	p.put(14, cells...)
 	p.merge(6, 7)
 	p.merge(8, 9)
-	p.heads("lllilrrrrccc", "Step", "Test point", "Hold the probe at", "Read", "Unit", "at least", "at most", "at least", "at most", "Reading", "Setting, %", "Done")
+	p.heads("lliilrrrrccc", "Step", "Test point", "Hold the probe at", "Read", "Unit", "at least", "at most", "at least", "at most", "Reading", "Setting, %", "Done")
 }
 
 // cardBand begins a condition.
@@ -144,13 +144,13 @@ func (p *page) cardRow(r benchRow) {
 		step = fmt.Sprint(r.step)
 	}
 	cells := []excelize.Cell{
-		p.text(step, look{bottom: hairline, bold: true}), p.text(name, bolder(text)), p.text(place, text), p.text(r.read, indentedIf(true, text)), p.text(r.symbol, text),
+		p.text(step, look{bottom: hairline, bold: true}), p.text(name, bolder(text)), p.text(place, indentedIf(true, text)), p.text(r.read, indentedIf(true, text)), p.text(r.symbol, text),
 	}
 	for _, v := range []float64{r.low, r.high, r.acceptLow, r.acceptHigh} {
 		cells = append(cells, p.limit(v, r.format(), look{bottom: hairline}))
 	}
 	cells = append(cells, p.text("", box), p.text("", done), p.text("", done))
-	n := max(lines(clean(name), p.widths[1], 10, true), p.tallest(10, "", "", place), lines(clean(r.read), p.widths[3]-indented, 10, false))
+	n := max(lines(clean(name), p.widths[1], 10, true), lines(clean(place), p.widths[2]-indented, 10, false), lines(clean(r.read), p.widths[3]-indented, 10, false))
 	p.put(max(20, lineHeight(10, n)), cells...)
 }
 

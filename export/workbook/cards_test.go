@@ -9,6 +9,8 @@ import (
 	"strings"
 	"testing"
 
+	"github.com/xuri/excelize/v2"
+
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/spread"
 )
@@ -57,25 +59,24 @@ func cardTexts(t *testing.T, p Plan) []string {
 // caution on it; a sample's row on every fourth. A long bench list is printed
 // smaller.
 func TestCardsAreAPageEach(t *testing.T) {
-	for _, units := range []int{1, 24, 200} {
-		for _, paper := range []Paper{A4, Letter} {
-			for _, rows := range []int{0, 20} {
-				if rows > 0 && units != 24 || testing.Short() && (units != 24 || paper != A4 || rows > 0) {
-					continue
-				}
-				t.Run(fmt.Sprint(units, paper, rows), func(t *testing.T) {
-					p := long(sampled(units), rows)
-					p.Paper, p.Cards = paper, true
-					cards := cardTexts(t, p)
-					if len(cards) != units {
-						t.Fatalf("%d pages of cards, want %d", len(cards), units)
-					}
-					for i, text := range cards {
-						checkCard(t, p, i+1, text)
-					}
-				})
-			}
+	for _, tt := range []struct {
+		units, more int
+		paper       Paper
+	}{{1, 0, Letter}, {24, 20, A4}, {200, 0, A4}, {200, 0, Letter}} {
+		if testing.Short() && tt.units != 24 {
+			continue
 		}
+		t.Run(fmt.Sprint(tt), func(t *testing.T) {
+			p := long(sampled(tt.units), tt.more)
+			p.Paper, p.Cards = tt.paper, true
+			cards := cardTexts(t, p)
+			if len(cards) != tt.units {
+				t.Fatalf("%d pages of cards, want %d", len(cards), tt.units)
+			}
+			for i, text := range cards {
+				checkCard(t, p, i+1, text)
+			}
+		})
 	}
 }
 
@@ -158,6 +159,9 @@ func TestSheetsOnlyWhereAsked(t *testing.T) {
 	if list := f.GetSheetList(); slices.Contains(list, cardsSheet) || slices.Index(list, samplesSheet) != slices.Index(list, testSheet)+1 {
 		t.Errorf("sheets %v", list)
 	}
+	if link, target, err := f.GetCellHyperLink(summarySheet, linkTo(t, f, samplesSheet)); err != nil || !link || target != "'Sample tests'!A1" {
+		t.Errorf("the summary leads to %q, %v, %v", target, link, err)
+	}
 	if list := reopen(t, saved(t, sample(3))).GetSheetList(); slices.Contains(list, samplesSheet) {
 		t.Errorf("sheets %v", list)
 	}
@@ -232,4 +236,14 @@ func TestReadingDigits(t *testing.T) {
 			t.Errorf("U = %g, windows %v: %d decimals of %s, want %d of %s", tt.u, tt.windows, s.decimals, s.symbol, tt.decimals, tt.symbol)
 		}
 	}
+}
+
+// linkTo is the summary's cell with a sheet's name.
+func linkTo(t *testing.T, f *excelize.File, sheet string) string {
+	t.Helper()
+	found, err := f.SearchSheet(summarySheet, sheet)
+	if err != nil || len(found) != 1 {
+		t.Fatalf("%s stands in %v of the summary (%v)", sheet, found, err)
+	}
+	return found[0]
 }

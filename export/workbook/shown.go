@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"math"
+	"strings"
 
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/bench"
@@ -27,6 +28,38 @@ func ShownTurn(t bench.Turn) spread.Limits {
 	row := rowInUnit(Plan{}.turnRow(t), t.Unit)
 	return row.limits(row.low, row.high)
 }
+
+// ShownSheet is a sheet whose readings have the windows that it shows.
+func ShownSheet(s bench.Sheet) bench.Sheet {
+	readings := make([]bench.Reading, len(s.Readings))
+	for i, r := range s.Readings {
+		readings[i] = Shown(r)
+	}
+	s.Readings = readings
+	return s
+}
+
+// Digits writes figures of one line of the test sheet as it does: in the line's
+// unit, with the line's digits.
+type Digits struct{ scale }
+
+// DigitsOf are those of a reading.
+func DigitsOf(r bench.Reading) Digits { return Digits{readingRow(r).scale} }
+
+// TurnDigits are those of what a trim is set to.
+func TurnDigits(t bench.Turn) Digits { return Digits{Plan{}.turnRow(t).scale} }
+
+// Symbol is the unit; "" for a plain ratio.
+func (d Digits) Symbol() string { return d.symbol }
+
+// Text is a figure in SI without the unit; a dash where there is none.
+func (d Digits) Text(v spread.Figure) string { return d.text(float64(v)) }
+
+// Between is a window without the unit.
+func (d Digits) Between(l spread.Limits) string { return d.Text(l.Low) + " to " + d.Text(l.High) }
+
+// With is a figure in SI with the unit.
+func (d Digits) With(v spread.Figure) string { return strings.TrimSpace(d.Text(v) + " " + d.symbol) }
 
 func rowInUnit(b benchRow, symbol string) readRow {
 	r := readRow{benchRow: b, label: b.name}

@@ -186,6 +186,12 @@ func (p *page) contents() {
 	if p.plan.has(tradeSheet) {
 		list = append(list, [2]string{tradeSheet, "what steadier would cost"})
 	}
+	if len(p.plan.Samples) > 0 {
+		list = append(list, [2]string{samplesSheet, "targets at other conditions"})
+	}
+	if p.plan.Cards {
+		list = append(list, [2]string{cardsSheet, "a page for every unit"})
+	}
 	if len(list)%2 > 0 {
 		list = append(list, [2]string{})
 	}

@@ -172,8 +172,8 @@ func (r readRow) suspect(v float64) string {
 		return ""
 	}
 	for _, by := range []float64{1e3, 1e-3, 1e6, 1e-6} {
-		if !(v*by >= low && v*by <= high) {
-			continue
+		if !(v*by >= low && v*by <= high) || by < 1 && low < 0 && high > 0 {
+			continue // about zero, anything fits that is made small
 		}
 		way := "below"
 		if by < 1 {

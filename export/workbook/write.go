@@ -33,8 +33,17 @@ func Write(w io.Writer, p Plan) error {
 	if err := p.valid(); err != nil {
 		return err
 	}
-	b := newBook(p)
+	absent := map[string]bool{compareSheet: p.Compare == nil, tradeSheet: p.Trade == nil, samplesSheet: len(p.Samples) == 0, cardsSheet: !p.Cards}
+	var names []string
+	for _, name := range []string{summarySheet, buySheet, stagesSheet, trimsSheet, testSheet, samplesSheet, cardsSheet, tolerancesSheet, driftSheet, compareSheet, tradeSheet, basisSheet, carrierSheet} {
+		if !absent[name] {
+			names = append(names, name)
+		}
+	}
+	b := newBook(p, names)
 	defer b.file.Close()
+	b.keep(b.file.SetSheetVisible(carrierSheet, false, true)) // before any sheet is streamed
+	b.properties("Batch plan")
 	// The summary is the first tab but written late: it points into the others.
 	total := b.buy()
 	b.byStage()
@@ -49,6 +58,11 @@ func Write(w io.Writer, p Plan) error {
 	b.basis()
 	b.summary(total, verdicts)
 	b.carriers()
+	return b.write(w)
+}
+
+// write packs the book and hands it over, if all of it could be laid out.
+func (b *book) write(w io.Writer) error {
 	if b.err != nil {
 		return fmt.Errorf("the workbook could not be laid out: %w", b.err)
 	}
@@ -69,20 +83,15 @@ type book struct {
 	err    error
 }
 
-func newBook(p Plan) *book {
+// newBook has empty sheets, in the order of their tabs.
+func newBook(p Plan, names []string) *book {
 	b := &book{plan: p, file: excelize.NewFile(), styles: map[look]int{}}
-	b.keep(b.file.SetSheetName("Sheet1", summarySheet))
-	absent := map[string]bool{compareSheet: p.Compare == nil, tradeSheet: p.Trade == nil, samplesSheet: len(p.Samples) == 0, cardsSheet: !p.Cards}
-	for _, name := range []string{buySheet, stagesSheet, trimsSheet, testSheet, samplesSheet, cardsSheet, tolerancesSheet, driftSheet, compareSheet, tradeSheet, basisSheet, carrierSheet} {
-		if absent[name] {
-			continue
-		}
+	b.keep(b.file.SetSheetName("Sheet1", names[0]))
+	for _, name := range names[1:] {
 		_, err := b.file.NewSheet(name)
 		b.keep(err)
 	}
 	b.keep(b.file.SetDefaultFont(font))
-	b.keep(b.file.SetSheetVisible(carrierSheet, false, true)) // before any sheet is streamed
-	b.properties()
 	return b
 }
 
@@ -95,10 +104,10 @@ func (b *book) keep(err error) {
 // properties fixes what excelize would otherwise fill with a date and a name
 // of its own. LibreOffice trusts cached results only from programs it does not
 // know, and Excel is told to work everything out when it opens the file.
-func (b *book) properties() {
+func (b *book) properties(subject string) {
 	const made = "1980-01-01T00:00:00Z" // one date for all: same plan, same bytes
 	b.keep(b.file.SetDocProps(&excelize.DocProperties{
-		Title: cut(clean(b.plan.Title), 200), Subject: "Batch plan", Creator: "batchwright", LastModifiedBy: "batchwright",
+		Title: cut(clean(b.plan.Title), 200), Subject: subject, Creator: "batchwright", LastModifiedBy: "batchwright",
 		Created: made, Modified: made, Language: "en", Revision: "1",
 	}))
 	b.keep(b.file.SetAppProps(&excelize.AppProperties{Application: "batchwright", AppVersion: "1.0"}))

@@ -17,7 +17,7 @@ func (s *sheet) note(i int) string {
 	var words []string
 	p, x := s.model.Points[i], s.report.Readings[i]
 	if u := Uncertainty(p.Instrument, float64(x.Nominal)); math.Abs(float64(x.Nominal-x.Unloaded)) > u {
-		text := fmt.Sprintf("the %s itself moves this: a nominal unit has %s, it shows %s", p.Instrument.Name, shown(x.Unloaded, p.Unit), shown(x.Nominal, p.Unit))
+		text := fmt.Sprintf("the %s itself moves this: a nominal unit has %s, it shows %s", p.Instrument.Name, shown(x.Unloaded, p), shown(x.Nominal, p))
 		words = append(words, text+s.buffered(i))
 	}
 	least := p.Instrument.MinimumLevel

@@ -3,6 +3,7 @@ package bench_test
 import (
 	"math/rand/v2"
 	"slices"
+	"strings"
 	"testing"
 
 	"batchwright/data"
@@ -76,5 +77,73 @@ func TestSuppliesBeforePowerGoesFurther(t *testing.T) {
 				}
 			}
 		}
+	}
+}
+
+// steps are the points and trims of a sheet in order.
+func steps(s bench.Sheet) string {
+	list := make([]string, len(s.Readings)+len(s.Turns))
+	for _, r := range s.Readings {
+		list[r.Step-1] = r.Point
+	}
+	for _, x := range s.Turns {
+		list[x.Step-1] = "turn " + x.Turn
+	}
+	return strings.Join(list, ", ")
+}
+
+// A supply that stands last in the file and needs nothing is read first.
+func TestSuppliesAsSoonAsTheyCan(t *testing.T) {
+	last := `  spare:
+    kind: divider
+    settings: {input: supply}
+    parts:
+      upper: {ref: R8, value: 1 MΩ}
+      lower: {ref: R9, value: 1 MΩ}
+trims:`
+	s := measured(t, 100, "  - {name: half, output: half.voltage, at: [bench], between: [5 V, 7 V]}\n", "trims:", last)
+	if got := steps(s); !strings.HasPrefix(got, "half.voltage, spare.voltage, a.level") {
+		t.Errorf("got %s", got)
+	}
+}
+
+// The drop in a rail waits for the trim of what draws the current, and with it
+// a stage behind the rail that the current does not move.
+func TestFedStagesWaitForTheirSupply(t *testing.T) {
+	b, err := build.Read("rail.yaml", []byte(`
+build: rail
+units: 2
+conditions: {bench: {temperature: 25 °C}}
+stages:
+  sink:
+    kind: formula
+    parts: {turn: {part: trimmer-resistor, ref: RV1, value: 0..1 kΩ}}
+    outputs: {current: {expression: 1*volt/(turn + 500*ohm), unit: A}}
+  rail:
+    kind: rail-decoupling
+    settings: {load_current: sink.current}
+    parts:
+      series: {ref: R1, value: 100 Ω}
+      capacitor: {ref: C1, value: 10 uF}
+  behind:
+    kind: coupling
+    in: rail
+    settings: {load: 10 kΩ}
+    parts: {capacitor: {ref: C2, value: 100 nF}}
+  late:
+    kind: formula
+    outputs: {seen: {expression: sink.current, unit: A}}
+trims: [{turn: sink.turn, output: late.seen, to: 1 mA, within: 1 uA}]
+`), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	m, err := b.Compile()
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := bench.NewSheet(m, &spread.Report{Readings: make([]spread.ReadingReport, len(m.Points))})
+	if got, want := steps(s), "turn sink.turn, rail.drop, behind.tone_level"; got != want {
+		t.Errorf("got %s, want %s", got, want)
 	}
 }

@@ -118,6 +118,13 @@ func TestNotes(t *testing.T) {
 	if got, want := find(t, s, "b.frequency").Note, "the counter itself moves this: a nominal unit has 386.008 kHz, it shows 370.028 kHz"; !strings.HasPrefix(got, want[:30]) || !strings.Contains(got, "386.0") || !strings.Contains(got, "370.0") {
 		t.Errorf("got %q, want %q", got, want)
 	}
+	// 6 V from 500 kΩ into 10 MΩ, 5.714 V, with U of 35 mV; from 5 kΩ 5.997 V
+	if got, want := find(t, s, "half.voltage").Note, "the dmm itself moves this: a nominal unit has 6.000 V, it shows 5.714 V"; got != want {
+		t.Errorf("got %q, want %q", got, want)
+	}
+	if got := find(t, measured(t, 100, target, "value: 1 MΩ", "value: 10 kΩ"), "half.voltage").Note; got != "" {
+		t.Errorf("3 mV are said to matter: %q", got)
+	}
 	if got := find(t, s, "b.level").Note; got != "" {
 		t.Errorf("the level is said to move: %q", got)
 	}

@@ -114,13 +114,13 @@ func (s *sheet) where(t build.Trim) string {
 		at := withReferences(q.At, p.Stage)
 		if x := s.report.Readings[i]; math.Abs(float64(x.Nominal-x.Unloaded)) > t.Within {
 			at += fmt.Sprintf("; with its probe there the %s shows %s on a nominal unit set to %s",
-				p.Instrument.Name, shown(x.Nominal, p.Unit), shown(x.Unloaded, p.Unit))
+				p.Instrument.Name, shown(x.Nominal, p), shown(x.Unloaded, p))
 		}
 		return at
 	}
 	if i := noteAt(s.model, t.Output); i >= 0 {
 		p := s.model.Points[i]
-		return "count the note at the " + withReferences(p.Stage.Kind.Points[p.Index].At, p.Stage)
+		return "count the note: " + withReferences(p.Stage.Kind.Points[p.Index].At, p.Stage)
 	}
 	for _, o := range s.model.Build.Stage(t.Output.Stage).Outputs {
 		if o.Name == t.Output.Output {
@@ -130,8 +130,16 @@ func (s *sheet) where(t build.Trim) string {
 	return t.Output.Stage
 }
 
-// shown is a figure in words, six digits of it.
-func shown(x spread.Figure, u quantity.Unit) string { return quantity.Format(float64(x), u, 6) }
+// shown is a reading in words, with as many digits as the instrument has: the
+// last is worth between a hundredth of its uncertainty and a tenth.
+func shown(x spread.Figure, p build.Point) string {
+	v := float64(x)
+	digits := 2 + math.Floor(math.Log10(math.Abs(v)/Uncertainty(p.Instrument, v)))
+	if !(digits >= 2 && digits < 7) { // also where there is no uncertainty
+		digits = 6
+	}
+	return quantity.Format(v, p.Unit, int(digits))
+}
 
 // withReferences puts each part's reference before its role: "collector of the
 // transistor" becomes "collector of Q1 (transistor)"; of two pieces both stand

@@ -19,6 +19,7 @@ func TestReader(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	b.Trims[0].To, b.Trims[1].To = -2.3, 8000 // out of reach for some
 	m, err := b.Compile()
 	if err != nil {
 		t.Fatal(err)
@@ -33,6 +34,7 @@ func TestReader(t *testing.T) {
 		source.Fill(c.in[i], m.Inputs[i].Column, 0)
 	}
 	n.program.Values(c.out, c.in, c.frame)
+	count := map[int8]int{}
 	for u := range units {
 		for i := range m.Points {
 			if got.Points[i][u] != c.out[n.points+i][u] {
@@ -42,13 +44,17 @@ func TestReader(t *testing.T) {
 		if got.Outputs[0][u] != c.out[0][u] {
 			t.Fatalf("unit %d: %v, want %v", u, got.Outputs[0][u], c.out[0][u])
 		}
-		for k := range n.trims {
+		for k := range n.trims[:2] { // setting errors bring some back that are just out of reach, the third far
 			at := n.trimColumn(k)
 			setting := c.out[at][u]
+			count[got.Trims[k][u]]++
 			switch end := got.Trims[k][u]; {
-			case end == 0 && !reached(c.out[at+1][u], c.out[at+2][u]), end == -1 && setting > 1e-9, end == 1 && setting < 1-1e-9:
+			case end == 0 && !reached(c.out[at+1][u], c.out[at+2][u]), end == -1 && setting > 0.05, end == 1 && setting < 0.95:
 				t.Errorf("unit %d, trim %d: setting %v is said to be at end %d", u, k, setting, end)
 			}
 		}
+	}
+	if count[-1] < 20 || count[0] < 20 || count[1] < 20 {
+		t.Errorf("trims end %v: the test proves little", count)
 	}
 }

@@ -50,9 +50,9 @@ tank_q = q
 		Output{"pull", quantity.PPM, "share by which the load raises the series resonance"}),
 	Points: []Point{
 		{Name: "frequency", Reading: "frequency", Instrument: "counter",
-			At: "the crystal's second end, to ground", Capacitance: "probe", Stiff: limited, Level: "level"},
+			At: "second end of the crystal, to ground", Capacitance: "probe", Stiff: limited, Level: "level"},
 		{Name: "level", Reading: "peak voltage", Instrument: "scope",
-			At: "the crystal's second end, to ground", Capacitance: "probe", Stiff: limited},
+			At: "second end of the crystal, to ground", Capacitance: "probe", Stiff: limited},
 	},
 	Sketch: `
  first end ──┬──[crystal]──┬──────────┬── second end

@@ -20,10 +20,10 @@ const enoughUnits = 4
 // wrong one in twenty has a remark of each sort.
 const significance = 0.05
 
-// batch says what the units say together. Accused units are left out of it,
-// unless most are: then it is the batch that is not as planned.
-func (x *explainer) batch(ctx context.Context, r *Review, all [][]float64) error {
-	r.Batch.Points, r.Batch.Lots, r.Batch.Unclear = []BatchPoint{}, []Lot{}, []Unclear{}
+// together says what the units say together, and what is learned of the lots;
+// nil of too few. Accused units are left out, unless most are: then it is the
+// batch that is not as planned.
+func (x *explainer) together(r *Review, all [][]float64) *learned {
 	g := x.gather(r, all)
 	r.Batch.Counted = len(g.units)
 	if len(g.units) < enoughUnits {
@@ -41,7 +41,24 @@ func (x *explainer) batch(ctx context.Context, r *Review, all [][]float64) error
 	}
 	p := x.learn(g)
 	x.reportLots(&r.Batch, p)
-	return x.rest(ctx, r, p)
+	return p
+}
+
+// again weighs the hypotheses of each unit with the lots as the batch has them,
+// if it has narrowed any: what all units share is then no longer a surprise in
+// one of them, and what one of them has alone is the more of one.
+func (x *explainer) again(ctx context.Context, r *Review, p *learned, all [][]float64) error {
+	if !p.narrow() {
+		return nil
+	}
+	known, err := x.knowing(ctx, p.draws(x.seed, max(healthyUnits, x.units)), x.options)
+	if err != nil {
+		return err
+	}
+	for i := range r.Units {
+		x.accuse(&r.Units[i], known, all[i])
+	}
+	return nil
 }
 
 // gathered is the units that count, in scale.
@@ -62,9 +79,6 @@ func (x *explainer) gather(r *Review, all [][]float64) *gathered {
 	}
 	g := &gathered{count: make([]int, len(x.sheet)), mean: make([]float64, len(x.sheet))}
 	most := 2*accused > len(all)
-	if most {
-		r.Notes = append(r.Notes, fmt.Sprintf("%d of %d units are accused: look first for what they have in common, such as a wrong reel; they are counted in the batch's averages", accused, len(all)))
-	}
 	for i, u := range r.Units {
 		if !u.Accused || most {
 			g.numbers, g.units = append(g.numbers, float64(u.Unit)), append(g.units, x.inScale(all[i]))
@@ -146,18 +160,6 @@ func (x *explainer) shareNoise(a *apportion) {
 		rest[i] = math.Sqrt(math.Max(0, u*u-a.gain[i]*a.gain[i]))
 	}
 	addNoise(a.own, rest)
-}
-
-// scaled puts columns into the scale of the pictures.
-func (x *explainer) scaled(points [][]float64) [][]float64 {
-	out := make([][]float64, len(points))
-	for i, column := range points {
-		out[i] = make([]float64, len(column))
-		for u, y := range column {
-			out[i][u] = (y - x.centre[i]) / x.scale[i]
-		}
-	}
-	return out
 }
 
 // batchPoint is one point over the units that count:

@@ -233,3 +233,15 @@ func TestDraws(t *testing.T) {
 		}
 	}
 }
+
+// TestWrongReel reads ten units that all have the same wrong resistor.
+func TestWrongReel(t *testing.T) {
+	f := small(t, dividers)
+	r, err := f.x.review(context.Background(), filled(f, f.measure(f.x.faults[f.find(t, "R4 ten times too large")-1], 10, 3, nil)))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if r.Batch.Counted != 10 || len(r.Notes) != 1 || !strings.Contains(r.Notes[0], "of them is R") || !strings.Contains(r.Notes[0], "10 of 10") {
+		t.Errorf("counted %d, notes %v", r.Batch.Counted, r.Notes)
+	}
+}

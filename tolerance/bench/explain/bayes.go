@@ -72,12 +72,16 @@ func newDensity(n normal, read []int) density {
 	return d
 }
 
-// logarithm is ln f(y); z is room for as many numbers as y has. The form
-// xᵀS⁻¹x is |L⁻¹x|², by forward substitution.
+// logarithm is ln f(y); z is room for as many numbers as y has.
 func (d *density) logarithm(y, z []float64) float64 {
 	if d.lower == nil {
 		return d.log
 	}
+	return d.log - float64(freedom+len(y))/2*math.Log1p(d.form(y, z)/freedom)
+}
+
+// form is (y−m)ᵀS⁻¹(y−m), as |L⁻¹(y−m)|² by forward substitution.
+func (d *density) form(y, z []float64) float64 {
 	var form float64
 	for a, row := range d.lower {
 		sum := y[a] - d.mean[a]
@@ -87,16 +91,21 @@ func (d *density) logarithm(y, z []float64) float64 {
 		z[a] = sum / row[a]
 		form += z[a] * z[a]
 	}
-	return d.log - float64(freedom+len(y))/2*math.Log1p(form/freedom)
+	return form
 }
+
+// distance is the Mahalanobis distance √((y−m)ᵀΣ⁻¹(y−m)).
+func (d *density) distance(y, z []float64) float64 {
+	return math.Sqrt(d.form(y, z) * (freedom - 2) / freedom)
+}
+
+// absurd is where readings in scale are cut off, so that their squares are finite.
+const absurd = 1e100
 
 // logarithms are the logarithms of the likelihoods of readings, of which those
 // at the scorer's points count, under each picture.
 func (s *scorer) logarithms(readings []float64) []float64 {
-	y, z := make([]float64, len(s.read)), make([]float64, len(s.read))
-	for a, i := range s.read {
-		y[a] = readings[i]
-	}
+	y, z := s.pick(readings), make([]float64, len(s.read))
 	list := make([]float64, len(s.parts))
 	for i, parts := range s.parts {
 		terms := make([]float64, len(parts))
@@ -106,6 +115,15 @@ func (s *scorer) logarithms(readings []float64) []float64 {
 		list[i] = logSum(terms)
 	}
 	return list
+}
+
+// pick is the readings at the scorer's points.
+func (s *scorer) pick(readings []float64) []float64 {
+	y := make([]float64, len(s.read))
+	for a, i := range s.read {
+		y[a] = math.Max(-absurd, math.Min(absurd, readings[i]))
+	}
+	return y
 }
 
 // logSum is ln Σ e^x.

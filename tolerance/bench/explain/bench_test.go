@@ -22,12 +22,13 @@ func BenchmarkBatch(b *testing.B) {
 	}
 }
 
-// BenchmarkUnits is the same with the hypotheses predicted already.
+// BenchmarkUnits explains 24 healthy units with the hypotheses predicted already,
+// each by itself.
 func BenchmarkUnits(b *testing.B) {
 	f := examples(b)[0]
 	sheet := filled(f, f.measure(nil, 24, 5, nil))
 	for range b.N {
-		if _, err := f.x.review(context.Background(), sheet); err != nil {
+		if _, _, err := f.x.alone(context.Background(), sheet); err != nil {
 			b.Fatal(err)
 		}
 	}

@@ -334,12 +334,20 @@ func firsts(u Unit) []string {
 	return list
 }
 
-// TestFurther reads 0 V at the end of two dividers in a row, of which the first
-// was not read: R2 or R4 is shorted (or R1 or R3 open). The first divider's
-// voltage tells: 0 V, or 6 V.
+// TestFurther reads 0 V at the end of three dividers in a row, of which the first
+// two were not read: the lower resistor of any is shorted, or the upper open.
+// Between the first divider and the others its voltage tells, 0 V or 6 V, and
+// better than the second's, which scatters more.
 func TestFurther(t *testing.T) {
-	f := small(t, strings.Replace(dividers, "settings: {input: supply}\n    parts:\n      upper: {ref: R3", "settings: {input: a.voltage}\n    parts:\n      upper: {ref: R3", 1))
-	u := f.x.unit(1, []float64{math.NaN(), 0})
+	text := strings.Replace(dividers, "settings: {input: supply}\n    parts:\n      upper: {ref: R3", "settings: {input: a.voltage}\n    parts:\n      upper: {ref: R3", 1)
+	f := small(t, strings.Replace(text, "targets:", `  c:
+    kind: divider
+    settings: {input: b.voltage}
+    parts:
+      upper: {ref: R5, value: 10 kΩ, tolerance: 2 %}
+      lower: {ref: R6, value: 33 kΩ, tolerance: 2 %}
+targets:`, 1))
+	u := f.x.unit(1, []float64{math.NaN(), math.NaN(), 0})
 	told := 0
 	for _, x := range u.Further {
 		own := func(name string) bool { return strings.HasPrefix(name, "R1") || strings.HasPrefix(name, "R2") }
@@ -514,5 +522,77 @@ func TestSilence(t *testing.T) {
 		if !slices.Contains(got, want) {
 			t.Errorf("suspects %v, want %s among the first", got, want)
 		}
+	}
+}
+
+// TestPins holds a trim left at an end against the value that the model itself
+// has for the output at that end: the collector, which the meter's 10 MΩ across
+// 10 kΩ move by a thousandth.
+func TestPins(t *testing.T) {
+	f := examples(t)[0]
+	l := spread.Linearise(f.model, f.model.Trims[0].AtLow, f.model.Trims[0].AtHigh)
+	i := slices.Index(pointNames(f.model), "mixer.collector")
+	var got []float64
+	for k, end := range []string{"low", "high"} {
+		p := f.x.pictures[f.find(t, "mixer.bias left at its "+end+" end")]
+		v := p.mean[i]*f.x.scale[i] + f.x.centre[i]
+		got = append(got, v)
+		if want := l.Values[k] + f.model.Build.Trims[0].To; math.Abs(v-want) > 0.2 {
+			t.Errorf("left at its %s end the collector is at %v, want %v", end, v, want)
+		}
+	}
+	if math.Abs(got[0]-got[1]) < 2 {
+		t.Errorf("both ends read alike, %v: the test proves nothing", got)
+	}
+}
+
+// TestAbsurdReadings holds that a reading beyond all reason is outside and has
+// probabilities like any other.
+func TestAbsurdReadings(t *testing.T) {
+	f := small(t, dividers)
+	for _, y := range []float64{1e300, -math.MaxFloat64, 1e12, math.SmallestNonzeroFloat64} {
+		u := f.x.unit(1, []float64{y, 1.76})
+		if u.Verdict != Outside || !u.Accused || !(u.Healthy < 1e-3) || !(u.Suspects[0].Probability > 0.1) {
+			t.Errorf("%g V: %+v", y, u)
+		}
+	}
+}
+
+// TestFurtherAtTheBench holds that a reading where the unit is goes before a
+// better one elsewhere.
+func TestFurtherAtTheBench(t *testing.T) {
+	f := examples(t)[1]
+	a, b := f.find(t, "R6 ten times too small"), f.find(t, "R4 and R5 exchanged")
+	read := span(len(f.x.sheet))
+	got := f.x.further(a, b, read)
+	if !strings.HasSuffix(got.Reading, " at bench") || got.Expect == nil || !(got.Score > enough) {
+		t.Errorf("%+v, want a reading at the bench", got)
+	}
+	if best, _ := f.x.best(a, b, read, false); f.model.Outputs[best].Condition == 0 {
+		t.Error("the best reading is at the bench: the test proves nothing")
+	}
+}
+
+// TestShown holds what instruments show of what has no value, and of a frequency
+// whose level is below the 100 mV that a counter needs.
+func TestShown(t *testing.T) {
+	m := examples(t)[0].model
+	points := make([][]float64, len(m.Points))
+	for i := range points {
+		points[i] = []float64{math.NaN(), math.Inf(-1), 5, 5}
+	}
+	names := pointNames(m)
+	frequency, level := slices.Index(names, "fixed.frequency"), slices.Index(names, "fixed.level")
+	points[level] = []float64{1, 1, 0.09, 0.11}
+	shown(m, points)
+	if got := points[frequency]; !slices.Equal(got, []float64{0, 0, 0, 5}) {
+		t.Errorf("the counter shows %v, want 0, 0, 0, 5", got)
+	}
+	if got := points[0]; !slices.Equal(got, []float64{0, 0, 5, 5}) {
+		t.Errorf("the meter shows %v, want 0, 0, 5, 5", got)
+	}
+	// Ends of two trims as digits to the base 3: reached 0, high 1, low 2.
+	if got := ways([][]int8{{0, 1, -1, 0}, {0, 0, 1, -1}}, 4); !slices.Equal(got, []int{0, 3, 7, 2}) {
+		t.Errorf("ways %v, want 0, 3, 7, 2", got)
 	}
 }

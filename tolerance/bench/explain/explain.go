@@ -14,6 +14,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"strings"
 
 	"batchwright/tolerance/bench"
 	"batchwright/tolerance/build"
@@ -22,10 +23,12 @@ import (
 
 // Options say how much is simulated.
 type Options struct {
-	Seed     uint64
-	Units    int                   // simulated under each fault; 0: 256
-	Yield    int                   // simulated of the units not read yet; 0: 20 000
-	Progress func(done, total int) // called from several goroutines; nil: not called
+	Seed  uint64
+	Units int // simulated under each fault; 0: 256
+	Yield int // simulated of the units not read yet; 0: 20 000
+	// Progress is called from several goroutines; nil: not called. It runs through
+	// twice where a batch has narrowed its lots.
+	Progress func(done, total int)
 }
 
 // Explain reviews what was read of some units of a batch. The model is that of
@@ -45,7 +48,6 @@ type explainer struct {
 	options Options
 	sheet   []bench.Reading // as Model.Points
 	columns []int           // of Model.Points, by column of what was filled in
-	scorers map[string]*scorer
 	limits  map[string]float64
 	outputs map[*build.Model]*spread.Reader
 	guesses map[int]guessed
@@ -54,7 +56,10 @@ type explainer struct {
 }
 
 func newExplainer(ctx context.Context, m *build.Model, s bench.Sheet, points []string, o Options) (*explainer, error) {
-	x := &explainer{options: o, scorers: map[string]*scorer{}, limits: map[string]float64{}, outputs: map[*build.Model]*spread.Reader{}, guesses: map[int]guessed{}}
+	x := &explainer{options: o, limits: map[string]float64{}, outputs: map[*build.Model]*spread.Reader{}, guesses: map[int]guessed{}}
+	if len(m.Points) == 0 {
+		return nil, fmt.Errorf("explain: the build has no test point")
+	}
 	at := map[string]int{}
 	for i, p := range m.Points {
 		at[pointName(p)] = i
@@ -86,22 +91,63 @@ func newExplainer(ctx context.Context, m *build.Model, s bench.Sheet, points []s
 	return x, err
 }
 
-// review explains each unit, then the batch.
+// review explains each unit by itself, then the batch, then each unit again with
+// what the batch says of the lots, and the units not read yet.
 func (x *explainer) review(ctx context.Context, f bench.Filled) (*Review, error) {
-	r := &Review{Units: []Unit{}, Notes: []string{}}
+	r, all, err := x.alone(ctx, f)
+	if err != nil {
+		return nil, err
+	}
+	if p := x.together(r, all); p != nil && p.mean != nil {
+		if err := x.again(ctx, r, p, all); err != nil {
+			return nil, err
+		}
+		if err := x.rest(ctx, r, p); err != nil {
+			return nil, err
+		}
+	}
+	r.note()
+	return r, nil
+}
+
+// note remarks on a batch of which most units are accused: one fault in each is
+// less likely than one in all.
+func (r *Review) note() {
+	accused, most := 0, ""
+	count := map[string]int{}
+	for _, u := range r.Units {
+		if !u.Accused {
+			continue
+		}
+		accused++
+		name := strings.TrimSpace(u.Suspects[0].Ref + " " + u.Suspects[0].Fault)
+		if count[name]++; count[name] > count[most] {
+			most = name
+		}
+	}
+	if 2*accused > len(r.Units) && len(r.Units) >= enoughUnits {
+		r.Notes = append(r.Notes, fmt.Sprintf("%d of %d units are accused, so their readings count in the batch's averages; look first for what they share, such as a wrong reel: the first suspect in %d of them is %s",
+			accused, len(r.Units), count[most], most))
+	}
+}
+
+// alone explains each unit by itself; it also returns the readings.
+func (x *explainer) alone(ctx context.Context, f bench.Filled) (*Review, [][]float64, error) {
+	r := &Review{Units: []Unit{}, Notes: []string{}, Good: x.good()}
+	r.Batch.Points, r.Batch.Lots, r.Batch.Unclear = []BatchPoint{}, []Lot{}, []Unclear{}
 	var all [][]float64
 	for _, u := range f.Units {
 		if len(u.Values) != len(f.Points) {
-			return nil, fmt.Errorf("explain: unit %d has %d readings at %d points", u.Unit, len(u.Values), len(f.Points))
+			return nil, nil, fmt.Errorf("explain: unit %d has %d readings at %d points", u.Unit, len(u.Values), len(f.Points))
 		}
 		readings := x.readings(u)
 		all = append(all, readings)
 		r.Units = append(r.Units, x.unit(u.Unit, readings))
 		if err := ctx.Err(); err != nil {
-			return nil, err
+			return nil, nil, err
 		}
 	}
-	return r, x.batch(ctx, r, all)
+	return r, all, nil
 }
 
 // readings are a unit's as Model.Points; NaN where nothing was read.

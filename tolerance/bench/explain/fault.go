@@ -1,6 +1,7 @@
 package explain
 
 import (
+	"slices"
 	"strings"
 
 	"batchwright/tolerance/build"
@@ -25,18 +26,20 @@ func (f *fault) name() string { return strings.TrimSpace(f.ref + " " + f.words) 
 // measured says whether the unit itself is healthy and its readings are wrong.
 func (f *fault) measured() bool { return f.class == Range || f.class == Exchanged }
 
-// apply does to columns of readings what the fault does to what is written.
-func (f *fault) apply(points [][]float64) [][]float64 {
-	out := make([][]float64, len(points))
-	copy(out, points)
-	for _, i := range f.scaled {
-		out[i] = make([]float64, len(points[i]))
-		for k, x := range points[i] {
-			out[i][k] = f.factor * x
-		}
+// writes says what is written at a point: so many times the reading of which
+// point.
+func (f *fault) writes(point int) (factor float64, of int) {
+	factor, of = 1, point
+	switch point {
+	case f.rows[0]:
+		of = f.rows[1]
+	case f.rows[1]:
+		of = f.rows[0]
 	}
-	out[f.rows[0]], out[f.rows[1]] = out[f.rows[1]], out[f.rows[0]]
-	return out
+	if slices.Contains(f.scaled, point) {
+		factor = f.factor
+	}
+	return factor, of
 }
 
 // pin is a trim left at a share of its travel.

@@ -139,12 +139,14 @@ func (f fixture) measure(fa *fault, units int, seed uint64, lots func(lot, batch
 			column[u] += gain*column[u] + in.Floor*(2*random.Float64()-1)
 		}
 	}
-	if fa != nil {
-		columns = fa.apply(columns)
-	}
 	list := make([][]float64, units)
 	for u := range list {
-		for _, column := range columns {
+		for i, column := range columns {
+			if fa != nil {
+				factor, of := fa.writes(i)
+				list[u] = append(list[u], factor*columns[of][u])
+				continue
+			}
 			list[u] = append(list[u], column[u])
 		}
 	}
@@ -187,4 +189,15 @@ func filled(f fixture, units [][]float64) bench.Filled {
 		out.Units = append(out.Units, bench.FilledUnit{Unit: u + 1, Values: v})
 	}
 	return out
+}
+
+// batch reviews units as far as what they say together.
+func (f fixture) batch(t testing.TB, y [][]float64) Batch {
+	t.Helper()
+	r, all, err := f.x.alone(context.Background(), filled(f, y))
+	if err != nil {
+		t.Fatal(err)
+	}
+	f.x.together(r, all)
+	return r.Batch
 }

@@ -183,6 +183,16 @@ const (
 	narrowed = 0.6
 )
 
+// narrow says whether the readings have narrowed any lot.
+func (p *learned) narrow() bool {
+	for k := range p.lots {
+		if math.Sqrt(p.cov.At(k, k)) < narrowed {
+			return true
+		}
+	}
+	return false
+}
+
 // reportLots names the lots that are off, the furthest first, and pairs of
 // which the readings see only the sum.
 func (x *explainer) reportLots(b *Batch, p *learned) {

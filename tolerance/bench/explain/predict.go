@@ -2,11 +2,14 @@ package explain
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"runtime"
 	"slices"
 	"sync"
 	"sync/atomic"
+
+	"gonum.org/v1/gonum/mat"
 
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/bench"
@@ -37,6 +40,8 @@ type oracle struct {
 	healthy    sample
 	drawn      [][]float64 // inputs of healthy units
 	drawnUnits int
+	lots       func(lot, batch int) (float64, bool) // what is known of the lots of each unit; nil: nothing
+	scorers    map[string]*scorer
 }
 
 // bound is a model and what reads it.
@@ -53,7 +58,7 @@ type sample struct {
 
 // newOracle predicts what healthy and faulty units read.
 func newOracle(ctx context.Context, m *build.Model, o Options) (*oracle, error) {
-	k := &oracle{model: m, seed: o.Seed, units: o.Units, reader: spread.NewReader(m)}
+	k := &oracle{model: m, seed: o.Seed, units: o.Units, reader: spread.NewReader(m), scorers: map[string]*scorer{}}
 	if k.units <= 0 {
 		k.units = faultyUnits
 	}
@@ -71,6 +76,25 @@ func newOracle(ctx context.Context, m *build.Model, o Options) (*oracle, error) 
 	k.healthy = k.simulate(nil, max(healthyUnits, k.units))
 	k.standardise()
 	return k, k.paint(ctx, o)
+}
+
+// knowing predicts what units of a batch read of whose lots something is known.
+// The scale stays.
+func (k *oracle) knowing(ctx context.Context, lots func(lot, batch int) (float64, bool), o Options) (*oracle, error) {
+	known := *k
+	known.lots, known.scorers = lots, map[string]*scorer{}
+	known.drawn, known.drawnUnits = nil, 0
+	known.healthy = known.simulate(nil, max(healthyUnits, k.units))
+	return &known, known.paint(ctx, o)
+}
+
+// scorer is the one for readings at some points.
+func (k *oracle) scorer(read []int) *scorer {
+	key := fmt.Sprint(read)
+	if k.scorers[key] == nil {
+		k.scorers[key] = newScorer(k.pictures, read)
+	}
+	return k.scorers[key]
 }
 
 // weigh gives every fault its prior, and then leaves out those that no reading
@@ -109,8 +133,8 @@ func touches(f *fault, seen []bool) bool {
 }
 
 // source draws each unit with lots of its own, since nobody knows the lots of a
-// single one.
-func (k *oracle) source() scatter.Source { return scatter.Source{Seed: k.seed, Units: 1} }
+// single one; or with lots from what is known of them.
+func (k *oracle) source() scatter.Source { return scatter.Source{Seed: k.seed, Units: 1, Lots: k.lots} }
 
 // simulate reads units under a fault; nil is none. The healthy draws are kept:
 // a fault draws anew only what it changes.
@@ -246,33 +270,58 @@ func (k *oracle) noise(points [][]float64) []float64 {
 	return list
 }
 
-// picture is what simulated units read, in scale, after what a fault does to
-// what is written.
-func (k *oracle) picture(s sample, f *fault) *picture {
+// picture is what simulated units read, in scale.
+func (k *oracle) picture(s sample) *picture {
 	noise := k.noise(s.points)
-	points := s.points
-	if f != nil {
-		points = f.apply(points)
-		for _, i := range f.scaled {
-			noise[i] *= f.factor
-		}
-		noise[f.rows[0]], noise[f.rows[1]] = noise[f.rows[1]], noise[f.rows[0]]
-	}
-	scaled := make([][]float64, len(points))
-	for i, column := range points {
-		scaled[i] = make([]float64, len(column))
-		for u, x := range column {
-			scaled[i][u] = (x - k.centre[i]) / k.scale[i]
-		}
+	for i := range noise {
 		noise[i] /= k.scale[i]
 	}
-	return newPicture(scaled, s.ways, noise)
+	return newPicture(k.scaled(s.points), s.ways, noise)
+}
+
+// scaled puts columns into the scale of the pictures.
+func (k *oracle) scaled(points [][]float64) [][]float64 {
+	out := make([][]float64, len(points))
+	for i, column := range points {
+		out[i] = make([]float64, len(column))
+		for u, y := range column {
+			out[i][u] = (y - k.centre[i]) / k.scale[i]
+		}
+	}
+	return out
+}
+
+// misread is the healthy picture with readings on a wrong range or in a wrong
+// row. What is written at point i is factor·y of the point it comes from, so in
+// scale it is a·z + b.
+func (k *oracle) misread(f *fault) *picture {
+	n := len(k.centre)
+	from, a, b := make([]int, n), make([]float64, n), make([]float64, n)
+	for i := range n {
+		factor, source := f.writes(i)
+		from[i] = source
+		a[i] = factor * k.scale[source] / k.scale[i]
+		b[i] = (factor*k.centre[source] - k.centre[i]) / k.scale[i]
+	}
+	p := &picture{}
+	for _, d := range k.pictures[0].parts {
+		mean, cov := make([]float64, n), mat.NewSymDense(n, nil)
+		for i := range n {
+			mean[i] = a[i]*d.mean[from[i]] + b[i]
+			for j := range i + 1 {
+				cov.SetSym(i, j, a[i]*a[j]*d.cov.At(from[i], from[j]))
+			}
+		}
+		p.parts = append(p.parts, normal{d.weight, mean, cov})
+	}
+	p.overall()
+	return p
 }
 
 // paint makes the picture of every hypothesis.
 func (k *oracle) paint(ctx context.Context, o Options) error {
 	k.pictures = make([]*picture, len(k.faults)+1)
-	k.pictures[0] = k.picture(k.healthy, nil)
+	k.pictures[0] = k.picture(k.healthy)
 	var next, done atomic.Int64
 	var wait sync.WaitGroup
 	for range min(max(1, runtime.GOMAXPROCS(0)), len(k.faults)) {
@@ -300,9 +349,9 @@ func (k *oracle) paintFault(f *fault) *picture {
 	case f.class == Other:
 		return k.paintOther()
 	case f.measured():
-		return k.picture(k.healthy, f)
+		return k.misread(f)
 	}
-	return k.picture(k.simulate(f, k.units), f)
+	return k.picture(k.simulate(f, k.units))
 }
 
 // inScale puts readings in SI into the scale of the pictures; NaN stays.

@@ -138,20 +138,17 @@ func TestShiftedLots(t *testing.T) {
 			for b := range 10 {
 				off := 2.0 - 4*float64(b%2)
 				y := f.measure(nil, 24, uint64(100+b), func(lot, batch int) (float64, bool) { return off, lot == l.number })
-				r, err := f.x.review(context.Background(), filled(f, y))
-				if err != nil {
-					t.Fatal(err)
-				}
+				r := f.batch(t, y)
 				batches++
 				name := f.x.lotName(l)
-				i := slices.IndexFunc(r.Batch.Lots, func(x Lot) bool {
+				i := slices.IndexFunc(r.Lots, func(x Lot) bool {
 					return x.Parameter == name.Parameter && slices.Equal(x.Refs, name.Refs)
 				})
-				if i < 0 || float64(r.Batch.Lots[i].Deviation)*off <= 0 {
+				if i < 0 || float64(r.Lots[i].Deviation)*off <= 0 {
 					continue
 				}
 				found++
-				if x := r.Batch.Lots[i].Deviation95; float64(x[0]) <= off && off <= float64(x[1]) {
+				if x := r.Lots[i].Deviation95; float64(x[0]) <= off && off <= float64(x[1]) {
 					covered++
 				}
 			}
@@ -189,12 +186,9 @@ func TestQuietBatches(t *testing.T) {
 	for _, f := range examples(t) {
 		count := map[string]int{}
 		for b := range batches {
-			r, err := f.x.review(context.Background(), filled(f, f.measure(nil, f.model.Build.Units, uint64(500+b), nil)))
-			if err != nil {
-				t.Fatal(err)
-			}
+			r := f.batch(t, f.measure(nil, f.model.Build.Units, uint64(500+b), nil))
 			had := map[string]bool{}
-			for _, p := range r.Batch.Points {
+			for _, p := range r.Points {
 				for _, word := range p.Remarks {
 					had[word] = true
 				}
@@ -210,4 +204,33 @@ func TestQuietBatches(t *testing.T) {
 			}
 		}
 	}
+}
+
+// TestShiftedBatch reads batches whose coils are all 3.5 standard deviations of
+// lots off. In the first of them in which a unit by itself looks as if it had a
+// wrong part, none does with what the batch says of the lot.
+func TestShiftedBatch(t *testing.T) {
+	f := examples(t)[1]
+	lines := f.x.lines()
+	k := slices.IndexFunc(lines, func(l lotLine) bool {
+		name := f.x.lotName(l)
+		return name.Refs[0] == "L2" && name.Parameter == "value"
+	})
+	for b := range 20 {
+		y := f.measure(nil, 24, uint64(700+b), func(lot, batch int) (float64, bool) { return 3.5, lot == lines[k].number })
+		if !slices.ContainsFunc(y, func(y []float64) bool { return f.x.unit(1, y).Accused }) {
+			continue
+		}
+		r, err := f.x.review(context.Background(), filled(f, y))
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, u := range r.Units {
+			if u.Accused {
+				t.Errorf("unit %d is accused: %+v", u.Unit, u.Suspects)
+			}
+		}
+		return
+	}
+	t.Error("no unit is accused by itself: the test proves nothing")
 }

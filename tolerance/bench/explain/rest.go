@@ -17,7 +17,7 @@ const yieldUnits = 10_000
 // as the readings have them, and without. Both are drawn alike.
 func (x *explainer) rest(ctx context.Context, r *Review, p *learned) error {
 	units := x.model.Build.Units - len(r.Units)
-	if units <= 0 || p.mean == nil {
+	if units <= 0 {
 		return nil
 	}
 	m := inBatchesOf(x.model, units)

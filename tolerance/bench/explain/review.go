@@ -7,6 +7,8 @@ type Review struct {
 	Units []Unit   `json:"units"`
 	Batch Batch    `json:"batch"`
 	Notes []string `json:"notes"`
+	// Good are readings of some thousand simulated good units, by point in SI.
+	Good map[string][]float64 `json:"-"`
 }
 
 // Unit is the verdict on one unit.

@@ -46,24 +46,21 @@ func (x *explainer) tell(u *Unit, groups [][]int, read []int, probabilities []fl
 // readable are the dimensions that an instrument reads without cutting a wire.
 var readable = map[quantity.Dimension]bool{quantity.Volt.Dimension: true, quantity.Hertz.Dimension: true}
 
+// highest is the most that a bench meter reads, in volts (common practice, no
+// source). Equations that know no supply promise more of a part that is open.
+const highest = 1000
+
 // guessed is what a hypothesis predicts of every output.
 type guessed struct{ mean, sd []float64 }
 
-// further finds the reading that tells two hypotheses apart best: an output at
-// any condition that no reading taken already is, or a point not read yet.
+// further finds the reading that tells two hypotheses apart best: an output that
+// no reading taken already is, or a point not read yet; at the reference
+// condition, where the unit is, if one there tells at all.
 func (x *explainer) further(a, b int, read []int) Further {
 	f := Further{Between: [2]string{x.faults[a-1].name(), x.faults[b-1].name()}}
-	best, score := -1, 0.0
-	p, q := x.guess(a), x.guess(b)
-	for i, o := range x.model.Outputs {
-		if o.ChangeFrom >= 0 || !readable[o.Unit.Dimension] || x.isRead(o, read) {
-			continue
-		}
-		noise := guess * math.Max(math.Abs(p.mean[i]), math.Abs(q.mean[i]))
-		s := math.Abs(p.mean[i]-q.mean[i]) / math.Sqrt(p.sd[i]*p.sd[i]+q.sd[i]*q.sd[i]+noise*noise)
-		if s > score { // false for NaN
-			best, score = i, s
-		}
+	best, score := x.best(a, b, read, true)
+	if score < enough {
+		best, score = x.best(a, b, read, false)
 	}
 	if score < enough {
 		f.Reading, f.Score = x.faults[a-1].remedy(), spread.Figure(math.NaN())
@@ -71,9 +68,30 @@ func (x *explainer) further(a, b int, read []int) Further {
 	}
 	o := x.model.Outputs[best]
 	f.Reading = o.Name.String() + " at " + x.model.Build.Conditions[o.Condition].Name
-	f.Expect = &[2]spread.Figure{spread.Figure(p.mean[best]), spread.Figure(q.mean[best])}
+	f.Expect = &[2]spread.Figure{spread.Figure(x.guess(a).mean[best]), spread.Figure(x.guess(b).mean[best])}
 	f.Unit, f.Score = o.Unit.Symbol, spread.Figure(score)
 	return f
+}
+
+// best is the output, of those at the reference condition or of all, at which
+// two hypotheses are the most standard deviations apart, and how many.
+func (x *explainer) best(a, b int, read []int, reference bool) (output int, score float64) {
+	p, q := x.guess(a), x.guess(b)
+	for i, o := range x.model.Outputs {
+		if o.ChangeFrom >= 0 || reference && o.Condition != 0 || !readable[o.Unit.Dimension] || x.isRead(o, read) {
+			continue
+		}
+		largest := math.Max(math.Abs(p.mean[i]), math.Abs(q.mean[i]))
+		if o.Unit.Dimension == quantity.Volt.Dimension && largest > highest {
+			continue
+		}
+		noise := guess * largest
+		s := math.Abs(p.mean[i]-q.mean[i]) / math.Sqrt(p.sd[i]*p.sd[i]+q.sd[i]*q.sd[i]+noise*noise)
+		if s > score { // false for NaN
+			output, score = i, s
+		}
+	}
+	return output, score
 }
 
 // remedy is what tells when no reading does.

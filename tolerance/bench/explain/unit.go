@@ -32,19 +32,34 @@ func (x *explainer) unit(number int, readings []float64) Unit {
 			read = append(read, i)
 		}
 	}
-	probabilities := x.prior
 	if len(read) > 0 {
-		probabilities = posterior(x.prior, x.scorer(read).logarithms(scaled))
 		u.Distance = spread.Figure(x.distance(read, scaled))
 	}
 	u.DistanceLimit = spread.Figure(x.limit(read))
+	u.Verdict = u.verdict(len(read) == len(readings))
+	x.accuse(&u, x.oracle, readings)
+	return u
+}
+
+// accuse weighs the hypotheses by what an oracle predicts, and names suspects.
+func (x *explainer) accuse(u *Unit, k *oracle, readings []float64) {
+	var read []int
+	for i, y := range readings {
+		u.Points[i].Predicted = nil
+		if !math.IsNaN(y) {
+			read = append(read, i)
+		}
+	}
+	probabilities := k.prior
+	if len(read) > 0 {
+		probabilities = posterior(k.prior, k.scorer(read).logarithms(k.inScale(readings)))
+	}
 	u.Healthy = spread.Figure(probabilities[0])
 	u.Accused = !(probabilities[0] >= 0.5)
-	u.Verdict = u.verdict(len(read) == len(readings))
+	u.Suspects, u.Further = []Suspect{}, nil
 	if u.Accused || u.Verdict == Outside || u.Verdict == Improbable {
-		x.suspect(&u, read, probabilities)
+		x.suspect(u, k, read, probabilities)
 	}
-	return u
 }
 
 // point is the verdict on one reading.
@@ -79,29 +94,11 @@ func (u *Unit) verdict(complete bool) Verdict {
 	return Inside
 }
 
-// scorer is the one for readings at some points.
-func (x *explainer) scorer(read []int) *scorer {
-	key := fmt.Sprint(read)
-	if x.scorers[key] == nil {
-		x.scorers[key] = newScorer(x.pictures, read)
-	}
-	return x.scorers[key]
-}
-
 // distance is the Mahalanobis distance of some readings, in scale, from a
-// healthy unit's means, √((y−m)ᵀΣ⁻¹(y−m)), over the healthy units whose trims
-// reach.
+// healthy unit's means, over the healthy units whose trims reach.
 func (x *explainer) distance(read []int, scaled []float64) float64 {
-	healthy := x.pictures[0].parts[0] // the first way: every trim reached
-	cov := mat.NewSymDense(len(read), nil)
-	y := mat.NewVecDense(len(read), nil)
-	for a, i := range read {
-		y.SetVec(a, scaled[i]-healthy.mean[i])
-		for b, j := range read[:a+1] {
-			cov.SetSym(a, b, healthy.cov.At(i, j))
-		}
-	}
-	return math.Sqrt(quadratic(cov, y))
+	s := x.scorer(read)
+	return s.parts[0][0].distance(s.pick(scaled), make([]float64, len(read))) // the first way: every trim reached
 }
 
 // limit is the distance that a share `improbable` of simulated healthy units
@@ -145,7 +142,7 @@ const readingStream = 1 << 40
 
 // suspect names what may be wrong: hypotheses that the readings leave alike in
 // one group, the groups in the order of their probability.
-func (x *explainer) suspect(u *Unit, read []int, probabilities []float64) {
+func (x *explainer) suspect(u *Unit, k *oracle, read []int, probabilities []float64) {
 	var order []int // of hypotheses
 	for h := 1; h < len(probabilities); h++ {
 		order = append(order, h)
@@ -155,7 +152,7 @@ func (x *explainer) suspect(u *Unit, read []int, probabilities []float64) {
 	for keep < len(order) && (keep < 3 || probabilities[order[keep]] >= least) {
 		keep++
 	}
-	groups := x.group(order[:keep], read)
+	groups := k.group(order[:keep], read)
 	sum := func(g []int) (p float64) {
 		for _, h := range g {
 			p += probabilities[h]
@@ -170,7 +167,7 @@ func (x *explainer) suspect(u *Unit, read []int, probabilities []float64) {
 				Probability: spread.Figure(probabilities[h]), Group: n + 1})
 		}
 	}
-	first := x.pictures[groups[0][0]]
+	first := k.pictures[groups[0][0]]
 	for i := range u.Points {
 		v := spread.Figure(first.mean[i]*x.scale[i] + x.centre[i])
 		u.Points[i].Predicted = &v
@@ -184,12 +181,12 @@ const alike = 1
 
 // group puts together hypotheses, the most probable first, whose predictions at
 // the points that were read are alike the first one's of a group.
-func (x *explainer) group(order, read []int) [][]int {
+func (k *oracle) group(order, read []int) [][]int {
 	var groups [][]int
 next:
 	for _, h := range order {
 		for i, g := range groups {
-			if x.pictures[g[0]].at(read).apart(x.pictures[h].at(read)) < alike {
+			if k.pictures[g[0]].at(read).apart(k.pictures[h].at(read)) < alike {
 				groups[i] = append(g, h)
 				continue next
 			}

@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"math"
+	"strconv"
 	"strings"
 
 	"batchwright/bom/quantity"
@@ -52,8 +53,15 @@ func TurnDigits(t bench.Turn) Digits { return Digits{Plan{}.turnRow(t).scale} }
 // Symbol is the unit; "" for a plain ratio.
 func (d Digits) Symbol() string { return d.symbol }
 
-// Text is a figure in SI without the unit; a dash where there is none.
-func (d Digits) Text(v spread.Figure) string { return d.text(float64(v)) }
+// Text is a figure in SI without the unit; a dash where there is none. What is
+// absurdly far from the line's figures is written with a power of ten.
+func (d Digits) Text(v spread.Figure) string {
+	const longest = 14
+	if text := d.text(float64(v)); len(text) <= longest {
+		return text
+	}
+	return strconv.FormatFloat(float64(v)/d.by, 'g', 4, 64)
+}
 
 // Between is a window without the unit.
 func (d Digits) Between(l spread.Limits) string { return d.Text(l.Low) + " to " + d.Text(l.High) }

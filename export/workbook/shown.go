@@ -3,7 +3,6 @@ package workbook
 import (
 	"math"
 	"strconv"
-	"strings"
 
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/bench"
@@ -50,6 +49,12 @@ func DigitsOf(r bench.Reading) Digits { return Digits{readingRow(r).scale} }
 // TurnDigits are those of what a trim is set to.
 func TurnDigits(t bench.Turn) Digits { return Digits{Plan{}.turnRow(t).scale} }
 
+// Finer has a digit more: a mean is known better than a reading.
+func (d Digits) Finer() Digits {
+	d.decimals = min(6, d.decimals+1)
+	return d
+}
+
 // Symbol is the unit; "" for a plain ratio.
 func (d Digits) Symbol() string { return d.symbol }
 
@@ -65,9 +70,6 @@ func (d Digits) Text(v spread.Figure) string {
 
 // Between is a window without the unit.
 func (d Digits) Between(l spread.Limits) string { return d.Text(l.Low) + " to " + d.Text(l.High) }
-
-// With is a figure in SI with the unit.
-func (d Digits) With(v spread.Figure) string { return strings.TrimSpace(d.Text(v) + " " + d.symbol) }
 
 func rowInUnit(b benchRow, symbol string) readRow {
 	r := readRow{benchRow: b, label: b.name}

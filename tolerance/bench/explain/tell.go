@@ -53,14 +53,32 @@ const highest = 1000
 // guessed is what a hypothesis predicts of every output.
 type guessed struct{ mean, sd []float64 }
 
-// further finds the reading that tells two hypotheses apart best: an output at
-// any condition that no reading taken already is, or a point not read yet.
+// further finds the reading that tells two hypotheses apart best: an output
+// that no reading taken already is, or a point not read yet. At another
+// condition than the reference, which the bench has, only where none there does.
 func (x *explainer) further(a, b int, read []int) Further {
 	f := Further{Between: [2]string{x.faults[a-1].name(), x.faults[b-1].name()}}
-	best, score := -1, 0.0
 	p, q := x.guess(a), x.guess(b)
+	best, score := x.telling(p, q, func(o build.Output) bool { return o.Condition == 0 && !x.isRead(o, read) })
+	if score < enough {
+		best, score = x.telling(p, q, func(o build.Output) bool { return o.Condition != 0 })
+	}
+	if score < enough {
+		f.Reading, f.Score = x.faults[a-1].remedy(), spread.Figure(math.NaN())
+		return f
+	}
+	o := x.model.Outputs[best]
+	f.Reading = o.Name.String() + " at " + x.model.Build.Conditions[o.Condition].Name
+	f.Expect = &[2]spread.Figure{spread.Figure(p.mean[best]), spread.Figure(q.mean[best])}
+	f.Unit, f.Score = o.Unit.Symbol, spread.Figure(score)
+	return f
+}
+
+// telling is the output among some whose predictions are furthest apart, and
+// how far in standard deviations.
+func (x *explainer) telling(p, q guessed, among func(build.Output) bool) (best int, score float64) {
 	for i, o := range x.model.Outputs {
-		if o.ChangeFrom >= 0 || !readable[o.Unit.Dimension] || x.isRead(o, read) {
+		if o.ChangeFrom >= 0 || !readable[o.Unit.Dimension] || !among(o) {
 			continue
 		}
 		largest := math.Max(math.Abs(p.mean[i]), math.Abs(q.mean[i]))
@@ -73,15 +91,7 @@ func (x *explainer) further(a, b int, read []int) Further {
 			best, score = i, s
 		}
 	}
-	if score < enough {
-		f.Reading, f.Score = x.faults[a-1].remedy(), spread.Figure(math.NaN())
-		return f
-	}
-	o := x.model.Outputs[best]
-	f.Reading = o.Name.String() + " at " + x.model.Build.Conditions[o.Condition].Name
-	f.Expect = &[2]spread.Figure{spread.Figure(p.mean[best]), spread.Figure(q.mean[best])}
-	f.Unit, f.Score = o.Unit.Symbol, spread.Figure(score)
-	return f
+	return best, score
 }
 
 // remedy is what tells when no reading does.

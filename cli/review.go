@@ -144,7 +144,7 @@ func (r *reviewed) write(path string) error {
 	}
 	var whole bytes.Buffer
 	if err := workbook.WriteReviewed(&whole, plan.ComposeReviewed(*r.work, r.review, r.filled, r.turned, good, r.file)); err != nil {
-		return missed("%v", err)
+		return &fault{exitFile, err}
 	}
 	return writeNew(path, whole.Bytes())
 }

@@ -216,7 +216,7 @@ func BatchOdds(s bench.Sheet, b ReviewBatch) []BatchOdd {
 		if len(p.Remarks) == 0 {
 			continue
 		}
-		d := workbook.DigitsOf(s.Readings[i])
+		d := workbook.DigitsOf(s.Readings[i]).Finer()
 		list = append(list, BatchOdd{p.Point, d.Text(p.Mean), d.Text(p.ExpectedMean), d.Symbol(), remarkText(p, s.Readings[i].Unit)})
 	}
 	return list

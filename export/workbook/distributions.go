@@ -7,6 +7,7 @@ import (
 	"strings"
 
 	"batchwright/tolerance/bench"
+	"batchwright/tolerance/spread"
 
 	"github.com/xuri/excelize/v2"
 )
@@ -203,7 +204,7 @@ func (d drawn) sorted(numbers []int, values, heights []float64) (inside, outside
 	for i, v := range values {
 		m := mark{min(d.high, max(d.low, v)), heights[i]}
 		if m.x != v {
-			words = append(words, fmt.Sprintf("unit %d at %s", numbers[i], d.row.text(v*d.row.by)))
+			words = append(words, fmt.Sprintf("unit %d at %s", numbers[i], Digits{d.row.scale}.Text(spread.Figure(v*d.row.by))))
 		}
 		if s := d.row.side(v); s == "▼" || s == "▲" {
 			outside = append(outside, m)

@@ -126,7 +126,7 @@ func (b *book) reviewedUnits(r Reviewed) {
 		p.paragraph(text, 1, n, look{})
 	}
 	p.put(6)
-	titles := p.heads("cllll", "Unit", "Verdict", "Outside", "Probably", "Read or measure next")
+	titles := p.heads("cllii", "Unit", "Verdict", "Outside", "Probably", "Read or measure next")
 	for _, u := range r.Units {
 		l := look{bottom: hairline, wrap: true}
 		words := []string{u.Grade.mark() + clean(u.Verdict), joinedUp(u.Outside), joinedUp(u.Suspects), joinedUp(u.Next)}
@@ -134,8 +134,8 @@ func (b *book) reviewedUnits(r Reviewed) {
 		tall := lines(words[0], p.widths[1], 10, verdict.bold)
 		cells := []excelize.Cell{p.number(float64(u.Unit), "0", look{bottom: hairline, bold: true, across: "center"}), p.text(words[0], verdict)}
 		for i, word := range words[1:] {
-			cells = append(cells, p.text(word, l))
-			tall = max(tall, lines(word, p.widths[i+2], 10, false))
+			cells = append(cells, p.text(word, indentedIf(i > 0, l)))
+			tall = max(tall, lines(word, p.widths[i+2]-indented, 10, false))
 		}
 		p.put(lineHeight(10, tall), cells...)
 	}
@@ -192,8 +192,7 @@ func (p *page) reviewedPoint(r bench.Reading, x ReviewedPoint) {
 		remark.fill, remark.ink, remark.bold = straw, umber, true
 		text = "◆ " + text
 	}
-	finer := row.scale
-	finer.decimals = min(6, finer.decimals+1) // a mean is known better than a reading
+	finer := Digits{row.scale}.Finer()
 	slope := scaleOf(r.Unit, largestOf(x.Slope), powerBelow(largestOf(x.Slope)/100))
 	format := `+` + slope.format() + `;-` + slope.format() + `;` + slope.format()
 	if symbol := cut(strings.ReplaceAll(clean(slope.symbol), `"`, ""), 12); symbol != "" {

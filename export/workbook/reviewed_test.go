@@ -47,6 +47,8 @@ func sampleReviewed() Reviewed {
 			r.Good[x.Point] = append(r.Good[x.Point], float64(x.Expected.Low)+part*float64(x.Expected.High-x.Expected.Low))
 		}
 	}
+	// Equations may give no figure for some units; those are not drawn.
+	r.Good["rails.voltage"] = append(r.Good["rails.voltage"], math.NaN(), math.Inf(1))
 	r.Points[0] = ReviewedPoint{Units: 2, Mean: 12.0005, Expected: 12, Shift: -0.04, Ratio: 1.25, Slope: 0.001, Remark: "1.3 times as far apart as expected"}
 	return r
 }
@@ -298,7 +300,17 @@ func TestReviewedWithoutFigures(t *testing.T) {
 	same := sampleReviewed()
 	same.Good["rails.voltage"] = []float64{12, 12, 12}
 	same.Readings[0].Expected = limits(12, 12)
-	reviewedBytes(t, same)
+	same.Filled.Units = same.Filled.Units[:1]
+	if m := figuresOf(t, openReviewed(t, same), "rails.voltage", "inside"); len(m) != 1 || m[0].x != 12 {
+		t.Errorf("one reading where all are alike stands at %v", m)
+	}
+	same.Filled.Units[0].Values[0] = math.MaxFloat64
+	same.Readings[0].Unit, same.Readings[0].Nominal, same.Readings[0].Expected = "V", 0.001, limits(0.0009, 0.0011)
+	f := openReviewed(t, same)
+	shown := cell(t, f, readingsSheet, at(reviewedFixed+1, rowWith(t, f, readingsSheet, 2, "rails.voltage")))
+	if v, err := strconv.ParseFloat(shown, 64); err != nil || !(v > 1e308) || math.IsInf(v, 0) {
+		t.Error("a reading too large for its unit is shown as " + shown)
+	}
 }
 
 // A review of 24 units prints on five pages: the units, two of readings, the

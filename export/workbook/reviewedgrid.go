@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"fmt"
+	"math"
 	"strconv"
 
 	"batchwright/tolerance/bench"
@@ -145,13 +146,14 @@ func (p *page) reading(v float64, sign string, row benchRow) excelize.Cell {
 	return excelize.Cell{StyleID: p.style(l), Value: v}
 }
 
-// typed is a figure in the row's unit, the binary fraction's tail taken off.
+// typed is a figure in the row's unit, the binary fraction's tail taken off and
+// no larger than a cell can hold.
 func (r benchRow) typed(v float64) float64 {
 	x, err := strconv.ParseFloat(strconv.FormatFloat(v/r.by, 'g', 12, 64), 64)
 	if err != nil {
-		return v / r.by
+		x = v / r.by
 	}
-	return x
+	return math.Max(-math.MaxFloat64, math.Min(math.MaxFloat64, x))
 }
 
 // side is the mark of a figure in the row's unit; "" inside.

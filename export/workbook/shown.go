@@ -2,7 +2,7 @@ package workbook
 
 import (
 	"math"
-	"strings"
+	"strconv"
 
 	"batchwright/bom/quantity"
 	"batchwright/tolerance/bench"
@@ -49,17 +49,27 @@ func DigitsOf(r bench.Reading) Digits { return Digits{readingRow(r).scale} }
 // TurnDigits are those of what a trim is set to.
 func TurnDigits(t bench.Turn) Digits { return Digits{Plan{}.turnRow(t).scale} }
 
+// Finer has a digit more: a mean is known better than a reading.
+func (d Digits) Finer() Digits {
+	d.decimals = min(6, d.decimals+1)
+	return d
+}
+
 // Symbol is the unit; "" for a plain ratio.
 func (d Digits) Symbol() string { return d.symbol }
 
-// Text is a figure in SI without the unit; a dash where there is none.
-func (d Digits) Text(v spread.Figure) string { return d.text(float64(v)) }
+// Text is a figure in SI without the unit; a dash where there is none. What is
+// absurdly far from the line's figures is written with a power of ten.
+func (d Digits) Text(v spread.Figure) string {
+	const longest = 14
+	if text := d.text(float64(v)); len(text) <= longest {
+		return text
+	}
+	return strconv.FormatFloat(float64(v)/d.by, 'g', 4, 64)
+}
 
 // Between is a window without the unit.
 func (d Digits) Between(l spread.Limits) string { return d.Text(l.Low) + " to " + d.Text(l.High) }
-
-// With is a figure in SI with the unit.
-func (d Digits) With(v spread.Figure) string { return strings.TrimSpace(d.Text(v) + " " + d.symbol) }
 
 func rowInUnit(b benchRow, symbol string) readRow {
 	r := readRow{benchRow: b, label: b.name}

@@ -94,3 +94,22 @@ func TestFormatHasTheDecimals(t *testing.T) {
 		t.Errorf("NaN is shown as %s", got)
 	}
 }
+
+// A reading far off is no slip of the unit where the window holds zero: made a
+// thousand times smaller, anything would be inside.
+func TestNoOtherUnitAboutZero(t *testing.T) {
+	for _, c := range []struct {
+		name      string
+		low, high float64
+		v         float64
+		suspect   bool
+	}{
+		{"about zero", -0.1, 0.1, -5.3, false}, {"a thousand times too large", 4.4, 4.6, 4500, true}, {"a thousand times too small", 4.4, 4.6, 0.0045, true},
+	} {
+		r := rowInUnit(benchRow{scale: scale{by: 1, symbol: "V"}}, "V")
+		r.window = limits(c.low, c.high)
+		if got := r.suspect(c.v); (got != "") != c.suspect {
+			t.Errorf("%s: %q", c.name, got)
+		}
+	}
+}

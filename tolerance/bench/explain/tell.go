@@ -53,14 +53,15 @@ const highest = 1000
 // guessed is what a hypothesis predicts of every output.
 type guessed struct{ mean, sd []float64 }
 
-// further finds the reading that tells two hypotheses apart best: an output that
-// no reading taken already is, or a point not read yet; at the reference
-// condition, where the unit is, if one there tells at all.
+// further finds the reading that tells two hypotheses apart best: an output
+// that no reading taken already is, or a point not read yet. At another
+// condition than the reference, which the bench has, only where none there does.
 func (x *explainer) further(a, b int, read []int) Further {
 	f := Further{Between: [2]string{x.faults[a-1].name(), x.faults[b-1].name()}}
-	best, score := x.best(a, b, read, true)
+	p, q := x.guess(a), x.guess(b)
+	best, score := x.telling(p, q, func(o build.Output) bool { return o.Condition == 0 && !x.isRead(o, read) })
 	if score < enough {
-		best, score = x.best(a, b, read, false)
+		best, score = x.telling(p, q, func(o build.Output) bool { return o.Condition != 0 })
 	}
 	if score < enough {
 		f.Reading, f.Score = x.faults[a-1].remedy(), spread.Figure(math.NaN())
@@ -68,17 +69,16 @@ func (x *explainer) further(a, b int, read []int) Further {
 	}
 	o := x.model.Outputs[best]
 	f.Reading = o.Name.String() + " at " + x.model.Build.Conditions[o.Condition].Name
-	f.Expect = &[2]spread.Figure{spread.Figure(x.guess(a).mean[best]), spread.Figure(x.guess(b).mean[best])}
+	f.Expect = &[2]spread.Figure{spread.Figure(p.mean[best]), spread.Figure(q.mean[best])}
 	f.Unit, f.Score = o.Unit.Symbol, spread.Figure(score)
 	return f
 }
 
-// best is the output, of those at the reference condition or of all, at which
-// two hypotheses are the most standard deviations apart, and how many.
-func (x *explainer) best(a, b int, read []int, reference bool) (output int, score float64) {
-	p, q := x.guess(a), x.guess(b)
+// telling is the output among some whose predictions are furthest apart, and
+// how far in standard deviations.
+func (x *explainer) telling(p, q guessed, among func(build.Output) bool) (best int, score float64) {
 	for i, o := range x.model.Outputs {
-		if o.ChangeFrom >= 0 || reference && o.Condition != 0 || !readable[o.Unit.Dimension] || x.isRead(o, read) {
+		if o.ChangeFrom >= 0 || !readable[o.Unit.Dimension] || !among(o) {
 			continue
 		}
 		largest := math.Max(math.Abs(p.mean[i]), math.Abs(q.mean[i]))
@@ -88,10 +88,10 @@ func (x *explainer) best(a, b int, read []int, reference bool) (output int, scor
 		noise := guess * largest
 		s := math.Abs(p.mean[i]-q.mean[i]) / math.Sqrt(p.sd[i]*p.sd[i]+q.sd[i]*q.sd[i]+noise*noise)
 		if s > score { // false for NaN
-			output, score = i, s
+			best, score = i, s
 		}
 	}
-	return output, score
+	return best, score
 }
 
 // remedy is what tells when no reading does.

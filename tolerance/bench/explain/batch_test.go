@@ -170,6 +170,53 @@ stages:
 	}
 }
 
+// TestLotThatAnotherCouldBe has the capacitors' lot off by 2.6 of its standard
+// deviations. What the readings feel of the coils' is 10/6 of that, so it is the
+// coils' lot that is named, off by some 2.6·(6·10)/(10² + 6²) = 1.15 ± 0.51; but
+// the capacitors' would only have to be off by 1.15·(10/6) = 1.9, and that has to
+// be said. With capacitors of 3 % it would be 2.6·30/109·(10/3) = 2.4 of theirs,
+// and of 1 % beyond what a lot may be.
+func TestLotThatAnotherCouldBe(t *testing.T) {
+	for _, c := range []struct {
+		tolerance string
+		g         float64
+		unclear   int
+	}{{"6 %", 2.6, 1}, {"1 %", 15, 0}} {
+		f := small(t, `
+build: tank
+units: 20
+conditions: {bench: {temperature: 25 °C}}
+instruments: {scope: {accuracy: 50 %}}
+stages:
+  a:
+    kind: tuned-tank
+    settings: {stray: 0 pF}
+    parts:
+      coil: {ref: L1, value: 1 mH, tolerance: 10 %, correlation: {value: 0.97, temperature: 0}}
+      tank: {ref: C1, value: 150 pF, tolerance: `+c.tolerance+`, correlation: {value: 0.97, temperature: 0}}
+`)
+		capacitors := -1
+		for _, l := range f.x.lines() {
+			if f.x.lotName(l).Refs[0] == "C1" {
+				capacitors = l.number
+			}
+		}
+		y := f.measure(nil, 20, 3, func(lot, batch int) (float64, bool) {
+			if lot == capacitors {
+				return c.g, true
+			}
+			return 0, true
+		})
+		r, err := f.x.review(context.Background(), filled(f, y))
+		if err != nil {
+			t.Fatal(err)
+		}
+		if len(r.Batch.Lots) != 1 || r.Batch.Lots[0].Refs[0] != "L1" || len(r.Batch.Unclear) != c.unclear {
+			t.Errorf("%s: lots %+v, unclear %+v, want L1 and %d pairs", c.tolerance, r.Batch.Lots, r.Batch.Unclear, c.unclear)
+		}
+	}
+}
+
 // TestFewUnits has nothing to say of a batch of three.
 func TestFewUnits(t *testing.T) {
 	f := small(t, dividers)

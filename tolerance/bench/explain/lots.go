@@ -263,9 +263,13 @@ func (x *explainer) shiftUnit(in build.Input) (float64, string) {
 // apart.
 const parallel = 0.95
 
-// reportUnclear finds pairs of lots that the readings have not narrowed, that
-// do the same to them, and whose sum, each counted by how strongly the readings
-// feel it, is off:
+// farthest is how far off a lot may be taken to be, in its standard deviations.
+const farthest = 3
+
+// reportUnclear finds pairs of lots that do the same to the readings and whose
+// sum, each counted by how strongly the readings feel it, is off: two that the
+// readings have not narrowed, or one that was reported and another that could
+// have done it in its place:
 //
 //	u = (a_i·g_i ± a_j·g_j)/√(a_i² + a_j²),  a² = AᵀR⁻¹A
 func (x *explainer) reportUnclear(b *Batch, p *learned, told []bool) {
@@ -273,7 +277,7 @@ func (x *explainer) reportUnclear(b *Batch, p *learned, told []bool) {
 		for j := range i {
 			ai, aj := math.Sqrt(p.information.At(i, i)-1), math.Sqrt(p.information.At(j, j)-1)
 			cosine := p.information.At(i, j) / (ai * aj)
-			if told[i] || told[j] || !(math.Abs(cosine) > parallel) {
+			if !(math.Abs(cosine) > parallel) || told[i] && !p.standsFor(i, j, ai, aj) || told[j] && !p.standsFor(j, i, aj, ai) {
 				continue
 			}
 			size := math.Hypot(ai, aj)
@@ -289,4 +293,11 @@ func (x *explainer) reportUnclear(b *Batch, p *learned, told []bool) {
 	slices.SortStableFunc(b.Unclear, func(p, q Unclear) int {
 		return cmp.Compare(math.Abs(float64(q.Score)), math.Abs(float64(p.Score)))
 	})
+}
+
+// standsFor says whether another lot could have done what is said of one: it
+// was not narrowed and need not be off too far. The readings feel them by a and
+// other.
+func (p *learned) standsFor(lot, instead int, a, other float64) bool {
+	return math.Sqrt(p.cov.At(instead, instead)) >= narrowed && math.Abs(p.mean.AtVec(lot))*a <= farthest*other
 }

@@ -30,12 +30,17 @@ func VerdictWords(v explain.Verdict) string {
 func VerdictText(u ReviewUnit) string {
 	switch words := VerdictWords(u.Verdict); {
 	case u.Verdict == explain.Improbable:
-		return fmt.Sprintf("every reading is inside, but they are unlikely together: %.1f standard deviations from the middle of good units, of which 0.3 %% are further than %.1f", float64(u.Distance), float64(u.DistanceLimit))
+		return "every reading is inside, but they are unlikely together: " + distanceText(u)
 	case u.Accused && u.Verdict != explain.Outside:
 		return words + ", but something is probably wrong"
 	default:
 		return words
 	}
+}
+
+// distanceText says how far from good units all readings together are.
+func distanceText(u ReviewUnit) string {
+	return fmt.Sprintf("%.1f standard deviations from the middle of good units, of which 0.3 %% are further than %.1f", float64(u.Distance), float64(u.DistanceLimit))
 }
 
 // Odd is a reading that is outside a window, or a trim that was left where it

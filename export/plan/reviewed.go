@@ -72,6 +72,9 @@ func reviewedUnit(w Work, u ReviewUnit) workbook.ReviewedUnit {
 		// A minus sign keeps to its figure where a line ends; a hyphen does not.
 		out.Outside = append(out.Outside, strings.NewReplacer(" -", " −", "(-", "(−").Replace(o.Text()))
 	}
+	if u.Verdict == explain.Improbable { // the verdict's own column is narrow
+		out.Verdict, out.Outside = VerdictWords(u.Verdict), []string{"none alone; together " + distanceText(u)}
+	}
 	if text := HealthyText(u); text != "" && len(u.Suspects) > 0 {
 		out.Suspects = append(out.Suspects, Likelihood(u.Healthy)+" "+text)
 	}

@@ -8,6 +8,7 @@ import (
 	"path/filepath"
 	"regexp"
 	"runtime"
+	"slices"
 	"strings"
 	"testing"
 
@@ -110,12 +111,21 @@ func examples(t *testing.T) [][]string {
 	for _, line := range regexp.MustCompile(`(?m)^ {2,4}(?:batchwright|go run \./cli/batchwright) (.*)$`).FindAllStringSubmatch(all, -1) {
 		list = append(list, strings.Fields(line[1]))
 	}
-	return list
+	seen := map[string]bool{} // many stand in the README and in a command's help
+	return slices.DeleteFunc(list, func(args []string) bool {
+		line := strings.Join(args, " ")
+		twice := seen[line]
+		seen[line] = true
+		return twice
+	})
 }
 
 // Every example runs as it stands, those that compare on the embedded example,
 // of whose cases none has to meet every target. The bare `plan` is TestShow's.
 func TestExamples(t *testing.T) {
+	if testing.Short() {
+		t.Skip("whole plans, one for each example")
+	}
 	list := examples(t)
 	if len(list) < 12 {
 		t.Fatalf("found %d examples", len(list))

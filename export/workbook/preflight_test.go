@@ -246,6 +246,9 @@ func spacesBomb(t testing.TB, file []byte, n int) []byte {
 // take more memory than a large workbook would: 800 MiB handed out and given back,
 // where the worst of them asks for eight gigabytes.
 func TestDamaged(t *testing.T) {
+	if testing.Short() {
+		t.Skip("files that inflate to gigabytes")
+	}
 	for _, c := range corpus(t) {
 		t.Run(c.name, func(t *testing.T) {
 			var before, after runtime.MemStats

@@ -316,6 +316,9 @@ func TestReviewedWithoutFigures(t *testing.T) {
 // A review of 24 units prints on five pages: the units, two of readings, the
 // batch, and the charts of four points on one. Hidden figures are not printed.
 func TestReviewedPages(t *testing.T) {
+	if testing.Short() {
+		t.Skip("pages on both papers")
+	}
 	for _, paper := range []Paper{A4, Letter} {
 		r := sampleReviewed()
 		r.Paper = paper

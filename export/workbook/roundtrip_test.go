@@ -136,6 +136,9 @@ unread Bench 4!M17 (mixer.collector, unit 2): a formula; type the figure itself:
 // TestOfficeUntouched has nothing to say of a large workbook that LibreOffice
 // only saved again: its own ways of writing are none of the bench's doing.
 func TestOfficeUntouched(t *testing.T) {
+	if testing.Short() {
+		t.Skip("200 units through another program")
+	}
 	p := sample(200)
 	path := filepath.Join(t.TempDir(), "plan.xlsx")
 	if err := os.WriteFile(path, written(t, p), 0o644); err != nil {

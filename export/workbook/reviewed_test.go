@@ -32,7 +32,7 @@ func sampleReviewed() Reviewed {
 				Suspects: []string{"91 % R5 ten times too large", "7 % R6 missing or open"}, Next: []string{"measure R5 out of circuit"}},
 			{Unit: 3, Verdict: "not read"},
 		},
-		Turns: sampleTurns, Readings: sampleReadings(),
+		Turns: slices.Clone(sampleTurns), Readings: sampleReadings(),
 		Filled: bench.Filled{Points: []string{"rails.voltage", "fixed.frequency", "mixer.base", "output.level"}, Units: []bench.FilledUnit{
 			{Unit: 1, Values: []spread.Figure{12, 332000, 0.66, 0.9}}, {Unit: 2, Values: []spread.Figure{12.001, 250000, 0.71, 0.8}},
 		}},
